@@ -1,0 +1,159 @@
+package algebra
+
+import "slices"
+
+// shared is a base with its exponents in two denominators.
+type shared struct {
+	base Poly
+	a, b int
+}
+
+// common returns the bases of two denominators with their exponents in both,
+// sorted. A base that divides another is split off it; split reports whether one
+// was.
+func common(f, g []Factor) (basis []shared, split bool) {
+	basis = make([]shared, 0, len(f)+len(g))
+	i, j := 0, 0
+	matched := 0
+	for i < len(f) || j < len(g) {
+		c := 0
+		switch {
+		case i == len(f):
+			c = 1
+		case j == len(g):
+			c = -1
+		default:
+			c = f[i].Base.compareTo(g[j].Base)
+		}
+		switch {
+		case c < 0:
+			basis = append(basis, shared{f[i].Base, f[i].Exp, 0})
+			i++
+		case c > 0:
+			basis = append(basis, shared{g[j].Base, 0, g[j].Exp})
+			j++
+		default:
+			basis = append(basis, shared{f[i].Base, f[i].Exp, g[j].Exp})
+			i, j = i+1, j+1
+			matched++
+		}
+	}
+	if matched == len(f) || matched == len(g) {
+		return basis, false
+	}
+	return refine(basis)
+}
+
+// refine splits bases until none divides another.
+func refine(list []shared) (basis []shared, split bool) {
+	todo := slices.Clone(list)
+	for len(todo) > 0 {
+		p := todo[len(todo)-1]
+		todo = todo[:len(todo)-1]
+		keep := true
+		for i := 0; i < len(basis) && keep; i++ {
+			q := &basis[i]
+			if p.base.Equal(q.base) {
+				q.a, q.b = q.a+p.a, q.b+p.b
+				keep = false
+				break
+			}
+			if r, ok := p.base.DivExact(q.base); ok {
+				split = true
+				q.a, q.b = q.a+p.a, q.b+p.b
+				todo = append(todo, shared{r, p.a, p.b})
+				keep = false
+			} else if r, ok := q.base.DivExact(p.base); ok {
+				split = true
+				todo = append(todo, shared{r, q.a, q.b}, shared{p.base, p.a + q.a, p.b + q.b})
+				basis = slices.Delete(basis, i, i+1)
+				keep = false
+			}
+		}
+		if keep {
+			basis = append(basis, p)
+		}
+	}
+	slices.SortFunc(basis, func(x, y shared) int { return x.base.compareTo(y.base) })
+	return basis, split
+}
+
+// irreducible reports whether b, of coprime integer coefficients, is seen at a
+// glance to be irreducible: it is an indeterminate, or linear in one with a
+// constant coefficient.
+func irreducible(b Poly) bool {
+	r := b.r
+	for k := range r.vars {
+		count := 0
+		for i := range r.coefs {
+			t := r.term(i)
+			if e := r.lay.field(t, k+1); e > 0 {
+				if count++; count > 1 || e > 1 || r.lay.field(t, 0) > 1 {
+					count = 2
+					break
+				}
+			}
+		}
+		if count == 1 {
+			return true
+		}
+	}
+	return false
+}
+
+// cancel divides num by each base as often as it goes, at most to the exponent.
+// The list is not modified.
+func cancel(num Poly, den []Factor) (Poly, []Factor) {
+	return cancelSome(num, den, func(int) bool { return true })
+}
+
+func cancelSome(num Poly, den []Factor, try func(i int) bool) (Poly, []Factor) {
+	if num.r == nil || num.r.err != nil {
+		return num, nil
+	}
+	var out []Factor
+	for i, d := range den {
+		e := d.Exp
+		if try(i) {
+			for e > 0 {
+				q, ok := num.DivExact(d.Base)
+				if !ok {
+					break
+				}
+				num = q
+				e--
+			}
+		}
+		if e != d.Exp && out == nil {
+			out = append(make([]Factor, 0, len(den)), den[:i]...)
+		}
+		if out != nil && e > 0 {
+			out = append(out, Factor{d.Base, e})
+		}
+	}
+	if out == nil {
+		out = den
+	}
+	return num, out
+}
+
+// reduce makes a fraction, trying to cancel the bases for which try holds.
+func reduce(num Poly, den []Factor, try func(i int) bool) Fraction {
+	return over(cancelSome(num, den, try))
+}
+
+// factors writes p, which is not 0, as a rational times a product of bases.
+func factors(p Poly) (unit Rat, den []Factor) {
+	unit, p = p.Primitive()
+	if m := p.MonomialContent(); m != One {
+		for _, w := range m.Powers() {
+			den = append(den, Factor{Variable(w.Var), w.Exp})
+		}
+		p, _ = p.DivExact(monomialPoly(m))
+	}
+	if _, ok := p.IsConst(); !ok {
+		den = append(den, Factor{p, 1})
+	}
+	slices.SortFunc(den, func(x, y Factor) int { return x.Base.compareTo(y.Base) })
+	return unit, den
+}
