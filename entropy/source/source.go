@@ -1,7 +1,6 @@
-// Package source carries places in a user's files, and errors that point at
-// them. Every formula is a piece of some file: a Text knows where in the file
-// it begins, so that an error in the formula is reported in the file.
 package source
+
+import "unicode/utf8"
 
 // Text is a piece of a file. The zero Line and Col mean line 1, column 1.
 type Text struct {
@@ -14,3 +13,32 @@ type Text struct {
 // Pos is a place in a file, both parts 1-based, columns counted in runes.
 // The zero Pos is "nowhere": a formula made by a program.
 type Pos struct{ Line, Col int }
+
+// Pos is the place of the rune of S at the offset, counted in runes from 0. An
+// offset past the end is the place after the last rune.
+func (t Text) Pos(offset int) Pos {
+	pos, _, _ := t.locate(offset)
+	return pos
+}
+
+// locate is the place of the rune at the offset, the line of S it stands in,
+// and the column of the first rune of that line.
+func (t Text) locate(offset int) (pos Pos, line string, from int) {
+	pos = Pos{Line: max(t.Line, 1), Col: max(t.Col, 1)}
+	from = pos.Col
+	start, i := 0, 0
+	for n := 0; n < offset && i < len(t.S); n++ {
+		r, size := utf8.DecodeRuneInString(t.S[i:])
+		i += size
+		pos.Col++
+		if r == '\n' {
+			pos.Line++
+			pos.Col, from, start = 1, 1, i
+		}
+	}
+	end := i
+	for end < len(t.S) && t.S[end] != '\n' {
+		end++
+	}
+	return pos, t.S[start:end], from
+}

@@ -1,0 +1,103 @@
+package formula
+
+import (
+	"fmt"
+	"strconv"
+	"strings"
+)
+
+// maxDigits bounds the digits of a number written out without an exponent.
+const maxDigits = 1000
+
+// number makes a token of digits, a decimal fraction, a decimal exponent.
+func (l *lexer) number(t *token) {
+	start, at := l.i, l.n
+	whole := l.run(isDigit)
+	fraction := ""
+	if l.rune() == '.' && l.i+1 < len(l.src.S) && isDigit(rune(l.src.S[l.i+1])) {
+		l.skip()
+		fraction = l.run(isDigit)
+	}
+	exponent := ""
+	mark := *l
+	if r := l.rune(); r == 'e' || r == 'E' {
+		run := l.peekRun(isNameRune) // the name that begins here otherwise
+		mantissa := l.src.S[start:l.i]
+		l.skip()
+		sign := ""
+		switch l.rune() {
+		case '+':
+			l.skip()
+		case '-', '−':
+			sign = "-"
+			l.skip()
+		}
+		digits := l.run(isDigit)
+		switch {
+		case digits == "":
+			*l = mark
+		case l.declared(string(r)) || l.declared(run):
+			name := string(r)
+			if sign == "" && l.declared(run) {
+				name = run
+			}
+			product := fmt.Sprintf("%s*%s", clip(mantissa), name)
+			if name != run || len(run) == 1 {
+				product += fmt.Sprintf(" %s %s", orPlus(sign), clip(digits))
+			}
+			literal := clip(mantissa) + "*10^(" + sign + clip(digits) + ")"
+			l.fail(at, fmt.Sprintf("%q could be a number or a product with %s", clip(l.src.S[start:l.i]), name),
+				fmt.Sprintf("write %q for the number or %q for the product", literal, product))
+			return
+		default:
+			exponent = sign + digits
+		}
+	}
+	t.kind = kNum
+	t.text = whole
+	if fraction != "" {
+		t.text += "." + fraction
+	}
+	if written(whole, fraction, exponent) > maxDigits {
+		l.fail(at, fmt.Sprintf("a number has at most %d digits, written out", maxDigits), "write a power of ten as 10^n")
+		return
+	}
+	if exponent != "" {
+		t.text += "e" + exponent
+	}
+}
+
+func orPlus(sign string) string {
+	if sign == "" {
+		return "+"
+	}
+	return sign
+}
+
+// declared reports whether a run of letters is a declared name.
+func (l *lexer) declared(run string) bool {
+	name, ok := foldRun(run)
+	return ok && l.scope.kinds[name] != Undeclared
+}
+
+// written is how many digits a literal has without its exponent, or more than
+// maxDigits where that is many.
+func written(whole, fraction, exponent string) int {
+	if exponent == "" {
+		return len(whole) + len(fraction)
+	}
+	sign := 1
+	if strings.HasPrefix(exponent, "-") {
+		sign, exponent = -1, exponent[1:]
+	}
+	exponent = strings.TrimLeft(exponent, "0")
+	if len(exponent) > 5 {
+		return maxDigits + 1
+	}
+	e, err := strconv.Atoi("0" + exponent)
+	if err != nil {
+		return maxDigits + 1
+	}
+	e *= sign
+	return max(len(whole)+e, 1) + max(len(fraction)-e, 0)
+}
