@@ -1,0 +1,316 @@
+package adaptive
+
+import (
+	"container/heap"
+	"math"
+	"slices"
+)
+
+// Limits of the subdivision.
+const (
+	deepest    = 60 // halvings
+	longStall  = 4  // halvings in a row that do not lessen the estimate
+	keptPanels = 8  // a longer subdivision is not handed on by a Mesh
+	gain       = 0.05
+)
+
+// Run integrates. The error is one of F, or nil; whether the tolerance was met
+// is in the result.
+func (t *Task) Run() (Result, error) {
+	if t.Mesh == nil {
+		t.Mesh = new(Mesh)
+	}
+	if t.Periodic && !t.Mesh.failed {
+		r, ok, err := t.ring()
+		if err != nil || ok {
+			return r, err
+		}
+		t.Mesh.failed = true
+	}
+	return t.bisect()
+}
+
+// panelHeap orders panels by decreasing key.
+type panelHeap []*panel
+
+func (h panelHeap) Len() int           { return len(h) }
+func (h panelHeap) Less(i, j int) bool { return h[i].key > h[j].key }
+func (h panelHeap) Swap(i, j int)      { h[i], h[j] = h[j], h[i] }
+func (h *panelHeap) Push(x any)        { *h = append(*h, x.(*panel)) }
+func (h *panelHeap) Pop() any {
+	o := *h
+	p := o[len(o)-1]
+	*h = o[:len(o)-1]
+	return p
+}
+
+// bisection is the state of a global adaptive integration.
+type bisection struct {
+	t      *Task
+	active panelHeap // to be refined if need be
+	final  []*panel  // refining these does not help
+	est    [Width]float64
+	noise  [Width]float64
+	value  [Width]float64
+	scale  [Width]float64
+}
+
+func (t *Task) bisect() (Result, error) {
+	b := &bisection{t: t}
+	start := t.Mesh.panels
+	if len(start) == 0 {
+		start = []panel{{lo: t.Lo, hi: t.Hi, order: 15}}
+	}
+	for i := range start {
+		p := start[i]
+		if err := t.apply(&p); err != nil {
+			return Result{}, err
+		}
+		b.active = append(b.active, &p)
+	}
+	b.total()
+	ps := b.active
+	b.active = nil
+	for _, p := range ps {
+		b.put(p)
+	}
+	for n := 1; ; n++ {
+		if b.met() {
+			if b.total(); b.met() {
+				break
+			}
+		}
+		if len(b.active) == 0 || t.Work.spent() {
+			break
+		}
+		p := heap.Pop(&b.active).(*panel)
+		kids, err := b.refine(p)
+		if err != nil {
+			return Result{}, err
+		}
+		b.account(p, -1)
+		for _, k := range kids {
+			b.account(k, 1)
+			b.put(k)
+		}
+		if n%64 == 0 {
+			b.total()
+		}
+	}
+	return b.result(), nil
+}
+
+// put files a panel, as final if its estimate is within its noise.
+func (b *bisection) put(p *panel) {
+	p.key = 0
+	for c := range Width {
+		if p.est[c] > p.v.Noise[c] && b.scale[c] > 0 {
+			p.key = math.Max(p.key, p.est[c]/b.scale[c])
+		}
+	}
+	if p.key == 0 || p.depth >= deepest || p.stall >= longStall ||
+		p.width() <= 8*epsilon*math.Max(math.Abs(p.lo), math.Abs(p.hi)) {
+		b.final = append(b.final, p)
+		return
+	}
+	heap.Push(&b.active, p)
+}
+
+func (b *bisection) account(p *panel, sign float64) {
+	for c := range Width {
+		b.est[c] += sign * p.est[c]
+		b.noise[c] += sign * p.v.Noise[c]
+		b.value[c] += sign * p.v.Value[c]
+	}
+}
+
+// total sums everything anew.
+func (b *bisection) total() {
+	var value, est, noise, size [Width]sum
+	for _, list := range [][]*panel{b.final, b.active} {
+		for _, p := range list {
+			for c := range Width {
+				value[c].add(p.v.Value[c])
+				est[c].add(p.est[c])
+				noise[c].add(p.v.Noise[c])
+				size[c].add(p.v.Size[c])
+			}
+		}
+	}
+	for c := range Width {
+		b.value[c], b.est[c] = value[c].value(), est[c].value()
+		b.noise[c], b.scale[c] = noise[c].value(), size[c].value()
+	}
+}
+
+func (b *bisection) tolerance(c int) float64 {
+	return math.Max(math.Max(b.t.Abs[c], b.t.Rel*math.Abs(b.value[c])), b.noise[c])
+}
+
+func (b *bisection) met() bool {
+	for c := range Width {
+		if b.est[c] > b.tolerance(c) {
+			return false
+		}
+	}
+	return true
+}
+
+func (b *bisection) result() Result {
+	r := Result{Converged: b.met()}
+	b.total()
+	for c := range Width {
+		r.Value[c], r.Noise[c], r.Size[c] = b.value[c], b.noise[c], b.scale[c]
+		r.Error[c] = b.est[c] + b.noise[c]
+	}
+	all := append(slices.Clone(b.final), b.active...)
+	b.t.Mesh.panels = b.t.Mesh.panels[:0]
+	if len(all) <= keptPanels {
+		slices.SortFunc(all, func(p, q *panel) int {
+			a, _ := p.at((p.lo + p.hi) / 2)
+			c, _ := q.at((q.lo + q.hi) / 2)
+			switch {
+			case a < c:
+				return -1
+			case a > c:
+				return 1
+			}
+			return 0
+		})
+		for _, p := range all {
+			k := *p
+			k.stall = 0
+			b.t.Mesh.panels = append(b.t.Mesh.panels, k)
+		}
+	}
+	return r
+}
+
+// worst is the largest estimate of a panel in units of the tolerance.
+func (b *bisection) worst(p *panel) (excess, decay float64) {
+	for c := range Width {
+		if p.est[c] <= p.v.Noise[c] {
+			continue
+		}
+		if tol := b.tolerance(c); tol > 0 {
+			excess = math.Max(excess, p.est[c]/tol)
+		} else {
+			excess = math.Inf(1)
+		}
+		decay = math.Max(decay, p.decay[c])
+	}
+	return excess, decay
+}
+
+// refine replaces a panel by better ones.
+func (b *bisection) refine(p *panel) ([]*panel, error) {
+	excess, decay := b.worst(p)
+	if p.kind != exponential && p.order < 31 && decay <= resolved {
+		q := *p
+		switch {
+		case p.order < 21 && 4*excess*math.Pow(decay, 3) <= 1:
+			q.order = 21
+		case excess*math.Pow(decay, 8) <= 10:
+			q.order = 31
+		}
+		if q.order > p.order {
+			if err := b.t.apply(&q); err != nil {
+				return nil, err
+			}
+			return []*panel{&q}, nil
+		}
+	}
+	if p.kind == plain && decay > resolved {
+		if q, err := b.atEnd(p, excess); q != nil || err != nil {
+			return []*panel{q}, err
+		}
+	}
+	return b.halve(p, excess)
+}
+
+// atEnd tries the rules for a singularity at an end of the interval on a panel
+// at which bisection has come to cluster. It returns nil if none of them helps.
+func (b *bisection) atEnd(p *panel, excess float64) (*panel, error) {
+	run := max(p.left, p.right)
+	if (p.left > 0) == (p.right > 0) || run < 2 {
+		return nil, nil
+	}
+	var tries []*panel
+	if !p.tried || run%4 == 0 {
+		p.tried = true
+		q := *p
+		q.h, q.lo, q.hi, q.order = p.hi-p.lo, 0, 1, 31
+		q.kind, q.end = squareLeft, p.lo
+		if p.right > 0 {
+			q.kind, q.end = squareRight, p.hi
+		}
+		tries = append(tries, &q)
+	}
+	if run%4 == 3 {
+		q := *p
+		q.kind = exponential
+		tries = append(tries, &q)
+	}
+	for _, q := range tries {
+		if err := b.t.apply(q); err != nil {
+			return nil, err
+		}
+		if e, _ := b.worst(q); e <= gain*excess || e <= gain {
+			q.left, q.right = -1, -1
+			return q, nil
+		}
+	}
+	return nil, nil
+}
+
+// rough reports whether the estimate of a panel is so small next to its size
+// that it may be rounding in the integrand rather than an oscillation.
+func (p *panel) rough() bool {
+	for c := range Width {
+		if p.est[c] > 1e-7*p.v.Size[c] {
+			return false
+		}
+	}
+	return true
+}
+
+// halve splits a panel into two.
+func (b *bisection) halve(p *panel, excess float64) ([]*panel, error) {
+	base := *p
+	if base.kind == exponential {
+		base.kind = plain
+	}
+	base.depth++
+	base.order = 15
+	mid := p.lo + (p.hi-p.lo)/2
+	l, r := base, base
+	l.hi, r.lo = mid, mid
+	if base.kind == plain {
+		l.left, l.right = -1, -1
+		r.left, r.right = -1, -1
+		if p.left >= 0 {
+			l.left = p.left + 1
+		}
+		if p.right >= 0 {
+			r.right = p.right + 1
+		}
+	}
+	kids := []*panel{&l, &r}
+	var after float64
+	for _, k := range kids {
+		if err := b.t.apply(k); err != nil {
+			return nil, err
+		}
+		e, _ := b.worst(k)
+		after += e
+	}
+	stall := 0
+	if after > 0.97*excess && p.depth >= 3 && p.rough() {
+		stall = p.stall + 1
+	}
+	l.stall, r.stall = stall, stall
+	if b.t.Work.spent() && after > excess {
+		return []*panel{p}, nil
+	}
+	return kids, nil
+}

@@ -1,0 +1,250 @@
+package quadrature
+
+import (
+	"context"
+	"fmt"
+	"math"
+
+	"creaseproof/quadrature/adaptive"
+)
+
+// Traces are the function u on the two sides of a surface.
+type Traces struct {
+	// Plus and Minus return u at x and fill grad with its gradient, on the
+	// side the normal points to and on the other. They must not keep the
+	// slices. Both nil: there are no traces, only a density.
+	Plus, Minus func(x, grad []float64) (u float64)
+	// HasValue is false when only the gradients are known; then continuity of
+	// u is not checked.
+	HasValue bool
+	// Scale, if not nil, returns the sum of the absolute values of the terms
+	// of u at x on both sides, against which a discontinuity is judged in
+	// addition to |u| and |grad u| |x|.
+	Scale func(x []float64) float64
+}
+
+// A Density is an energy per area at x. Plus and minus are the gradients on
+// the two sides, nil where there are no traces, and nu the unit normal, which
+// points to the plus side. It must not keep the slices.
+type Density func(x, plus, minus, nu []float64) float64
+
+// Options of Integrate and Slice. The zero value is ready for use.
+type Options struct {
+	// Rel and Abs are the tolerances on the estimated error: it is to be at
+	// most max(Abs, Rel |value|), or down to rounding. Rel is 1e-11 if zero.
+	Rel, Abs float64
+	// MaxEvaluations is the budget of evaluations of the integrand, 2e6 if
+	// zero. It may be overrun by the nodes of the rules under way.
+	MaxEvaluations int
+	// Well returns the residual whose zero set is the well, and the sum of the
+	// absolute values of its terms. Nil: not checked.
+	Well func(grad []float64) (residual, scale float64)
+	// Tolerance is the relative tolerance of the checks, 1e-9 if zero.
+	Tolerance float64
+}
+
+func (o Options) withDefaults() Options {
+	if o.Rel == 0 {
+		o.Rel = 1e-11
+	}
+	if o.MaxEvaluations == 0 {
+		o.MaxEvaluations = 2000000
+	}
+	if o.Tolerance == 0 {
+		o.Tolerance = 1e-9
+	}
+	return o
+}
+
+func (o Options) check() error {
+	switch {
+	case !(o.Rel >= 0) || !(o.Abs >= 0) || !(o.Tolerance >= 0):
+		return fmt.Errorf("quadrature: tolerances must not be negative or NaN")
+	case o.MaxEvaluations < 0:
+		return fmt.Errorf("quadrature: a negative number of evaluations")
+	}
+	return nil
+}
+
+// A Result is the integral of a density over a surface.
+type Result struct {
+	// Energy is the integral and Error an estimate of its absolute error.
+	Energy, Error float64
+	// Area is the area (in the plane the length), AreaError its error.
+	Area, AreaError float64
+	// Evaluations counts the evaluations of the density.
+	Evaluations int
+}
+
+// Integrate integrates a density over a surface.
+//
+// At every node used it checks that positions, tangents, traces and density
+// are finite, that both traces lie on the well, that u is continuous across
+// the surface (if the values are known) and that the jump of the gradient is
+// parallel to the normal, each relative to the sum of the absolute terms. If
+// not, or if the area element vanishes on a whole region, the error is a
+// *PlaceError. Traces without functions are not checked and are passed on as
+// nil.
+//
+// If the tolerance is not met the result is returned together with ErrBudget
+// or ErrAccuracy. A cancelled context ends the work at once with its cause.
+func Integrate(ctx context.Context, s Surface, tr Traces, d Density, o Options) (Result, error) {
+	if s == nil || d == nil {
+		return Result{}, fmt.Errorf("quadrature: a surface and a density are needed")
+	}
+	if (tr.Plus == nil) != (tr.Minus == nil) {
+		return Result{}, fmt.Errorf("quadrature: one trace is given without the other")
+	}
+	if err := o.check(); err != nil {
+		return Result{}, err
+	}
+	o = o.withDefaults()
+	pieces, err := s.pieces()
+	if err != nil {
+		return Result{}, fmt.Errorf("quadrature: %w", err)
+	}
+	work := &adaptive.Work{Max: o.MaxEvaluations}
+	shapes := make([]*shape, len(pieces))
+	var far, low, high [3]float64
+	for i, p := range pieces {
+		if shapes[i], err = survey(p); err != nil {
+			return Result{}, fmt.Errorf("quadrature: %w", err)
+		}
+		for k := range p.dim {
+			if i == 0 {
+				low[k], high[k] = shapes[i].low[k], shapes[i].high[k]
+			}
+			low[k] = math.Min(low[k], shapes[i].low[k])
+			high[k] = math.Max(high[k], shapes[i].high[k])
+			far[k] = math.Max(math.Abs(low[k]), math.Abs(high[k]))
+		}
+	}
+	reach := norm(far[:])
+	var total sums
+	for i, p := range pieces {
+		e := newEvaluator(ctx, p, tr, d, o, work, reach)
+		e.shaky = shapes[i].shaky()
+		abs := total.tolerance(o, len(pieces))
+		r, err := run(e.at, shapes[i], o, abs, work, e.rowDone)
+		if err != nil {
+			return Result{Evaluations: work.Used}, fmt.Errorf("quadrature: %w", err)
+		}
+		total.add(r)
+	}
+	return total.finish(o, work)
+}
+
+// sums adds up the pieces.
+type sums struct {
+	value, err, size [adaptive.Width]neumaier
+}
+
+type neumaier struct{ s, c float64 }
+
+func (a *neumaier) add(x float64) {
+	t := a.s + x
+	if math.Abs(a.s) >= math.Abs(x) {
+		a.c += (a.s - t) + x
+	} else {
+		a.c += (x - t) + a.s
+	}
+	a.s = t
+}
+
+func (a neumaier) value() float64 { return a.s + a.c }
+
+func (s *sums) add(r adaptive.Result) {
+	for c := range adaptive.Width {
+		s.value[c].add(r.Value[c])
+		s.err[c].add(r.Error[c])
+		s.size[c].add(r.Size[c])
+	}
+}
+
+// tolerance is what a further piece may add to the error.
+func (s *sums) tolerance(o Options, pieces int) (abs [adaptive.Width]float64) {
+	for c := range abs {
+		abs[c] = o.Rel / 4 * math.Abs(s.value[c].value()) / float64(pieces)
+	}
+	abs[0] = math.Max(abs[0], o.Abs/(2*float64(pieces)))
+	return abs
+}
+
+func (s *sums) finish(o Options, work *adaptive.Work) (Result, error) {
+	r := Result{
+		Energy: s.value[0].value(), Error: s.err[0].value(),
+		Area: s.value[1].value(), AreaError: s.err[1].value(),
+		Evaluations: work.Used,
+	}
+	for c, e := range []float64{r.Error, r.AreaError} {
+		v := math.Abs(s.value[c].value())
+		if e <= math.Max(o.Rel*v, 256*epsilon*s.size[c].value()) || c == 0 && e <= o.Abs {
+			continue
+		}
+		if work.Spent() {
+			return r, fmt.Errorf("quadrature: %w: %d evaluations, estimated error %.3g of %.9g", ErrBudget, work.Used, e, s.value[c].value())
+		}
+		return r, fmt.Errorf("quadrature: %w: estimated error %.3g of %.9g", ErrAccuracy, e, s.value[c].value())
+	}
+	return r, nil
+}
+
+const epsilon = 0x1p-52
+
+// golden spreads the phases of the trapezoidal rules of neighbouring rows.
+const golden = 0.6180339887498949
+
+// run integrates f over the parameters of a piece: the inner direction, the
+// periodic one if there is one, at every node of the outer one.
+func run(f func(s [2]float64, out *adaptive.Sample) error, sh *shape, o Options, abs [adaptive.Width]float64, work *adaptive.Work, rowDone func(s float64) error) (adaptive.Result, error) {
+	p := sh.piece
+	if p.n == 1 {
+		t := adaptive.Task{
+			F:  func(s float64, out *adaptive.Sample) error { return f([2]float64{s, 0}, out) },
+			Lo: p.over[0].Lo, Hi: p.over[0].Hi, Rel: o.Rel / 2, Abs: abs,
+			Periodic: sh.periodic[0], Phase: golden / 2, Probe: true, MinPeriod: 16, Work: work,
+		}
+		r, err := t.Run()
+		if err == nil {
+			err = rowDone(p.over[0].Lo)
+		}
+		return r, err
+	}
+	outer, inner := sh.outer, 1-sh.outer
+	width := p.over[outer].Hi - p.over[outer].Lo
+	var mesh adaptive.Mesh
+	var most [adaptive.Width]float64
+	rows := 0
+	row := func(s float64, out *adaptive.Sample) error {
+		rows++
+		_, phase := math.Modf(golden * float64(rows))
+		t := adaptive.Task{
+			F: func(v float64, out *adaptive.Sample) error {
+				var at [2]float64
+				at[outer], at[inner] = s, v
+				return f(at, out)
+			},
+			Lo: p.over[inner].Lo, Hi: p.over[inner].Hi, Rel: o.Rel / 8,
+			Periodic: sh.periodic[inner], Phase: phase, Probe: rows == 1 || rows == 4,
+			Work: work, Mesh: &mesh,
+		}
+		for c := range most {
+			t.Abs[c] = math.Max(o.Rel/8*most[c], abs[c]/(4*width))
+		}
+		r, err := t.Run()
+		if err != nil {
+			return err
+		}
+		for c := range most {
+			most[c] = math.Max(most[c], math.Abs(r.Value[c]))
+		}
+		*out = r.Sample
+		out.Noise = r.Error
+		return rowDone(s)
+	}
+	t := adaptive.Task{
+		F: row, Lo: p.over[outer].Lo, Hi: p.over[outer].Hi, Rel: o.Rel / 2, Abs: abs,
+		Periodic: sh.periodic[outer], Phase: golden / 2, Probe: true, Work: work,
+	}
+	return t.Run()
+}
