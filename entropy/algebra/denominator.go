@@ -44,6 +44,21 @@ func common(f, g []Factor) (basis []shared, split bool) {
 	return refine(basis)
 }
 
+// smallBase is the number of terms up to which common factors of a base are
+// looked for.
+const smallBase = 64
+
+// commonFactor looks for a common factor of p and q that is not constant; they
+// have coprime integer coefficients and do not divide each other.
+func commonFactor(p, q Poly) (Poly, bool) {
+	if p.Len() > smallBase || q.Len() > smallBase || irreducible(p) || irreducible(q) {
+		return Poly{}, false
+	}
+	g, _ := GCD(p, q)
+	_, constant := g.IsConst()
+	return g, !constant && g.Err() == nil
+}
+
 // refine splits bases until none divides another.
 func refine(list []shared) (basis []shared, split bool) {
 	todo := slices.Clone(list)
@@ -66,6 +81,13 @@ func refine(list []shared) (basis []shared, split bool) {
 			} else if r, ok := q.base.DivExact(p.base); ok {
 				split = true
 				todo = append(todo, shared{r, q.a, q.b}, shared{p.base, p.a + q.a, p.b + q.b})
+				basis = slices.Delete(basis, i, i+1)
+				keep = false
+			} else if g, ok := commonFactor(p.base, q.base); ok {
+				split = true
+				r, _ := p.base.DivExact(g)
+				s, _ := q.base.DivExact(g)
+				todo = append(todo, shared{r, p.a, p.b}, shared{s, q.a, q.b}, shared{g, p.a + q.a, p.b + q.b})
 				basis = slices.Delete(basis, i, i+1)
 				keep = false
 			}
@@ -137,9 +159,42 @@ func cancelSome(num Poly, den []Factor, try func(i int) bool) (Poly, []Factor) {
 	return num, out
 }
 
-// reduce makes a fraction, trying to cancel the bases for which try holds.
+// reduce makes a fraction, trying to cancel the bases for which try holds and
+// common factors with small bases.
 func reduce(num Poly, den []Factor, try func(i int) bool) Fraction {
-	return over(cancelSome(num, den, try))
+	num, den = cancelSome(num, den, try)
+	if num.Len() == 0 || num.Len() > 4*smallBase {
+		return over(num, den)
+	}
+	for i := 0; i < len(den); i++ {
+		b, e := den[i].Base, den[i].Exp
+		if b.Len() > smallBase || irreducible(b) {
+			continue
+		}
+		g, _ := GCD(num, b)
+		if _, constant := g.IsConst(); constant || g.Err() != nil {
+			continue
+		}
+		rest, _ := b.DivExact(g)
+		num, _ = num.DivExact(g)
+		list := []shared{{rest, e, 0}}
+		if e > 1 {
+			list = append(list, shared{g, e - 1, 0})
+		}
+		for j, d := range den {
+			if j != i {
+				list = append(list, shared{d.Base, d.Exp, 0})
+			}
+		}
+		basis, _ := refine(list)
+		den = make([]Factor, len(basis))
+		for j, x := range basis {
+			den[j] = Factor{x.base, x.a}
+		}
+		num, den = cancel(num, den)
+		i = -1
+	}
+	return over(num, den)
 }
 
 // factors writes p, which is not 0, as a rational times a product of bases.
@@ -152,7 +207,12 @@ func factors(p Poly) (unit Rat, den []Factor) {
 		p, _ = p.DivExact(monomialPoly(m))
 	}
 	if _, ok := p.IsConst(); !ok {
-		den = append(den, Factor{p, 1})
+		if p.Len() <= smallBase && !irreducible(p) {
+			_, list, _ := SquareFree(p)
+			den = append(den, list...)
+		} else {
+			den = append(den, Factor{p, 1})
+		}
 	}
 	slices.SortFunc(den, func(x, y Factor) int { return x.Base.compareTo(y.Base) })
 	return unit, den

@@ -61,9 +61,7 @@ func (p Poly) DivExact(q Poly) (quo Poly, ok bool) {
 		for len(d.heap) > 0 && d.against(m) == 0 {
 			t := d.heap[0]
 			rest = rest.Sub(d.coefs[t.i].Mul(b.coefs[t.j]))
-			if work++; work > MaxProducts {
-				return poison(errWork), false
-			}
+			work++
 			if int(t.j)+1 < len(b.coefs) {
 				d.heap[0].j++
 				d.down()
@@ -77,16 +75,20 @@ func (p Poly) DivExact(q Poly) (quo Poly, ok bool) {
 		if !divides(eb[:w], m, g) {
 			return Poly{}, false
 		}
-		if rest.b != nil && rest.BitLen() > 2*MaxBits {
-			return poison(errBits), false
-		}
 		if len(d.coefs) == MaxTerms {
 			return poison(errTerms), false
+		}
+		rest = rest.Mul(inv)
+		if rest.b != nil {
+			work += rest.BitLen() / 8 * len(b.coefs)
+		}
+		if work > MaxProducts {
+			return poison(errWork), false
 		}
 		for n, x := range m {
 			d.q = append(d.q, x-eb[n])
 		}
-		d.coefs = append(d.coefs, rest.Mul(inv))
+		d.coefs = append(d.coefs, rest)
 		d.push(pending{int32(len(d.coefs) - 1), 1})
 	}
 	quo = canonical(vars, lay, d.q, d.coefs)

@@ -57,10 +57,11 @@ func (p Poly) DivMod(divisors []Poly, order func(a, b Monomial) int) (quotients 
 			continue
 		}
 		d := byOrder[i]
-		if work += len(d); work > MaxProducts || len(left.coef) > MaxTerms {
+		c, _ = c.Quo(d[0].Coef)
+		work += len(d) * stepCost(c)
+		if work > MaxProducts || len(left.coef) > MaxTerms {
 			return lost(errWork)
 		}
-		c, _ = c.Quo(d[0].Coef)
 		quo[i] = append(quo[i], Term{f, c})
 		for _, t := range d[1:] {
 			k := t.Mono.Mul(f)
@@ -84,6 +85,15 @@ func (p Poly) DivMod(divisors []Poly, order func(a, b Monomial) int) (quotients 
 		return lost(rem.Err())
 	}
 	return quotients, rem
+}
+
+// stepCost weighs one step of a division with coefficient c against a product of
+// small terms.
+func stepCost(c Rat) int {
+	if c.b == nil {
+		return 16
+	}
+	return 32 + c.BitLen()/8
 }
 
 // ordered returns the terms of p, larger first in the order.

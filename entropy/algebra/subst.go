@@ -89,6 +89,7 @@ func (p Poly) EvalPartial(values map[Var]Rat) Poly {
 	}
 	c := newCollector(keep, r.degree())
 	e := make([]uint64, c.lay.words)
+	work := 0
 	for i, coef := range r.coefs {
 		t := r.term(i)
 		deg := r.lay.field(t, 0)
@@ -99,7 +100,7 @@ func (p Poly) EvalPartial(values map[Var]Rat) Poly {
 			}
 			deg -= x
 			y, ok := powers[n](x)
-			if !ok {
+			if work += productCost(coef, y); !ok || work > MaxProducts {
 				return poison(errBits)
 			}
 			coef = coef.Mul(y)
@@ -135,8 +136,18 @@ func powersOf(c Rat) func(int) (Rat, bool) {
 	}
 }
 
+// productCost weighs a product of numbers against a product of small terms.
+func productCost(a, b Rat) int {
+	if a.b == nil && b.b == nil {
+		return 1
+	}
+	wa, wb := a.BitLen()/64+1, b.BitLen()/64+1
+	return 8 + wa + wb + wa*wb/16
+}
+
 // Eval returns the value of p where each indeterminate v is at(v); it is exact.
-// It returns false where p is poisoned or the value is beyond MaxBits.
+// It returns false where p is poisoned, the value is beyond MaxBits or the work
+// beyond MaxProducts.
 func (p Poly) Eval(at func(Var) Rat) (Rat, bool) {
 	if p.r == nil {
 		return Rat{}, true
@@ -150,6 +161,7 @@ func (p Poly) Eval(at func(Var) Rat) (Rat, bool) {
 		powers[k] = powersOf(at(v))
 	}
 	var sum Rat
+	work := 0
 	for i, c := range r.coefs {
 		t := r.term(i)
 		for k := range r.vars {
@@ -158,7 +170,7 @@ func (p Poly) Eval(at func(Var) Rat) (Rat, bool) {
 				continue
 			}
 			y, ok := powers[k](e)
-			if !ok {
+			if work += productCost(c, y); !ok || work > MaxProducts {
 				return Rat{}, false
 			}
 			c = c.Mul(y)
