@@ -37,15 +37,19 @@ func (l *lexer) number(t *token) {
 		case digits == "":
 			*l = mark
 		case l.declared(string(r)) || l.declared(run):
-			name := string(r)
-			if sign == "" && l.declared(run) {
+			name, literal := string(r), fmt.Sprintf("%s*10^%s%s", clip(mantissa), sign, clip(digits))
+			var product string
+			switch between := l.src.S[mark.i+1 : l.i-len(digits)]; {
+			case l.declared(run) && len(run) > 1:
 				name = run
+				product = fmt.Sprintf("%s*%s", clip(mantissa), clip(run))
+			case between == "":
+				product = fmt.Sprintf("%s*%s*%s", clip(mantissa), name, clip(digits))
+			case sign == "-":
+				product = fmt.Sprintf("%s*%s - %s", clip(mantissa), name, clip(digits))
+			default:
+				product = fmt.Sprintf("%s*%s + %s", clip(mantissa), name, clip(digits))
 			}
-			product := fmt.Sprintf("%s*%s", clip(mantissa), name)
-			if name != run || len(run) == 1 {
-				product += fmt.Sprintf(" %s %s", orPlus(sign), clip(digits))
-			}
-			literal := clip(mantissa) + "*10^(" + sign + clip(digits) + ")"
 			l.fail(at, fmt.Sprintf("%q could be a number or a product with %s", clip(l.src.S[start:l.i]), name),
 				fmt.Sprintf("write %q for the number or %q for the product", literal, product))
 			return
@@ -65,13 +69,6 @@ func (l *lexer) number(t *token) {
 	if exponent != "" {
 		t.text += "e" + exponent
 	}
-}
-
-func orPlus(sign string) string {
-	if sign == "" {
-		return "+"
-	}
-	return sign
 }
 
 // declared reports whether a run of letters is a declared name.

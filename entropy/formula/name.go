@@ -186,6 +186,9 @@ func (p *parser) call(t token) Node {
 	if !ok {
 		return nil
 	}
+	if p.peek().kind == ')' {
+		return p.refuse(p.peek(), fmt.Sprintf("%s has no argument", f), fmt.Sprintf("write %q", usage(f)))
+	}
 	var args []Node
 	for {
 		first := p.peek()
@@ -225,8 +228,15 @@ func (p *parser) argument(f string, i int, t token, x Node) bool {
 	if n, ok := x.(*Name); ok && p.scope.kinds[n.ID] == kind {
 		return true
 	}
-	p.refuse(t, fmt.Sprintf("argument %d of %s is the name of a %s", i+1, f, kind), fmt.Sprintf("write %q", usage(f)))
+	p.refuse(t, fmt.Sprintf("argument %d of %s is the name of %s", i+1, f, article(kind)), fmt.Sprintf("write %q", usage(f)))
 	return false
+}
+
+func article(k Kind) string {
+	if k == Unknown {
+		return "an " + k.String()
+	}
+	return "a " + k.String()
 }
 
 func count(least, most int) string {

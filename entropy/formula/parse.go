@@ -220,17 +220,10 @@ func (p *parser) refuseSlash(sign token, factors []Factor, y *Juxt) Node {
 	if len(factors) == 1 {
 		left = factors[0].X
 	}
-	first, rest := y.Factors[0], Node(&Juxt{Factors: y.Factors[1:]})
-	if len(y.Factors) == 2 {
-		rest = y.Factors[1]
-	}
-	l := Text(left)
-	group := Text(&Juxt{Factors: []Node{&Product{Factors: []Factor{{Star, left}, {Slash, first}}}, rest}})
-	if len(factors) > 1 {
-		group = Text(&Juxt{Factors: []Node{&Product{Factors: append(factors[:len(factors):len(factors)], Factor{Slash, first})}, rest}})
-	}
+	divided := &Product{Factors: append(factors[:len(factors):len(factors)], Factor{Slash, y.Factors[0]})}
+	group := Text(&Juxt{Factors: append([]Node{divided}, y.Factors[1:]...)})
 	return p.refuse(sign, "a division by factors written side by side has two readings",
-		either(clip(group), clip(l+"/("+Text(y)+")")))
+		either(clip(group), clip(Text(left)+"/("+Text(y)+")")))
 }
 
 // startsFactor reports whether a factor can begin with the token.

@@ -143,6 +143,17 @@ func (p *parser) exponent(base Node) (exp *big.Rat, bare bool) {
 	case kFrac:
 		n = p.primary()
 	case kIdent:
+		p.take()
+		if t := p.peek(); t.kind == '^' {
+			upper := "..."
+			if u := p.peekAt(1); u.kind == kNum || u.kind == kIdent {
+				upper = p.spelled(u)
+			}
+			b, e := clip(Text(base)), p.spelled(start)
+			p.refuse(t, "a power of a power has two readings",
+				either(fmt.Sprintf("(%s^%s)^%s", b, e, upper), fmt.Sprintf("%s^(%s^%s)", b, e, upper)))
+			return nil, false
+		}
 		return p.symbolic(start, base, p.spelled(start)), false
 	case kEOF:
 		if p.err == nil {

@@ -63,6 +63,9 @@ func (p *parser) primary() Node {
 func (p *parser) misplacedSubscript(t token, n Node) Node {
 	switch x := n.(type) {
 	case *Deriv:
+		if u := p.peekAt(1); u.kind == kIdent {
+			return p.refuse(t, "a second subscript", fmt.Sprintf("write all of it in one, %q", clip(Text(x))+clip(u.text)))
+		}
 		return p.refuse(t, "a second subscript", fmt.Sprintf("write all of it in one, as in %q", clip(Text(x))+"x"))
 	case *Component:
 		return p.refuse(t, "a component has no further subscript", fmt.Sprintf("write %q for its derivative", "d_x("+clip(Text(x))+")"))

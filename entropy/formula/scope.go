@@ -193,7 +193,7 @@ func (s *Scope) declare(name string, kind Kind) error {
 		if k == kind {
 			return refuse("the name is declared twice", "Greek letters and their names are one name")
 		}
-		return refuse(fmt.Sprintf("the name is already that of a %s", k), "choose another name")
+		return refuse(fmt.Sprintf("the name is already that of %s", article(k)), "choose another name")
 	}
 	s.kinds[folded] = kind
 	s.names = append(s.names, folded)

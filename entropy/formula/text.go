@@ -83,7 +83,7 @@ func (w *textWriter) juxt(n Node) {
 		switch {
 		case i > 0 && leadingNum(f) != nil:
 			w.parens(f)
-		case i+1 < len(x.Factors) && endsInField(f) && beginsInParens(x.Factors[i+1]):
+		case i+1 < len(x.Factors) && isBareField(f):
 			w.parens(f)
 		default:
 			w.factor(f)
@@ -91,38 +91,11 @@ func (w *textWriter) juxt(n Node) {
 	}
 }
 
-// endsInField reports whether a parenthesis after the factor would be read as
-// the angle of a field.
-func endsInField(n Node) bool {
+// isBareField reports whether a parenthesis after the factor would be read as
+// the angle of a field. Such a factor stands in parentheses unless it is last.
+func isBareField(n Node) bool {
 	f, ok := n.(*Field)
 	return ok && f.Angle == nil
-}
-
-// beginsInParens reports whether a later factor of a Juxt is printed with a
-// parenthesis first.
-func beginsInParens(n Node) bool {
-	for {
-		switch x := n.(type) {
-		case *Sum, *Product, *Juxt, *Num:
-			return true
-		case *Power:
-			if _, ok := x.Base.(*Power); ok {
-				return true
-			}
-			if _, ok := x.Base.(*DotNu); ok {
-				return true
-			}
-			n = x.Base
-		case *DotNu:
-			switch x.X.(type) {
-			case *Power, *DotNu:
-				return true
-			}
-			n = x.X
-		default:
-			return false
-		}
-	}
 }
 
 // factor prints a node that others stand beside.
