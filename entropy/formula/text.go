@@ -193,7 +193,10 @@ func (s *Statement) Text() string {
 	case GreaterEqual:
 		return Text(s.Left) + " >= " + Text(s.Right)
 	case Integrable:
-		return fieldOr(s.Field, Text) + " in L^" + exponentText(s.Exponent)
+		if s.Exponent.IsInt() {
+			return fieldOr(s.Field, Text) + " in L^" + s.Exponent.Num().String()
+		}
+		return fieldOr(s.Field, Text) + " in L^(" + s.Exponent.RatString() + ")"
 	case Entropy:
 		return "entropy(" + fieldOr(s.Field, Text) + ")"
 	case Span:
