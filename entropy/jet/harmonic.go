@@ -1,0 +1,139 @@
+package jet
+
+import (
+	"fmt"
+
+	"creaseproof/entropy/algebra"
+)
+
+// Wave is Cos·cos(kθ) + Sin·sin(kθ).
+type Wave struct {
+	K        int
+	Cos, Sin algebra.Fraction
+}
+
+// Harmonics is a trigonometric polynomial Mean + Σ waves, in increasing k ≥ 1,
+// waves that vanish left out.
+type Harmonics struct {
+	Mean  algebra.Fraction
+	Waves []Wave
+}
+
+// Harmonics writes f as a trigonometric polynomial in the named angle. It
+// fails where f depends on the angle in another way.
+func (r *Ring) Harmonics(f algebra.Fraction, angle string) (Harmonics, error) {
+	var out Harmonics
+	theta := r.ConstantVar(angle)
+	c, s := algebra.Var(-1), algebra.Var(-1)
+	for _, v := range r.cosines {
+		if w, ok := loneVar(r.symbols[v].Arg.Num()); ok && w == theta && len(r.symbols[v].Arg.DenFactors()) == 0 {
+			c, s = v, r.symbols[v].Partner
+		}
+	}
+	outside := func() error {
+		return fmt.Errorf("%w: %s depends on %s other than as a trigonometric polynomial", ErrOutside, clip(r.Format(f)), angle)
+	}
+	if f.Has(theta) {
+		return out, outside()
+	}
+	for _, v := range r.Kernels(f) {
+		if v != c && v != s && r.depends(r.symbols[v].Arg, theta) {
+			return out, outside()
+		}
+	}
+	if c < 0 || !f.Has(c) && !f.Has(s) {
+		out.Mean = f
+		return out, nil
+	}
+	den := f.Den()
+	if den.Has(c) || den.Has(s) {
+		return out, outside()
+	}
+	num := r.ReducePoly(f.Num())
+	// cos and sin coefficients by harmonic
+	n := num.Degree(c) + num.Degree(s)
+	cc := make([]algebra.Poly, n+2)
+	ss := make([]algebra.Poly, n+2)
+	for e, part := range num.Coeffs(s) { // e is 0 or 1
+		for m, a := range part.Coeffs(c) {
+			if a.IsZero() {
+				continue
+			}
+			// cos^m = 2^-m Σ_j binom(m, j) cos((m-2j)θ)
+			b, _ := algebra.Frac64(1, 2).Pow(m)
+			for j := 0; j <= m; j++ {
+				w := a.Scale(b)
+				k := m - 2*j
+				if k < 0 {
+					k = -k
+				}
+				if e == 0 {
+					cc[k] = cc[k].Add(w)
+				} else { // sin θ cos kθ = (sin (k+1)θ - sin (k-1)θ)/2
+					h := w.Scale(algebra.Frac64(1, 2))
+					ss[k+1] = ss[k+1].Add(h)
+					if k > 0 {
+						ss[k-1] = ss[k-1].Sub(h)
+					} else {
+						ss[1] = ss[1].Add(h)
+					}
+				}
+				b = b.Mul(algebra.Frac64(int64(m-j), int64(j+1)))
+			}
+		}
+	}
+	inv := algebra.FromFactors(algebra.Const(algebra.Int(1)), f.DenFactors())
+	var err error
+	part := func(p algebra.Poly) algebra.Fraction {
+		g, e := r.Mul(algebra.FromPoly(p), inv)
+		if e != nil && err == nil {
+			err = e
+		}
+		return g
+	}
+	out.Mean = part(cc[0])
+	for k := 1; k < len(cc); k++ {
+		if cc[k].IsZero() && ss[k].IsZero() {
+			continue
+		}
+		out.Waves = append(out.Waves, Wave{k, part(cc[k]), part(ss[k])})
+	}
+	return out, err
+}
+
+func (r *Ring) depends(f algebra.Fraction, v algebra.Var) bool {
+	for _, w := range r.Support(f) {
+		if w == v {
+			return true
+		}
+	}
+	return false
+}
+
+// NormRoot is the root of a value that is known to be a sum of squares: no
+// condition is recorded.
+func (r *Ring) NormRoot(f algebra.Fraction) (algebra.Fraction, error) {
+	n := len(r.conditions)
+	g, err := r.Root(f, 2)
+	r.conditions = r.conditions[:n]
+	return g, err
+}
+
+// Orientation is an indeterminate σ with σ² = 1: the sign of the unit normal
+// against the jump of the gradient.
+func (r *Ring) Orientation() (algebra.Fraction, error) {
+	g, err := r.rootKernel(algebra.Const(algebra.Int(1)), 2, "orientation")
+	if err != nil {
+		return g, err
+	}
+	r.symbols[g.Vars()[0]].Sign = AnySign
+	return g, nil
+}
+
+func clip(s string) string {
+	const limit = 60
+	if t := []rune(s); len(t) > limit {
+		return string(t[:limit]) + "…"
+	}
+	return s
+}
