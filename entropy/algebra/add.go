@@ -3,11 +3,14 @@ package algebra
 import "slices"
 
 // align returns the packed terms of a and b over common indeterminates in a
-// layout for the given degree.
-func align(a, b *rep, degree int) (vars []Var, lay layout, ea, eb []uint64) {
+// layout for the given degree; false where they would exceed MaxWords.
+func align(a, b *rep, degree int) (vars []Var, lay layout, ea, eb []uint64, ok bool) {
 	vars = union(a.vars, b.vars)
 	lay = layoutFor(len(vars), degree)
-	return vars, lay, repack(a.exps, a.vars, a.lay, vars, lay), repack(b.exps, b.vars, b.lay, vars, lay)
+	if (len(a.coefs)+len(b.coefs))*lay.words > MaxWords {
+		return nil, lay, nil, nil, false
+	}
+	return vars, lay, repack(a.exps, a.vars, a.lay, vars, lay), repack(b.exps, b.vars, b.lay, vars, lay), true
 }
 
 // Add returns p + q.
@@ -30,7 +33,10 @@ func (p Poly) plus(q Poly, minus bool) Poly {
 		return q
 	}
 	a, b := p.r, q.r
-	vars, lay, ea, eb := align(a, b, max(a.degree(), b.degree()))
+	vars, lay, ea, eb, ok := align(a, b, max(a.degree(), b.degree()))
+	if !ok {
+		return poison(errWords)
+	}
 	w := lay.words
 	exps := make([]uint64, 0, len(ea)+len(eb))
 	coefs := make([]Rat, 0, len(a.coefs)+len(b.coefs))

@@ -150,7 +150,7 @@ func (c *collector) add(term []uint64, coef Rat) {
 	}
 	n := c.x.find(term)
 	if n == len(c.sums) {
-		c.over = n >= MaxTerms
+		c.over = n >= MaxTerms || len(c.x.keys) > MaxWords
 		c.sums = append(c.sums, coef)
 		return
 	}

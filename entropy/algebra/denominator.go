@@ -136,7 +136,9 @@ func cancelSome(num Poly, den []Factor, try func(i int) bool) (Poly, []Factor) {
 	var out []Factor
 	for i, d := range den {
 		e := d.Exp
-		if try(i) {
+		if m, _ := d.Base.Leading(); try(i) && d.Base.Len() == 1 {
+			num, e = cancelMonomial(num, m, e)
+		} else if try(i) {
 			for e > 0 {
 				q, ok := num.DivExact(d.Base)
 				if !ok {
@@ -157,6 +159,28 @@ func cancelSome(num Poly, den []Factor, try func(i int) bool) (Poly, []Factor) {
 		out = den
 	}
 	return num, out
+}
+
+// cancelMonomial divides num by m as often as it goes, at most e times, and
+// returns how often is left. It takes one step: e can be large. A base of several
+// terms goes less often than num has terms.
+func cancelMonomial(num Poly, m Monomial, e int) (Poly, int) {
+	have := num.MonomialContent()
+	times := e
+	var ps []Power
+	for _, w := range m.Powers() {
+		times = min(times, have.Exp(w.Var)/w.Exp)
+	}
+	if times == 0 {
+		return num, e
+	}
+	for _, w := range m.Powers() {
+		ps = append(ps, Power{w.Var, w.Exp * times})
+	}
+	if q, ok := num.DivExact(monomialPoly(NewMonomial(ps...))); ok {
+		return q, e - times
+	}
+	return num, e
 }
 
 // reduce makes a fraction, trying to cancel the bases for which try holds and

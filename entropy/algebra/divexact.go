@@ -20,7 +20,10 @@ func (p Poly) DivExact(q Poly) (quo Poly, ok bool) {
 	if a.degree() < b.degree() || len(b.vars) > len(a.vars) {
 		return Poly{}, false
 	}
-	vars, lay, ea, eb := align(a, b, a.degree())
+	vars, lay, ea, eb, fits := align(a, b, a.degree())
+	if !fits {
+		return poison(errWords), false
+	}
 	if len(vars) > len(a.vars) {
 		return Poly{}, false
 	}
@@ -75,7 +78,7 @@ func (p Poly) DivExact(q Poly) (quo Poly, ok bool) {
 		if !divides(eb[:w], m, g) {
 			return Poly{}, false
 		}
-		if len(d.coefs) == MaxTerms {
+		if len(d.coefs) == MaxTerms || len(d.q) > MaxWords {
 			return poison(errTerms), false
 		}
 		rest = rest.Mul(inv)

@@ -3,7 +3,7 @@ package algebra
 import "slices"
 
 // gcdWork bounds one greatest common divisor, in term operations.
-const gcdWork = 200_000
+const gcdWork = 100_000
 
 // GCD returns a common divisor of a and b with coprime integer coefficients and
 // a positive leading one; the greatest where greatest is true. The work is
@@ -94,20 +94,26 @@ func (s *gcdState) contentGCD(g, p Poly, v Var) Poly {
 }
 
 func (s *gcdState) sameVars(a, b Poly) Poly {
-	// Indeterminates in which the divisor has degree 0 are taken first: the
-	// divisor is then one of the coefficients.
 	main, low := a.r.vars[0], int(MaxExponent)
+	var free []Var // in which the divisor has degree 0
 	for _, v := range a.r.vars {
-		d, ok := imageDegree(a, b, v)
 		if !s.spend(a.Len() + b.Len()) {
 			return onePoly
 		}
-		if ok && d == 0 {
-			return s.contentGCD(s.contentGCD(Poly{}, a, v), b, v)
+		if d, ok := imageDegree(a, b, v); ok && d == 0 {
+			free = append(free, v)
 		}
 		if da := max(a.Degree(v), b.Degree(v)); da < low {
 			main, low = v, da
 		}
+	}
+	switch len(free) {
+	case 0:
+	case len(a.r.vars):
+		return onePoly
+	default:
+		// The divisor divides every coefficient.
+		return s.contentGCD(s.contentGCD(Poly{}, a, free[0]), b, free[0])
 	}
 	if low > 200 {
 		s.left = -1
@@ -162,7 +168,8 @@ func (s *gcdState) pseudoRemainder(a, b Poly, v Var) Poly {
 	lead := b.parts(v)[0].poly
 	for a.Degree(v) >= db && a.Err() == nil {
 		top := a.parts(v)[0]
-		if !s.spend((a.Len()+1)*lead.Len() + (b.Len()+1)*top.poly.Len()) {
+		n := (a.Len()+1)*lead.Len() + (b.Len()+1)*top.poly.Len()
+		if !s.spend(n * (1 + productCost(top.poly.r.coefs[0], lead.r.coefs[0])/4)) {
 			return onePoly
 		}
 		a = a.Mul(lead).Sub(b.Mul(top.poly).Mul(Variable(v).Pow(top.exp - db)))

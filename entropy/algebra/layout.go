@@ -1,6 +1,9 @@
 package algebra
 
-import "slices"
+import (
+	"math/bits"
+	"slices"
+)
 
 // layout says how the exponents of a monomial are packed in words. Field 0 is
 // the total degree, field i the exponent of the i-th indeterminate; fields fill
@@ -113,23 +116,52 @@ func repack(exps []uint64, from []Var, lf layout, to []Var, lt layout) []uint64 
 	}
 	n := len(exps) / lf.words
 	out := make([]uint64, n*lt.words)
+	fields := make([]int, len(from)+1) // new number of each field, -1 where it is dropped
 	j := 0
-	move := func(i, k int) {
-		wf, sf := lf.place(i)
-		wt, st := lt.place(k)
-		m := lf.mask()
-		for a, b := wf, wt; a < len(exps); a, b = a+lf.words, b+lt.words {
-			out[b] |= exps[a] >> sf & m << st
-		}
-	}
-	move(0, 0)
 	for i, v := range from {
 		for j < len(to) && to[j] < v {
 			j++
 		}
+		fields[i+1] = -1
 		if j < len(to) && to[j] == v {
-			move(i+1, j+1)
+			fields[i+1] = j + 1
 		}
 	}
+	if len(from) <= 32 {
+		repackDense(out, exps, lf, lt, fields)
+	} else {
+		repackSparse(out, exps, lf, lt, fields)
+	}
 	return out
+}
+
+// repackDense moves one field after the other.
+func repackDense(out, exps []uint64, lf, lt layout, fields []int) {
+	m := lf.mask()
+	for i, k := range fields {
+		if k < 0 {
+			continue
+		}
+		wf, sf := lf.place(i)
+		wt, st := lt.place(k)
+		for a, b := wf, wt; a < len(exps); a, b = a+lf.words, b+lt.words {
+			out[b] |= exps[a] >> sf & m << st
+		}
+	}
+}
+
+// repackSparse moves the fields that are not zero.
+func repackSparse(out, exps []uint64, lf, lt layout, fields []int) {
+	m := lf.mask()
+	for a, b := 0, 0; a < len(exps); a, b = a+lf.words, b+lt.words {
+		for w, x := range exps[a : a+lf.words] {
+			for x != 0 {
+				right := bits.TrailingZeros64(x) / lf.bits
+				e := x >> (right * lf.bits) & m
+				x &^= m << (right * lf.bits)
+				wt, st := lt.place(fields[w*lf.per+lf.per-1-right])
+				out[b+wt] |= e << st
+			}
+		}
+	}
 }

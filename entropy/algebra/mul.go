@@ -15,7 +15,7 @@ type integers struct {
 	bits  int      // of the largest numerator
 }
 
-// clear brings coefficients to a common denominator; false where that would
+// clearDenominators brings coefficients to a common denominator; false where that would
 // exceed MaxBits.
 func clearDenominators(coefs []Rat) (integers, bool) {
 	l, fits := int64(1), true
@@ -86,11 +86,15 @@ func clearLarge(coefs []Rat) (integers, bool) {
 	return out, true
 }
 
-func (x integers) big(i int) *big.Int {
+func (x integers) widened() []*big.Int {
 	if x.large != nil {
-		return x.large[i]
+		return x.large
 	}
-	return big.NewInt(x.small[i])
+	out := make([]*big.Int, len(x.small))
+	for i, n := range x.small {
+		out[i] = big.NewInt(n)
+	}
+	return out
 }
 
 // product is the state of one multiplication; a is the shorter factor.
@@ -127,7 +131,10 @@ func (p Poly) Mul(q Poly) Poly {
 	if n > MaxProducts {
 		return poison(errProducts)
 	}
-	vars, lay, ea, eb := align(a, b, degree)
+	vars, lay, ea, eb, ok := align(a, b, degree)
+	if !ok {
+		return poison(errWords)
+	}
 	ia, ok1 := clearDenominators(a.coefs)
 	ib, ok2 := clearDenominators(b.coefs)
 	if !ok1 || !ok2 || ia.bits+ib.bits > 4*MaxBits {
@@ -142,7 +149,6 @@ func (p Poly) Mul(q Poly) Poly {
 	size := ia.bits + ib.bits + bits.Len(uint(len(a.coefs)))
 	var exps []uint64
 	var coefs []Rat
-	ok := true
 	switch narrow := ia.large == nil && ib.large == nil; {
 	case narrow && size < 63 && lay.words == 1 && n <= mergeProducts:
 		exps, coefs = m.merge()
@@ -171,7 +177,10 @@ func (p Poly) Mul(q Poly) Poly {
 
 // mulTerm multiplies b by the single term of a.
 func mulTerm(a, b *rep, degree int) Poly {
-	vars, lay, ea, eb := align(a, b, degree)
+	vars, lay, ea, eb, ok := align(a, b, degree)
+	if !ok {
+		return poison(errWords)
+	}
 	exps := make([]uint64, len(eb))
 	for i := 0; i < len(eb); i += lay.words {
 		for w, x := range ea {
@@ -282,7 +291,7 @@ func (m *product) each(x *index, add func(n, i, j int)) bool {
 			}
 			add(x.find(key), i/w, j/w)
 		}
-		if x.len() > MaxTerms {
+		if x.len() > MaxTerms || len(x.keys) > MaxWords {
 			return false
 		}
 	}
@@ -388,16 +397,13 @@ func (m *product) hashBig() ([]uint64, []Rat, bool) {
 	x := m.table()
 	var sums []*big.Int
 	var t big.Int
-	lastRow, row := -1, (*big.Int)(nil)
+	a, b := m.a.widened(), m.b.widened()
 	ok := m.each(x, func(n, i, j int) {
-		if i != lastRow {
-			lastRow, row = i, m.a.big(i)
-		}
 		if n == len(sums) {
-			sums = append(sums, new(big.Int).Mul(row, m.b.big(j)))
+			sums = append(sums, new(big.Int).Mul(a[i], b[j]))
 			return
 		}
-		sums[n].Add(sums[n], t.Mul(row, m.b.big(j)))
+		sums[n].Add(sums[n], t.Mul(a[i], b[j]))
 	})
 	if !ok {
 		return nil, nil, false

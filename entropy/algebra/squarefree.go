@@ -20,6 +20,11 @@ func SquareFree(p Poly) (unit Rat, factors []Factor, complete bool) {
 	}
 	whole := p
 	complete = true
+	m := p.MonomialContent()
+	for _, w := range m.Powers() {
+		factors = append(factors, Factor{Variable(w.Var), w.Exp})
+	}
+	p, _ = p.DivExact(monomialPoly(m))
 	for {
 		if _, constant := p.IsConst(); constant {
 			break
