@@ -1,6 +1,7 @@
 package formula
 
 import (
+	"math/big"
 	"testing"
 
 	"creaseproof/entropy/source"
@@ -64,5 +65,91 @@ func TestText(t *testing.T) {
 		"euler(R, u)", "sup(theta, Sigma.nu)", "nu_x u", "R_xixi", "x (2^3)", "0.5 x", "(a/b)*c",
 	} {
 		require.Equal(t, f, Text(parse(t, s, f)))
+	}
+}
+
+// The formulas of the layered model, its jumps, its profiles and its crease
+// energies print and parse, in TeX too.
+func TestModelFormulas(t *testing.T) {
+	s, err := NewScope(ScopeConfig{
+		Coordinates: []string{"x", "y", "z"},
+		Axes:        []string{"xi", "eta"},
+		Unknowns:    []string{"u", "v"},
+		Constants:   []string{"eps", "c", "lambda", "k", "t", "a", "A"},
+		Angles:      []string{"theta"},
+		Lets:        []string{"R", "L", "K", "e", "s1", "s2", "s3"},
+		Fields:      []string{"Sigma"},
+		Jump:        true,
+	})
+	require.NoError(t, err)
+	for _, f := range []string{
+		"div(Sigma) = R (u_xixi - u_etaeta)", "div(Sigma) <= e - 2 eps K", "entropy(Sigma)",
+		"span(Sigma(0), Sigma(pi/4)) = Sigma", "2 R L = c u K", "Sigma in L^1", "c = 4/3",
+		`\frac{1}{2} u_{\xi\xi} + u_ηη/2 = L/2`,
+		"sup(theta, [Sigma].nu) = norm([u_x], [u_y])^4/(12 norm([u_x], [u_y], [u_z]))",
+		"Sigma = cos(2 theta) Sigma(0) + sin(2 theta) Sigma(pi/4)",
+		"e - 2 eps K - div(Sigma) = (R - eps (u_xixi - u_etaeta))^2/(2 eps) + 2 eps u_xieta^2",
+		"div(Sigma) <= e - 3/2*eps K", "div(Sigma) <= e - 201/100*eps K",
+		"div(Sigma) <= e - 2 eps K - eps u_xx^2/1000000000", "(u_xx - 1000 u_yy)^2 >= u_yy^2/1000000",
+		"u = 2 eps log(exp((x + z/2)/(2 eps)) + exp((y + z/2)/(2 eps)) + exp((-x - y + z + 1)/(2 eps)))",
+		"u = 2 eps log(1 + A (1 + erf(x/(2 sqrt(eps z)))))",
+		"s1^2 >= (3 + 1/1000000) s2", "s2^2 >= 301/100*s1 s3", "x = sqrt(2*(3/4)*t) cos(a)", "u = -(7/12)",
+		"u = (17/12) sqrt(x^2 + y^2) + (17/12)^2 z/2", "x = -(1/2) t cos(a)", "c = (2 pi k^2/3) log(6)",
+		"R = (1 - u_x^2 - u_y^2)/2", "euler(2 R L, u) = 4 K", "exp(sin(u_x u_yy)) + cos(u_xx u_y) >= exp(-1) - 1",
+	} {
+		st, err := s.ParseStatement(source.Text{S: f})
+		require.NoError(t, err, f)
+		for _, printed := range []string{st.Text(), st.TeX()} {
+			again, err := s.ParseStatement(source.Text{S: printed})
+			require.NoError(t, err, printed)
+			require.True(t, st.Same(again), printed)
+		}
+	}
+}
+
+// Constructors make the trees that the parser makes.
+func TestConstructors(t *testing.T) {
+	s := layered(t)
+	num, u, x := NewInt, NewName("u"), NewName("x")
+	half := big.NewRat(1, 2)
+	for want, n := range map[string]Node{
+		"0":                 NewSum(),
+		"1":                 NewProduct(),
+		"0.5":               NewNum(half),
+		"1/3":               NewNum(big.NewRat(1, 3)),
+		"-1/3":              NewNum(big.NewRat(-1, 3)),
+		"u":                 NewPower(u, big.NewRat(1, 1)),
+		"u^(1/2)":           NewPower(u, half),
+		"u_xx - x":          NewSum(Term{X: NewDeriv("u", "x", "x")}, Term{X: NewNeg(x), Neg: false}),
+		"-x":                NewNeg(x),
+		"u - 2":             NewSum(Term{X: u}, Term{X: num(-2)}),
+		"u*x/2":             NewQuotient(NewProduct(u, x), num(2)),
+		"u x":               NewJuxt(u, x),
+		"u*2":               NewJuxt(u, num(2)),
+		"2 u x":             NewJuxt(num(2), u, x),
+		"(1/3) u":           NewJuxt(NewNum(big.NewRat(1, 3)), u),
+		"u/(2 x)":           NewQuotient(u, NewJuxt(num(2), x)),
+		"Sigma(pi/4).nu":    NewDotNu(NewField("Sigma", NewQuotient(NewName("pi"), num(4)))),
+		"Sigma_z":           NewComponent("Sigma", nil, "z"),
+		"d_xy(u x)":         NewTotalDeriv(NewJuxt(u, x), "x", "y"),
+		"norm([u], {u}, 3)": NewCall("norm", NewJump(u), NewAverage(u), num(3)),
+	} {
+		require.Equal(t, want, Text(n))
+		require.True(t, Same(parse(t, s.AtJump(), want), n), want)
+	}
+}
+
+func TestSameTellsTreesApart(t *testing.T) {
+	s := wide(t)
+	different := []string{
+		"u", "v", "2", "3", "u_x", "u_y", "u_xx", "R_x", "Sigma", "F", "Sigma(0)", "Sigma(1)", "Sigma_x", "Sigma_y",
+		"Sigma(0)_x", "nu_x", "d_x(u)", "d_y(u)", "d_x(v)", "sin(u)", "cos(u)", "norm(u)", "norm(u, v)", "u + v", "u - v",
+		"v + u", "u + v + 2", "-u", "u*v", "u/v", "u v", "v u", "u v x", "u^2", "u^3", "v^2", "u.nu", "v.nu", "[u]", "[v]", "{u}", "{v}",
+		"(u + v) + 2", "(u*v)*2", "u*v*2", "(u v) x",
+	}
+	for i, a := range different {
+		for j, b := range different {
+			require.Equal(t, i == j, Same(parse(t, s, a), parse(t, s, b)), "%s and %s", a, b)
+		}
 	}
 }

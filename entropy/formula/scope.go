@@ -115,7 +115,7 @@ func FoldName(name string) (string, error) {
 	bad := func(problem, advice string) (string, error) {
 		return "", &NameError{Name: name, Problem: problem, Advice: advice}
 	}
-	folded := name
+	var folded string
 	switch {
 	case name == "":
 		return bad("a name is empty", "")

@@ -7,7 +7,8 @@ import (
 
 // Text prints a formula on one line of ASCII, so that parsing it in the scope
 // it came from gives an equal tree (see Same) where the tree is one that the
-// parser makes.
+// parser makes. Printing may add brackets, so the text of a formula nested
+// nearly as deep as the parser allows can be too deep for it.
 func Text(n Node) string {
 	var w textWriter
 	w.expr(n)
