@@ -51,6 +51,8 @@
 //
 // # Printing
 //
-// Text and TeX print what parses to an equal tree (Same). MathML prints a
+// Text and TeX print what parses to an equal tree (Same), with two exceptions:
+// a total derivative where d is a declared name, and a formula nested so
+// deeply that the brackets added pass the limit. MathML prints a
 // whole math element with the elements of MathML Core only.
 package formula

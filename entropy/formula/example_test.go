@@ -76,3 +76,20 @@ func ExampleNewScope() {
 	// Output:
 	// coordinate "xy": a subscript "xy" could be read as "x y" or as "xy"; rename a coordinate or axis
 }
+
+func ExampleWalk() {
+	n, err := scope().ParseExpr(source.Text{S: "R (u_xixi - u_etaeta)"})
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	formula.Walk(n, func(n formula.Node) bool {
+		if d, ok := n.(*formula.Deriv); ok {
+			fmt.Println(d.Of, d.By, d.At().Col)
+		}
+		return true
+	})
+	// Output:
+	// u [xi xi] 4
+	// u [eta eta] 13
+}

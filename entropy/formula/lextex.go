@@ -150,7 +150,7 @@ func (l *lexer) unknownCommand(at int, word string) {
 		advice = "leave it out"
 	default:
 		// A letter run on to a command, as in \xix.
-		for n := len(word) - 1; n > 1; n-- {
+		for n := min(len(word)-1, len("varepsilon")); n > 1; n-- {
 			if _, ok := greekCommand(word[:n]); ok {
 				advice = fmt.Sprintf(`write "\%s %s"`, word[:n], clip(word[n:]))
 				break

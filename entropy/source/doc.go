@@ -4,7 +4,7 @@
 //
 // An Error prints, for example,
 //
-//	mine.toml:7:12: the product after / is ambiguous
+//	mine.toml:7:11: a division by factors written side by side has two readings
 //	    u_x^2/2 eps
 //	         ^
 //	    write "(u_x^2/2) eps" or "u_x^2/(2 eps)"
