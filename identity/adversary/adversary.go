@@ -51,7 +51,7 @@ type Options struct {
 	Starts      int    // number of starts: 64
 	Iterations  int    // of one descent: 200
 	Evaluations int    // calls of Value and Gradient altogether, checked after each batch: 20,000,000
-	Checks      int    // calls of Verify for one start: 400
+	Checks      int    // calls of Verify for one start: 400; as many again to simplify a witness
 	Jobs        int    // goroutines: the number of processors; the result does not depend on it
 }
 
@@ -124,7 +124,7 @@ func (p *Problem) check() error {
 	case p.Dim < 1:
 		return fmt.Errorf("dimension %d, want at least 1", p.Dim)
 	case p.Value == nil || p.Starts == nil || p.Verify == nil:
-		return errors.New("Value, Starts and Verify are required")
+		return errors.New("the functions Value, Starts and Verify are required")
 	}
 	for _, s := range [][]float64{p.Scale, p.Lower, p.Upper} {
 		if s != nil && len(s) != p.Dim {

@@ -204,6 +204,7 @@ func TestBounds(t *testing.T) {
 		return p
 	}
 	assert.LessOrEqual(t, refuted(t, box("1999/1000")), 2)
+	assert.LessOrEqual(t, refuted(t, box("1999999999999/1000000000000")), 2)
 	assert.Nil(t, search(t, box("2001/1000"), adversary.Options{}).Witness)
 
 	// x ≤ 10 is false for x > 0, and true for x ≤ 10 bounded above.
@@ -240,6 +241,70 @@ func TestNonSmooth(t *testing.T) {
 		},
 	}
 	assert.LessOrEqual(t, refuted(t, p), 13)
+}
+
+func TestManyBasins(t *testing.T) {
+	// Rastrigin's function (a usual test of global methods) lowered by 1/2: only
+	// the central one of its many basins is negative. Transcendental, so the
+	// check is of a box on which it is negative by 10 (1 - cos v) ≤ 5 v².
+	const dim = 3
+	p := adversary.Problem{
+		Dim: dim,
+		Value: func(x []float64) float64 {
+			s, a := -0.5, 0.5
+			for _, v := range x {
+				s += v*v + 10*(1-math.Cos(2*math.Pi*v))
+				a += v*v + 20
+			}
+			return s / a
+		},
+		Starts: func(i int, x []float64) {
+			starts(i, x)
+			for k := range x {
+				x[k] = 4*x[k] + 3
+			}
+		},
+		Verify: func(x []*big.Rat) bool {
+			s := new(big.Rat)
+			for _, c := range x {
+				s.Add(s, new(big.Rat).Mul(c, c))
+			}
+			return s.Cmp(rat("1/400")) < 0 // (1 + 20 π²)/400 < 1/2
+		},
+	}
+	assert.Equal(t, 1, refuted(t, p), "the origin")
+}
+
+// Sums of squares of random polynomials, lowered by a little of another square:
+// the violated set is a thin layer around a variety. Without the last square
+// there is nothing to find.
+func TestRandomThinViolations(t *testing.T) {
+	found := 0
+	for seed := range 24 {
+		rng := rand.New(rand.NewPCG(23, uint64(seed)))
+		dim := 2 + seed%5
+		squares := make([]monomial, 0, 64)
+		for range (dim + 1) / 2 {
+			q := randomPolynomial(rng, dim)
+			squares = append(squares, product(q, q)...)
+		}
+		q := randomPolynomial(rng, dim)
+		delta := rat([]string{"-1e-6", "-1e-9", "-1e-12", "-1e-14"}[seed%4])
+		lowered := append([]monomial(nil), squares...)
+		for _, t := range product(q, q) {
+			lowered = append(lowered, monomial{new(big.Rat).Mul(t.c, delta), t.powers})
+		}
+		one := []monomial{{rat("1"), make([]int, dim)}}
+		require.Nil(t, search(t, problemOf(dim, product(squares, one)), adversary.Options{Starts: 16}).Witness)
+		p := problemOf(dim, product(lowered, one))
+		r := search(t, p, adversary.Options{})
+		if r.Witness != nil {
+			found++
+			require.True(t, p.Verify(r.Witness))
+		}
+	}
+	// Where the variety has no real point there may be no violation.
+	assert.GreaterOrEqual(t, found, 22)
 }
 
 func TestJobsDoNotMatter(t *testing.T) {

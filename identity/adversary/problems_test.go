@@ -1,8 +1,10 @@
 package adversary_test
 
 import (
+	"fmt"
 	"math"
 	"math/big"
+	"math/rand/v2"
 
 	"creaseproof/identity/adversary"
 )
@@ -136,6 +138,45 @@ func expand(a, b []*big.Rat) []*big.Rat {
 		}
 	}
 	return c
+}
+
+// product multiplies and collects, in a fixed order.
+func product(a, b []monomial) []monomial {
+	at := map[string]int{}
+	var out []monomial
+	for _, x := range a {
+		for _, y := range b {
+			e := make([]int, len(x.powers))
+			for i := range e {
+				e[i] = x.powers[i] + y.powers[i]
+			}
+			k := fmt.Sprint(e)
+			if _, ok := at[k]; !ok {
+				at[k] = len(out)
+				out = append(out, monomial{new(big.Rat), e})
+			}
+			c := out[at[k]].c
+			c.Add(c, new(big.Rat).Mul(x.c, y.c))
+		}
+	}
+	return out
+}
+
+// randomPolynomial has a few monomials of degree 1 or 2 with odd coefficients,
+// and sometimes a constant.
+func randomPolynomial(rng *rand.Rand, dim int) []monomial {
+	var ms []monomial
+	for range 3 + rng.IntN(3) {
+		e := make([]int, dim)
+		for range 1 + rng.IntN(2) {
+			e[rng.IntN(dim)]++
+		}
+		ms = append(ms, monomial{big.NewRat(int64(rng.IntN(19)-9)*2+1, int64(1+rng.IntN(3))), e})
+	}
+	if rng.IntN(2) == 0 {
+		ms = append(ms, monomial{big.NewRat(int64(rng.IntN(9)-4)*2+1, 1), make([]int, dim)})
+	}
+	return ms
 }
 
 // layered is the problem of the bound

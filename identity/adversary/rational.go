@@ -54,10 +54,11 @@ func floorRat(x *big.Rat) *big.Int {
 	return new(big.Int).Div(x.Num(), x.Denom()) // Euclidean: floor, as the denominator is positive
 }
 
-// nearest returns the last convergent of v whose denominator is at most limit.
-func nearest(v float64, limit int64) *big.Rat {
+// within returns the last of the convergents cs, simplest first, whose
+// denominator is at most limit.
+func within(cs []*big.Rat, limit int64) *big.Rat {
 	best := new(big.Rat)
-	for i, c := range convergents(v, 200) {
+	for i, c := range cs {
 		if i > 0 && c.Denom().Cmp(big.NewInt(limit)) > 0 {
 			break
 		}
@@ -108,14 +109,6 @@ func simple(v float64) [][]*big.Rat {
 		groups = append(groups, near)
 	}
 	return groups
-}
-
-func floatsOf(x []*big.Rat) []float64 {
-	y := make([]float64, len(x))
-	for i, r := range x {
-		y[i], _ = r.Float64()
-	}
-	return y
 }
 
 func clone(x []*big.Rat) []*big.Rat {

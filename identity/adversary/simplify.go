@@ -8,10 +8,14 @@ import (
 // round checks roundings of x with growing denominators, then x itself.
 func (t *trial) round(x []float64) []*big.Rat {
 	r := make([]*big.Rat, len(x))
+	approximations := make([][]*big.Rat, len(x))
+	for i, v := range x {
+		approximations[i] = convergents(v, 200)
+	}
 	for limit := int64(1); limit < 1<<50; limit *= 4 {
 		changed := limit == 1
-		for i, v := range x {
-			q := nearest(v, limit)
+		for i := range x {
+			q := within(approximations[i], limit)
 			changed = changed || q.Cmp(r[i]) != 0
 			r[i] = q
 		}

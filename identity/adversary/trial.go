@@ -85,7 +85,7 @@ func (t *trial) rationalise(x []float64, margin float64) []*big.Rat {
 	switch {
 	case margin > near:
 		return nil
-	case margin > -noise && t.index >= 2*batch && t.index%batch != 0:
+	case margin > -noise && t.index >= batch && t.index%batch != 0:
 		// Within rounding of zero, the usual end on a true sharp bound: after the
 		// first starts only the cheap attempts are made.
 		return t.round(x)
