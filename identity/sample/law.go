@@ -131,7 +131,7 @@ func latticeBox(s *Stream, c *Column, x []float64) {
 		case 1:
 			v = c.Hi
 		case 2:
-			v = c.Lo/2 + c.Hi/2
+			v = float64(c.Lo/2) + float64(c.Hi/2)
 		}
 		if !math.IsInf(v, 0) && !math.IsNaN(v) {
 			x[j] = v

@@ -100,7 +100,7 @@ var compass = [8]float64{1, math.Sqrt2 / 2, 0, -math.Sqrt2 / 2, -1, -math.Sqrt2 
 // circle returns the point of the unit circle with parameter t = tan(θ/2). For
 // t of at most 24 bits in [-1, 1] each coordinate is rounded once.
 func circle(t float64) (cos, sin float64) {
-	q := t * t
+	q := float64(t * t) // exact for such t; the conversion forbids fusing
 	d := 1 + q
 	return (1 - q) / d, 2 * t / d
 }
