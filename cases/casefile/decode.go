@@ -8,6 +8,8 @@ import (
 	"unicode/utf8"
 )
 
+const tooLarge = "a case is a page or two of text; is this the right file?"
+
 // Decode reads a case. The name is the path as the user gave it, "-" for
 // standard input, or a built-in name; it appears in every place. The error is
 // of type Errors.
@@ -20,7 +22,7 @@ func Decode(name string, data []byte) (*File, error) {
 	data = data[:len(data):len(data)] // the parser finds places from capacities
 	if len(data) > maxBytes {
 		return nil, whole(name, fmt.Sprintf("this file is %d bytes long, more than the %d a case may have", len(data), maxBytes),
-			"a case is a page or two of text; is this the right file?")
+			tooLarge)
 	}
 	if bytes.IndexByte(data, 0) >= 0 {
 		return nil, whole(name, "this is a binary file", "a case is a TOML text file; `creaseproof cases new FILE` writes one to start from")
@@ -30,6 +32,10 @@ func Decode(name string, data []byte) (*File, error) {
 		off := invalidAt(data)
 		r.add(off, fmt.Sprintf("the byte 0x%02X is not UTF-8 here", data[off]), "save the file as UTF-8")
 		return nil, r.err()
+	}
+	if n := bytes.Count(data, []byte(",")) + bytes.Count(data, []byte(".")); n > maxSeparators {
+		// Each may be a node of the parser, which has no bound of its own.
+		return nil, whole(name, fmt.Sprintf("this file holds more than %d commas and full stops", maxSeparators), tooLarge)
 	}
 	root, ok := parse(data, r)
 	if !ok {

@@ -120,6 +120,7 @@ func TestNotACase(t *testing.T) {
 		"comments": {"# nothing\n\n", "holds no case"},
 		"bom":      {"\ufeff", "holds no case"},
 		"binary":   {"\x7fELF\x00\x01", "binary"},
+		"commas":   {"a = [" + strings.Repeat("1,", maxSeparators+1) + "]", "commas"},
 		"large":    {strings.Repeat("#", maxBytes+1), "more than"},
 	} {
 		f, err := Decode("t.toml", []byte(c.text))

@@ -10,10 +10,11 @@ import (
 )
 
 const (
-	maxBytes  = 8 << 20
-	maxValues = 100_000 // keys and values in a file
-	maxParts  = 4       // of a dotted key; no key of a case needs more
-	maxDepth  = 16      // of arrays and inline tables
+	maxBytes      = 8 << 20
+	maxValues     = 100_000 // keys and values in a file
+	maxSeparators = 500_000 // commas and full stops in a file
+	maxParts      = 4       // of a dotted key; no key of a case needs more
+	maxDepth      = 16      // of arrays and inline tables
 )
 
 type kind uint8
