@@ -1,11 +1,16 @@
 package algebra
 
+// divisionStep is the weight of one term product of a division against one of a
+// product of polynomials.
+const divisionStep = 2
+
 // DivExact returns the quotient of p by q where q divides p. The quotient is
 // poisoned, and ok false, where p or q is poisoned or the division reached a
 // limit; where q does not divide p, or is 0, it is 0 and ok false.
 //
 // The method is division with a heap of the products still to be subtracted
-// (S. C. Johnson, Sparse polynomial arithmetic, 1974).
+// (S. C. Johnson, Sparse polynomial arithmetic, 1974), in integers: by the lemma
+// of Gauss the quotient of primitive polynomials has integer coefficients.
 func (p Poly) DivExact(q Poly) (quo Poly, ok bool) {
 	if e, lost := bad(p, q); lost {
 		return e, false
@@ -31,7 +36,6 @@ func (p Poly) DivExact(q Poly) (quo Poly, ok bool) {
 	if !divides(eb[:w], ea[:w], g) || !divides(eb[len(eb)-w:], ea[len(ea)-w:], g) {
 		return Poly{}, false
 	}
-	inv, _ := b.coefs[0].Inv()
 	if len(b.coefs) == 1 {
 		exps := make([]uint64, len(ea))
 		for i := 0; i < len(ea); i += w {
@@ -42,79 +46,148 @@ func (p Poly) DivExact(q Poly) (quo Poly, ok bool) {
 				exps[i+k] = ea[i+k] - x
 			}
 		}
+		inv, _ := b.coefs[0].Inv()
 		quo = canonical(vars, lay, exps, a.coefs).Scale(inv)
 		return quo, quo.Err() == nil
 	}
-	d := division{w: w, b: eb}
-	var rest Rat
-	work := 0
-	m := make([]uint64, w)
-	for k := 0; k < len(a.coefs) || len(d.heap) > 0; {
-		if k < len(a.coefs) {
-			copy(m, ea[k*w:(k+1)*w])
+	ca, cb := content(a.coefs), content(b.coefs)
+	scale, _ := ca.Quo(cb)
+	d := division{w: w, guard: g, a: ea, b: eb}
+	var quotient []Rat
+	divided := overflow
+	if na, nb := small64(a.coefs, ca), small64(b.coefs, cb); na != nil && nb != nil {
+		n := &numbers64{a: na, b: nb}
+		if divided = d.run(n); divided == exact {
+			quotient = make([]Rat, len(n.q))
+			for i, c := range n.q {
+				quotient[i] = Int(c)
+			}
 		}
-		if len(d.heap) > 0 && (k == len(a.coefs) || d.against(m) > 0) {
+	}
+	if divided == overflow {
+		n := newNumbersBig(a.coefs, ca, b.coefs, cb)
+		if divided = d.run(n); divided == exact {
+			quotient = n.quotient()
+		}
+	}
+	switch divided {
+	case inexact:
+		return Poly{}, false
+	case tooLong:
+		return poison(errWork), false
+	case tooLarge:
+		return poison(errTerms), false
+	}
+	quo = canonical(vars, lay, d.q, quotient).Scale(scale)
+	return quo, quo.Err() == nil
+}
+
+type outcome int
+
+const (
+	exact outcome = iota
+	inexact
+	overflow // of machine integers
+	tooLong
+	tooLarge
+)
+
+// pending is the product of quotient term i and divisor term j; key is the first
+// word of its monomial.
+type pending struct {
+	key  uint64
+	i, j int32
+}
+
+// division divides packed terms a by b, with the arithmetic of the coefficients
+// left to numbers.
+type division struct {
+	w       int
+	guard   uint64
+	a, b, q []uint64
+	heap    []pending
+}
+
+// numbers holds the coefficients of a division and the one being formed.
+type numbers interface {
+	start(k int)                   // takes coefficient k of the dividend, 0 where k < 0
+	subtract(i, j int) bool        // subtracts a product; false on overflow
+	isZero() bool                  // of the coefficient being formed
+	divide() (cost int, o outcome) // divides it by the leading one of the divisor
+	lens() (a, b int)
+}
+
+func (d *division) run(n numbers) outcome {
+	w := d.w
+	d.q, d.heap = nil, d.heap[:0]
+	la, lb := n.lens()
+	work, quotients := 0, 0
+	m := make([]uint64, w)
+	for k := 0; k < la || len(d.heap) > 0; {
+		if k < la {
+			copy(m, d.a[k*w:(k+1)*w])
+		}
+		if len(d.heap) > 0 && (k == la || d.against(m) > 0) {
 			d.top(m)
 		}
-		rest = Rat{}
-		if k < len(a.coefs) && compare(ea[k*w:(k+1)*w], m) == 0 {
-			rest = a.coefs[k]
+		if k < la && compare(d.a[k*w:(k+1)*w], m) == 0 {
+			n.start(k)
 			k++
+		} else {
+			n.start(-1)
 		}
 		for len(d.heap) > 0 && d.against(m) == 0 {
 			t := d.heap[0]
-			rest = rest.Sub(d.coefs[t.i].Mul(b.coefs[t.j]))
-			work++
-			if int(t.j)+1 < len(b.coefs) {
-				d.heap[0].j++
+			if !n.subtract(int(t.i), int(t.j)) {
+				return overflow
+			}
+			work += divisionStep
+			if t.j++; int(t.j) < lb {
+				t.key = d.q[int(t.i)*w] + d.b[int(t.j)*w]
+				d.heap[0] = t
 				d.down()
 			} else {
 				d.pop()
 			}
 		}
-		if rest.IsZero() {
+		if n.isZero() {
 			continue
 		}
-		if !divides(eb[:w], m, g) {
-			return Poly{}, false
+		if !divides(d.b[:w], m, d.guard) {
+			return inexact
 		}
-		if len(d.coefs) == MaxTerms || len(d.q) > MaxWords {
-			return poison(errTerms), false
+		if quotients == MaxTerms || len(d.q) > MaxWords {
+			return tooLarge
 		}
-		rest = rest.Mul(inv)
-		if rest.b != nil {
-			work += rest.BitLen() / 8 * len(b.coefs)
+		cost, o := n.divide()
+		if o != exact {
+			return o
 		}
-		if work > MaxProducts {
-			return poison(errWork), false
+		if work += cost * lb; work > MaxProducts {
+			return tooLong
 		}
-		for n, x := range m {
-			d.q = append(d.q, x-eb[n])
+		for i, x := range m {
+			d.q = append(d.q, x-d.b[i])
 		}
-		d.coefs = append(d.coefs, rest)
-		d.push(pending{int32(len(d.coefs) - 1), 1})
+		d.push(pending{d.q[quotients*w] + d.b[w], int32(quotients), 1})
+		quotients++
 	}
-	quo = canonical(vars, lay, d.q, d.coefs)
-	return quo, quo.Err() == nil
-}
-
-// pending is the product of quotient term i and divisor term j.
-type pending struct{ i, j int32 }
-
-type division struct {
-	w     int
-	q, b  []uint64
-	coefs []Rat // of the quotient
-	heap  []pending
+	return exact
 }
 
 // against compares the largest pending product with m.
 func (d *division) against(m []uint64) int {
-	t := d.heap[0]
+	t := &d.heap[0]
+	if t.key != m[0] {
+		if t.key < m[0] {
+			return -1
+		}
+		return 1
+	}
 	i, j := int(t.i)*d.w, int(t.j)*d.w
-	for k, y := range m {
-		if x := d.q[i+k] + d.b[j+k]; x != y {
-			if x < y {
+	for k := 1; k < len(m); k++ {
+		if x := d.q[i+k] + d.b[j+k]; x != m[k] {
+			if x < m[k] {
 				return -1
 			}
 			return 1
@@ -130,8 +203,12 @@ func (d *division) top(m []uint64) {
 	}
 }
 
-func (d *division) less(s, t pending) bool {
-	for k := range d.w {
+// less puts larger monomials first.
+func (d *division) less(s, t *pending) bool {
+	if s.key != t.key || d.w == 1 {
+		return s.key > t.key
+	}
+	for k := 1; k < d.w; k++ {
 		x := d.q[int(s.i)*d.w+k] + d.b[int(s.j)*d.w+k]
 		y := d.q[int(t.i)*d.w+k] + d.b[int(t.j)*d.w+k]
 		if x != y {
@@ -146,7 +223,7 @@ func (d *division) push(t pending) {
 	h := d.heap
 	for c := len(h) - 1; c > 0; {
 		p := (c - 1) / 2
-		if !d.less(h[c], h[p]) {
+		if !d.less(&h[c], &h[p]) {
 			return
 		}
 		h[c], h[p] = h[p], h[c]
@@ -168,10 +245,10 @@ func (d *division) down() {
 		if c >= len(h) {
 			return
 		}
-		if c+1 < len(h) && d.less(h[c+1], h[c]) {
+		if c+1 < len(h) && d.less(&h[c+1], &h[c]) {
 			c++
 		}
-		if !d.less(h[c], h[p]) {
+		if !d.less(&h[c], &h[p]) {
 			return
 		}
 		h[c], h[p] = h[p], h[c]

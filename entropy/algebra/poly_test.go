@@ -82,6 +82,68 @@ func TestExactDivision(t *testing.T) {
 	})
 }
 
+func TestDivisionThatOutgrowsMachineIntegers(t *testing.T) {
+	x, y := Variable(0), Variable(1)
+	q, ok := x.Pow(100).Add(y).DivExact(x.Sub(y.Scale(Int(2))))
+	require.NoError(t, q.Err())
+	require.False(t, ok)
+	c, _ := Int(2).Pow(100)
+	p := x.Pow(100).Sub(y.Pow(100).Scale(c))
+	q, ok = p.DivExact(x.Sub(y.Scale(Int(2))))
+	require.True(t, ok)
+	require.Equal(t, 100, q.Len())
+	require.True(t, q.Mul(x.Sub(y.Scale(Int(2)))).Equal(p))
+	_, ok = p.Add(y.Pow(100)).DivExact(x.Sub(y.Scale(Int(2))))
+	require.False(t, ok)
+}
+
+// TestProductsAgree compares the ways of multiplying, which depend on the size
+// of coefficients and operands, on the same polynomials.
+func TestProductsAgree(t *testing.T) {
+	r := rand.New(rand.NewPCG(1, 10))
+	for range 50 {
+		s := shape{3, 40, 5, 12}
+		p, q := randomPoly(r, s), randomPoly(r, s)
+		want := p.Mul(q)
+		for _, bits := range []int{30, 45, 60, 200} {
+			c, _ := Int(2).Pow(bits)
+			inv, _ := c.Inv()
+			got := p.Scale(c).Mul(q.Scale(c)).Scale(inv).Scale(inv)
+			checkCanonical(t, got)
+			require.True(t, got.Equal(want))
+			got = p.Scale(inv).Mul(q.Scale(c))
+			require.True(t, got.Equal(want))
+		}
+		wide := manyVariables(60)
+		require.True(t, p.Mul(wide).Mul(q).Equal(want.Mul(wide)))
+		high := Variable(100).Pow(5000)
+		require.True(t, p.Mul(high).Mul(q).Equal(want.Mul(high)))
+	}
+}
+
+func TestDegrees(t *testing.T) {
+	x, y := Variable(0), Variable(1)
+	p := x.Pow(3).Mul(y).Add(y.Pow(2))
+	require.Equal(t, []int{4, 3, 2, 0}, []int{p.TotalDegree(), p.Degree(0), p.Degree(1), p.Degree(2)})
+	require.Equal(t, []int{-1, -1}, []int{Poly{}.TotalDegree(), Poly{}.Degree(0)})
+	require.Empty(t, Poly{}.Coeffs(0))
+	require.Equal(t, []Var{0, 1}, p.Vars())
+	require.True(t, p.Has(1))
+	require.False(t, p.Has(2))
+	m, c := p.Leading()
+	require.Equal(t, NewMonomial(Power{1, 1}, Power{0, 3}), m)
+	require.True(t, c.IsOne())
+	require.Equal(t, 3, m.Exp(0))
+	v, ok := Const(Frac64(2, 3)).IsConst()
+	require.True(t, ok && v.Equal(Frac64(2, 3)))
+	_, ok = p.IsConst()
+	require.False(t, ok)
+	require.False(t, Poly{}.Has(0))
+	// Equal polynomials reached in different ways have one representation.
+	require.Equal(t, x.Add(y).Sub(y), x)
+	require.Equal(t, x.Pow(40).Add(y).Sub(x.Pow(40)), y)
+}
+
 func TestCoeffs(t *testing.T) {
 	eachShape(t, 10, func(t *testing.T, r *rand.Rand, draw func() Poly) {
 		p := draw()
