@@ -104,22 +104,14 @@ func (ex *Exact) Normal(i int) (algebra.Fraction, error) {
 		if len(ex.Ring.Unknowns) != 1 {
 			return algebra.Fraction{}, fmt.Errorf("%w: the normal of a jump of %d unknowns", jet.ErrOutside, len(ex.Ring.Unknowns))
 		}
-		n := len(ex.Ring.Coordinates)
-		q := make([]algebra.Fraction, n)
-		var sq algebra.Fraction
-		for k := range n {
-			d, err := ex.jump(k)
-			if err != nil {
-				return d, err
+		q := make([]algebra.Fraction, len(ex.Ring.Coordinates))
+		for k := range q {
+			var err error
+			if q[k], err = ex.jump(k); err != nil {
+				return q[k], err
 			}
-			q[k] = d
-			s, err := ex.Ring.Mul(d, d)
-			if err != nil {
-				return s, err
-			}
-			sq = sq.Add(s)
 		}
-		size, err := ex.Ring.Root(sq, 2)
+		size, err := ex.Norm(q)
 		if err != nil {
 			return size, err
 		}
@@ -199,6 +191,21 @@ func (ex *Exact) Function(name string, x algebra.Fraction) (algebra.Fraction, er
 	return x, fmt.Errorf("%w: the function %s", jet.ErrOutside, name)
 }
 
+// Norm is the root of the sum of the squares.
+func (ex *Exact) Norm(parts []algebra.Fraction) (algebra.Fraction, error) {
+	var sum algebra.Fraction
+	for _, x := range parts {
+		sq, err := ex.Ring.Mul(x, x)
+		if err != nil {
+			return sq, err
+		}
+		if sum, err = ex.Ring.Add(sum, sq); err != nil {
+			return sum, err
+		}
+	}
+	return ex.Ring.NormRoot(sum)
+}
+
 // Total is the total derivative by coordinate i.
 func (ex *Exact) Total(x algebra.Fraction, i int) (algebra.Fraction, error) {
 	return ex.Ring.Total(x, i)
@@ -221,19 +228,7 @@ func (ex *Exact) Sup(angle string, x algebra.Fraction) (algebra.Fraction, error)
 		return x, fmt.Errorf("%w: the supremum over %s of %d harmonics at once", jet.ErrOutside, angle, len(h.Waves))
 	}
 	for _, w := range h.Waves {
-		c2, err := ex.Ring.Mul(w.Cos, w.Cos)
-		if err != nil {
-			return x, err
-		}
-		s2, err := ex.Ring.Mul(w.Sin, w.Sin)
-		if err != nil {
-			return x, err
-		}
-		sq, err := ex.Ring.Add(c2, s2)
-		if err != nil {
-			return x, err
-		}
-		size, err := ex.Ring.NormRoot(sq)
+		size, err := ex.Norm([]algebra.Fraction{w.Cos, w.Sin})
 		if err != nil {
 			return x, err
 		}

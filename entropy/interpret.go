@@ -27,6 +27,8 @@ type Arithmetic[T any] interface {
 	Power(a T, e *big.Rat) (T, error)
 	// Function applies sin cos tan sinh cosh tanh exp log sqrt erf abs.
 	Function(name string, x T) (T, error)
+	// Norm is the root of the sum of the squares.
+	Norm(parts []T) (T, error)
 	// Total is the total derivative by coordinate i.
 	Total(x T, i int) (T, error)
 	Euler(x T, unknown int) (T, error)

@@ -9,10 +9,7 @@ import (
 	"creaseproof/entropy/jet"
 )
 
-var (
-	zeroRat = new(big.Rat)
-	halfRat = big.NewRat(1, 2)
-)
+var zeroRat = new(big.Rat)
 
 func sortedKeys[V any](m map[string]V) []string { return slices.Sorted(maps.Keys(m)) }
 
@@ -133,17 +130,7 @@ func (in *Interpreter[T]) norm(n *formula.Call, s state[T]) (T, error) {
 			parts = append(parts, v.Scalar)
 		}
 	}
-	sum := in.Arith.Rational(zeroRat)
-	for _, x := range parts {
-		sq, err := in.Arith.Power(x, big.NewRat(2, 1))
-		if err != nil {
-			return sq, err
-		}
-		if sum, err = in.Arith.Add(sum, sq); err != nil {
-			return sum, err
-		}
-	}
-	return in.Arith.Power(sum, halfRat)
+	return in.Arith.Norm(parts)
 }
 
 func (in *Interpreter[T]) divergence(n *formula.Call, s state[T]) (T, error) {

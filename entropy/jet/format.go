@@ -1,6 +1,7 @@
 package jet
 
 import (
+	"math/big"
 	"strconv"
 	"strings"
 
@@ -16,12 +17,18 @@ func (r *Ring) Format(f algebra.Fraction) string {
 	if len(dens) == 0 {
 		return r.FormatPoly(f.Num())
 	}
-	num := f.Num()
+	// A rational factor goes above and below the bar as whole numbers.
+	c, num := f.Num().Primitive()
+	top, bottom := algebra.FromBig(new(big.Rat).SetInt(c.Big().Num())), algebra.FromBig(new(big.Rat).SetInt(c.Big().Denom()))
+	num = num.Scale(top)
 	n := r.FormatPoly(num)
 	if num.Len() != 1 {
 		n = "(" + n + ")"
 	}
 	var d []string
+	if !bottom.IsOne() {
+		d = append(d, bottom.String())
+	}
 	for _, x := range dens {
 		b := r.FormatPoly(x.Base)
 		if x.Base.Len() != 1 {

@@ -41,10 +41,31 @@ func (r *Ring) visiblyNonNegativePoly(p algebra.Poly) bool {
 	}
 	for m, c := range p.Terms() {
 		if s, _ := r.termSign(m, c); s <= 0 {
-			return r.shiftedSquare(p)
+			return r.shiftedSquare(p) || r.radicand(p)
 		}
 	}
 	return true
+}
+
+// radicand recognises a positive multiple of what stands under an even root:
+// it is not negative wherever that root is defined.
+func (r *Ring) radicand(p algebra.Poly) bool {
+	for _, v := range r.related {
+		s := &r.symbols[v]
+		if s.Kind != Root || s.Degree%2 == 1 {
+			continue
+		}
+		a := s.Arg.Num()
+		if a.Len() != p.Len() {
+			continue
+		}
+		_, ca := a.Leading()
+		_, cp := p.Leading()
+		if k, ok := cp.Quo(ca); ok && k.Sign() > 0 && a.Scale(k).Equal(p) {
+			return true
+		}
+	}
+	return false
 }
 
 // shiftedSquare recognises c² ≤ 1 in the shape 1 - cos², which the reduction

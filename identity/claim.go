@@ -1,0 +1,106 @@
+package identity
+
+import (
+	"math/big"
+
+	"creaseproof/entropy"
+	"creaseproof/entropy/formula"
+	"creaseproof/entropy/jet"
+)
+
+// Verdict is what is known of a claim.
+type Verdict string
+
+// The verdicts. Proved and Refuted rest on exact arithmetic or on enclosures
+// with outward rounding; Supported says only that no counterexample was found;
+// Open says that the claim was not decided, and the record says why.
+const (
+	Proved    Verdict = "proved"
+	Refuted   Verdict = "refuted"
+	Supported Verdict = "supported"
+	Open      Verdict = "open"
+)
+
+// Claim is one statement to decide, with what it is said about.
+type Claim struct {
+	Name       string
+	Setting    *entropy.Setting
+	Statement  *formula.Statement
+	Divergence bool           // up to a divergence
+	Modulo     []formula.Node // on the real zeros of these and of their total derivatives
+	Jump       bool           // over admissible jumps
+	Solve      []string       // constants to find
+	Best       string         // constant whose best value is asked for
+	Given      map[int]formula.Node
+	Restrict   []Restriction
+	Box        []Bound
+	Assume     []entropy.Assumption // beside those of the setting
+
+	Integrability []Exponent
+}
+
+// Restriction fixes a derivative of an unknown as a constant; its own
+// derivatives vanish.
+type Restriction struct {
+	Unknown int
+	Index   jet.Index
+	Value   formula.Node
+}
+
+// Bound is Lo <= Name <= Hi for a constant, a coordinate or a derivative.
+type Bound struct {
+	Node   formula.Node
+	Lo, Hi *big.Rat
+}
+
+// Exponent is the p of u_J in L^p.
+type Exponent struct {
+	Node formula.Node
+	P    *big.Rat
+}
+
+// Options bound the work. Budgets count work, not seconds, so that the same
+// seed gives the same verdict on any machine and any number of cores.
+type Options struct {
+	Seed    uint64
+	Samples int64 // of random jets for an inequality
+	Starts  int   // of descents of the adversary
+	Jobs    int   // cores to use; no verdict depends on it
+
+	Progress func(claim string, done, total int64)
+}
+
+// DefaultOptions are the budgets that the program uses.
+func DefaultOptions() Options {
+	return Options{Seed: 1, Samples: 200_000, Starts: 48, Jobs: 0}
+}
+
+// Record is a decided claim.
+type Record struct {
+	Claim       string
+	Verdict     Verdict
+	Method      string
+	Margin      *float64 // the least margin met, in float64: a numerical value, no proof
+	Samples     int64    // random jets drawn
+	Searches    int      // descents made
+	Seed        uint64   // of the samples and descents, where there were any
+	Witness     *Witness
+	Remainder   string // what is left of left minus right
+	Solution    string // of solve, or what the method found
+	Reason      string // why open; what a refutation rests on
+	Assumptions []string
+	Details     []string // such as the terms of a sum of squares
+}
+
+// CosSin is a rational point of the circle.
+type CosSin struct{ Cos, Sin string }
+
+// Witness is a point at which a claim fails, all numbers exact; Left and
+// Right are the two sides there, exact or as enclosures [lower, upper].
+type Witness struct {
+	Jet         map[string]string
+	Angle       map[string]CosSin
+	Plus, Minus map[string]string // traces, at a jump
+	Normal      map[string]string
+	Left, Right string
+}

@@ -1,0 +1,151 @@
+package identity
+
+import (
+	"fmt"
+
+	"creaseproof/entropy"
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/jet"
+)
+
+// entropy decides entropy(Sigma): the symmetric part of D Σ(p) vanishes on the
+// real zeros of the residual R(p), a statement about jets at one point. Where
+// R divides it exactly, sym(D Σ) = R A with A reported.
+func (d *decider) entropy() error {
+	res := d.claim.Setting.Model.Residual
+	if res == nil {
+		return &entropy.Error{At: d.claim.Statement.Field.At(), Err: fmt.Errorf("entropy() needs the residual of a [model]")}
+	}
+	if len(d.ring.Unknowns) != 1 {
+		d.open("entropy() is about fields of one gradient; the case has %d unknowns", len(d.ring.Unknowns))
+		return nil
+	}
+	r, err := d.in.Scalar(res)
+	if err != nil {
+		return err
+	}
+	field, err := d.in.Field(d.claim.Statement.Field)
+	if err != nil {
+		return err
+	}
+	for _, v := range d.ring.Support(append(field[:len(field):len(field)], r)...) {
+		s := d.ring.Symbol(v)
+		if s.Kind == jet.Derivative && s.Index.Order() != 1 || s.Kind == jet.Coordinate {
+			d.open("entropy() is about functions of the gradient alone; %s occurs", s.Name)
+			return nil
+		}
+	}
+	n := len(field)
+	grad := make([]algebra.Var, n)
+	for i := range grad {
+		if grad[i], err = d.ring.JetVar(0, jet.Index{}.Plus(i), jet.NoSide); err != nil {
+			return err
+		}
+	}
+	part := make([][]algebra.Fraction, n)
+	for i := range part {
+		part[i] = make([]algebra.Fraction, n)
+		for k := range part[i] {
+			if part[i][k], err = d.ring.Partial(field[i], grad[k]); err != nil {
+				return err
+			}
+		}
+	}
+	half := algebra.Frac64(1, 2)
+	divides := true
+	for i := range n {
+		for k := i; k < n; k++ {
+			sym, err := d.ring.Reduce(part[i][k].Add(part[k][i]).Scale(half))
+			if err != nil {
+				return err
+			}
+			a, ok, err := d.divide(sym, r)
+			if err != nil {
+				return err
+			}
+			if ok && !a.IsZero() {
+				d.rec.Details = append(d.rec.Details, fmt.Sprintf("sym(D %s)_%s%s = R A with A = %s, R A = %s", d.claim.Statement.Field.ID,
+					d.ring.Coordinates[i], d.ring.Coordinates[k], d.ring.Format(a), d.ring.Format(sym)))
+			}
+			if ok {
+				continue
+			}
+			divides = false
+			if done, err := d.vanishesOnWell(sym, r); err != nil || done {
+				return err
+			}
+		}
+	}
+	if divides {
+		d.proved("exact division: sym(D " + d.claim.Statement.Field.ID + ") = R A")
+		return nil
+	}
+	d.proved("the well has no real zero where the entry does not vanish")
+	return nil
+}
+
+// divide is sym/r where that is exact modulo the relations of the kernels.
+func (d *decider) divide(sym, r algebra.Fraction) (algebra.Fraction, bool, error) {
+	if sym.IsZero() {
+		return sym, true, nil
+	}
+	if r.IsZero() {
+		return sym, false, nil
+	}
+	quo, rem := sym.Num().DivMod([]algebra.Poly{r.Num()}, algebra.GradedLex)
+	if err := rem.Err(); err != nil {
+		return sym, false, err
+	}
+	if !d.ring.ReducePoly(rem).IsZero() {
+		return sym, false, nil
+	}
+	// sym = (quo·num(r))/den(sym), r = num(r)/den(r).
+	a := algebra.FromFactors(quo[0], sym.DenFactors()).Mul(algebra.FromPoly(r.Den()))
+	a, err := d.ring.Reduce(a)
+	if err != nil {
+		return a, false, err
+	}
+	back, err := d.ring.Sub(a.Mul(r), sym)
+	return a, err == nil && back.IsZero(), err
+}
+
+// vanishesOnWell decides whether a value that R does not divide still vanishes
+// on the real zeros of R. It reports true where the claim is settled.
+func (d *decider) vanishesOnWell(sym, r algebra.Fraction) (bool, error) {
+	num := algebra.FromPoly(r.Num())
+	if d.ring.VisiblyPositive(num) || d.ring.VisiblyPositive(num.Neg()) {
+		return false, nil // no real zeros at all
+	}
+	if s, ok := d.solve(r, nil); ok {
+		// The well is a graph: put it in.
+		v, err := d.ring.JetVar(s.unknown, s.index, jet.NoSide)
+		if err != nil {
+			return true, err
+		}
+		rest, err := d.ring.Reduce(sym.Subst(v, s.value))
+		if err != nil {
+			return true, err
+		}
+		if rest.IsZero() {
+			return false, nil
+		}
+	}
+	d.ideal = []algebra.Poly{r.Num()}
+	d.rec.Remainder = short(d.ring.Format(sym))
+	pts := d.points(sym)
+	for range witnessTries {
+		at, ok := pts.next()
+		if !ok {
+			break
+		}
+		if s, ok := d.ring.Sign(sym, at); ok && s != 0 {
+			d.refuted("a zero of the residual at which sym(D "+d.claim.Statement.Field.ID+") is not zero", at, sym, algebra.Fraction{})
+			return true, nil
+		}
+	}
+	if d.isolatedWitness(sym, sym, algebra.Fraction{}) {
+		return true, nil
+	}
+	d.open("the residual does not divide sym(D %s) exactly, and no exact real zero of the residual was found at which it is not zero", d.claim.Statement.Field.ID)
+	return true, d.ctx.Err()
+}

@@ -1,0 +1,278 @@
+package identity
+
+import (
+	"fmt"
+	"strings"
+
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/jet"
+)
+
+// witnessTries bounds the points looked at for a witness of an equation.
+const witnessTries = 400
+
+// equality decides A = B: for all jets, on the solutions of equations, up to
+// a divergence, or over admissible jumps; with constants to solve for or not.
+func (d *decider) equality() error {
+	left, right, err := d.sides()
+	if err != nil {
+		return err
+	}
+	gaps := make([]algebra.Fraction, len(left))
+	for i := range left {
+		if gaps[i], err = d.ring.Sub(left[i], right[i]); err != nil {
+			return err
+		}
+	}
+	method := "exact normal form"
+	if d.claim.Divergence {
+		return d.divergence(gaps)
+	}
+	if len(d.claim.Modulo) > 0 {
+		method = "exact, on the zeros of the equations and of their derivatives"
+	}
+	if d.claim.Jump {
+		method = "exact, on the well on both sides"
+	}
+	if len(d.claim.Solve) > 0 {
+		if gaps, err = d.solveFor(gaps); err != nil || d.rec.Verdict != "" {
+			return err
+		}
+	}
+	for i, g := range gaps {
+		done, err := d.vanishes(g, left[i], right[i])
+		if err != nil || done {
+			return err
+		}
+	}
+	d.proved(method)
+	return nil
+}
+
+// vanishes decides whether g = left - right is zero. It reports true where
+// the claim is settled by that: g is not zero, or it is not decided.
+func (d *decider) vanishes(g, left, right algebra.Fraction) (bool, error) {
+	if g.IsZero() {
+		return false, nil
+	}
+	if err := d.ring.Err(g); err != nil {
+		return true, err
+	}
+	rest, err := d.onIdeal(g)
+	if err != nil {
+		return true, err
+	}
+	if rest.IsZero() {
+		return false, nil
+	}
+	if ok, err := d.oneRoot(g); err != nil || ok {
+		return err != nil, err
+	}
+	d.rec.Remainder = short(d.ring.Format(rest))
+	pts := d.points(g, left, right)
+	for range witnessTries {
+		at, ok := pts.next()
+		if !ok {
+			break
+		}
+		if s, ok := d.ring.Sign(g, at); ok && s != 0 {
+			d.refuted("exact normal form, and a point where the sides differ", at, left, right)
+			return true, nil
+		}
+	}
+	if err := d.ctx.Err(); err != nil {
+		return true, err
+	}
+	switch {
+	case len(d.ideal) > 0 || len(d.wells) > 0:
+		if d.isolatedWitness(g, left, right) {
+			return true, nil
+		}
+		d.open("the remainder after exact division is not zero, and no exact real zero of the equations was found at which it is not zero")
+	default:
+		d.open("the difference has a normal form that is not zero, but no rational point was found at which it certainly differs from zero: kernels in it may depend on each other in a way that is not normalised")
+	}
+	return true, nil
+}
+
+// onIdeal is the remainder of g by the generators of the ideal, or by the
+// wells on both sides of a jump. The wells hold separate indeterminates, so
+// that with leading terms in each they form a Gröbner basis.
+func (d *decider) onIdeal(g algebra.Fraction) (algebra.Fraction, error) {
+	gens := d.wells
+	num := g.Num()
+	switch {
+	case len(d.wells) > 0:
+		var err error
+		if num, err = d.inTraces(num); err != nil {
+			return g, err
+		}
+	case len(d.ideal) > 0:
+		var err error
+		if gens, err = d.prolong(num); err != nil {
+			return g, err
+		}
+	default:
+		return g, nil
+	}
+	num = d.ring.ReducePoly(num)
+	_, rem := num.DivMod(gens, algebra.GradedLex)
+	rem = d.ring.ReducePoly(rem)
+	if err := rem.Err(); err != nil {
+		return g, err
+	}
+	return algebra.FromPoly(rem), nil
+}
+
+// prolong is the ideal's generators with their total derivatives, up to the
+// order of the jets in num.
+func (d *decider) prolong(num algebra.Poly) ([]algebra.Poly, error) {
+	order := 0
+	for _, v := range d.ring.Support(algebra.FromPoly(num)) {
+		if s := d.ring.Symbol(v); s.Kind == jet.Derivative {
+			order = max(order, s.Index.Order())
+		}
+	}
+	gens := append([]algebra.Poly(nil), d.ideal...)
+	for from := 0; from < len(gens); from++ {
+		g := gens[from]
+		top := 0
+		for _, v := range g.Vars() {
+			if s := d.ring.Symbol(v); s.Kind == jet.Derivative {
+				top = max(top, s.Index.Order())
+			}
+		}
+		if top >= order {
+			continue
+		}
+		for i := range d.ring.Coordinates {
+			f, err := d.ring.Total(algebra.FromPoly(g), i)
+			if err != nil {
+				return nil, err
+			}
+			known := f.IsZero()
+			for _, h := range gens {
+				known = known || h.Equal(f.Num())
+			}
+			if !known {
+				gens = append(gens, f.Num())
+			}
+		}
+		if len(gens) > 400 {
+			return nil, fmt.Errorf("%w: more than 400 derivatives of the equations", algebra.ErrLimit)
+		}
+	}
+	d.ideal = gens
+	return gens, nil
+}
+
+// oneRoot proves α r + β = 0 for a single root r = √a: α² a = β², and the
+// signs of α and β are visibly opposite.
+func (d *decider) oneRoot(g algebra.Fraction) (bool, error) {
+	for _, v := range g.Num().Vars() {
+		s := d.ring.Symbol(v)
+		if s.Kind != jet.Root || s.Degree != 2 || s.Sign == jet.AnySign || g.Num().Degree(v) != 1 {
+			continue
+		}
+		co := g.Num().Coeffs(v)
+		if len(d.ring.Kernels(algebra.FromPoly(co[0]), algebra.FromPoly(co[1]))) > 0 {
+			var outer []algebra.Var
+			for _, k := range d.ring.Kernels(algebra.FromPoly(co[0]), algebra.FromPoly(co[1])) {
+				if k > v {
+					outer = append(outer, k)
+				}
+			}
+			if len(outer) > 0 {
+				continue
+			}
+		}
+		a, b := algebra.FromPoly(co[1]), algebra.FromPoly(co[0])
+		opposite := d.ring.VisiblyNonNegative(a) && d.ring.VisiblyNonNegative(b.Neg()) ||
+			d.ring.VisiblyNonNegative(a.Neg()) && d.ring.VisiblyNonNegative(b)
+		if !opposite {
+			continue
+		}
+		diff, err := d.ring.Reduce(a.Mul(a).Mul(s.Arg).Sub(b.Mul(b)))
+		if err != nil {
+			return false, err
+		}
+		if diff, err = d.onIdeal(diff); err != nil {
+			return false, err
+		}
+		if diff.IsZero() {
+			return true, nil
+		}
+	}
+	return false, nil
+}
+
+// divergence decides A = B up to a divergence, by the Euler operator.
+func (d *decider) divergence(gaps []algebra.Fraction) error {
+	if len(gaps) != 1 {
+		return fmt.Errorf("a vector cannot be a divergence")
+	}
+	if len(d.claim.Given) > 0 {
+		return fmt.Errorf("a claim up to a divergence is about every u: take `given` away")
+	}
+	if d.claim.Jump {
+		return fmt.Errorf("a claim up to a divergence is about smooth u: take `at` away")
+	}
+	var euler []algebra.Fraction
+	for a := range d.ring.Unknowns {
+		e, err := d.ring.Euler(gaps[0], a)
+		if err != nil {
+			return err
+		}
+		euler = append(euler, e)
+	}
+	if len(d.claim.Solve) > 0 {
+		var err error
+		if euler, err = d.solveFor(euler); err != nil || d.rec.Verdict != "" {
+			return err
+		}
+	}
+	for a, e := range euler {
+		if e.IsZero() {
+			continue
+		}
+		if err := d.ring.Err(e); err != nil {
+			return err
+		}
+		d.rec.Remainder = short(fmt.Sprintf("euler(left - right, %s) = %s", d.ring.Unknowns[a], d.ring.Format(e)))
+		pts := d.points(e)
+		for range witnessTries {
+			at, ok := pts.next()
+			if !ok {
+				break
+			}
+			if s, ok := d.ring.Sign(e, at); ok && s != 0 {
+				d.refuted("Euler operator", at, e, algebra.Fraction{})
+				d.rec.Reason = "the Euler expression of left minus right is not zero at the witness; left is its value there"
+				return nil
+			}
+		}
+		if err := d.ctx.Err(); err != nil {
+			return err
+		}
+		d.open("the Euler expression is not zero in normal form, but no rational point was found at which it certainly differs from zero")
+		return nil
+	}
+	d.proved("Euler operator")
+	if len(gaps[0].DenFactors()) > 0 {
+		d.rec.Assumptions = append(d.rec.Assumptions, "a divergence where the denominators do not vanish")
+	}
+	return nil
+}
+
+// short keeps a printed formula within what a record should hold.
+func short(s string) string {
+	const limit = 2000
+	if r := []rune(s); len(r) > limit {
+		s = string(r[:limit])
+		if i := strings.LastIndexAny(s, "+-"); i > 0 {
+			s = s[:i]
+		}
+		return s + fmt.Sprintf("… (%d characters in all)", len(r))
+	}
+	return s
+}

@@ -1,0 +1,429 @@
+package identity
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"math/big"
+	"math/rand/v2"
+	"slices"
+
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/jet"
+	"creaseproof/entropy/program"
+	"creaseproof/identity/adversary"
+	"creaseproof/identity/sample"
+)
+
+// task is the numerical search for a counterexample in free coordinates: the
+// free indeterminates, then t = tan(θ/2) for each angle, with orientations
+// fixed.
+type task struct {
+	d     *decider
+	g     *gap
+	pts   *points
+	signs []algebra.Rat // of pts.signs
+
+	layout  *sample.Layout
+	sampled *program.Program // gap and sum of absolute monomials, over the layout
+	margin  *program.Program // margin and its gradient, over the free coordinates
+}
+
+// search samples the margin and sends the adversary after it. Every candidate
+// is settled in exact arithmetic.
+func (d *decider) search(g *gap) error {
+	pts := d.points(g.value, g.left, g.right)
+	if len(pts.vars()) == 0 {
+		return d.constant(g, pts)
+	}
+	if len(d.ideal) > 0 || len(d.wells) > 0 {
+		return d.searchOnVariety(g, pts)
+	}
+	least := math.Inf(1)
+	for k := range 1 << len(pts.signs) {
+		t := &task{d: d, g: g, pts: pts}
+		for i := range pts.signs {
+			t.signs = append(t.signs, algebra.Int(int64(1-2*(k>>i&1))))
+		}
+		if err := t.compile(); err != nil {
+			return err
+		}
+		m, done, err := t.run()
+		if err != nil || done {
+			return err
+		}
+		least = min(least, m)
+	}
+	d.supported(least)
+	return nil
+}
+
+func (d *decider) supported(least float64) {
+	d.rec.Verdict, d.rec.Method, d.rec.Seed = Supported, "sampling and adversarial search", d.opt.Seed
+	if !math.IsInf(least, 0) {
+		d.rec.Margin = &least
+	}
+	d.rec.Reason = fmt.Sprintf("no counterexample in %d random jets and %d descents; a numerical check is not a proof", d.rec.Samples, d.rec.Searches)
+}
+
+// constant decides an inequality between constants.
+func (d *decider) constant(g *gap, pts *points) error {
+	at := jet.Point{}
+	s, ok := d.ring.Sign(g.value, at)
+	switch {
+	case !ok:
+		d.open("the two sides are constants too close to tell apart at %d bits", 640)
+	case s < 0:
+		d.refuted("disjoint enclosures of constants", at, g.left, g.right)
+	default:
+		d.proved("disjoint enclosures of constants")
+	}
+	return nil
+}
+
+// searchOnVariety samples exact rational points of a well or of equations
+// that are not solved for a derivative.
+func (d *decider) searchOnVariety(g *gap, pts *points) error {
+	tries := min(d.opt.Samples, 4000)
+	for range tries {
+		at, ok := pts.next()
+		if !ok {
+			break
+		}
+		d.rec.Samples++
+		if d.falseAt(g, pts, at) {
+			d.refuted("exact arithmetic at a rational point of the well", at, g.left, g.right)
+			return nil
+		}
+	}
+	if err := d.ctx.Err(); err != nil {
+		return err
+	}
+	if d.rec.Samples == 0 {
+		d.open("no rational point was found on which the claim could be tried")
+		return nil
+	}
+	d.supported(math.Inf(1))
+	return nil
+}
+
+func (t *task) compile() error {
+	ring := t.d.ring
+	inputs := func(c *compiler) {
+		for i, s := range t.pts.signs {
+			c.of[s] = c.b.Const(t.signs[i].Float64())
+		}
+		for i, v := range t.pts.free {
+			c.of[v] = c.b.Input(i)
+		}
+	}
+	build := func(c *compiler) (gap, size program.Ref) {
+		gap, size = c.poly(t.g.poly), c.absSum(t.g.poly)
+		for _, a := range t.d.assumed {
+			if len(ring.Support(a.value)) <= 1 {
+				continue // a sign or a bound, which the layout knows
+			}
+			switch a.relation {
+			case ">", ">=":
+				gap = c.where(gap, c.fraction(a.value))
+			case "<", "<=":
+				gap = c.where(gap, c.b.Neg(c.fraction(a.value)))
+			}
+		}
+		return gap, size
+	}
+	n := len(t.pts.free)
+
+	c := &compiler{ring, program.NewBuilder(), map[algebra.Var]program.Ref{}}
+	inputs(c)
+	for i, a := range t.pts.angles {
+		c.of[a], c.of[ring.Symbol(a).Partner] = c.b.Input(n+2*i), c.b.Input(n+2*i+1)
+	}
+	gap, size := build(c)
+	var err error
+	if t.sampled, err = c.b.Compile(gap, size); err != nil {
+		return fmt.Errorf("%w: %w", jet.ErrOutside, err)
+	}
+	if t.layout, err = t.makeLayout(); err != nil {
+		return err
+	}
+
+	c = &compiler{ring, program.NewBuilder(), map[algebra.Var]program.Ref{}}
+	inputs(c)
+	one := c.b.Const(1)
+	for i, a := range t.pts.angles {
+		x := c.b.Input(n + i)
+		sq := c.b.Mul(x, x)
+		den := c.b.Add(one, sq)
+		c.of[a] = c.b.Quo(c.b.Sub(one, sq), den)
+		c.of[ring.Symbol(a).Partner] = c.b.Quo(c.b.Add(x, x), den)
+	}
+	gap, size = build(c)
+	m := c.b.Quo(gap, size)
+	idx := make([]int, n+len(t.pts.angles))
+	for i := range idx {
+		idx[i] = i
+		c.b.Input(i)
+	}
+	if t.margin, err = c.b.Compile(append([]program.Ref{m}, c.b.Gradient(m, idx)...)...); err != nil {
+		return fmt.Errorf("%w: %w", jet.ErrOutside, err)
+	}
+	return nil
+}
+
+func (t *task) makeLayout() (*sample.Layout, error) {
+	var cols []sample.Column
+	for _, v := range t.pts.free {
+		s := t.d.ring.Symbol(v)
+		c := sample.Column{Name: s.Name}
+		if s.Kind == jet.Derivative && s.Side == jet.NoSide {
+			c.Unknown, c.Order = t.d.ring.Unknowns[s.Place], s.Index.Order()
+			for i := range t.d.ring.Coordinates {
+				c.Index = append(c.Index, int(s.Index[i]))
+			}
+		}
+		c.Lo, c.Hi = t.bounds(v)
+		switch {
+		case math.IsInf(c.Lo, -1) && math.IsInf(c.Hi, 1):
+		case c.Lo == 0 && math.IsInf(c.Hi, 1):
+			c.Kind = sample.Positive
+		case c.Hi == 0 && math.IsInf(c.Lo, -1):
+			c.Kind = sample.Negative
+		default:
+			c.Kind = sample.Box
+		}
+		cols = append(cols, c)
+	}
+	for i, a := range t.pts.angles {
+		name := t.d.ring.Format(t.d.ring.Symbol(a).Arg)
+		cols = append(cols, sample.Column{Name: "cos " + name, Kind: sample.Cosine, Angle: i},
+			sample.Column{Name: "sin " + name, Kind: sample.Sine, Angle: i})
+	}
+	return sample.NewLayout(cols)
+}
+
+// bounds are the bounds of v from its assumed sign and its box, as floats:
+// they only guide the search.
+func (t *task) bounds(v algebra.Var) (lo, hi float64) {
+	lo, hi = math.Inf(-1), math.Inf(1)
+	switch t.d.ring.Symbol(v).Sign {
+	case jet.Positive, jet.NonNegative:
+		lo = 0
+	case jet.Negative, jet.NonPositive:
+		hi = 0
+	}
+	for _, b := range t.d.claim.Box {
+		f, err := t.d.in.Scalar(b.Node)
+		if err != nil {
+			continue
+		}
+		if w, ok := loneVar(f); ok && w == v {
+			l, _ := b.Lo.Float64()
+			h, _ := b.Hi.Float64()
+			lo, hi = max(lo, l), min(hi, h)
+		}
+	}
+	return lo, hi
+}
+
+const keepBest = 64
+
+// run samples, then sends the adversary. It reports the least margin met, and
+// true where a counterexample was found.
+func (t *task) run() (float64, bool, error) {
+	d := t.d
+	opts := sample.Options{Seed: d.opt.Seed, Samples: d.opt.Samples, Jobs: d.opt.Jobs, Laws: t.laws()}
+	if d.opt.Progress != nil {
+		opts.Progress = func(done, total int64) { d.opt.Progress(d.claim.Name, done, total) }
+	}
+	res, err := sample.Run(d.ctx, opts, t.layout, t.sampled, keepBest)
+	d.rec.Samples += res.Drawn
+	if err != nil {
+		return 0, false, err
+	}
+	var starts [][]float64
+	for _, p := range res.Best {
+		starts = append(starts, t.coordinates(p.Values))
+	}
+	least := res.MinMargin
+	found, err := t.attack(starts)
+	d.rec.Searches += found.Starts
+	least = min(least, found.BestMargin)
+	if err != nil && !errors.Is(err, context.Canceled) && !errors.Is(err, context.DeadlineExceeded) {
+		return least, false, fmt.Errorf("%w: %w", jet.ErrOutside, err)
+	} else if err != nil {
+		return least, false, err
+	}
+	if found.Witness != nil {
+		at, _ := t.point(found.Witness)
+		d.rec.Margin = &least
+		d.refuted("adversarial search; exact arithmetic at the witness", at, t.g.left, t.g.right)
+		return least, true, nil
+	}
+	for _, x := range starts { // samples that fail, should no descent have led to one
+		q := make([]*big.Rat, len(x))
+		for i := range x {
+			if q[i] = new(big.Rat).SetFloat64(x[i]); q[i] == nil {
+				q[i] = new(big.Rat)
+			}
+		}
+		if at, ok := t.point(q); ok && d.falseAt(t.g, t.pts, at) {
+			d.rec.Margin = &least
+			d.refuted("random sample; exact arithmetic at the witness", at, t.g.left, t.g.right)
+			return least, true, nil
+		}
+	}
+	return least, false, nil
+}
+
+// coordinates are the free coordinates of a sampled point.
+func (t *task) coordinates(values []float64) []float64 {
+	n := len(t.pts.free)
+	x := slices.Clone(values[:n])
+	for i := range t.pts.angles {
+		c, s := values[n+2*i], values[n+2*i+1]
+		if 1+c > 1e-9 {
+			x = append(x, s/(1+c))
+		} else {
+			x = append(x, 1e9)
+		}
+	}
+	return x
+}
+
+// point is the exact point with the given rational coordinates.
+func (t *task) point(x []*big.Rat) (jet.Point, bool) {
+	at := jet.Point{}
+	n := len(t.pts.free)
+	for i, v := range t.pts.free {
+		at[v] = algebra.FromBig(x[i])
+	}
+	for i, a := range t.pts.angles {
+		h := algebra.FromBig(x[n+i])
+		sq := h.Mul(h)
+		den := sq.Add(algebra.Int(1))
+		at[a], _ = algebra.Int(1).Sub(sq).Quo(den)
+		at[t.d.ring.Symbol(a).Partner], _ = h.Add(h).Quo(den)
+	}
+	for i, s := range t.pts.signs {
+		at[s] = t.signs[i]
+	}
+	if t.d.claim.Jump {
+		if err := t.d.traces(at); err != nil {
+			return nil, false
+		}
+	}
+	return at, true
+}
+
+// laws adds, to the default mixture, samples near the equality set: Newton
+// steps on the gap in one derivative.
+func (t *task) laws() []sample.Law {
+	laws := sample.DefaultLaws()
+	for _, v := range t.d.squareVars(t.g.poly) {
+		i := slices.Index(t.pts.free, v)
+		if i < 0 || t.g.poly.Degree(v) < 2 {
+			continue
+		}
+		// The gap touches zero where its derivative by v vanishes.
+		c := &compiler{t.d.ring, program.NewBuilder(), map[algebra.Var]program.Ref{}}
+		for k, s := range t.pts.signs {
+			c.of[s] = c.b.Const(t.signs[k].Float64())
+		}
+		for k, w := range t.pts.free {
+			c.of[w] = c.b.Input(k)
+		}
+		n := len(t.pts.free)
+		for k, a := range t.pts.angles {
+			c.of[a], c.of[t.d.ring.Symbol(a).Partner] = c.b.Input(n+2*k), c.b.Input(n+2*k+1)
+		}
+		first := c.poly(t.g.poly.Deriv(v))
+		second := c.poly(t.g.poly.Deriv(v).Deriv(v))
+		for k := range t.layout.Len() {
+			c.b.Input(k)
+		}
+		prog, err := c.b.Compile(first, second)
+		if err != nil {
+			continue
+		}
+		if correct, err := sample.Newton(prog, i, 4); err == nil {
+			laws = append(laws, sample.Near{Base: sample.Gaussian{}, Correct: correct})
+		}
+		if len(laws) >= 8 {
+			break
+		}
+	}
+	return laws
+}
+
+// attack minimises the margin from the worst samples and from random starts.
+func (t *task) attack(starts [][]float64) (adversary.Result, error) {
+	d := t.d
+	n := len(t.pts.free) + len(t.pts.angles)
+	p := adversary.Problem{Dim: n, Lower: make([]float64, n), Upper: make([]float64, n)}
+	for i := range n {
+		p.Lower[i], p.Upper[i] = math.Inf(-1), math.Inf(1)
+		if i < len(t.pts.free) {
+			p.Lower[i], p.Upper[i] = t.bounds(t.pts.free[i])
+		}
+	}
+	outs := t.margin.NumOutputs()
+	eval := func(x []float64) []float64 {
+		out := make([]float64, outs)
+		t.margin.Eval(t.margin.NewWorkspace(), x, out)
+		return out
+	}
+	p.Value = func(x []float64) float64 { return eval(x)[0] }
+	p.Gradient = func(grad, x []float64) { copy(grad, eval(x)[1:]) }
+	p.Starts = func(i int, x []float64) {
+		if i%2 == 0 && i/2 < len(starts) {
+			copy(x, starts[i/2])
+			return
+		}
+		rng := rand.New(rand.NewPCG(d.opt.Seed, uint64(i)+1<<32))
+		for k := range x {
+			x[k] = rng.NormFloat64()
+			if i%3 == 1 {
+				x[k] *= math.Exp(3 * rng.NormFloat64())
+			}
+			x[k] = math.Min(math.Max(x[k], p.Lower[k]), p.Upper[k])
+			if x[k] == 0 && p.Lower[k] == 0 {
+				x[k] = math.Abs(rng.NormFloat64())
+			}
+		}
+	}
+	p.Verify = func(x []*big.Rat) bool {
+		at, ok := t.point(x)
+		return ok && d.falseAt(t.g, t.pts, at)
+	}
+	p.Polish = func(x []*big.Rat, i int) (*big.Rat, bool) {
+		at, ok := t.point(x)
+		if !ok || i >= len(t.pts.free) {
+			return nil, false
+		}
+		v := t.pts.free[i]
+		values := map[algebra.Var]algebra.Rat{}
+		for _, w := range t.g.poly.Vars() {
+			y, ok := d.ring.Exact(jet.Of(w), at)
+			if !ok {
+				return nil, false
+			}
+			if w != v {
+				values[w] = y
+			}
+		}
+		co := t.g.poly.EvalPartial(values).Coeffs(v)
+		if len(co) != 3 {
+			return nil, false
+		}
+		a, _ := co[2].IsConst()
+		b, _ := co[1].IsConst()
+		y, ok := b.Neg().Quo(a.Add(a))
+		if !ok || a.Sign() <= 0 {
+			return nil, false
+		}
+		return y.Big(), true
+	}
+	return adversary.Search(d.ctx, p, adversary.Options{Seed: d.opt.Seed, Starts: d.opt.Starts, Jobs: d.opt.Jobs})
+}

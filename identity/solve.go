@@ -1,0 +1,271 @@
+package identity
+
+import (
+	"fmt"
+	"slices"
+	"strings"
+
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/jet"
+)
+
+// solveFor finds the constants of claim.Solve that make every value zero, for
+// all jets and coordinates: the coefficients of all monomials in these must
+// vanish, which is a linear system over the rational functions of the other
+// constants. Solutions must not depend on jets, and are put in. It returns the
+// values with the solution in place (zero, then, unless something is wrong:
+// the caller still looks). Where there is none the record says so.
+func (d *decider) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) {
+	unknown := make([]algebra.Var, len(d.claim.Solve))
+	for i, name := range d.claim.Solve {
+		unknown[i] = d.ring.ConstantVar(name)
+	}
+	rows, err := d.coefficients(gaps, unknown)
+	if err != nil {
+		return nil, err
+	}
+	a := make([][]algebra.Fraction, 0, len(rows))
+	b := make([]algebra.Fraction, 0, len(rows))
+	for _, p := range rows {
+		row := make([]algebra.Fraction, len(unknown))
+		rest := p
+		for i, v := range unknown {
+			if p.Degree(v) > 1 {
+				return d.solveNonlinear(gaps, rows, unknown)
+			}
+			c := p.Deriv(v)
+			if slices.ContainsFunc(unknown, c.Has) {
+				return d.solveNonlinear(gaps, rows, unknown)
+			}
+			row[i] = algebra.FromPoly(c)
+			rest = rest.Sub(c.Mul(algebra.Variable(v)))
+		}
+		a, b = append(a, row), append(b, algebra.FromPoly(rest.Neg()))
+	}
+	x, ok, err := algebra.SolveFractions(a, b)
+	if err != nil {
+		return nil, err
+	}
+	if !ok {
+		d.rec.Verdict = Refuted
+		d.rec.Method = "linear system of the coefficients, exact"
+		d.rec.Solution = "none"
+		d.rec.Reason = "no value of " + strings.Join(d.claim.Solve, ", ") + " makes the claim true: the linear system of the coefficients has no solution"
+		return nil, nil
+	}
+	free := d.undetermined(a, len(unknown))
+	var parts []string
+	sub := map[algebra.Var]algebra.Fraction{}
+	for i, v := range unknown {
+		if free[i] {
+			parts = append(parts, d.claim.Solve[i]+" free")
+			sub[v] = x[i] // one solution stands for all; the others differ by free parameters
+			continue
+		}
+		parts = append(parts, d.claim.Solve[i]+" = "+d.ring.Format(x[i]))
+		sub[v] = x[i]
+	}
+	d.rec.Solution = strings.Join(parts, ", ")
+	return d.substitute(gaps, sub)
+}
+
+func (d *decider) substitute(gaps []algebra.Fraction, sub map[algebra.Var]algebra.Fraction) ([]algebra.Fraction, error) {
+	out := make([]algebra.Fraction, len(gaps))
+	for i, g := range gaps {
+		f, err := d.ring.Reduce(g.SubstMany(sub))
+		if err != nil {
+			return nil, err
+		}
+		out[i] = f
+	}
+	return out, nil
+}
+
+// coefficients lists the coefficients of the numerators over monomials in all
+// that varies: jets, coordinates and kernels. They are polynomials in the
+// constants.
+func (d *decider) coefficients(gaps []algebra.Fraction, unknown []algebra.Var) ([]algebra.Poly, error) {
+	for _, k := range d.ring.Kernels(gaps...) {
+		for _, v := range d.ring.Support(d.ring.Symbol(k).Arg) {
+			if slices.Contains(unknown, v) {
+				return nil, fmt.Errorf("%w: solving for %s inside %s", jet.ErrOutside, d.ring.Name(v), d.ring.Name(k))
+			}
+		}
+	}
+	var out []algebra.Poly
+	for _, g := range gaps {
+		rest, err := d.onIdeal(g)
+		if err != nil {
+			return nil, err
+		}
+		for _, f := range g.DenFactors() {
+			if slices.ContainsFunc(unknown, f.Base.Has) {
+				return nil, fmt.Errorf("%w: solving for a constant in a denominator", jet.ErrOutside)
+			}
+		}
+		groups := map[algebra.Monomial][]algebra.Term{}
+		var keys []algebra.Monomial
+		for m, c := range rest.Num().Terms() {
+			var varying, constant []algebra.Power
+			for _, pw := range m.Powers() {
+				if d.ring.Symbol(pw.Var).Kind == jet.Constant {
+					constant = append(constant, pw)
+				} else {
+					varying = append(varying, pw)
+				}
+			}
+			key := algebra.NewMonomial(varying...)
+			if _, ok := groups[key]; !ok {
+				keys = append(keys, key)
+			}
+			groups[key] = append(groups[key], algebra.Term{Mono: algebra.NewMonomial(constant...), Coef: c})
+		}
+		for _, k := range keys {
+			out = append(out, algebra.FromTerms(groups[k]))
+		}
+	}
+	return out, nil
+}
+
+// undetermined marks the unknowns that the system leaves free: those whose
+// column is a combination of the columns before them.
+func (d *decider) undetermined(a [][]algebra.Fraction, n int) []bool {
+	free := make([]bool, n)
+	for i := range n {
+		// Column i = combination of the other columns?
+		lhs := make([][]algebra.Fraction, len(a))
+		rhs := make([]algebra.Fraction, len(a))
+		for r, row := range a {
+			lhs[r] = slices.Concat(row[:i], row[i+1:])
+			rhs[r] = row[i]
+		}
+		_, ok, err := algebra.SolveFractions(lhs, rhs)
+		free[i] = ok && err == nil
+	}
+	return free
+}
+
+// solveNonlinear handles one unknown: the rational roots common to all
+// coefficients that are polynomials in it alone.
+func (d *decider) solveNonlinear(gaps []algebra.Fraction, rows []algebra.Poly, unknown []algebra.Var) ([]algebra.Fraction, error) {
+	if len(unknown) != 1 {
+		return nil, fmt.Errorf("%w: the coefficients are not linear in %s", jet.ErrOutside, strings.Join(d.claim.Solve, ", "))
+	}
+	v := unknown[0]
+	var first algebra.Poly
+	for _, p := range rows {
+		if vs := p.Vars(); len(vs) == 1 && vs[0] == v && (first.IsZero() || p.Degree(v) < first.Degree(v)) {
+			first = p
+		}
+	}
+	if first.IsZero() {
+		return nil, fmt.Errorf("%w: no coefficient holds %s alone", jet.ErrOutside, d.claim.Solve[0])
+	}
+	roots, complete := rationalRoots(first, v)
+	var good []string
+	var kept []algebra.Fraction
+	for _, x := range roots {
+		sub, err := d.substitute(gaps, map[algebra.Var]algebra.Fraction{v: jet.Rational(x.Big())})
+		if err != nil {
+			return nil, err
+		}
+		all := true
+		for _, g := range sub {
+			rest, err := d.onIdeal(g)
+			if err != nil {
+				return nil, err
+			}
+			all = all && rest.IsZero()
+		}
+		if all {
+			good = append(good, d.claim.Solve[0]+" = "+x.String())
+			kept = sub
+		}
+	}
+	switch {
+	case !complete:
+		return nil, fmt.Errorf("%w: %s solves an equation with roots that are not rational", jet.ErrOutside, d.claim.Solve[0])
+	case len(good) == 0:
+		d.rec.Verdict, d.rec.Method, d.rec.Solution = Refuted, "rational roots of the coefficients, exact", "none"
+		d.rec.Reason = "no value of " + d.claim.Solve[0] + " makes all coefficients vanish"
+		return nil, nil
+	}
+	d.rec.Solution = strings.Join(good, " or ")
+	return kept, nil
+}
+
+// rationalRoots are the distinct rational roots of a polynomial in v alone;
+// complete is false where it may have real roots that are not rational.
+func rationalRoots(p algebra.Poly, v algebra.Var) (roots []algebra.Rat, complete bool) {
+	for p.Degree(v) > 0 {
+		co := p.Coeffs(v)
+		if co[0].IsZero() {
+			roots = appendNew(roots, algebra.Rat{})
+			p, _ = p.DivExact(algebra.Variable(v))
+			continue
+		}
+		if p.Degree(v) <= 2 {
+			x, ok := rationalRoot(p, v, false)
+			if !ok {
+				a, _ := co[p.Degree(v)].IsConst()
+				c, _ := co[0].IsConst()
+				b, _ := co[1].IsConst()
+				disc := b.Mul(b).Sub(algebra.Int(4).Mul(a).Mul(c))
+				return roots, disc.Sign() < 0
+			}
+			roots = appendNew(roots, x)
+			if y, ok := rationalRoot(p, v, true); ok && p.Degree(v) == 2 {
+				roots = appendNew(roots, y)
+			}
+			return roots, true
+		}
+		_, prim := p.Primitive()
+		x, ok := divisorRoot(prim, v)
+		if !ok {
+			return roots, false
+		}
+		roots = appendNew(roots, x)
+		q, ok := p.DivExact(algebra.Variable(v).Sub(algebra.Const(x)))
+		if !ok {
+			return roots, false
+		}
+		p = q
+	}
+	return roots, true
+}
+
+func appendNew(list []algebra.Rat, x algebra.Rat) []algebra.Rat {
+	if slices.ContainsFunc(list, x.Equal) {
+		return list
+	}
+	return append(list, x)
+}
+
+// divisorRoot tries the quotients of small divisors of the end coefficients.
+func divisorRoot(p algebra.Poly, v algebra.Var) (algebra.Rat, bool) {
+	co := p.Coeffs(v)
+	c0, _ := co[0].IsConst()
+	cn, _ := co[len(co)-1].IsConst()
+	n0, ok0 := c0.Abs().Int64()
+	nn, okn := cn.Abs().Int64()
+	if !ok0 || !okn {
+		return algebra.Rat{}, false
+	}
+	const limit = 2000
+	for a := int64(1); a <= min(n0, limit); a++ {
+		if n0%a != 0 {
+			continue
+		}
+		for b := int64(1); b <= min(nn, limit); b++ {
+			if nn%b != 0 {
+				continue
+			}
+			for _, x := range []algebra.Rat{algebra.Frac64(a, b), algebra.Frac64(-a, b)} {
+				if y, ok := p.Eval(func(algebra.Var) algebra.Rat { return x }); ok && y.IsZero() {
+					return x, true
+				}
+			}
+		}
+	}
+	return algebra.Rat{}, false
+}

@@ -1,0 +1,235 @@
+package identity
+
+import (
+	"math/big"
+
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/enclosure"
+	"creaseproof/entropy/jet"
+)
+
+// refuted fills the record with a point at which the two sides certainly
+// differ. The caller has settled that exactly.
+func (d *decider) refuted(method string, at jet.Point, left, right algebra.Fraction) {
+	d.rec.Verdict, d.rec.Method = Refuted, method
+	w := &Witness{Jet: map[string]string{}, Left: d.ring.Show(left, at), Right: d.ring.Show(right, at)}
+	traces := d.claim.Jump
+	for v, x := range at {
+		s := d.ring.Symbol(v)
+		switch {
+		case s.Kind == jet.Cosine:
+			if w.Angle == nil {
+				w.Angle = map[string]CosSin{}
+			}
+			w.Angle[d.ring.Format(s.Arg)] = CosSin{x.String(), at[s.Partner].String()}
+		case s.Kind == jet.Derivative && s.Side != jet.NoSide, s.Kind >= jet.Cosine:
+		default:
+			w.Jet[s.Name] = x.String()
+		}
+	}
+	if traces {
+		d.showTraces(w, at)
+	}
+	d.rec.Witness = w
+}
+
+// showTraces writes the traces of the gradient and the unit normal.
+func (d *decider) showTraces(w *Witness, at jet.Point) {
+	w.Plus, w.Minus, w.Normal = map[string]string{}, map[string]string{}, map[string]string{}
+	for i, c := range d.ring.Coordinates {
+		j := jet.Index{}.Plus(i)
+		for _, side := range []jet.Side{jet.PlusSide, jet.MinusSide} {
+			f, err := d.ring.Jet(0, j, side)
+			if err != nil {
+				continue
+			}
+			x := d.ring.Show(f, at)
+			if side == jet.PlusSide {
+				w.Plus[d.ring.Unknowns[0]+"_"+c] = x
+			} else {
+				w.Minus[d.ring.Unknowns[0]+"_"+c] = x
+			}
+		}
+		if nu, err := d.ex.Normal(i); err == nil {
+			w.Normal[c] = d.ring.Show(nu, at)
+		}
+	}
+}
+
+// isolatedWitness refutes at a real algebraic point: all jets but one are
+// rational, and the last is a simple root of the one generator that holds it,
+// isolated by a change of sign.
+func (d *decider) isolatedWitness(g, left, right algebra.Fraction) bool {
+	gens := d.ideal
+	if len(d.wells) > 0 {
+		gens = d.wells
+	}
+	pts := d.points(g, left, right)
+	for range witnessTries {
+		if d.ctx.Err() != nil {
+			return false
+		}
+		at, roots, ok := pts.drawIsolated(gens)
+		if !ok || !pts.admissibleIsolated(at, roots) {
+			continue
+		}
+		x := d.ring.EncloseAt(g, at, roots, 256)
+		if s, ok := x.Sign(); ok && s != 0 {
+			d.refuted("exact division, and a real zero isolated by a change of sign", at, left, right)
+			for v, r := range roots {
+				lo, hi := r.Text(20)
+				if s := d.ring.Symbol(v); s.Side == jet.NoSide {
+					d.rec.Witness.Jet[s.Name] = "[" + lo + ", " + hi + "]"
+				}
+			}
+			show := func(f algebra.Fraction) string {
+				lo, hi := d.ring.EncloseAt(f, at, roots, 256).Text(20)
+				return "[" + lo + ", " + hi + "]"
+			}
+			d.rec.Witness.Left, d.rec.Witness.Right = show(left), show(right)
+			return true
+		}
+	}
+	return false
+}
+
+// drawIsolated draws rational values for all jets but one of each generator,
+// and encloses a root of the generator in that one.
+func (p *points) drawIsolated(gens []algebra.Poly) (jet.Point, map[algebra.Var]enclosure.Interval, bool) {
+	at := jet.Point{}
+	for _, v := range p.free {
+		at[v] = p.value(v, p.rng.IntN(2) == 0)
+	}
+	for _, g := range gens { // traces are drawn themselves
+		for _, v := range g.Vars() {
+			if _, ok := at[v]; !ok {
+				at[v] = p.value(v, false)
+			}
+		}
+	}
+	for _, c := range p.angles {
+		t := triples[p.rng.IntN(len(triples))]
+		at[c] = algebra.Frac64(int64(t[0]), int64(t[2]))
+		at[p.d.ring.Symbol(c).Partner] = algebra.Frac64(int64(t[1]), int64(t[2]))
+	}
+	for _, s := range p.signs {
+		at[s] = algebra.Int(1 - 2*p.rng.Int64N(2))
+	}
+	roots := map[algebra.Var]enclosure.Interval{}
+	for _, g := range gens {
+		vs := g.Vars()
+		v := vs[p.rng.IntN(len(vs))]
+		if p.d.ring.Symbol(v).Kind != jet.Derivative {
+			return nil, nil, false
+		}
+		for _, w := range vs {
+			if _, taken := roots[w]; taken {
+				return nil, nil, false
+			}
+		}
+		values := map[algebra.Var]algebra.Rat{}
+		for _, w := range vs {
+			if w != v {
+				values[w] = at[w]
+			}
+		}
+		lo, hi, ok := signChange(g.EvalPartial(values), v)
+		if !ok {
+			return nil, nil, false
+		}
+		roots[v] = enclosure.Context{Prec: 320}.FromRats(lo.Big(), hi.Big())
+		delete(at, v)
+	}
+	p.meansFromTraces(at, roots)
+	return at, roots, true
+}
+
+// meansFromTraces makes the means and differences follow from the traces.
+func (p *points) meansFromTraces(at jet.Point, roots map[algebra.Var]enclosure.Interval) {
+	if !p.d.claim.Jump {
+		return
+	}
+	c := enclosure.Context{Prec: 320}
+	half := c.FromRat(big.NewRat(1, 2))
+	for _, v := range p.free {
+		s := p.d.ring.Symbol(v)
+		if s.Kind != jet.Derivative || s.Side < jet.Mean {
+			continue
+		}
+		value := func(side jet.Side) enclosure.Interval {
+			w, err := p.d.ring.JetVar(s.Place, s.Index, side)
+			if err != nil {
+				return enclosure.Entire()
+			}
+			if r, ok := roots[w]; ok {
+				return r
+			}
+			return c.FromRat(at[w].Big())
+		}
+		plus, minus := value(jet.PlusSide), value(jet.MinusSide)
+		delete(at, v)
+		if s.Side == jet.Mean {
+			roots[v] = c.Mul(half, c.Add(plus, minus))
+		} else {
+			roots[v] = c.Sub(plus, minus)
+		}
+	}
+}
+
+func (p *points) admissibleIsolated(at jet.Point, roots map[algebra.Var]enclosure.Interval) bool {
+	for _, c := range p.d.assumed {
+		s, ok := p.d.ring.EncloseAt(c.value, at, roots, 256).Sign()
+		want := map[string]int{">": 1, ">=": 1, "<": -1, "<=": -1}[c.relation]
+		if !ok || want == 0 || s != want {
+			return false
+		}
+	}
+	for _, c := range p.d.ring.Conditions() {
+		s, ok := p.d.ring.EncloseAt(c.Value, at, roots, 256).Sign()
+		if !ok || s == 0 || s < 0 && c.Need != jet.NeedNonZero {
+			return false
+		}
+	}
+	return true
+}
+
+// signChange isolates a real zero of a polynomial in v alone between two
+// rationals at which it has opposite signs, about 2^-240 apart in proportion.
+func signChange(h algebra.Poly, v algebra.Var) (lo, hi algebra.Rat, ok bool) {
+	if vs := h.Vars(); len(vs) != 1 || vs[0] != v {
+		return lo, hi, false
+	}
+	value := func(x algebra.Rat) int {
+		y, _ := h.Eval(func(algebra.Var) algebra.Rat { return x })
+		return y.Sign()
+	}
+	grid := []algebra.Rat{algebra.Int(0), algebra.Frac64(1, 3), algebra.Int(1), algebra.Int(3), algebra.Int(10), algebra.Int(100)}
+	for i := 0; i+1 < len(grid) && !ok; i++ {
+		for _, sign := range []int64{1, -1} {
+			lo, hi = grid[i].Mul(algebra.Int(sign)), grid[i+1].Mul(algebra.Int(sign))
+			if value(lo)*value(hi) < 0 {
+				ok = true
+				break
+			}
+		}
+	}
+	if !ok {
+		return lo, hi, false
+	}
+	s := value(lo)
+	for range 250 {
+		mid := lo.Add(hi).Mul(algebra.Frac64(1, 2))
+		switch value(mid) {
+		case 0:
+			return mid, mid, true
+		case s:
+			lo = mid
+		default:
+			hi = mid
+		}
+	}
+	if lo.Cmp(hi) > 0 {
+		lo, hi = hi, lo
+	}
+	return lo, hi, true
+}
