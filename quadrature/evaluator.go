@@ -218,11 +218,12 @@ func (e *evaluator) checkTraces() (jump, size float64, err error) {
 
 // rowDone is called when the row of nodes at s, or the whole curve, is
 // complete. A curve, or three rows, with three nodes or more without area are a
-// degenerate region; fewer may be a pole or a tip.
+// degenerate region; fewer may be a pole or a tip. The area of a polygon is
+// checked as a whole.
 func (e *evaluator) rowDone(s float64) error {
 	zeros := e.zeros
 	e.zeros = 0
-	if zeros < 3 || slices.Contains(e.rows, s) {
+	if zeros < 3 || e.p.normal != nil || slices.Contains(e.rows, s) {
 		return nil
 	}
 	e.rows = append(e.rows, s)

@@ -110,6 +110,9 @@ func Integrate(ctx context.Context, s Surface, tr Traces, d Density, o Options) 
 		if shapes[i], err = survey(p); err != nil {
 			return Result{}, fmt.Errorf("quadrature: %w", err)
 		}
+		if shapes[i].degenerate != nil {
+			return Result{}, fmt.Errorf("quadrature: %w", shapes[i].degenerate)
+		}
 		for k := range p.dim {
 			if i == 0 {
 				low[k], high[k] = shapes[i].low[k], shapes[i].high[k]

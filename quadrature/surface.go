@@ -32,6 +32,8 @@ type piece struct {
 	flip bool
 	// normal is the unit normal of a flat piece, or nil: from the tangents.
 	normal []float64
+	// wedge marks a slice of a triangle, whose area nobody needs.
+	wedge bool
 }
 
 // A Patch is a parametrised curve in the plane (Dim 2, one parameter) or

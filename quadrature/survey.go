@@ -12,6 +12,8 @@ type shape struct {
 	periodic  [2]bool
 	outer     int // direction of the outer integral
 	low, high [3]float64
+	// degenerate is set if the area element is zero wherever it was looked at.
+	degenerate *PlaceError
 }
 
 // shaky is the number of units in the last place that the rounding of
@@ -28,8 +30,8 @@ func (s *shape) shaky() float64 {
 	return 1 + far/extent
 }
 
-// survey looks at a piece at a few places: its extent, whether it is finite and
-// not degenerate, and which parameters are periodic.
+// survey looks at a piece at a few places: its extent, whether it is finite,
+// whether it is degenerate, and which parameters are periodic.
 func survey(p *piece) (*shape, error) {
 	sh := &shape{piece: p}
 	e := &evaluator{p: p, s: make([]float64, p.n)}
@@ -60,8 +62,8 @@ func survey(p *piece) (*shape, error) {
 			bad = e.fail(Degenerate, "surface", 0, 0)
 		}
 	}
-	if zero == m {
-		return nil, bad
+	if zero == m && p.normal == nil {
+		sh.degenerate = bad
 	}
 	for j := range p.n {
 		per, err := e.periodic(j, norm(sh.low[:p.dim])+norm(sh.high[:p.dim]))

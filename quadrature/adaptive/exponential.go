@@ -10,6 +10,7 @@ const (
 	finestLevel = 6   // step 2^-finestLevel
 	farthest    = 6.0 // largest |t|
 	tiny        = 1e-12
+	slowest     = 0.1
 )
 
 // side is one half of a double exponential rule.
@@ -22,12 +23,13 @@ type side struct {
 
 // applyExponential integrates over [p.lo, p.hi] by nested levels of the double
 // exponential rule, stopping when two levels agree to the tolerance. The
-// estimate is the distance of the last two levels, the tails cut off, and the
+// estimate is the distance of the last two levels, or a part of that of the two
+// before where it does not fall fast, the tails cut off, and the
 // rounding of the distances from the ends.
 func (t *Task) applyExponential(p *panel) error {
 	half := (p.hi - p.lo) / 2
 	var total [Width]sum
-	var noise, size, value, old [Width]float64
+	var noise, size, value, old, before [Width]float64
 	sides := [2]side{{limit: farthest}, {limit: farthest}}
 	node := func(k int, tt float64) (done bool, err error) {
 		sd := &sides[k]
@@ -93,10 +95,13 @@ func (t *Task) applyExponential(p *panel) error {
 		ok := true
 		for c := range Width {
 			value[c] = total[c].value() * step * half
-			p.est[c] = math.Abs(value[c] - old[c])
+			d := math.Abs(value[c] - old[c])
 			if level == 1 {
-				p.est[c] = size[c] * step * half
+				d = size[c] * step * half
 			}
+			// The distances should fall quadratically.
+			p.est[c] = math.Max(d, slowest*before[c])
+			before[c] = d
 			p.v.Value[c] = value[c]
 			p.v.Size[c] = size[c] * step * half
 			p.v.Noise[c] = noise[c] * step * half
@@ -111,8 +116,10 @@ func (t *Task) applyExponential(p *panel) error {
 		old = value
 		step /= 2
 	}
+	p.gap = 0
 	for k := range sides {
 		for c := range Width {
+			p.ends[k][c] = sides[k].last.Value[c]
 			p.v.Noise[c] += sides[k].tail(c)
 		}
 	}

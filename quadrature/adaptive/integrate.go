@@ -9,7 +9,7 @@ import (
 // Limits of the subdivision.
 const (
 	deepest    = 60 // halvings
-	longStall  = 4  // halvings in a row that do not lessen the estimate
+	longStall  = 6  // halvings in a row that do not lessen the estimate
 	keptPanels = 8  // a longer subdivision is not handed on by a Mesh
 	gain       = 0.05
 )
@@ -53,6 +53,7 @@ type bisection struct {
 	noise  [Width]float64
 	value  [Width]float64
 	scale  [Width]float64
+	before [Width]float64 // estimate at half the number of steps
 }
 
 func (t *Task) bisect() (Result, error) {
@@ -74,10 +75,17 @@ func (t *Task) bisect() (Result, error) {
 	for _, p := range ps {
 		b.put(p)
 	}
+	next := 16
 	for n := 1; ; n++ {
 		if b.met() {
 			if b.total(); b.met() {
-				break
+				again, err := b.audit()
+				if err != nil {
+					return Result{}, err
+				}
+				if !again {
+					break
+				}
 			}
 		}
 		if len(b.active) == 0 || t.Work.spent() {
@@ -96,8 +104,39 @@ func (t *Task) bisect() (Result, error) {
 		if n%64 == 0 {
 			b.total()
 		}
+		if n == next {
+			if b.noisy() {
+				break
+			}
+			next *= 2
+		}
 	}
 	return b.result(), nil
+}
+
+// noisy reports whether the estimate is small, spread over many panels, and has
+// hardly changed since it was last asked for, at half the number of steps: then
+// it is the noise in the integrand that stays, and finer panels do not help.
+func (b *bisection) noisy() bool {
+	b.total()
+	before := b.before
+	b.before = b.est
+	noisy := false
+	for c := range Width {
+		if b.est[c] <= b.tolerance(c) {
+			continue
+		}
+		if b.est[c] < 0.7*before[c] || before[c] == 0 || b.est[c] > 1e-7*b.scale[c] {
+			return false
+		}
+		for _, p := range b.active {
+			if p.est[c] > b.est[c]/4 {
+				return false
+			}
+		}
+		noisy = true
+	}
+	return noisy
 }
 
 // put files a panel, as final if its estimate is within its noise.
@@ -220,7 +259,7 @@ func (b *bisection) refine(p *panel) ([]*panel, error) {
 			return []*panel{&q}, nil
 		}
 	}
-	if p.kind == plain && decay > resolved {
+	if p.kind == plain && decay > resolved && !p.doubted {
 		if q, err := b.atEnd(p, excess); q != nil || err != nil {
 			return []*panel{q}, err
 		}
@@ -305,7 +344,7 @@ func (b *bisection) halve(p *panel, excess float64) ([]*panel, error) {
 		after += e
 	}
 	stall := 0
-	if after > 0.97*excess && p.depth >= 3 && p.rough() {
+	if after > 0.7*excess && p.rough() {
 		stall = p.stall + 1
 	}
 	l.stall, r.stall = stall, stall

@@ -32,6 +32,13 @@ type panel struct {
 	est   [Width]float64
 	decay [Width]float64
 	key   float64 // priority
+
+	// The polynomial through the nodes, extrapolated to the two ends, and
+	// almost to them, as values of the integrand.
+	ends, near [2][Width]float64
+	gap        float64 // length between an end and the outermost node
+	probed     [2]bool
+	doubted    bool // by the audit
 }
 
 // width is the length of the panel in s.
@@ -93,6 +100,8 @@ func (t *Task) apply(p *panel) error {
 		}
 	}
 	p.v = Sample{}
+	p.gap = k.Gap * half
+	p.probed, p.doubted = [2]bool{}, false
 	for c := range Width {
 		var kv, d sum
 		var noise, size, peak float64
@@ -113,24 +122,42 @@ func (t *Task) apply(p *panel) error {
 			}
 			pair[j/2] = math.Max(pair[j/2], math.Abs(a))
 		}
-		p.est[c], p.decay[c] = judge(math.Abs(d.value())*half, pair, peak, half)
+		p.extrapolate(k, &g, c)
+		p.est[c], p.decay[c] = judge(k, math.Abs(d.value())*half, pair, peak, half)
 	}
 	return nil
 }
 
-// judge turns the distance of a pair of rules and the last three pairs of
-// Legendre coefficients into an estimate of the error of the better rule.
-func judge(distance float64, pair [rule.Top / 2]float64, peak, half float64) (est, decay float64) {
+// extrapolate fills the extrapolations of component c.
+func (p *panel) extrapolate(k *rule.Kronrod, g *[31]Sample, c int) {
+	n := len(k.X)
+	var lo, hi, nearLo, nearHi float64
+	for i := range n {
+		lo += k.End[n-1-i] * g[i].Value[c]
+		hi += k.End[i] * g[i].Value[c]
+		nearLo += k.Near[n-1-i] * g[i].Value[c]
+		nearHi += k.Near[i] * g[i].Value[c]
+	}
+	p.ends[0][c], p.ends[1][c] = lo, hi
+	p.near[0][c], p.near[1][c] = nearLo, nearHi
+}
+
+// judge turns the distance of a pair of rules and the last pairs of Legendre
+// coefficients into an estimate of the error of the better rule.
+func judge(k *rule.Kronrod, distance float64, pair [rule.Top / 2]float64, peak, half float64) (est, decay float64) {
 	floor := 256 * epsilon * peak
 	if pair[0] <= floor {
 		return distance, 0
 	}
-	decay = ratio(pair[0], pair[1])
-	if pair[1] > floor {
-		decay = math.Max(decay, ratio(pair[1], pair[2]))
+	for j := range len(pair) - 1 {
+		if j == 0 || pair[j] > floor {
+			decay = math.Max(decay, ratio(pair[j], pair[j+1]))
+		}
 	}
 	if decay <= resolved {
-		return distance * math.Min(1, 4*decay*decay), decay
+		// What the coefficients come to at the degree of the rule.
+		rest := pair[0] * half * math.Pow(decay, float64((k.Degree-k.High)/2))
+		return math.Max(rest, distance*math.Min(1, 4*decay*decay)), decay
 	}
 	return math.Max(10*distance, pair[0]*half), decay
 }

@@ -1,6 +1,9 @@
 package adaptive
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // Limits of the trapezoidal rule.
 const (
@@ -38,7 +41,7 @@ func (t *Task) ring() (Result, bool, error) {
 		full := mean(values, 1)
 		var r Result
 		var est [Width]float64
-		met, bad := true, false
+		met, bad, hidden := true, false, false
 		for c := range Width {
 			r.Value[c], r.Noise[c], r.Size[c] = full.Value[c]*length, full.Noise[c]*length, full.Size[c]*length
 			est[c] = math.Abs(full.Value[c]-half.Value[c]) * length
@@ -53,8 +56,8 @@ func (t *Task) ring() (Result, bool, error) {
 				return r, false, err
 			}
 			for c := range Width {
-				if miss[c]*length > 10*t.tolerance(&r.Sample, c) {
-					met = false
+				if miss[c]*length > t.tolerance(&r.Sample, c) {
+					met, hidden = false, true
 				} else {
 					est[c] = math.Max(est[c], miss[c]*length)
 				}
@@ -63,13 +66,18 @@ func (t *Task) ring() (Result, bool, error) {
 		if bad {
 			slow++
 		}
-		stop := t.Work.spent()
-		if met || stop {
+		if !met && !hidden && n >= slowPeriod {
+			met = t.noisy(values, &r, est)
+		}
+		if met || t.Work.spent() {
 			for c := range Width {
 				r.Error[c] = est[c] + r.Noise[c]
 			}
 			r.Converged = met
 			t.Mesh.period = n
+			if t.settled(values, length, &r.Sample) {
+				t.Mesh.period = n / 2
+			}
 			return r, true, nil
 		}
 		if n >= longestPeriod || n >= slowPeriod && slow >= 2 {
@@ -85,6 +93,71 @@ func (t *Task) ring() (Result, bool, error) {
 		}
 		values, n = next, 2*n
 	}
+}
+
+// settled reports whether half the nodes would have done.
+func (t *Task) settled(v []Sample, length float64, s *Sample) bool {
+	half, quarter := mean(v, 2), mean(v, 4)
+	for c := range Width {
+		if math.Abs(half.Value[c]-quarter.Value[c])*length > t.tolerance(s, c)/2 {
+			return false
+		}
+	}
+	return true
+}
+
+// noisy reports whether what keeps the rule from settling is noise in the
+// values, and adds it to the noise of r.
+func (t *Task) noisy(v []Sample, r *Result, est [Width]float64) bool {
+	for c := range Width {
+		if est[c] <= t.tolerance(&r.Sample, c) {
+			continue
+		}
+		level, ok := whiteNoise(v, c)
+		level *= t.Hi - t.Lo
+		if !ok || est[c] > 2*level || level > 1e-7*r.Size[c] {
+			return false
+		}
+		r.Noise[c] += level
+	}
+	return true
+}
+
+// whiteNoise estimates the noise in the values of a function on a ring from
+// the medians of its differences of orders 4, 6 and 8, which agree after
+// scaling if noise dominates them. After Moré and Wild, Estimating
+// computational noise, SIAM J. Sci. Comput. 33 (2011).
+func whiteNoise(v []Sample, c int) (level float64, ok bool) {
+	n := len(v)
+	d := make([]float64, n)
+	for i := range v {
+		d[i] = v[i].Value[c]
+	}
+	var low, high float64
+	binomial := map[int]float64{4: 70, 6: 924, 8: 12870}
+	for order := 1; order <= 8; order++ {
+		first := d[0]
+		for i := range n - 1 {
+			d[i] = d[i+1] - d[i]
+		}
+		d[n-1] = first - d[n-1]
+		b, use := binomial[order]
+		if !use {
+			continue
+		}
+		a := make([]float64, n)
+		for i := range d {
+			a[i] = math.Abs(d[i])
+		}
+		slices.Sort(a)
+		// 0.67 is the median of a Gaussian of unit variance.
+		m := a[n/2] / (0.67 * math.Sqrt(b))
+		if order == 4 {
+			low, high = m, m
+		}
+		low, high = math.Min(low, m), math.Max(high, m)
+	}
+	return high, low > 0 && high <= 2*low
 }
 
 func (t *Task) tolerance(s *Sample, c int) float64 {

@@ -21,7 +21,7 @@
 // Bernstein ellipse of parameter r fall like r^-j; those of a function with a
 // kink or a jump inside fall only algebraically. A Kronrod rule of degree d
 // computes c_j without aliasing from the part of f of degree at most d - j, so
-// the six coefficients below d/2 are at hand for the price of six dot
+// the eight coefficients below d/2 are at hand for the price of eight dot
 // products. The ratio of neighbouring pairs tells a resolved function from an
 // unresolved one. This is the idea of null rules: Berntsen and Espelid,
 // Error estimation in automatic quadrature routines, ACM TOMS 17 (1991).

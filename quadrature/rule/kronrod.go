@@ -3,7 +3,7 @@ package rule
 import "math"
 
 // Top is the number of Legendre coefficients a Kronrod rule offers.
-const Top = 6
+const Top = 8
 
 // A Kronrod is a nested Gauss–Kronrod pair on [-1, 1] with 2n+1 nodes in
 // increasing order. The rules are shared: do not change them.
@@ -19,6 +19,11 @@ type Kronrod struct {
 	// High is the highest degree of those coefficients, less than half
 	// of Degree.
 	High int
+	// Gap is the distance from 1 to the outermost node.
+	Gap float64
+	// End are weights extrapolating the interpolating polynomial to 1, and
+	// Near to 1 - Gap/NearFraction; reversed they do so to the other end.
+	End, Near []float64
 	// Order lists the indices of the nodes from the centre outwards.
 	Order []int
 }
@@ -55,6 +60,9 @@ func newKronrod(half [][3]float64) *Kronrod {
 		}
 	}
 	k.X[n] = 0
+	k.Gap = 1 - k.X[m-1]
+	k.End = lagrange(k.X, 1)
+	k.Near = lagrange(k.X, 1-k.Gap/NearFraction)
 	k.High = k.Degree / 2
 	for j := range k.Coefficient {
 		d := k.High - j
@@ -65,6 +73,24 @@ func newKronrod(half [][3]float64) *Kronrod {
 		k.Coefficient[j] = c
 	}
 	return k
+}
+
+// NearFraction is the part of the gap at which a function can be compared with
+// its extrapolation.
+const NearFraction = 4096
+
+// lagrange gives the weights of the interpolating polynomial at t.
+func lagrange(x []float64, t float64) []float64 {
+	w := make([]float64, len(x))
+	for i := range x {
+		w[i] = 1
+		for j := range x {
+			if j != i {
+				w[i] *= (t - x[j]) / (x[i] - x[j])
+			}
+		}
+	}
+	return w
 }
 
 // legendre is the Legendre polynomial of degree n at x.

@@ -1,0 +1,115 @@
+package adaptive
+
+import (
+	"cmp"
+	"math"
+	"slices"
+
+	"creaseproof/quadrature/rule"
+)
+
+// audit looks for what may hide between the outermost node of a panel and its
+// end, where no rule sees it: a kink there leaves the panel as smooth as a
+// polynomial. Neighbouring panels must extrapolate to the same value at their
+// common end, and the extrapolation must meet the integrand next to the ends of
+// the interval. A panel that fails is given the misfit over the gap as its
+// estimate; audit reports whether there is work to do again.
+func (b *bisection) audit() (again bool, err error) {
+	all := append(slices.Clone(b.final), b.active...)
+	slices.SortFunc(all, func(p, q *panel) int {
+		x, _ := p.at((p.lo + p.hi) / 2)
+		y, _ := q.at((q.lo + q.hi) / 2)
+		return cmp.Compare(x, y)
+	})
+	miss := make([][Width]float64, len(all))
+	for i, p := range all {
+		if i > 0 {
+			for c := range Width {
+				l, okl := all[i-1].reaches(1, c)
+				r, okr := p.reaches(0, c)
+				if okl && okr {
+					m := math.Abs(l - r)
+					miss[i-1][c] += m * all[i-1].gap
+					miss[i][c] += m * p.gap
+				}
+			}
+		}
+		for side, at := range [2]float64{b.t.Lo, b.t.Hi} {
+			m, err := b.t.probeEnd(p, side, at)
+			if err != nil {
+				return false, err
+			}
+			for c := range Width {
+				miss[i][c] += m[c] * p.gap
+			}
+		}
+	}
+	for i, p := range all {
+		for c := range Width {
+			if miss[i][c] <= p.est[c] {
+				continue
+			}
+			p.est[c] = miss[i][c]
+			if miss[i][c] > b.tolerance(c)/8 {
+				p.decay[c] = 1
+				p.doubted = true
+			}
+		}
+	}
+	b.active, b.final = b.active[:0], b.final[:0]
+	for _, p := range all {
+		b.put(p)
+	}
+	b.total()
+	return !b.met(), nil
+}
+
+// reaches is the value of component c of the integrand extrapolated to the left
+// (0) or right (1) end of a panel, where there is one.
+func (p *panel) reaches(side, c int) (value float64, ok bool) {
+	switch p.kind {
+	case plain:
+		return p.ends[side][c], true
+	case squareLeft, squareRight:
+		// In v the ends are the other way round for squareRight, and at v = 0
+		// the substitution is singular.
+		v, k := p.lo, side
+		if p.kind == squareRight {
+			k = 1 - side
+		}
+		if k == 1 {
+			v = p.hi
+		}
+		if v == 0 {
+			return 0, false
+		}
+		_, ds := p.at(v)
+		return p.ends[k][c] / ds, true
+	case exponential:
+		return p.ends[side][c], true
+	}
+	return 0, false
+}
+
+// probeEnd compares the integrand with the extrapolation of a panel next to an
+// end of the interval.
+func (t *Task) probeEnd(p *panel, side int, end float64) (miss [Width]float64, err error) {
+	if p.kind != plain || p.probed[side] || side == 0 && p.lo != end || side == 1 && p.hi != end {
+		return miss, nil
+	}
+	p.probed[side] = true
+	d := p.gap / rule.NearFraction
+	if side == 1 {
+		d = -d
+	}
+	var q Sample
+	if err := t.F(end+d, &q); err != nil {
+		return miss, err
+	}
+	for c := range Width {
+		if m := math.Abs(q.Value[c] - p.near[side][c]); m > q.Noise[c] {
+			miss[c] = m
+		}
+	}
+	return miss, nil
+}

@@ -1,0 +1,75 @@
+package quadrature
+
+import (
+	"context"
+	"fmt"
+	"math"
+	"testing"
+)
+
+// TestHard has densities that are easily got wrong without notice.
+func TestHard(t *testing.T) {
+	cylinder := Patch{Dim: 3, Params: []Range{{0, 2 * math.Pi}, {0, 1}}, Map: func(s, x []float64, jac [][]float64) {
+		sin, cos := math.Sincos(s[0])
+		x[0], x[1], x[2] = cos, sin, s[1]
+		jac[0][0], jac[0][1], jac[0][2] = -sin, cos, 0
+		jac[1][0], jac[1][1], jac[1][2] = 0, 0, 1
+	}}
+	square := Graph{Over: Rectangle{Range{0, 1}, Range{0, 1}}, F: func(_, g []float64) float64 { clear(g); return 0 }}
+	angle := func(x []float64) float64 { return math.Atan2(x[1], x[0]) }
+	type hard struct {
+		name    string
+		surface Surface
+		density func(x []float64) float64
+		want    float64
+	}
+	cases := []hard{
+		{"|cos| around a cylinder", cylinder, func(x []float64) float64 { return math.Abs(x[0]) }, 4},
+		{"sawtooth around a cylinder", cylinder, func(x []float64) float64 { return math.Pi + math.Atan2(x[1], x[0]) }, 2 * math.Pi * math.Pi},
+		{"height times |sin| around a cylinder", cylinder, func(x []float64) float64 { return x[2] * math.Abs(x[1]) }, 2},
+		{"helix", cylinder, func(x []float64) float64 { return math.Exp(math.Cos(3*angle(x) + 5*x[2])) }, 2 * math.Pi * 1.2660658777520083356},
+		{"oblique kink", square, func(x []float64) float64 { return math.Abs(x[0] - x[1]) }, 1.0 / 3},
+		{"oblique root", square, func(x []float64) float64 { return math.Sqrt(x[0] + x[1]) }, 4.0 / 15 * (4*math.Sqrt2 - 2)},
+		{"logarithm at a corner", square, func(x []float64) float64 { return -math.Log(x[0] * x[1]) }, 2},
+		{"inverse root on a side", square, func(x []float64) float64 { return 1 / math.Sqrt(x[1]) }, 2},
+		{"disc of a jump", square, func(x []float64) float64 {
+			if x[0] < 0.3 {
+				return 2
+			}
+			return 1
+		}, 1.3},
+		{"sharp ridge", square, func(x []float64) float64 { return 1e-3 / (1e-6 + math.Pow(x[0]-0.37, 2)) }, math.Atan(370) + math.Atan(630)},
+	}
+	for _, n := range []float64{1, 3, 4, 5, 8, 12, 16, 24, 32, 64} {
+		cases = append(cases,
+			hard{fmt.Sprintf("harmonic %v around a cylinder", n), cylinder, func(x []float64) float64 { return 2 + math.Cos(n*angle(x)+0.3) }, 4 * math.Pi},
+			hard{fmt.Sprintf("small harmonic %v around a cylinder", n), cylinder, func(x []float64) float64 { return 2 + 1e-6*math.Cos(n*angle(x)) }, 4 * math.Pi},
+			hard{fmt.Sprintf("harmonic %v growing with height", n), cylinder, func(x []float64) float64 { return 2 + x[2]*math.Cos(n*angle(x)) }, 4 * math.Pi})
+	}
+	for _, c := range cases {
+		r, err := Integrate(context.Background(), c.surface, Traces{}, func(x, _, _, _ []float64) float64 { return c.density(x) }, Options{})
+		if err != nil {
+			t.Errorf("%s: %v", c.name, err)
+			continue
+		}
+		t.Logf("%s: true %.1e reported %.1e, %d evaluations", c.name, math.Abs(r.Energy/c.want-1), r.Error/c.want, r.Evaluations)
+		honest(t, c.name, r.Energy, r.Error, c.want)
+	}
+}
+
+func TestDeterministic(t *testing.T) {
+	c := paraboloid(0.7, 0.5, 3).galilean(1, 2)
+	var first Result
+	for i := range 3 {
+		r, err := Integrate(context.Background(), c.surface, Traces{Plus: c.plus, Minus: c.minus}, layeredDensity, Options{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if i == 0 {
+			first = r
+		}
+		if r != first {
+			t.Errorf("%v, then %v", first, r)
+		}
+	}
+}
