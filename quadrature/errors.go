@@ -77,7 +77,7 @@ type PlaceError struct {
 
 func (e *PlaceError) Error() string {
 	var b strings.Builder
-	place := fmt.Sprintf(" at %s", coordinates(e.Point))
+	place := fmt.Sprintf(" at %s", tuple(e.Point))
 	if len(e.Params) > 0 {
 		place += fmt.Sprintf(" (parameters %s)", tuple(e.Params))
 	}
@@ -99,16 +99,6 @@ func (e *PlaceError) Error() string {
 		b.WriteString(e.Reason.String() + place)
 	}
 	return b.String()
-}
-
-func coordinates(x []float64) string {
-	switch len(x) {
-	case 2:
-		return fmt.Sprintf("(x1, x2) = %s", tuple(x))
-	case 3:
-		return fmt.Sprintf("(x, y, z) = %s", tuple(x))
-	}
-	return tuple(x)
 }
 
 func tuple(x []float64) string {

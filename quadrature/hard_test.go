@@ -57,6 +57,45 @@ func TestHard(t *testing.T) {
 	}
 }
 
+// TestKinksOnADisc integrates |n·x - c| over the unit disc, where the kink is a
+// chord and crosses the rings.
+func TestKinksOnADisc(t *testing.T) {
+	disc := Graph{Over: Disc{Radius: 1}, F: func(_, g []float64) float64 { clear(g); return 0 }}
+	for i := range 12 {
+		s, k := math.Sincos(float64(i))
+		c := math.Mod(float64(i)*golden, 1)
+		// 2 ∫ |t - c| sqrt(1 - t²) dt over [-1, 1]
+		want := 2 * (c*math.Asin(c) + math.Sqrt(1-c*c)*(2+c*c)/3)
+		r, err := Integrate(context.Background(), disc, Traces{}, func(x, _, _, _ []float64) float64 { return math.Abs(k*x[0] + s*x[1] - c) }, Options{Rel: 1e-8})
+		if err != nil {
+			t.Errorf("c = %v: %v", c, err)
+		}
+		t.Logf("c = %v: true %.1e reported %.1e, %d evaluations", c, math.Abs(r.Energy/want-1), r.Error/want, r.Evaluations)
+		if miss := math.Abs(r.Energy - want); miss > r.Error || miss > 1e-8*want {
+			t.Errorf("c = %v: %v ± %v, want %v", c, r.Energy, r.Error, want)
+		}
+	}
+}
+
+// TestScales moves and scales a wall: the checks and the errors are relative.
+func TestScales(t *testing.T) {
+	for _, size := range []float64{1e-9, 1e-3, 1, 1e6, 1e12} {
+		for _, shift := range []float64{0, 0.3, 100} {
+			for _, p := range []float64{1e-5, 1, 1e4} {
+				plus, minus := linear(0, p, 0, p*p/2), linear(2*p*shift*size, -p, 0, p*p/2)
+				x, y := shift*size, shift*size
+				v := [][]float64{{x, y, 0}, {x, y + size, 0}, {x, y + size, size}, {x, y, size}}
+				r, err := Integrate(context.Background(), Polygon{v}, Traces{Plus: plus, Minus: minus, HasValue: true}, layeredDensity, Options{Well: layeredWell})
+				if err != nil {
+					t.Errorf("size %g, shift %g, gradient %g: %v", size, shift, p, err)
+					continue
+				}
+				honest(t, "wall", r.Energy, r.Error, 8*p*p*p/12*size*size)
+			}
+		}
+	}
+}
+
 func TestDeterministic(t *testing.T) {
 	c := paraboloid(0.7, 0.5, 3).galilean(1, 2)
 	var first Result

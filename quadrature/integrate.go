@@ -217,11 +217,12 @@ func run(f func(s [2]float64, out *adaptive.Sample) error, sh *shape, o Options,
 	width := p.over[outer].Hi - p.over[outer].Lo
 	var mesh adaptive.Mesh
 	var most [adaptive.Width]float64
-	rows := 0
+	rows, rough := 0, false
+	var t adaptive.Task
 	row := func(s float64, out *adaptive.Sample) error {
 		rows++
 		_, phase := math.Modf(golden * float64(rows))
-		t := adaptive.Task{
+		in := adaptive.Task{
 			F: func(v float64, out *adaptive.Sample) error {
 				var at [2]float64
 				at[outer], at[inner] = s, v
@@ -232,20 +233,28 @@ func run(f func(s [2]float64, out *adaptive.Sample) error, sh *shape, o Options,
 			Work: work, Mesh: &mesh,
 		}
 		for c := range most {
-			t.Abs[c] = math.Max(o.Rel/8*most[c], abs[c]/(4*width))
+			in.Abs[c] = math.Max(o.Rel/8*most[c], abs[c]/(4*width))
 		}
-		r, err := t.Run()
+		if rough {
+			// A row almost tangent to a kink crosses it twice at a distance
+			// like the root of the width of the panel of rows.
+			in.Mesh = nil
+			in.Periodic = false
+			in.MinPanels = int(min(512, 2*math.Ceil(math.Sqrt(t.Fineness()))))
+		}
+		r, err := in.Run()
 		if err != nil {
 			return err
 		}
 		for c := range most {
 			most[c] = math.Max(most[c], math.Abs(r.Value[c]))
 		}
+		rough = rough || r.Rough
 		*out = r.Sample
 		out.Noise = r.Error
 		return rowDone(s)
 	}
-	t := adaptive.Task{
+	t = adaptive.Task{
 		F: row, Lo: p.over[outer].Lo, Hi: p.over[outer].Hi, Rel: o.Rel / 2, Abs: abs,
 		Periodic: sh.periodic[outer], Phase: golden / 2, Probe: true, Work: work,
 	}

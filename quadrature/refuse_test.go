@@ -27,7 +27,7 @@ func TestRefusals(t *testing.T) {
 		reason      Reason
 		says        string
 	}{
-		{"plus off the well", wallTriangle, linear(0, 1, 0, 1.0/3), good[1], OffWell, "the plus trace is off the well at (x, y, z) = (0, "},
+		{"plus off the well", wallTriangle, linear(0, 1, 0, 1.0/3), good[1], OffWell, "the plus trace is off the well at (0, "},
 		{"minus off the well", wallTriangle, good[0], linear(0, -1, 0, 0.500001), OffWell, "minus trace"},
 		{"slightly off the well", wallTriangle, linear(0, 1, 0, 0.5+1e-8), good[1], OffWell, "plus trace"},
 		{"off the well at a large scale", wallTriangle, linear(0, 1e6, 0, 0.5e12*(1+1e-8)), linear(0, -1e6, 0, 0.5e12), OffWell, "plus trace"},

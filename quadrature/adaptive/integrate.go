@@ -53,6 +53,7 @@ type bisection struct {
 	noise  [Width]float64
 	value  [Width]float64
 	scale  [Width]float64
+	rough  bool           // a panel that touches no end was not resolved
 	before [Width]float64 // estimate at half the number of steps
 }
 
@@ -60,7 +61,7 @@ func (t *Task) bisect() (Result, error) {
 	b := &bisection{t: t}
 	start := t.Mesh.panels
 	if len(start) == 0 {
-		start = []panel{{lo: t.Lo, hi: t.Hi, order: 15}}
+		start = t.begin()
 	}
 	for i := range start {
 		p := start[i]
@@ -139,6 +140,25 @@ func (b *bisection) noisy() bool {
 	return noisy
 }
 
+// begin cuts the interval into equal panels.
+func (t *Task) begin() []panel {
+	n := max(1, t.MinPanels)
+	ps := make([]panel, n)
+	for i := range ps {
+		ps[i] = panel{lo: t.at(i, n), hi: t.at(i+1, n), order: 15, left: -1, right: -1}
+	}
+	ps[0].left, ps[n-1].right = 0, 0
+	return ps
+}
+
+// at is the i-th of n equal steps through the interval.
+func (t *Task) at(i, n int) float64 {
+	if i == n {
+		return t.Hi
+	}
+	return t.Lo + (t.Hi-t.Lo)*(float64(i)/float64(n))
+}
+
 // put files a panel, as final if its estimate is within its noise.
 func (b *bisection) put(p *panel) {
 	p.key = 0
@@ -196,7 +216,7 @@ func (b *bisection) met() bool {
 }
 
 func (b *bisection) result() Result {
-	r := Result{Converged: b.met()}
+	r := Result{Converged: b.met(), Rough: b.rough}
 	b.total()
 	for c := range Width {
 		r.Value[c], r.Noise[c], r.Size[c] = b.value[c], b.noise[c], b.scale[c]
@@ -264,6 +284,9 @@ func (b *bisection) refine(p *panel) ([]*panel, error) {
 			return []*panel{q}, err
 		}
 	}
+	if decay > resolved && p.left < 0 && p.right < 0 && p.depth >= 3 && !p.doubted {
+		b.rough = true
+	}
 	return b.halve(p, excess)
 }
 
@@ -294,7 +317,7 @@ func (b *bisection) atEnd(p *panel, excess float64) (*panel, error) {
 		if err := b.t.apply(q); err != nil {
 			return nil, err
 		}
-		if e, _ := b.worst(q); e <= gain*excess || e <= gain {
+		if e, d := b.worst(q); e <= gain || e <= gain*excess && d <= resolved || e <= 1e-4*excess {
 			q.left, q.right = -1, -1
 			return q, nil
 		}

@@ -77,6 +77,7 @@ const resolved = 0.5
 
 // apply integrates over a panel by its rule.
 func (t *Task) apply(p *panel) error {
+	t.fineness = (t.Hi - t.Lo) / p.width()
 	if p.kind == exponential {
 		return t.applyExponential(p)
 	}

@@ -23,6 +23,7 @@ const golden = 0.6180339887498949
 func (t *Task) ring() (Result, bool, error) {
 	n := max(defaultPeriod, t.MinPeriod, t.Mesh.period)
 	length := t.Hi - t.Lo
+	t.fineness = 1
 	phase := t.Phase / defaultPeriod // within the widest spacing
 	at := func(frac float64) float64 {
 		frac -= math.Floor(frac)
@@ -84,6 +85,7 @@ func (t *Task) ring() (Result, bool, error) {
 			return Result{}, false, nil
 		}
 		old = est
+		t.fineness *= 2
 		next := make([]Sample, 2*n)
 		for i := range values {
 			next[2*i] = values[i]

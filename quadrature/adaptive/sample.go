@@ -63,9 +63,18 @@ type Task struct {
 	MinPeriod int
 	// Work is the budget; nil is without limit.
 	Work *Work
+	// MinPanels is the number of equal panels to begin with where there is no
+	// Mesh to start from; 1 if zero.
+	MinPanels int
 	// Mesh is where to start from, and is updated; nil starts anew.
 	Mesh *Mesh
+
+	fineness float64
 }
+
+// Fineness is the length of the interval over that of the panel being worked
+// on, for the use of F.
+func (t *Task) Fineness() float64 { return t.fineness }
 
 // A Result is an integral: Value, the Noise carried into it, and the sum Size
 // of the absolute contributions.
@@ -76,6 +85,8 @@ type Result struct {
 	// Converged is false if the tolerance was not met because the budget
 	// ended or because bisection no longer helped.
 	Converged bool
+	// Rough says that there were kinks or jumps inside the interval.
+	Rough bool
 }
 
 // sum is a compensated sum.
