@@ -175,16 +175,9 @@ func (d *decider) oneRoot(g algebra.Fraction) (bool, error) {
 			continue
 		}
 		co := g.Num().Coeffs(v)
-		if len(d.ring.Kernels(algebra.FromPoly(co[0]), algebra.FromPoly(co[1]))) > 0 {
-			var outer []algebra.Var
-			for _, k := range d.ring.Kernels(algebra.FromPoly(co[0]), algebra.FromPoly(co[1])) {
-				if k > v {
-					outer = append(outer, k)
-				}
-			}
-			if len(outer) > 0 {
-				continue
-			}
+		kernels := d.ring.Kernels(algebra.FromPoly(co[0]), algebra.FromPoly(co[1]))
+		if len(kernels) > 0 && kernels[len(kernels)-1] > v {
+			continue // a newer kernel may hold this root inside
 		}
 		a, b := algebra.FromPoly(co[1]), algebra.FromPoly(co[0])
 		opposite := d.ring.VisiblyNonNegative(a) && d.ring.VisiblyNonNegative(b.Neg()) ||

@@ -169,6 +169,7 @@ func (d *decider) refuteRests(g *gap, rests []squares.Rest) bool {
 				continue
 			}
 			if d.lift(rest.Steps, at) && d.consistent(pts, at) && d.falseAt(g, pts, at) {
+				at = d.simplify(g, pts, at)
 				d.refuted("completing squares leaves a rest that is negative; exact arithmetic at the witness", at, g.left, g.right)
 				return true
 			}
@@ -222,6 +223,7 @@ func (d *decider) refuteFar(g *gap) bool {
 			return false
 		}
 		if d.consistent(pts, base) && d.falseAt(g, pts, base) {
+			base = d.simplify(g, pts, base)
 			d.refuted("exact arithmetic at the witness", base, g.left, g.right)
 			return true
 		}
@@ -233,6 +235,7 @@ func (d *decider) refuteFar(g *gap) bool {
 			at := base.Clone()
 			at[v] = x
 			if d.consistent(pts, at) && d.falseAt(g, pts, at) {
+				at = d.simplify(g, pts, at)
 				d.refuted("the gap is unbounded below; exact arithmetic at the witness", at, g.left, g.right)
 				return true
 			}

@@ -46,6 +46,9 @@ func (d *decider) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 	if err != nil {
 		return nil, err
 	}
+	if !ok && !d.independent(gaps...) {
+		return nil, fmt.Errorf("%w: the linear system of the coefficients has no solution in normal form, but kernels in it may depend on each other", jet.ErrOutside)
+	}
 	if !ok {
 		d.rec.Verdict = Refuted
 		d.rec.Method = "linear system of the coefficients, exact"
@@ -185,6 +188,8 @@ func (d *decider) solveNonlinear(gaps []algebra.Fraction, rows []algebra.Poly, u
 	switch {
 	case !complete:
 		return nil, fmt.Errorf("%w: %s solves an equation with roots that are not rational", jet.ErrOutside, d.claim.Solve[0])
+	case len(good) == 0 && !d.independent(gaps...):
+		return nil, fmt.Errorf("%w: no rational value solves the normal form, but kernels in it may depend on each other", jet.ErrOutside)
 	case len(good) == 0:
 		d.rec.Verdict, d.rec.Method, d.rec.Solution = Refuted, "rational roots of the coefficients, exact", "none"
 		d.rec.Reason = "no value of " + d.claim.Solve[0] + " makes all coefficients vanish"
@@ -211,7 +216,7 @@ func rationalRoots(p algebra.Poly, v algebra.Var) (roots []algebra.Rat, complete
 				c, _ := co[0].IsConst()
 				b, _ := co[1].IsConst()
 				disc := b.Mul(b).Sub(algebra.Int(4).Mul(a).Mul(c))
-				return roots, disc.Sign() < 0
+				return roots, p.Degree(v) == 2 && disc.Sign() < 0
 			}
 			roots = appendNew(roots, x)
 			if y, ok := rationalRoot(p, v, true); ok && p.Degree(v) == 2 {

@@ -2,6 +2,7 @@ package identity
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"creaseproof/entropy/algebra"
@@ -33,7 +34,6 @@ func (d *decider) span() error {
 		}
 		return i
 	}
-	// A common denominator for all that is compared.
 	all := [][]algebra.Fraction{target}
 	for _, g := range st.Generators {
 		v, err := d.in.Field(g)
@@ -73,6 +73,10 @@ func (d *decider) span() error {
 	names := make([]string, len(st.Generators))
 	for k, g := range st.Generators {
 		names[k] = formula.Text(g)
+	}
+	if !ok && !d.independent(slices.Concat(all...)...) {
+		d.open("the linear system of the coefficients has no solution in normal form, but kernels in it may depend on each other")
+		return nil
 	}
 	if !ok {
 		d.rec.Verdict = Refuted

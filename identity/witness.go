@@ -13,10 +13,17 @@ import (
 func (d *decider) refuted(method string, at jet.Point, left, right algebra.Fraction) {
 	d.rec.Verdict, d.rec.Method = Refuted, method
 	w := &Witness{Jet: map[string]string{}, Left: d.ring.Show(left, at), Right: d.ring.Show(right, at)}
-	traces := d.claim.Jump
+	shown := map[algebra.Var]bool{} // what the sides depend on
+	for _, v := range d.ring.Support(left, right) {
+		shown[v] = true
+	}
+	for _, v := range d.ring.Kernels(left, right) {
+		shown[v] = true
+	}
 	for v, x := range at {
 		s := d.ring.Symbol(v)
 		switch {
+		case !shown[v] && (s.Kind != jet.Cosine || !shown[s.Partner]):
 		case s.Kind == jet.Cosine:
 			if w.Angle == nil {
 				w.Angle = map[string]CosSin{}
@@ -27,7 +34,7 @@ func (d *decider) refuted(method string, at jet.Point, left, right algebra.Fract
 			w.Jet[s.Name] = x.String()
 		}
 	}
-	if traces {
+	if d.claim.Jump {
 		d.showTraces(w, at)
 	}
 	d.rec.Witness = w
