@@ -37,7 +37,10 @@
 // parameter at the two ends of which positions and tangents agree is treated
 // as periodic, by the trapezoidal rule, and taken as the inner one; the grids
 // of neighbouring rows are shifted against each other so that what one misses
-// shows as roughness in the other direction.
+// shows as roughness in the other direction. Once a row has shown a kink, rows
+// begin with more panels the finer the other direction is cut, like the root of
+// its fineness, for a row almost tangent to a kink crosses it twice close
+// together.
 //
 // # What is guaranteed
 //

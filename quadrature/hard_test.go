@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"math/rand/v2"
 	"testing"
 )
 
@@ -73,6 +74,60 @@ func TestKinksOnADisc(t *testing.T) {
 		t.Logf("c = %v: true %.1e reported %.1e, %d evaluations", c, math.Abs(r.Energy/want-1), r.Error/want, r.Evaluations)
 		if miss := math.Abs(r.Energy - want); miss > r.Error || miss > 1e-8*want {
 			t.Errorf("c = %v: %v ± %v, want %v", c, r.Energy, r.Error, want)
+		}
+	}
+}
+
+// TestCurvedKinksAndJumps has densities that are rough along curves, some of
+// which close between the nodes of the first rules.
+func TestCurvedKinksAndJumps(t *testing.T) {
+	flat := func(_, g []float64) float64 { clear(g); return 0 }
+	disc := Graph{Over: Disc{Radius: 1}, F: flat}
+	square := Graph{Over: Rectangle{Range{0, 1}, Range{0, 1}}, F: flat}
+	triangle := Graph{Over: Triangle{{0, 0}, {1, 0}, {0, 1}}, F: flat}
+	cap := func(x []float64, a, b, r float64) float64 {
+		return 1 + math.Max(0, r*r-(x[0]-a)*(x[0]-a)-(x[1]-b)*(x[1]-b))
+	}
+	rng := rand.New(rand.NewPCG(5, 6))
+	for i := range 20 {
+		sin, cos := math.Sincos(float64(i))
+		c := rng.Float64()
+		var density func(x []float64) float64
+		var surface Surface
+		var want float64
+		switch i % 5 {
+		case 0: // a chord
+			surface, want = disc, math.Pi+math.Acos(c)-c*math.Sqrt(1-c*c)
+			density = func(x []float64) float64 {
+				if cos*x[0]+sin*x[1] > c {
+					return 2
+				}
+				return 1
+			}
+		case 1: // a quarter of a disc
+			surface, want = square, 1+math.Pi*c*c/4
+			density = func(x []float64) float64 {
+				if x[0]*x[0]+x[1]*x[1] < c*c {
+					return 2
+				}
+				return 1
+			}
+		case 2: // a cap
+			surface, want = square, 1+math.Pi*math.Pow(c/2, 4)/2
+			density = func(x []float64) float64 { return cap(x, 0.5, 0.5, c/2) }
+		case 3: // a wedge
+			surface, want = triangle, 0.5+c*c*c/6
+			density = func(x []float64) float64 { return 1 + math.Max(0, c-x[0]-x[1]) }
+		case 4: // a cap off the middle
+			surface, want = disc, math.Pi+math.Pi*math.Pow(0.2, 4)/2
+			density = func(x []float64) float64 { return cap(x, 0.7*c*cos, 0.7*c*sin, 0.2) }
+		}
+		r, err := Integrate(context.Background(), surface, Traces{}, func(x, _, _, _ []float64) float64 { return density(x) }, Options{Rel: 1e-7})
+		if err != nil {
+			t.Errorf("%d: %v", i, err)
+		}
+		if miss := math.Abs(r.Energy - want); miss > r.Error || miss > 1e-7*want {
+			t.Errorf("%d: %v ± %v, want %v", i, r.Energy, r.Error, want)
 		}
 	}
 }

@@ -32,9 +32,16 @@
 // where the pair might agree by accident. For the other rules it is the
 // distance of the last two levels. Aliasing of the trapezoidal rule is watched
 // for by comparing its trigonometric interpolant with the function at nodes
-// off the grid. To this are added the uncertainties that the integrand states
+// off the grid. A kink between the outermost node of a panel and its end is seen
+// by no rule; therefore neighbouring panels have to extrapolate to the same
+// value at their common end, and at the two ends of the interval the
+// extrapolation has to meet the integrand, before the result is accepted; a
+// misfit becomes an estimate and the panel is cut. To this are added the uncertainties that the integrand states
 // of its own values (rounding, or the error of an inner integral), integrated,
 // and near an end the effect of rounding on the distance from it.
+//
+// Bisection ends early where the estimate is small but does not fall any more:
+// the integrand is then noisier than it says, and Converged is false.
 //
 // Sums are compensated (Neumaier 1974). Everything is sequential, so results
 // do not depend on the number of cores.
