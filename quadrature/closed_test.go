@@ -7,7 +7,7 @@ import (
 	"testing"
 )
 
-// A case3 is a crease of the layered model whose energy is known in closed
+// A crease is one of the layered model whose energy is known in closed
 // form (derived from the slice formula, energy = ∫ |[grad_perp u]|^3/12 dl dz).
 type crease struct {
 	name        string

@@ -139,35 +139,21 @@ func Integrate(ctx context.Context, s Surface, tr Traces, d Density, o Options) 
 
 // sums adds up the pieces.
 type sums struct {
-	value, err, size [adaptive.Width]neumaier
+	value, err, size [adaptive.Width]adaptive.Sum
 }
-
-type neumaier struct{ s, c float64 }
-
-func (a *neumaier) add(x float64) {
-	t := a.s + x
-	if math.Abs(a.s) >= math.Abs(x) {
-		a.c += (a.s - t) + x
-	} else {
-		a.c += (x - t) + a.s
-	}
-	a.s = t
-}
-
-func (a neumaier) value() float64 { return a.s + a.c }
 
 func (s *sums) add(r adaptive.Result) {
 	for c := range adaptive.Width {
-		s.value[c].add(r.Value[c])
-		s.err[c].add(r.Error[c])
-		s.size[c].add(r.Size[c])
+		s.value[c].Add(r.Value[c])
+		s.err[c].Add(r.Error[c])
+		s.size[c].Add(r.Size[c])
 	}
 }
 
 // tolerance is what a further piece may add to the error.
 func (s *sums) tolerance(o Options, pieces int) (abs [adaptive.Width]float64) {
 	for c := range abs {
-		abs[c] = o.Rel / 4 * math.Abs(s.value[c].value()) / float64(pieces)
+		abs[c] = o.Rel / 4 * math.Abs(s.value[c].Value()) / float64(pieces)
 	}
 	abs[0] = math.Max(abs[0], o.Abs/(2*float64(pieces)))
 	return abs
@@ -175,19 +161,19 @@ func (s *sums) tolerance(o Options, pieces int) (abs [adaptive.Width]float64) {
 
 func (s *sums) finish(o Options, work *adaptive.Work) (Result, error) {
 	r := Result{
-		Energy: s.value[0].value(), Error: s.err[0].value(),
-		Area: s.value[1].value(), AreaError: s.err[1].value(),
+		Energy: s.value[0].Value(), Error: s.err[0].Value(),
+		Area: s.value[1].Value(), AreaError: s.err[1].Value(),
 		Evaluations: work.Used,
 	}
 	for c, e := range []float64{r.Error, r.AreaError} {
-		v := math.Abs(s.value[c].value())
-		if e <= math.Max(o.Rel*v, 256*epsilon*s.size[c].value()) || c == 0 && e <= o.Abs {
+		v := math.Abs(s.value[c].Value())
+		if e <= math.Max(o.Rel*v, 256*epsilon*s.size[c].Value()) || c == 0 && e <= o.Abs {
 			continue
 		}
 		if work.Spent() {
-			return r, fmt.Errorf("quadrature: %w: %d evaluations, estimated error %.3g of %.9g", ErrBudget, work.Used, e, s.value[c].value())
+			return r, fmt.Errorf("quadrature: %w: %d evaluations, estimated error %.3g of %.9g", ErrBudget, work.Used, e, s.value[c].Value())
 		}
-		return r, fmt.Errorf("quadrature: %w: estimated error %.3g of %.9g", ErrAccuracy, e, s.value[c].value())
+		return r, fmt.Errorf("quadrature: %w: estimated error %.3g of %.9g", ErrAccuracy, e, s.value[c].Value())
 	}
 	return r, nil
 }

@@ -28,7 +28,7 @@ type side struct {
 // rounding of the distances from the ends.
 func (t *Task) applyExponential(p *panel) error {
 	half := (p.hi - p.lo) / 2
-	var total [Width]sum
+	var total [Width]Sum
 	var noise, size, value, old, before [Width]float64
 	sides := [2]side{{limit: farthest}, {limit: farthest}}
 	node := func(k int, tt float64) (done bool, err error) {
@@ -53,7 +53,7 @@ func (t *Task) applyExponential(p *panel) error {
 		negligible := true
 		r := endRounding(s, end)
 		for c := range Width {
-			total[c].add(w * q.Value[c])
+			total[c].Add(w * q.Value[c])
 			size[c] += w * q.Size[c]
 			noise[c] += w * (q.Noise[c] + r*q.Size[c])
 			if w*q.Size[c] > epsilon/64*size[c] {
@@ -94,7 +94,7 @@ func (t *Task) applyExponential(p *panel) error {
 		}
 		ok := true
 		for c := range Width {
-			value[c] = total[c].value() * step * half
+			value[c] = total[c].Value() * step * half
 			d := math.Abs(value[c] - old[c])
 			if level == 1 {
 				d = size[c] * step * half

@@ -185,20 +185,20 @@ func (b *bisection) account(p *panel, sign float64) {
 
 // total sums everything anew.
 func (b *bisection) total() {
-	var value, est, noise, size [Width]sum
+	var value, est, noise, size [Width]Sum
 	for _, list := range [][]*panel{b.final, b.active} {
 		for _, p := range list {
 			for c := range Width {
-				value[c].add(p.v.Value[c])
-				est[c].add(p.est[c])
-				noise[c].add(p.v.Noise[c])
-				size[c].add(p.v.Size[c])
+				value[c].Add(p.v.Value[c])
+				est[c].Add(p.est[c])
+				noise[c].Add(p.v.Noise[c])
+				size[c].Add(p.v.Size[c])
 			}
 		}
 	}
 	for c := range Width {
-		b.value[c], b.est[c] = value[c].value(), est[c].value()
-		b.noise[c], b.scale[c] = noise[c].value(), size[c].value()
+		b.value[c], b.est[c] = value[c].Value(), est[c].Value()
+		b.noise[c], b.scale[c] = noise[c].Value(), size[c].Value()
 	}
 }
 

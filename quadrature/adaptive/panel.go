@@ -104,17 +104,17 @@ func (t *Task) apply(p *panel) error {
 	p.gap = k.Gap * half
 	p.probed, p.doubted = [2]bool{}, false
 	for c := range Width {
-		var kv, d sum
+		var kv, d Sum
 		var noise, size, peak float64
 		for i, w := range k.Weight {
 			f := g[i].Value[c]
-			kv.add(w * f)
-			d.add((w - k.Gauss[i]) * f)
+			kv.Add(w * f)
+			d.Add((w - k.Gauss[i]) * f)
 			noise += w * g[i].Noise[c]
 			size += w * g[i].Size[c]
 			peak = math.Max(peak, math.Abs(f))
 		}
-		p.v.Value[c], p.v.Noise[c], p.v.Size[c] = kv.value()*half, noise*half, size*half
+		p.v.Value[c], p.v.Noise[c], p.v.Size[c] = kv.Value()*half, noise*half, size*half
 		var pair [rule.Top / 2]float64
 		for j, w := range k.Coefficient {
 			var a float64
@@ -124,7 +124,7 @@ func (t *Task) apply(p *panel) error {
 			pair[j/2] = math.Max(pair[j/2], math.Abs(a))
 		}
 		p.extrapolate(k, &g, c)
-		p.est[c], p.decay[c] = judge(k, math.Abs(d.value())*half, pair, peak, half)
+		p.est[c], p.decay[c] = judge(k, math.Abs(d.Value())*half, pair, peak, half)
 	}
 	return nil
 }

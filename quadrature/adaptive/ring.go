@@ -171,13 +171,13 @@ func mean(v []Sample, stride int) Sample {
 	var m Sample
 	k := float64(len(v) / stride)
 	for c := range Width {
-		var s, n, z sum
+		var s, n, z Sum
 		for i := 0; i < len(v); i += stride {
-			s.add(v[i].Value[c])
-			n.add(v[i].Noise[c])
-			z.add(v[i].Size[c])
+			s.Add(v[i].Value[c])
+			n.Add(v[i].Noise[c])
+			z.Add(v[i].Size[c])
 		}
-		m.Value[c], m.Noise[c], m.Size[c] = s.value()/k, n.value()/k, z.value()/k
+		m.Value[c], m.Noise[c], m.Size[c] = s.Value()/k, n.Value()/k, z.Value()/k
 	}
 	return m
 }
@@ -193,18 +193,18 @@ func (t *Task) probe(v []Sample, phase float64, at func(float64) float64) (miss 
 		if err := t.F(at(frac), &q); err != nil {
 			return miss, err
 		}
-		var p [Width]sum
+		var p [Width]Sum
 		for i := range v {
 			d := frac - phase - float64(i)/n
 			d -= math.Round(d)
 			// The cardinal function of an even number of equidistant nodes.
 			w := math.Sin(math.Pi*n*d) / math.Tan(math.Pi*d) / n
 			for c := range Width {
-				p[c].add(w * v[i].Value[c])
+				p[c].Add(w * v[i].Value[c])
 			}
 		}
 		for c := range Width {
-			if e := math.Abs(p[c].value() - q.Value[c]); e > 16*epsilon*q.Size[c]+q.Noise[c] {
+			if e := math.Abs(p[c].Value() - q.Value[c]); e > 16*epsilon*q.Size[c]+q.Noise[c] {
 				miss[c] = math.Max(miss[c], e)
 			}
 		}

@@ -89,10 +89,11 @@ type Result struct {
 	Rough bool
 }
 
-// sum is a compensated sum.
-type sum struct{ s, c float64 }
+// A Sum is a compensated sum (Neumaier 1974).
+type Sum struct{ s, c float64 }
 
-func (a *sum) add(x float64) {
+// Add adds x.
+func (a *Sum) Add(x float64) {
 	t := a.s + x
 	if math.Abs(a.s) >= math.Abs(x) {
 		a.c += (a.s - t) + x
@@ -102,7 +103,8 @@ func (a *sum) add(x float64) {
 	a.s = t
 }
 
-func (a sum) value() float64 { return a.s + a.c }
+// Value is the sum so far.
+func (a Sum) Value() float64 { return a.s + a.c }
 
 // ErrNotFinite says that an integrand was infinite or no number.
 var ErrNotFinite = errors.New("integrand is not finite")
