@@ -1,0 +1,79 @@
+package cases
+
+import (
+	"math/big"
+	"slices"
+	"strings"
+
+	"creaseproof/cases/casefile"
+	"creaseproof/entropy/formula"
+	"creaseproof/identity"
+)
+
+// Expectation is what a file expects of a claim: a verdict and, where
+// constants are asked for, what they are.
+type Expectation struct {
+	Verdict  identity.Verdict
+	Solution string // as written; "" where any solution will do
+}
+
+// Met reports whether a record is as expected.
+func (e Expectation) Met(r *identity.Record) bool {
+	return r != nil && r.Verdict == e.Verdict && (e.Solution == "" || sameSolution(e.Solution, r.Solution))
+}
+
+func (b *builder) expectation(f *casefile.Claim) Expectation {
+	e := Expectation{Verdict: identity.Proved}
+	if f.Expect == nil {
+		return e
+	}
+	switch v := identity.Verdict(strings.TrimSpace(f.Expect.S)); v {
+	case identity.Proved, identity.Refuted, identity.Supported, identity.Open:
+		e.Verdict = v
+		return e
+	}
+	asked := folded(f.Solve)
+	if f.Best != nil {
+		asked = append(asked, fold(*f.Best))
+	}
+	for _, part := range strings.Split(f.Expect.S, ",") {
+		name, value, ok := strings.Cut(part, "=")
+		name = spaceless(name)
+		folded, err := formula.FoldName(name)
+		switch {
+		case !ok || err != nil || spaceless(value) == "":
+			b.fault(position(*f.Expect), `write a verdict, or a solution such as "c = 4/3" or "a = 1, b = 2"`, "%q is no verdict and no solution", clip(f.Expect.S, 60))
+			return e
+		case !slices.Contains(asked, folded):
+			b.fault(position(*f.Expect), "name it in solve or best", "%q is expected to be found, and is not asked for", clip(name, 60))
+			return e
+		}
+	}
+	e.Solution = strings.TrimSpace(f.Expect.S)
+	return e
+}
+
+// sameSolution compares solutions such as "a = 1, b = 3/2": the order, white
+// space, Greek spellings and the spelling of a rational number do not count.
+func sameSolution(a, b string) bool {
+	x, y := parts(a), parts(b)
+	return len(x) > 0 && slices.Equal(x, y)
+}
+
+func parts(s string) []string {
+	var list []string
+	for _, p := range strings.Split(s, ",") {
+		name, value, ok := strings.Cut(spaceless(p), "=")
+		if folded, err := formula.FoldName(name); err == nil {
+			name = folded
+		}
+		if ok && len(value) < 1000 && !strings.ContainsAny(value, "eE") {
+			if r, isRat := new(big.Rat).SetString(value); isRat {
+				value = r.RatString()
+			}
+		}
+		list = append(list, name+"="+value)
+	}
+	slices.Sort(list)
+	return list
+}

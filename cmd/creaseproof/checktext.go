@@ -1,0 +1,213 @@
+package main
+
+import (
+	"cmp"
+	"fmt"
+	"io"
+	"maps"
+	"slices"
+	"strings"
+	"unicode/utf8"
+
+	"creaseproof/cases"
+	"creaseproof/identity"
+)
+
+// checkText writes the results of check for people to read.
+type checkText struct {
+	w     io.Writer
+	style style
+	width int
+	opt   *cases.Options
+
+	current *cases.Case
+	names   int // columns of the names of the current case
+	cases   int // written so far
+}
+
+const (
+	mostName    = 44   // columns of a name
+	mostText    = 2000 // runes of a reason or a witness shown
+	mostFormula = 240  // runes of a remainder or a list of conditions shown; all of it is in the document
+	mostDetails = 6    // details shown
+	mostDetail  = 120  // runes of one
+	indent      = "                  "
+)
+
+// header writes the line that a case begins with.
+func (t *checkText) header(c *cases.Case) {
+	if t.cases > 0 {
+		fmt.Fprintln(t.w)
+	}
+	t.cases++
+	t.current = c
+	title := ""
+	if c.Title != "" {
+		title = "  " + c.Title
+	}
+	fmt.Fprintln(t.w, t.style.head(c.Name)+title)
+	t.names = 0
+	for _, cl := range c.Claims {
+		if t.opt.Selected(cl.Name) {
+			t.names = max(t.names, min(utf8.RuneCountInString(cl.Name), mostName))
+		}
+	}
+}
+
+// result writes one claim.
+func (t *checkText) result(r *cases.Result) {
+	if r.Case != t.current {
+		t.header(r.Case)
+	}
+	rec := r.Record
+	mark := "ok "
+	if !r.Met() {
+		mark = t.style.alarm("NOT")
+	}
+	line := fmt.Sprintf("  %s  %s  %s", mark, t.style.verdict(rec.Verdict, pad(string(rec.Verdict), 9)), pad(r.Claim.Name, t.names))
+	if rec.Method != "" {
+		line += "  " + t.style.faint(rec.Method)
+	}
+	fmt.Fprintln(t.w, strings.TrimRight(line, " "))
+	if rec.Solution != "" {
+		t.note("solution", rec.Solution)
+	}
+	if rec.Witness != nil {
+		t.witness(rec.Witness)
+	}
+	if rec.Remainder != "" {
+		t.note("remainder", clip(rec.Remainder, mostFormula))
+	}
+	if rec.Reason != "" {
+		t.note("", rec.Reason)
+	}
+	t.counts(rec)
+	for i, d := range rec.Details {
+		if i == mostDetails {
+			t.note("", fmt.Sprintf("and %d more", len(rec.Details)-i))
+			break
+		}
+		if !strings.Contains(rec.Solution, d) {
+			t.note("", clip(d, mostDetail))
+		}
+	}
+	if len(rec.Assumptions) > 0 {
+		t.note("provided that", clip(strings.Join(rec.Assumptions, ", "), mostFormula))
+	}
+	if !r.Met() {
+		want := string(r.Claim.Expected.Verdict)
+		if r.Claim.Expected.Solution != "" {
+			want += " with " + r.Claim.Expected.Solution
+		}
+		t.lines(t.style.alarm, "expected "+want)
+	}
+}
+
+// counts says how far a claim without an exact decision was tried.
+func (t *checkText) counts(rec *identity.Record) {
+	if rec.Verdict != identity.Supported && rec.Verdict != identity.Open || rec.Samples == 0 && rec.Searches == 0 {
+		return
+	}
+	s := fmt.Sprintf("no counterexample in %d samples and %s, seed %d: a numerical check is not a proof",
+		rec.Samples, count(rec.Searches, "search", "searches"), rec.Seed)
+	if rec.Margin != nil {
+		s += fmt.Sprintf("; least margin met %.3g", *rec.Margin)
+	}
+	t.note("", s)
+}
+
+// witness writes the point at which a claim fails.
+func (t *checkText) witness(w *identity.Witness) {
+	var parts []string
+	for _, k := range byLength(w.Jet) {
+		parts = append(parts, k+" = "+w.Jet[k])
+	}
+	for _, k := range byLength(w.Angle) {
+		parts = append(parts, fmt.Sprintf("(cos, sin)(%s) = (%s, %s)", k, w.Angle[k].Cos, w.Angle[k].Sin))
+	}
+	for _, side := range []struct {
+		name   string
+		values map[string]string
+	}{{"plus", w.Plus}, {"minus", w.Minus}, {"nu", w.Normal}} {
+		if len(side.values) == 0 {
+			continue
+		}
+		var list []string
+		for _, k := range byLength(side.values) {
+			list = append(list, k+" = "+side.values[k])
+		}
+		parts = append(parts, side.name+" ("+strings.Join(list, ", ")+")")
+	}
+	if len(parts) > 0 {
+		t.note("at", strings.Join(parts, ", "))
+	}
+	if w.Left != "" || w.Right != "" {
+		t.note("", "left side "+w.Left+", right side "+w.Right)
+	}
+}
+
+// byLength are the keys of a map, short ones first.
+func byLength[V any](m map[string]V) []string {
+	return slices.SortedFunc(maps.Keys(m), func(a, b string) int {
+		return cmp.Or(cmp.Compare(len(a), len(b)), cmp.Compare(a, b))
+	})
+}
+
+func (t *checkText) note(label, text string) {
+	if label != "" {
+		text = label + " " + text
+	}
+	t.lines(nil, text)
+}
+
+func (t *checkText) lines(paint func(string) string, text string) {
+	for _, l := range wrap(text, t.width-len(indent), mostText) {
+		if paint != nil {
+			l = paint(l)
+		}
+		fmt.Fprintln(t.w, indent+l)
+	}
+}
+
+// without names the cases that have no claims.
+func (t *checkText) without(list []*cases.Case) {
+	for _, c := range list {
+		if len(c.Claims) == 0 {
+			t.header(c)
+			fmt.Fprintln(t.w, "  no claims")
+		}
+	}
+}
+
+// summary writes the last line.
+func (t *checkText) summary(out *cases.Outcome, total int) {
+	if total == 0 {
+		return
+	}
+	var parts []string
+	decided, met := 0, 0
+	for _, v := range []identity.Verdict{identity.Proved, identity.Refuted, identity.Supported, identity.Open} {
+		if n := out.Count(v); n > 0 {
+			parts = append(parts, t.style.verdict(v, fmt.Sprintf("%d %s", n, v)))
+			decided += n
+		}
+	}
+	for _, r := range out.Results {
+		if r.Met() {
+			met++
+		}
+	}
+	if n := len(out.Results) - decided; n > 0 {
+		parts = append(parts, fmt.Sprintf("%d without meaning", n))
+	}
+	if n := total - len(out.Results); n > 0 {
+		parts = append(parts, fmt.Sprintf("%d not reached", n))
+	}
+	last := "all as expected"
+	if n := len(out.Results) - met; n > 0 {
+		last = t.style.alarm(fmt.Sprintf("%d not as expected", n))
+	} else if len(out.Results) < total {
+		last = "the others as expected"
+	}
+	fmt.Fprintf(t.w, "\n%s: %s; %s\n", count(total, "claim", "claims"), strings.Join(parts, ", "), last)
+}
