@@ -97,6 +97,10 @@ func (ex *Exact) Jet(unknown int, j jet.Index, side jet.Side) (algebra.Fraction,
 	return ex.Ring.Jet(unknown, j, side)
 }
 
+// ResetNormal forgets the normal, after the traces have come to mean something
+// else.
+func (ex *Exact) ResetNormal() { ex.normal = nil }
+
 // Normal is component i of nu = σ q/|q|, q = [grad u], σ² = 1. Both
 // orientations are admissible: σ is an indeterminate of its own.
 func (ex *Exact) Normal(i int) (algebra.Fraction, error) {

@@ -23,7 +23,9 @@ type decider struct {
 
 	assumed []constraint
 	wells   []algebra.Poly // at a jump: the well on each side, where it is not solved
-	ideal   []algebra.Poly // modulo: generators that are not solved
+	// jumpRewriter is what atJump installed.
+	jumpRewriter jet.Rewriter
+	ideal        []algebra.Poly // modulo: generators that are not solved
 }
 
 // constraint is Value Relation 0.

@@ -27,6 +27,9 @@ func (d *decider) inequality() error {
 	if len(d.claim.Solve) > 0 {
 		return &entropy.Error{At: d.claim.Statement.Left.At(), Err: errors.New("solve is for equations"), Advice: "write the constant's value, or claim an equation"}
 	}
+	if _, err := d.parametrise(); err != nil {
+		return err
+	}
 	g, err := d.gap()
 	if err != nil {
 		return err

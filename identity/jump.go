@@ -67,7 +67,7 @@ func (d *decider) atJump(restricted []*solved) error {
 		}
 		return d.ring.Reduce(f.SubstMany(m))
 	}
-	d.ring.SetRewriter(func(u int, j jet.Index, side jet.Side) (algebra.Fraction, bool, error) {
+	d.jumpRewriter = func(u int, j jet.Index, side jet.Side) (algebra.Fraction, bool, error) {
 		if x, ok := fixed(u, j); ok {
 			if side == jet.Difference {
 				x = algebra.Fraction{}
@@ -79,7 +79,8 @@ func (d *decider) atJump(restricted []*solved) error {
 			return x, err == nil, err
 		}
 		return algebra.Fraction{}, false, nil
-	})
+	}
+	d.ring.SetRewriter(d.jumpRewriter)
 	if isSolved {
 		return nil
 	}

@@ -29,7 +29,7 @@ func (d *decider) refuted(method string, at jet.Point, left, right algebra.Fract
 				w.Angle = map[string]CosSin{}
 			}
 			w.Angle[d.ring.Format(s.Arg)] = CosSin{x.String(), at[s.Partner].String()}
-		case s.Kind == jet.Derivative && s.Side != jet.NoSide, s.Kind >= jet.Cosine:
+		case s.Kind == jet.Derivative && s.Side != jet.NoSide, s.Kind >= jet.Cosine, s.Kind == jet.Constant && s.Place < 0:
 		default:
 			w.Jet[s.Name] = x.String()
 		}
