@@ -14,6 +14,7 @@ type Exact struct {
 	Ring *jet.Ring
 
 	normal []algebra.Fraction
+	size   algebra.Fraction // |q|
 }
 
 // NewExact makes a ring for the setting, with the assumed signs known to it,
@@ -97,6 +98,20 @@ func (ex *Exact) Jet(unknown int, j jet.Index, side jet.Side) (algebra.Fraction,
 	return ex.Ring.Jet(unknown, j, side)
 }
 
+// NoJump reports whether a condition says only that there is a jump at all:
+// that a multiple of |q| is not zero.
+func (ex *Exact) NoJump(c jet.Condition) bool {
+	if c.Need != jet.NeedNonZero || ex.size.IsZero() {
+		return false
+	}
+	k, ok := c.Value.Quo(ex.size)
+	if !ok {
+		return false
+	}
+	_, ok = k.IsConst()
+	return ok
+}
+
 // ResetNormal forgets the normal, after the traces have come to mean something
 // else.
 func (ex *Exact) ResetNormal() { ex.normal = nil }
@@ -119,6 +134,7 @@ func (ex *Exact) Normal(i int) (algebra.Fraction, error) {
 		if err != nil {
 			return size, err
 		}
+		ex.size = size
 		sigma, err := ex.Ring.Orientation()
 		if err != nil {
 			return sigma, err

@@ -69,6 +69,9 @@ func Decide(ctx context.Context, c *Claim, opt Options) (*Record, error) {
 	}
 	if d.ring != nil && d.rec.Verdict != Open {
 		for _, c := range d.ring.Conditions() {
+			if d.ex.NoJump(c) {
+				continue
+			}
 			d.rec.Assumptions = append(d.rec.Assumptions, d.ring.Format(c.Value)+" "+c.Need.String())
 		}
 	}

@@ -65,7 +65,7 @@ func (d *decider) entropy() error {
 			}
 			if ok && !a.IsZero() {
 				d.rec.Details = append(d.rec.Details, fmt.Sprintf("sym(D %s)_%s%s = R A with A = %s, R A = %s", d.claim.Statement.Field.ID,
-					d.ring.Coordinates[i], d.ring.Coordinates[k], d.ring.Format(a), d.ring.Format(sym)))
+					d.ring.Coordinates[i], d.ring.Coordinates[k], d.ring.FormatHarmonic(a), d.ring.FormatHarmonic(sym)))
 			}
 			if ok {
 				continue

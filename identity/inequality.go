@@ -133,13 +133,11 @@ func (d *decider) squareVars(p algebra.Poly) []algebra.Var {
 func (d *decider) squaresProved(g *gap, terms []squares.Term) {
 	d.proved("completing squares, multiplied out exactly")
 	// The factor that was cleared: value = poly·factor, factor > 0.
-	factor, err := d.ring.Quo(g.value, algebra.FromPoly(g.poly))
+	factor, ok := g.value.Quo(algebra.FromPoly(g.poly))
 	for _, t := range terms {
 		w := t.Weight
-		if err == nil {
-			if x, err := d.ring.Mul(w, factor); err == nil {
-				w = x
-			}
+		if ok {
+			w = w.Mul(factor)
 		}
 		text := "(" + d.ring.Format(w) + ")"
 		if c, ok := t.Base.IsConst(); !ok || !c.IsOne() {

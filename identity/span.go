@@ -87,11 +87,19 @@ func (d *decider) span() error {
 	}
 	var parts []string
 	for k := range x {
-		parts = append(parts, "("+d.ring.Format(x[k])+") "+names[k])
+		parts = append(parts, coefficient(d.ring.FormatHarmonic(x[k]))+names[k])
 	}
 	d.rec.Solution = formula.Text(st.Field) + " = " + strings.Join(parts, " + ")
 	d.proved("linear algebra on the coefficients, exact")
 	return nil
+}
+
+// coefficient brackets a printed factor where it is a sum.
+func coefficient(s string) string {
+	if strings.ContainsAny(s, "+-/") {
+		return "(" + s + ") "
+	}
+	return s + " "
 }
 
 // split hands out the coefficients of f over monomials in jets and

@@ -2,6 +2,8 @@ package jet
 
 import (
 	"fmt"
+	"strconv"
+	"strings"
 
 	"creaseproof/entropy/algebra"
 )
@@ -99,6 +101,70 @@ func (r *Ring) Harmonics(f algebra.Fraction, angle string) (Harmonics, error) {
 		out.Waves = append(out.Waves, Wave{k, part(cc[k]), part(ss[k])})
 	}
 	return out, err
+}
+
+// FormatHarmonic prints a value whose only kernels are the cosine and sine of
+// one angle over its multiples, as cos(2 theta) rather than 2 cos(theta)^2 - 1;
+// any other value as Format does.
+func (r *Ring) FormatHarmonic(f algebra.Fraction) string {
+	angle := ""
+	for _, k := range r.Kernels(f) {
+		s := &r.symbols[k]
+		v, ok := loneVar(s.Arg.Num())
+		if s.Kind != Cosine && s.Kind != Sine || !ok || len(s.Arg.DenFactors()) > 0 || angle != "" && r.symbols[v].Name != angle {
+			return r.Format(f)
+		}
+		angle = r.symbols[v].Name
+	}
+	if angle == "" {
+		return r.Format(f)
+	}
+	h, err := r.Harmonics(f, angle)
+	if err != nil {
+		return r.Format(f)
+	}
+	var b strings.Builder
+	term := func(c algebra.Fraction, wave string) {
+		if c.IsZero() {
+			return
+		}
+		sep := " + "
+		if num := c.Num(); num.Len() == 1 {
+			if _, k := num.Leading(); k.Sign() < 0 {
+				sep, c = " - ", c.Neg()
+			}
+		}
+		if b.Len() == 0 {
+			sep = strings.TrimPrefix(strings.TrimSuffix(sep, " "), " ")
+			if sep == "+" {
+				sep = ""
+			}
+		}
+		b.WriteString(sep)
+		k, ok := c.IsConst()
+		switch {
+		case wave == "":
+			b.WriteString(r.Format(c))
+		case ok && k.IsOne():
+			b.WriteString(wave)
+		case ok && k.IsInt():
+			b.WriteString(k.String() + " " + wave)
+		case ok:
+			b.WriteString(k.String() + "*" + wave)
+		default:
+			b.WriteString("(" + r.Format(c) + ") " + wave)
+		}
+	}
+	term(h.Mean, "")
+	for _, w := range h.Waves {
+		arg := angle
+		if w.K > 1 {
+			arg = strconv.Itoa(w.K) + " " + angle
+		}
+		term(w.Cos, "cos("+arg+")")
+		term(w.Sin, "sin("+arg+")")
+	}
+	return b.String()
 }
 
 func (r *Ring) depends(f algebra.Fraction, v algebra.Var) bool {

@@ -103,7 +103,11 @@ func (r *Ring) absKernel(p algebra.Poly) (algebra.Fraction, error) {
 
 func (r *Ring) rootKernel(p algebra.Poly, q int, name string) (algebra.Fraction, error) {
 	n := len(r.symbols)
-	v, err := r.kernel(Symbol{Kind: Root, Name: name, Arg: algebra.FromPoly(p), Degree: q, Sign: NonNegative})
+	sign := NonNegative
+	if r.visiblyPositivePoly(p) {
+		sign = Positive
+	}
+	v, err := r.kernel(Symbol{Kind: Root, Name: name, Arg: algebra.FromPoly(p), Degree: q, Sign: sign})
 	if err != nil {
 		return algebra.Fraction{}, err
 	}
