@@ -1,0 +1,276 @@
+package creases
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"maps"
+	"math"
+	"math/big"
+	"strings"
+
+	"creaseproof/entropy"
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/enclosure"
+	"creaseproof/entropy/formula"
+	"creaseproof/entropy/jet"
+	"creaseproof/identity"
+	"creaseproof/quadrature"
+)
+
+// precision is that of claimed energies and of coordinates, in bits.
+const precision = 200
+
+// combination is a surface at one choice of its values. The values are named
+// formulas of its setting.
+type combination struct {
+	ctx    context.Context
+	s      *Surface
+	set    *entropy.Setting
+	o      Options
+	in     *entropy.Interpreter[algebra.Fraction]
+	exact  *entropy.Exact
+	values map[string]string      // as written
+	chosen map[string]formulaText // by folded name
+	params []float64              // of the patch, at the last position computed
+}
+
+// Evaluate integrates the surface for every combination of its values, the
+// first listed varying slowest. See Evaluator.Evaluate.
+func (s *Surface) Evaluate(ctx context.Context, o Options) ([]Result, error) {
+	if err := s.ev.look(ctx); err != nil {
+		return nil, err
+	}
+	var results []Result
+	at := make([]int, len(s.values))
+	for {
+		if err := ctx.Err(); err != nil {
+			return results, err
+		}
+		c, err := s.combine(ctx, at, o)
+		if err != nil {
+			return results, err
+		}
+		r, err := c.evaluate()
+		if err != nil {
+			return results, err
+		}
+		results = append(results, r)
+		k := len(at) - 1
+		for ; k >= 0; k-- {
+			if at[k]++; at[k] < len(s.values[k].list) {
+				break
+			}
+			at[k] = 0
+		}
+		if k < 0 {
+			return results, nil
+		}
+	}
+}
+
+// look finds out once what profile cost the model has.
+func (e *Evaluator) look(ctx context.Context) error {
+	if e.looked {
+		return nil
+	}
+	p, err := e.set.NewProfile(ctx)
+	if ctx.Err() != nil {
+		return ctx.Err()
+	}
+	e.profile, e.profileErr, e.looked = p, err, true
+	e.layered = err == nil && p.Layered()
+	return nil
+}
+
+func (s *Surface) combine(ctx context.Context, at []int, o Options) (*combination, error) {
+	set := *s.ev.set
+	set.Lets = maps.Clone(set.Lets)
+	if set.Lets == nil {
+		set.Lets = map[string]formula.Node{}
+	}
+	c := &combination{ctx: ctx, s: s, set: &set, o: o, values: map[string]string{}, chosen: map[string]formulaText{}, params: make([]float64, len(s.params))}
+	for i, v := range s.values {
+		f := v.list[at[i]]
+		set.Lets[v.name] = f.node
+		c.chosen[v.name] = f
+		c.values[v.written] = strings.TrimSpace(f.text.S)
+	}
+	var err error
+	if c.in, c.exact, err = set.NewExact(ctx); err != nil {
+		return nil, placed(s.place, err)
+	}
+	return c, nil
+}
+
+// enclose is the value of a formula without variables.
+func (c *combination) enclose(f formulaText) (enclosure.Interval, error) {
+	x, err := c.in.Scalar(f.node)
+	if err == nil {
+		err = c.exact.Ring.Err(x)
+	}
+	if err != nil {
+		return enclosure.Interval{}, placed(f.text, err)
+	}
+	for _, v := range c.exact.Ring.Support(x) {
+		switch y := c.exact.Ring.Symbol(v); y.Kind {
+		case jet.Constant:
+			return enclosure.Interval{}, fault(f.text, fmt.Sprintf(`give it one: values = { %s = "1" }`, y.Name), "the constant %s has no value", y.Name)
+		case jet.Coordinate, jet.Derivative:
+			return enclosure.Interval{}, fault(f.text, "write a number", "%s has no value here", y.Name)
+		}
+	}
+	i := c.exact.Ring.Enclose(x, nil, precision)
+	if i.IsEntire() || !i.IsBounded() {
+		return i, fault(f.text, "", "%s has no finite value%s", strings.TrimSpace(f.text.S), c.where())
+	}
+	return i, nil
+}
+
+// where names the values, for a message.
+func (c *combination) where() string {
+	if len(c.values) == 0 {
+		return ""
+	}
+	var parts []string
+	for _, v := range c.s.values {
+		parts = append(parts, v.written+" = "+c.values[v.written])
+	}
+	return " for " + strings.Join(parts, ", ")
+}
+
+// number is the float64 nearest to the middle of the enclosure.
+func (c *combination) number(f formulaText) (float64, error) {
+	i, err := c.enclose(f)
+	if err != nil {
+		return 0, err
+	}
+	mid := new(big.Float).SetPrec(2*precision).Add(i.Lo(), i.Hi())
+	x, _ := mid.Quo(mid, big.NewFloat(2)).Float64()
+	if math.IsInf(x, 0) {
+		return x, fault(f.text, "", "%s is too large%s", strings.TrimSpace(f.text.S), c.where())
+	}
+	return x, nil
+}
+
+func (c *combination) numbers(list []formulaText) ([]float64, error) {
+	out := make([]float64, len(list))
+	for i, f := range list {
+		var err error
+		if out[i], err = c.number(f); err != nil {
+			return nil, err
+		}
+	}
+	return out, nil
+}
+
+// evaluate integrates and compares.
+func (c *combination) evaluate() (Result, error) {
+	s := c.s
+	r := Result{Surface: s.Name, Values: c.values, Expected: s.Expected}
+	within := s.src.Within
+	if within == nil {
+		within = defaultWithin
+	}
+	rel, _ := within.Float64()
+	if s.energy != nil {
+		x, err := c.number(*s.energy)
+		if err != nil {
+			return r, err
+		}
+		r.Claimed = &x
+	}
+	surface, err := c.surfaceOf()
+	if err != nil {
+		return r, err
+	}
+	tr, options, err := c.traces()
+	if err != nil {
+		return r, err
+	}
+	density, err := c.density()
+	if err != nil {
+		return r, err
+	}
+	options.MaxEvaluations = c.o.MaxEvaluations
+	options.Rel = math.Max(1e-13, math.Min(1e-11, rel/10))
+	if r.Claimed != nil && *r.Claimed == 0 {
+		options.Abs = rel / 10
+	}
+	reason, onWell, err := c.offWell()
+	if err != nil {
+		return r, err
+	}
+	if reason != "" {
+		return r.refuse(reason), nil
+	}
+	if onWell {
+		options.Well = nil
+	}
+	q, err := quadrature.Integrate(c.ctx, surface, tr, density, options)
+	if c.ctx.Err() != nil {
+		return r, c.ctx.Err()
+	}
+	limited := errors.Is(err, quadrature.ErrBudget) || errors.Is(err, quadrature.ErrAccuracy)
+	r.Evaluations = q.Evaluations
+	if err != nil && !limited {
+		return r.refuse(c.explain(err)), nil
+	}
+	r.Energy, r.Error, r.Area = &q.Energy, &q.Error, &q.Area
+	c.compare(&r, rel)
+	if limited && r.Verdict != identity.Supported {
+		r.Verdict = identity.Open
+		r.add("the accuracy asked for was not reached: " + strings.TrimPrefix(err.Error(), "quadrature: "))
+	}
+	if err := c.slice(surface, tr, options, &r); err != nil {
+		return r, err
+	}
+	r.Met = r.Verdict == r.Expected || r.Verdict == "" && r.Expected == ""
+	return r, nil
+}
+
+// refuse is a result without an energy.
+func (r Result) refuse(reason string) Result {
+	r.Verdict = identity.Open
+	if r.Expected == "" {
+		r.Expected = identity.Supported
+	}
+	r.Met = r.Verdict == r.Expected
+	r.add(reason)
+	return r
+}
+
+func (r *Result) add(reason string) {
+	if r.Reason != "" {
+		r.Reason += "; "
+	}
+	r.Reason += reason
+}
+
+// rounding is the relative error of the claimed value after rounding, with a
+// margin.
+const rounding = 0x1p-52
+
+// compare compares the energy with the claimed one. rel is the difference
+// allowed relative to it, or absolutely where it is 0.
+func (c *combination) compare(r *Result, rel float64) {
+	if r.Claimed == nil {
+		return
+	}
+	size := math.Abs(*r.Claimed)
+	allowed := rel * size
+	if size == 0 {
+		allowed = rel
+	}
+	difference := math.Abs(*r.Energy - *r.Claimed)
+	switch {
+	case !(difference <= *r.Error+allowed+rounding*size):
+		r.Verdict = identity.Open
+		r.add(fmt.Sprintf("the energy is %.17g with an estimated error of %.2g, the claimed energy %.17g: they differ by %.3g, and floating-point numbers refute nothing", *r.Energy, *r.Error, *r.Claimed, difference))
+	case !(*r.Error <= allowed+1e-12*size):
+		r.Verdict = identity.Open
+		r.add(fmt.Sprintf("the energy %.17g agrees with the claimed %.17g, but its estimated error %.2g is more than the %.2g allowed", *r.Energy, *r.Claimed, *r.Error, allowed))
+	default:
+		r.Verdict = identity.Supported
+	}
+}

@@ -1,0 +1,48 @@
+package creases
+
+import (
+	"math/big"
+
+	"creaseproof/identity"
+)
+
+// Result is what came of one surface at one choice of its values.
+type Result struct {
+	Surface string            `json:"surface"`
+	Values  map[string]string `json:"values,omitempty"` // as written in the file
+
+	// Energy, Error and Area are absent where the surface was refused. Error
+	// is an estimate of the absolute error, meant to be at least the true one.
+	Energy      *float64 `json:"energy,omitempty"`
+	Error       *float64 `json:"error,omitempty"`
+	Area        *float64 `json:"area,omitempty"` // in the plane the length
+	Evaluations int      `json:"evaluations,omitempty"`
+
+	// Slices is the energy by horizontal slices and SlicesError its error,
+	// absent where the model or the surface has none.
+	Slices      *float64 `json:"slices,omitempty"`
+	SlicesError *float64 `json:"slices_error,omitempty"`
+
+	// Claimed is the claimed energy, rounded once.
+	Claimed *float64 `json:"claimed,omitempty"`
+
+	// Verdict and Expected are empty for a surface that was integrated and
+	// claims no energy; a surface that was refused is open.
+	Verdict  identity.Verdict `json:"verdict,omitempty"`
+	Expected identity.Verdict `json:"expected,omitempty"`
+	Met      bool             `json:"met"`
+	Reason   string           `json:"reason,omitempty"`
+}
+
+// Options of an evaluation. The zero value is ready for use.
+type Options struct {
+	// MaxEvaluations is the budget of evaluations of the density for each
+	// surface and choice of values; 2e6 if zero.
+	MaxEvaluations int
+	// NoSlices leaves out the second value.
+	NoSlices bool
+}
+
+// defaultWithin is the relative difference allowed between an energy and the
+// claimed one, beside the error estimate.
+var defaultWithin = big.NewRat(1, 1e9)
