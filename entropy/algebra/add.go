@@ -150,13 +150,12 @@ func (p Poly) parts(v Var) []part {
 		return []part{{0, p}}
 	}
 	r := p.r
-	var exponents []int
+	exponents := make([]int, 0, len(r.coefs))
 	for i := range r.coefs {
-		e := r.lay.field(r.term(i), k+1)
-		if j, found := slices.BinarySearch(exponents, e); !found {
-			exponents = slices.Insert(exponents, j, e)
-		}
+		exponents = append(exponents, r.lay.field(r.term(i), k+1))
 	}
+	slices.Sort(exponents)
+	exponents = slices.Compact(exponents)
 	ps := make([]part, len(exponents))
 	exps := make([][]uint64, len(ps))
 	coefs := make([][]Rat, len(ps))

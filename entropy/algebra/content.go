@@ -3,15 +3,18 @@ package algebra
 import "math/big"
 
 // Content returns the rational c, with the sign of the leading coefficient, such
-// that p/c has coprime integer coefficients; 0 where p is 0 or poisoned.
+// that p/c has coprime integer coefficients; 0 where p is 0 or poisoned, and where
+// c would exceed MaxBits.
 func (p Poly) Content() Rat {
 	if p.Len() == 0 {
 		return Rat{}
 	}
-	return content(p.r.coefs)
+	c, _ := content(p.r.coefs)
+	return c
 }
 
-func content(coefs []Rat) Rat {
+// content returns false where the result would exceed MaxBits.
+func content(coefs []Rat) (Rat, bool) {
 	n, d := uint64(0), uint64(1)
 	ok := true
 	for i := range coefs {
@@ -34,7 +37,7 @@ func content(coefs []Rat) Rat {
 	}
 	sign := coefs[0].Sign()
 	if ok {
-		return Rat{n: int64(sign) * int64(n), dm: int64(d) - 1}
+		return Rat{n: int64(sign) * int64(n), dm: int64(d) - 1}, true
 	}
 	num, den := new(big.Int), big.NewInt(1)
 	var g big.Int
@@ -43,19 +46,26 @@ func content(coefs []Rat) Rat {
 		num.GCD(nil, nil, num, g.Abs(b.Num()))
 		g.GCD(nil, nil, den, b.Denom())
 		den.Mul(den, g.Quo(b.Denom(), &g))
+		if den.BitLen() > MaxBits {
+			return Rat{}, false
+		}
 	}
 	if sign < 0 {
 		num.Neg(num)
 	}
-	return demote(new(big.Rat).SetFrac(num, den))
+	return demote(new(big.Rat).SetFrac(num, den)), true
 }
 
 // Primitive returns the content c and p/c, which has coprime integer
-// coefficients and a positive leading one; 0 and p where p is 0 or poisoned.
+// coefficients and a positive leading one; 0 and p where p is 0 or poisoned. Where
+// the content would exceed MaxBits it is 0 and the polynomial poisoned.
 func (p Poly) Primitive() (Rat, Poly) {
-	c := p.Content()
-	if c.IsZero() {
-		return c, p
+	if p.Len() == 0 {
+		return Rat{}, p
+	}
+	c, ok := content(p.r.coefs)
+	if !ok {
+		return Rat{}, poison(errBits)
 	}
 	inv, _ := c.Inv()
 	return c, p.Scale(inv)

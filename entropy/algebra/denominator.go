@@ -48,15 +48,20 @@ func common(f, g []Factor) (basis []shared, split bool) {
 // looked for.
 const smallBase = 64
 
-// commonFactor looks for a common factor of p and q that is not constant; they
-// have coprime integer coefficients and do not divide each other.
-func commonFactor(p, q Poly) (Poly, bool) {
+// commonFactor looks for a common factor g of p and q that is not constant, and
+// returns it with p/g and q/g; they have coprime integer coefficients and do not
+// divide each other.
+func commonFactor(p, q Poly) (g, pg, qg Poly, ok bool) {
 	if p.Len() > smallBase || q.Len() > smallBase || irreducible(p) || irreducible(q) {
-		return Poly{}, false
+		return Poly{}, Poly{}, Poly{}, false
 	}
-	g, _ := GCD(p, q)
-	_, constant := g.IsConst()
-	return g, !constant && g.Err() == nil
+	g, _ = GCD(p, q)
+	if _, constant := g.IsConst(); constant || g.Err() != nil {
+		return Poly{}, Poly{}, Poly{}, false
+	}
+	pg, ok1 := p.DivExact(g)
+	qg, ok2 := q.DivExact(g)
+	return g, pg, qg, ok1 && ok2
 }
 
 // refine splits bases until none divides another.
@@ -83,10 +88,8 @@ func refine(list []shared) (basis []shared, split bool) {
 				todo = append(todo, shared{r, q.a, q.b}, shared{p.base, p.a + q.a, p.b + q.b})
 				basis = slices.Delete(basis, i, i+1)
 				keep = false
-			} else if g, ok := commonFactor(p.base, q.base); ok {
+			} else if g, r, s, ok := commonFactor(p.base, q.base); ok {
 				split = true
-				r, _ := p.base.DivExact(g)
-				s, _ := q.base.DivExact(g)
 				todo = append(todo, shared{r, p.a, p.b}, shared{s, q.a, q.b}, shared{g, p.a + q.a, p.b + q.b})
 				basis = slices.Delete(basis, i, i+1)
 				keep = false
@@ -199,8 +202,12 @@ func reduce(num Poly, den []Factor, try func(i int) bool) Fraction {
 		if _, constant := g.IsConst(); constant || g.Err() != nil {
 			continue
 		}
-		rest, _ := b.DivExact(g)
-		num, _ = num.DivExact(g)
+		rest, ok1 := b.DivExact(g)
+		less, ok2 := num.DivExact(g)
+		if !ok1 || !ok2 {
+			continue
+		}
+		num = less
 		list := []shared{{rest, e, 0}}
 		if e > 1 {
 			list = append(list, shared{g, e - 1, 0})
@@ -222,13 +229,17 @@ func reduce(num Poly, den []Factor, try func(i int) bool) Fraction {
 }
 
 // factors writes p, which is not 0, as a rational times a product of bases.
-func factors(p Poly) (unit Rat, den []Factor) {
+// It fails at a limit only.
+func factors(p Poly) (unit Rat, den []Factor, err error) {
 	unit, p = p.Primitive()
 	if m := p.MonomialContent(); m != One {
 		for _, w := range m.Powers() {
 			den = append(den, Factor{Variable(w.Var), w.Exp})
 		}
 		p, _ = p.DivExact(monomialPoly(m))
+	}
+	if p.Err() != nil {
+		return unit, nil, p.Err()
 	}
 	if _, ok := p.IsConst(); !ok {
 		if p.Len() <= smallBase && !irreducible(p) {
@@ -239,5 +250,5 @@ func factors(p Poly) (unit Rat, den []Factor) {
 		}
 	}
 	slices.SortFunc(den, func(x, y Factor) int { return x.Base.compareTo(y.Base) })
-	return unit, den
+	return unit, den, nil
 }

@@ -50,7 +50,11 @@ func (p Poly) DivExact(q Poly) (quo Poly, ok bool) {
 		quo = canonical(vars, lay, exps, a.coefs).Scale(inv)
 		return quo, quo.Err() == nil
 	}
-	ca, cb := content(a.coefs), content(b.coefs)
+	ca, ok1 := content(a.coefs)
+	cb, ok2 := content(b.coefs)
+	if !ok1 || !ok2 {
+		return poison(errBits), false
+	}
 	scale, _ := ca.Quo(cb)
 	d := division{w: w, guard: g, a: ea, b: eb}
 	var quotient []Rat

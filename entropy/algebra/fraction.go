@@ -181,7 +181,8 @@ func (f Fraction) Mul(g Fraction) Fraction {
 	return reduce(a.Mul(b), den, func(int) bool { return true })
 }
 
-// Inv returns 1/f, and false where f is 0. It is poisoned, and true, where f is.
+// Inv returns 1/f, and false where f is 0. It is poisoned, and true, where f is
+// and where a limit is reached.
 func (f Fraction) Inv() (Fraction, bool) {
 	if f.Err() != nil {
 		return f, true
@@ -189,7 +190,10 @@ func (f Fraction) Inv() (Fraction, bool) {
 	if f.IsZero() {
 		return Fraction{}, false
 	}
-	unit, den := factors(f.num)
+	unit, den, err := factors(f.num)
+	if err != nil {
+		return Fraction{num: poison(err)}, true
+	}
 	inv, _ := unit.Inv()
 	return reduce(expand(f.den).Scale(inv), den, func(int) bool { return true }), true
 }

@@ -200,6 +200,22 @@ func TestFractionSplitsBases(t *testing.T) {
 	assert.True(t, g.Num().Equal(b.Add(one)))
 }
 
+func TestFractionVars(t *testing.T) {
+	x := variables(4)
+	f, _ := FromPoly(x[3]).Quo(FromPoly(x[1].Add(x[0])))
+	assert.Equal(t, []Var{0, 1, 3}, f.Vars())
+	assert.True(t, f.Has(0) && f.Has(3))
+	assert.False(t, f.Has(2))
+	_, ok := f.IsConst()
+	assert.False(t, ok)
+	_, ok = f.IsPoly()
+	assert.False(t, ok)
+	g := FromFactors(x[0], []Factor{{x[0].Mul(x[1]).Scale(Int(-2)), 2}, {Const(Int(3)), 1}})
+	checkFraction(t, g)
+	assert.True(t, g.Equal(FromFactors(Const(Frac64(1, 12)), []Factor{{x[1], 2}, {x[0], 1}})))
+	assert.ErrorIs(t, FromFactors(x[0], []Factor{{x[1], 0}}).Err(), ErrExponent)
+}
+
 func TestFractionEvalAtPole(t *testing.T) {
 	f, _ := FromPoly(Variable(0)).Inv()
 	_, ok := f.Eval(func(Var) Rat { return Rat{} })

@@ -53,7 +53,7 @@ func substFractions(p Poly, m map[Var]Fraction) Fraction {
 	if !fractions {
 		return Fraction{num: p.SubstMany(polys)}
 	}
-	h := homogeneous{num: polys, den: make(map[Var]Poly), degree: make(map[Var]int)}
+	h := homogeneous{num: polys, den: make(map[Var]Poly), degree: make(map[Var]int), work: budget{MaxProducts}}
 	var lists []Fraction
 	for _, v := range vars {
 		h.degree[v] = p.Degree(v)
@@ -77,6 +77,7 @@ func substFractions(p Poly, m map[Var]Fraction) Fraction {
 type homogeneous struct {
 	num, den map[Var]Poly
 	degree   map[Var]int
+	work     budget
 }
 
 func (h *homogeneous) subst(p Poly, vars []Var) Poly {
@@ -90,15 +91,15 @@ func (h *homogeneous) subst(p Poly, vars []Var) Poly {
 	last := 0
 	for i, x := range parts {
 		if i > 0 {
-			sum = sum.Mul(n.Pow(last - x.exp))
+			sum = h.work.mul(sum, n.Pow(last-x.exp))
 		}
-		sum = sum.Add(h.subst(x.poly, vars[1:]).Mul(d.Pow(h.degree[v] - x.exp)))
+		sum = sum.Add(h.work.mul(h.subst(x.poly, vars[1:]), d.Pow(h.degree[v]-x.exp)))
 		last = x.exp
 		if sum.Err() != nil {
 			return sum
 		}
 	}
-	return sum.Mul(n.Pow(last))
+	return h.work.mul(sum, n.Pow(last))
 }
 
 // FromFactors returns num over the product of the given powers, which are of any

@@ -33,6 +33,17 @@ func (s *gcdState) spend(n int) bool {
 	return s.left >= 0
 }
 
+// div is a division that can fail at a limit only.
+func (s *gcdState) div(a, b Poly) Poly {
+	q, ok := a.DivExact(b)
+	if !ok {
+		s.left = -1
+		return onePoly
+	}
+	_, q = q.Primitive()
+	return q
+}
+
 var onePoly = Const(Int(1))
 
 // gcd returns anything at all once the work is spent.
@@ -59,9 +70,7 @@ func (s *gcdState) gcd(a, b Poly) Poly {
 			common = append(common, Power{v, min(x, y)})
 			return true
 		})
-		a, _ = a.DivExact(monomialPoly(ma))
-		b, _ = b.DivExact(monomialPoly(mb))
-		g := s.gcd(a, b)
+		g := s.gcd(s.div(a, monomialPoly(ma)), s.div(b, monomialPoly(mb)))
 		return g.Mul(monomialPoly(NewMonomial(common...)))
 	}
 	if len(a.r.vars) == 0 || len(b.r.vars) == 0 {
@@ -130,8 +139,7 @@ func (s *gcdState) sameVars(a, b Poly) Poly {
 	if s.left < 0 {
 		return onePoly
 	}
-	a, _ = a.DivExact(ca)
-	b, _ = b.DivExact(cb)
+	a, b = s.div(a, ca), s.div(b, cb)
 	c := s.gcd(ca, cb)
 	if a.Degree(v) < b.Degree(v) {
 		a, b = b, a
@@ -149,9 +157,7 @@ func (s *gcdState) sameVars(a, b Poly) Poly {
 		if s.left < 0 {
 			return onePoly
 		}
-		r, _ = r.DivExact(cr)
-		_, r = r.Primitive()
-		a, b = b, r
+		a, b = b, s.div(r, cr)
 	}
 	return c
 }

@@ -26,6 +26,14 @@ func manyVariables(n int) Poly {
 	return FromTerms(ts)
 }
 
+func powers(n int) []Term {
+	ts := make([]Term, n)
+	for i := range ts {
+		ts[i] = Term{NewMonomial(Power{0, i}), Int(1)}
+	}
+	return ts
+}
+
 func TestLargeExponentsAreCheap(t *testing.T) {
 	x, y := Variable(0), Variable(1)
 	one := Const(Int(1))
@@ -71,7 +79,17 @@ func TestExplosionsArePoisoned(t *testing.T) {
 		"negative monomial":    func() Poly { return monomialPoly(NewMonomial(Power{0, -1})) },
 		"substitution":         func() Poly { return x[0].Pow(100_000_000).Subst(0, sumOf(x[1], one)) },
 		"substituted number":   func() Poly { return x[0].Pow(100_000_000).Add(x[1]).Subst(0, Const(Int(2))) },
-		"many variables":       func() Poly { return manyVariables(50_000) },
+		"content": func() Poly {
+			ts := make([]Term, 3000)
+			for i := range ts {
+				c, _ := Int(int64(2*i + 3)).Pow(-2000)
+				ts[i] = Term{NewMonomial(Power{0, i}), c}
+			}
+			_, q := FromTerms(ts).Primitive()
+			return q
+		},
+		"powers of one":  func() Poly { return FromTerms(powers(MaxTerms-1)).Subst(0, sumOf(x[0], one)) },
+		"many variables": func() Poly { return manyVariables(50_000) },
 		"sum of many": func() Poly {
 			return manyVariables(5_000).Add(manyVariables(8_000).Subst(0, x[0].Pow(100)))
 		},

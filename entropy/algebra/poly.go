@@ -60,7 +60,7 @@ func FromTerms(terms []Term) Poly {
 	if len(terms) > MaxProducts {
 		return poison(errProducts)
 	}
-	var vars []Var
+	seen := make(map[Var]struct{})
 	deg := 0
 	for _, t := range terms {
 		if !t.Mono.Valid() {
@@ -69,11 +69,10 @@ func FromTerms(terms []Term) Poly {
 		deg = max(deg, t.Mono.Degree())
 		for i := range t.Mono.len() {
 			v, _ := t.Mono.at(i)
-			if k, found := slices.BinarySearch(vars, v); !found {
-				vars = slices.Insert(vars, k, v)
-			}
+			seen[v] = struct{}{}
 		}
 	}
+	vars := sortedKeys(seen)
 	c := newCollector(vars, deg)
 	e := make([]uint64, c.lay.words)
 	for _, t := range terms {

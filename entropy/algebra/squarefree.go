@@ -26,6 +26,10 @@ func SquareFree(p Poly) (unit Rat, factors []Factor, complete bool) {
 	}
 	p, _ = p.DivExact(monomialPoly(m))
 	for {
+		if p.Err() != nil {
+			complete = false
+			break
+		}
 		if _, constant := p.IsConst(); constant {
 			break
 		}

@@ -41,10 +41,32 @@ func (p Poly) SubstMany(m map[Var]Poly) Poly {
 		}
 		return p.EvalPartial(values)
 	}
-	return p.subst(vars, m)
+	return p.subst(vars, m, &budget{MaxProducts})
 }
 
-func (p Poly) subst(vars []Var, m map[Var]Poly) Poly {
+// budget bounds the work of many products together.
+type budget struct{ left int }
+
+// mul multiplies unless the work is spent.
+func (b *budget) mul(p, q Poly) Poly {
+	n := p.Len() * q.Len()
+	b.left -= n * (1 + (p.someBits()+q.someBits())/32)
+	if n > MaxProducts || b.left < 0 {
+		return poison(errProducts)
+	}
+	return p.Mul(q)
+}
+
+// someBits returns the bit length of a coefficient in the middle, where those of
+// a power are largest.
+func (p Poly) someBits() int {
+	if n := p.Len(); n > 0 {
+		return p.r.coefs[n/2].BitLen()
+	}
+	return 0
+}
+
+func (p Poly) subst(vars []Var, m map[Var]Poly, work *budget) Poly {
 	for len(vars) > 0 && !p.Has(vars[0]) {
 		vars = vars[1:]
 	}
@@ -56,15 +78,15 @@ func (p Poly) subst(vars []Var, m map[Var]Poly) Poly {
 	last := 0
 	for i, x := range p.parts(vars[0]) {
 		if i > 0 {
-			sum = sum.Mul(q.Pow(last - x.exp))
+			sum = work.mul(sum, q.Pow(last-x.exp))
 		}
-		sum = sum.Add(x.poly.subst(vars[1:], m))
+		sum = sum.Add(x.poly.subst(vars[1:], m, work))
 		last = x.exp
 		if sum.Err() != nil {
 			return sum
 		}
 	}
-	return sum.Mul(q.Pow(last))
+	return work.mul(sum, q.Pow(last))
 }
 
 // EvalPartial replaces indeterminates by numbers.
@@ -126,7 +148,7 @@ func (p Poly) EvalPartial(values map[Var]Rat) Poly {
 func powersOf(c Rat) func(int) (Rat, bool) {
 	known := []Rat{Int(1), c}
 	return func(n int) (Rat, bool) {
-		if n > 64 {
+		if n > 64 || c.b != nil && n > MaxBits/c.BitLen() {
 			return c.Pow(n)
 		}
 		for len(known) <= n {
