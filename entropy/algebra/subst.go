@@ -50,7 +50,7 @@ type budget struct{ left int }
 // mul multiplies unless the work is spent.
 func (b *budget) mul(p, q Poly) Poly {
 	n := p.Len() * q.Len()
-	b.left -= n * (1 + (p.someBits()+q.someBits())/32)
+	b.left -= n * (4 + (p.someBits()+q.someBits())/16)
 	if n > MaxProducts || b.left < 0 {
 		return poison(errProducts)
 	}
