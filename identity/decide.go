@@ -26,6 +26,10 @@ type decider struct {
 	// jumpRewriter is what atJump installed.
 	jumpRewriter jet.Rewriter
 	ideal        []algebra.Poly // modulo: generators that are not solved
+	equations    []algebra.Poly // modulo: the same before they were differentiated
+	// hidden says that the equations may have consequences that were not
+	// found, so that a point is no refutation.
+	hidden bool
 }
 
 // constraint is Value Relation 0.
@@ -94,10 +98,11 @@ func (d *decider) run() error {
 	d.ring = d.ex.Ring
 	d.in.Given = d.claim.Given
 	d.in.Jump = d.claim.Jump
+	d.in.Reset()
 	for _, s := range d.claim.Solve {
 		d.ring.ConstantVar(s)
 	}
-	if err := d.assume(); err != nil {
+	if err := d.assumeSigns(); err != nil {
 		return err
 	}
 	if err := d.rewrite(); err != nil {
@@ -106,10 +111,27 @@ func (d *decider) run() error {
 	if d.rec.Verdict != "" {
 		return nil
 	}
+	if err := d.assume(); err != nil {
+		return err
+	}
+	if err := d.decide(); err != nil {
+		return err
+	}
+	if d.hidden && d.rec.Verdict == Refuted {
+		d.rec.Witness, d.rec.Solution, d.rec.Method = nil, "", ""
+		d.open("the equations determine one derivative in two ways that do not agree, so they have consequences that are not followed: no point refutes the claim")
+	}
+	return nil
+}
+
+func (d *decider) decide() error {
 	switch st := d.claim.Statement; st.Relation {
 	case formula.Equal:
 		return d.equality()
 	case formula.LessEqual, formula.GreaterEqual:
+		if err := d.prolongInequality(); err != nil || d.rec.Verdict != "" {
+			return err
+		}
 		return d.inequality()
 	case formula.Integrable:
 		return d.integrable()
@@ -121,12 +143,37 @@ func (d *decider) run() error {
 	return fmt.Errorf("a statement of an unknown kind")
 }
 
-// assume evaluates the assumptions of the setting and the claim, and its box.
-// At a jump only constants and coordinates may be assumed about.
-func (d *decider) assume() error {
+// assumeSigns tells the ring the signs that the assumptions and the box give.
+func (d *decider) assumeSigns() error {
 	if err := d.ex.AssumeSigns(d.in, d.claim.Assume); err != nil {
 		return err
 	}
+	for _, b := range d.claim.Box {
+		x, err := d.in.Scalar(b.Node)
+		if err != nil {
+			return err
+		}
+		if v, ok := loneVar(x); ok && d.ring.Symbol(v).Sign == jet.AnySign {
+			switch {
+			case b.Lo.Sign() > 0:
+				d.ring.Assume(v, jet.Positive)
+			case b.Lo.Sign() == 0:
+				d.ring.Assume(v, jet.NonNegative)
+			case b.Hi.Sign() < 0:
+				d.ring.Assume(v, jet.Negative)
+			case b.Hi.Sign() == 0:
+				d.ring.Assume(v, jet.NonPositive)
+			}
+		}
+	}
+	return nil
+}
+
+// assume evaluates the assumptions of the setting and the claim, and its box,
+// on the jets that the claim is about: a derivative that an equation
+// determines is replaced in them. At a jump only constants and coordinates may
+// be assumed about.
+func (d *decider) assume() error {
 	for _, list := range [][]entropy.Assumption{d.claim.Setting.Assume, d.claim.Assume} {
 		for _, a := range list {
 			l, err := d.in.Scalar(a.Left)
@@ -151,18 +198,6 @@ func (d *decider) assume() error {
 		}
 		lo, hi := x.Sub(jet.Rational(b.Lo)), jet.Rational(b.Hi).Sub(x)
 		d.assumed = append(d.assumed, constraint{lo, ">="}, constraint{hi, ">="})
-		if v, ok := loneVar(x); ok && d.ring.Symbol(v).Sign == jet.AnySign {
-			switch {
-			case b.Lo.Sign() > 0:
-				d.ring.Assume(v, jet.Positive)
-			case b.Lo.Sign() == 0:
-				d.ring.Assume(v, jet.NonNegative)
-			case b.Hi.Sign() < 0:
-				d.ring.Assume(v, jet.Negative)
-			case b.Hi.Sign() == 0:
-				d.ring.Assume(v, jet.NonPositive)
-			}
-		}
 	}
 	return nil
 }

@@ -5,6 +5,7 @@ import (
 	"fmt"
 
 	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/enclosure"
 	"creaseproof/entropy/jet"
 )
 
@@ -155,4 +156,38 @@ func (d *decider) traces(at jet.Point) error {
 		}
 	}
 	return nil
+}
+
+// jumps reports whether the gradient certainly jumps at a point: some
+// component of the difference of the traces is not zero there, or is free.
+func (d *decider) jumps(at jet.Point, wide map[algebra.Var]enclosure.Interval) bool {
+	for i := range d.ring.Coordinates {
+		plus, err := d.ring.Jet(0, jet.Index{}.Plus(i), jet.PlusSide)
+		if err != nil {
+			return false
+		}
+		minus, err := d.ring.Jet(0, jet.Index{}.Plus(i), jet.MinusSide)
+		if err != nil {
+			return false
+		}
+		q, err := d.ring.Sub(plus, minus)
+		if err != nil {
+			return false
+		}
+		for _, v := range d.ring.Support(q) {
+			_, known := at[v]
+			_, enclosed := wide[v]
+			if !known && !enclosed && d.ring.Symbol(v).Kind == jet.Derivative {
+				return true
+			}
+		}
+		if wide == nil {
+			if s, ok := d.ring.Sign(q, at); ok && s != 0 {
+				return true
+			}
+		} else if s, ok := d.ring.EncloseAt(q, at, wide, 256).Sign(); ok && s != 0 {
+			return true
+		}
+	}
+	return false
 }

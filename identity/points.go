@@ -192,7 +192,7 @@ func (p *points) draw() jet.Point {
 	for _, s := range p.signs {
 		at[s] = algebra.Int(1 - 2*p.rng.Int64N(2))
 	}
-	if len(p.d.ideal) > 0 && !p.onVariety(at, p.d.ideal) {
+	if len(p.d.ideal) > 0 && (!p.onVariety(at, p.d.ideal) || !p.d.extends(at)) {
 		return nil
 	}
 	if p.d.claim.Jump {
@@ -219,5 +219,5 @@ func (p *points) admissible(at jet.Point) bool {
 			return false
 		}
 	}
-	return true
+	return !p.d.claim.Jump || p.d.jumps(at, nil)
 }

@@ -1,6 +1,7 @@
 package identity
 
 import (
+	"errors"
 	"fmt"
 	"slices"
 
@@ -35,6 +36,9 @@ func (d *decider) rewrite() error {
 		eqs = append(eqs, &solved{r.Unknown, r.Index, v, nil})
 	}
 	if d.claim.Jump {
+		if len(d.claim.Modulo) > 0 {
+			return &entropy.Error{At: d.claim.Modulo[0].At(), Err: errors.New("a claim at a jump is already on the well on both sides"), Advice: "take modulo away"}
+		}
 		return d.atJump(eqs)
 	}
 	fixed := len(eqs)
@@ -51,29 +55,30 @@ func (d *decider) rewrite() error {
 		if f.IsZero() {
 			continue
 		}
-		all = append(all, f.Num())
-		if s, ok := d.solve(f, eqs); ok {
+		p := radical(f.Num())
+		all = append(all, p)
+		if s, ok := d.solve(algebra.FromPoly(p), eqs); ok {
 			eqs = append(eqs, s)
 		} else {
-			d.ideal = append(d.ideal, f.Num())
+			d.ideal = append(d.ideal, p)
 		}
 	}
 	if len(d.ideal) > 0 { // equations that are not solved: keep all as an ideal
-		d.ideal, eqs = all, eqs[:fixed]
-		d.ring.SetRewriter(d.rewriter(eqs))
-		d.in.Reset()
-		return nil
+		d.ideal, d.equations, eqs = all, all, eqs[:fixed]
 	}
 	if len(eqs) > 0 {
 		d.ring.SetRewriter(d.rewriter(eqs))
 		d.in.Reset()
 	}
-	return nil
+	return d.compatible(eqs)
 }
 
 // rewriter replaces u_J by what the equation for some u_K, J covering K, makes
 // of it. Restrictions to constants have vanishing derivatives by themselves.
 func (d *decider) rewriter(eqs []*solved) jet.Rewriter {
+	for _, e := range eqs {
+		e.derived = nil // made when fewer equations were known
+	}
 	busy := map[string]bool{}
 	return func(unknown int, j jet.Index, side jet.Side) (algebra.Fraction, bool, error) {
 		if side != jet.NoSide {

@@ -24,6 +24,9 @@ func (d *decider) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 	if err != nil {
 		return nil, err
 	}
+	if len(rows) == 0 { // nothing is asked of the unknowns
+		rows = append(rows, algebra.Poly{})
+	}
 	a := make([][]algebra.Fraction, 0, len(rows))
 	b := make([]algebra.Fraction, 0, len(rows))
 	for _, p := range rows {
@@ -42,12 +45,12 @@ func (d *decider) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 		}
 		a, b = append(a, row), append(b, algebra.FromPoly(rest.Neg()))
 	}
-	x, ok, err := algebra.SolveFractions(a, b)
+	x, ok, err := d.solveReduced(a, b)
 	if err != nil {
 		return nil, err
 	}
-	if !ok && !d.independent(gaps...) {
-		return nil, fmt.Errorf("%w: the linear system of the coefficients has no solution in normal form, but kernels in it may depend on each other", jet.ErrOutside)
+	if !ok && (len(d.ideal) > 0 || len(d.wells) > 0 || !d.independent(gaps...)) {
+		return d.solveAtPoints(gaps, unknown)
 	}
 	if !ok {
 		d.rec.Verdict = Refuted
@@ -84,9 +87,29 @@ func (d *decider) substitute(gaps []algebra.Fraction, sub map[algebra.Var]algebr
 	return out, nil
 }
 
+// fixed reports whether an indeterminate is a number or a constant that the
+// solution may depend on: not the angle of the frame, for the solution holds
+// at every angle.
+func (d *decider) fixed(v algebra.Var) bool {
+	s := d.ring.Symbol(v)
+	switch frame := d.claim.Setting.Frame; {
+	case s.Kind == jet.Constant:
+		return frame == nil || s.Name != frame.Angle
+	case s.Kind == jet.Pi:
+		return true
+	case s.Kind >= jet.Cosine:
+		one, ok := s.Arg.IsConst()
+		if s.Kind == jet.Root && ok && one.IsOne() {
+			return false // an orientation takes both signs
+		}
+		return !slices.ContainsFunc(d.ring.Support(s.Arg), func(w algebra.Var) bool { return !d.fixed(w) })
+	}
+	return false
+}
+
 // coefficients lists the coefficients of the numerators over monomials in all
-// that varies: jets, coordinates and kernels. They are polynomials in the
-// constants.
+// that varies: jets, coordinates, the angle of the frame, and kernels of them.
+// They are polynomials in what is fixed.
 func (d *decider) coefficients(gaps []algebra.Fraction, unknown []algebra.Var) ([]algebra.Poly, error) {
 	for _, k := range d.ring.Kernels(gaps...) {
 		for _, v := range d.ring.Support(d.ring.Symbol(k).Arg) {
@@ -111,7 +134,7 @@ func (d *decider) coefficients(gaps []algebra.Fraction, unknown []algebra.Var) (
 		for m, c := range rest.Num().Terms() {
 			var varying, constant []algebra.Power
 			for _, pw := range m.Powers() {
-				if d.ring.Symbol(pw.Var).Kind == jet.Constant {
+				if d.fixed(pw.Var) {
 					constant = append(constant, pw)
 				} else {
 					varying = append(varying, pw)
@@ -142,7 +165,7 @@ func (d *decider) undetermined(a [][]algebra.Fraction, n int) []bool {
 			lhs[r] = slices.Concat(row[:i], row[i+1:])
 			rhs[r] = row[i]
 		}
-		_, ok, err := algebra.SolveFractions(lhs, rhs)
+		_, ok, err := d.solveReduced(lhs, rhs)
 		free[i] = ok && err == nil
 	}
 	return free
@@ -188,7 +211,7 @@ func (d *decider) solveNonlinear(gaps []algebra.Fraction, rows []algebra.Poly, u
 	switch {
 	case !complete:
 		return nil, fmt.Errorf("%w: %s solves an equation with roots that are not rational", jet.ErrOutside, d.claim.Solve[0])
-	case len(good) == 0 && !d.independent(gaps...):
+	case len(good) == 0 && (len(d.ideal) > 0 || len(d.wells) > 0 || !d.independent(gaps...)):
 		return nil, fmt.Errorf("%w: no rational value solves the normal form, but kernels in it may depend on each other", jet.ErrOutside)
 	case len(good) == 0:
 		d.rec.Verdict, d.rec.Method, d.rec.Solution = Refuted, "rational roots of the coefficients, exact", "none"

@@ -32,6 +32,11 @@ func (p *points) onVariety(at jet.Point, gens []algebra.Poly) bool {
 			return false
 		}
 	}
+	for _, g := range gens {
+		if x, ok := p.d.ring.Exact(algebra.FromPoly(g), at); !ok || !x.IsZero() {
+			return false
+		}
+	}
 	return true
 }
 
@@ -112,7 +117,7 @@ func (p *points) quadric(at jet.Point, g algebra.Poly, used map[algebra.Var]bool
 		}
 	}
 	h := g.EvalPartial(values)
-	if h.TotalDegree() != 2 || len(jets) < 2 {
+	if h.TotalDegree() != 2 || len(jets) < 2 || slices.ContainsFunc(h.Vars(), func(v algebra.Var) bool { return !slices.Contains(jets, v) }) {
 		return false
 	}
 	base, ok := p.latticeZero(h, jets)

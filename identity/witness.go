@@ -197,7 +197,10 @@ func (p *points) admissibleIsolated(at jet.Point, roots map[algebra.Var]enclosur
 			return false
 		}
 	}
-	return true
+	if p.d.claim.Jump {
+		return p.d.jumps(at, roots)
+	}
+	return p.d.extendsIsolated(at, roots)
 }
 
 // signChange isolates a real zero of a polynomial in v alone between two

@@ -279,7 +279,7 @@ func (r *Ring) Jet(unknown int, j Index, side Side) (algebra.Fraction, error) {
 // JetVar is the indeterminate of the derivative of an unknown.
 func (r *Ring) JetVar(unknown int, j Index, side Side) (algebra.Var, error) {
 	if n := j.Order(); n > MaxOrder {
-		return 0, fmt.Errorf("derivative of order %d: at most order %d is supported", n, MaxOrder)
+		return 0, fmt.Errorf("%w: a derivative of order %d; at most order %d is supported", algebra.ErrLimit, n, MaxOrder)
 	}
 	key := jetKey{unknown, j, side}
 	if v, ok := r.jets[key]; ok {
