@@ -4,9 +4,6 @@ import (
 	"context"
 	"errors"
 	"fmt"
-	"runtime"
-	"strings"
-	"sync"
 	"time"
 
 	"creaseproof/identity"
@@ -20,26 +17,12 @@ type Options struct {
 	Timeout time.Duration // for all claims together; 0 means no end
 
 	// Report is called with each result as soon as those before it are there,
-	// from one goroutine.
+	// from the goroutine of Check.
 	Report func(*Result)
 }
 
-// grace is how long a claim that was told to stop may take to do so; after
-// that it is left behind.
-const grace = 300 * time.Millisecond
-
-// Selected reports whether a name is one of those asked for.
-func (o *Options) Selected(name string) bool {
-	if len(o.Only) == 0 {
-		return true
-	}
-	for _, part := range o.Only {
-		if strings.Contains(name, part) {
-			return true
-		}
-	}
-	return false
-}
+// Selected reports whether a claim of that name is asked for.
+func (o *Options) Selected(name string) bool { return selected(o.Only, name) }
 
 // Check decides the claims of the cases, several at once, Jobs of them or as
 // many as there are cores. No verdict depends on that number.
@@ -54,140 +37,79 @@ func Check(ctx context.Context, list []*Case, opt Options) *Outcome {
 type decide func(context.Context, *identity.Claim, identity.Options) (*identity.Record, error)
 
 func check(ctx context.Context, list []*Case, opt Options, decide decide) *Outcome {
-	var todo []*Result
+	type todo struct {
+		c     *Case
+		claim *Claim
+	}
+	var claims []todo
 	for _, c := range list {
 		for _, cl := range c.Claims {
 			if opt.Selected(cl.Name) {
-				todo = append(todo, &Result{Case: c, Claim: cl})
+				claims = append(claims, todo{c, cl})
 			}
 		}
 	}
-	jobs := opt.Jobs
-	if jobs <= 0 {
-		jobs = runtime.GOMAXPROCS(0)
-	}
-	inner, cancel := ctx, context.CancelFunc(func() {})
-	if opt.Timeout > 0 {
-		inner, cancel = context.WithTimeout(ctx, opt.Timeout)
-	}
+	inner, cancel := limited(ctx, opt.Timeout)
 	defer cancel()
-
-	next := make(chan int)
-	ended := make(chan ended, len(todo)) // never blocks, even with nobody left to listen
-	var workers sync.WaitGroup
-	for range min(jobs, len(todo)) {
-		workers.Go(func() {
-			for i := range next {
-				ended <- attempt(inner, todo[i].Claim, opt.Options, decide, i)
-			}
-		})
-	}
-	go func() {
-		defer close(next)
-		for i := range todo {
-			select {
-			case next <- i:
-			case <-inner.Done():
-				return
-			}
-		}
-	}()
-	go func() {
-		workers.Wait()
-		close(ended)
-	}()
-
 	out := &Outcome{}
-	collect(inner, todo, ended, func(r *Result) {
+	emit := func(_ int, r *Result) {
 		out.Results = append(out.Results, r)
 		if opt.Report != nil {
 			opt.Report(r)
 		}
-	})
-	// What is left was not decided, either because ctx ended or at the timeout.
-	out.Interrupted = ctx.Err() != nil && len(out.Results) < len(todo)
-	for _, r := range todo[len(out.Results):] {
-		switch {
-		case r.Record != nil || r.Err != nil:
-		case out.Interrupted:
+	}
+	results, emitted := pool(inner, len(claims), opt.Jobs, func(i int) *Result {
+		return attempt(inner, claims[i].c, claims[i].claim, opt.Options, decide)
+	}, emit)
+	// What is left was not decided, or comes after what was not: either
+	// because ctx ended or at the timeout.
+	out.Interrupted = ctx.Err() != nil && emitted < len(claims)
+	for i := emitted; i < len(claims); i++ {
+		r := results[i]
+		if r == nil && out.Interrupted {
 			continue
-		default:
-			r.Record = &identity.Record{
-				Claim: r.Claim.Name, Verdict: identity.Open,
+		}
+		if r == nil {
+			r = &Result{Case: claims[i].c, Claim: claims[i].claim, Record: &identity.Record{
+				Claim: claims[i].claim.Name, Verdict: identity.Open,
 				Reason: fmt.Sprintf("not decided within the %v allowed", opt.Timeout),
-			}
+			}}
 		}
-		out.Results = append(out.Results, r)
-		if opt.Report != nil {
-			opt.Report(r)
-		}
+		emit(i, r)
 	}
 	return out
 }
 
-// ended is what a worker hands back.
-type ended struct {
-	index   int
-	record  *identity.Record
-	err     error
-	elapsed time.Duration
-	failed  bool
-}
-
-// collect takes what the workers hand back and emits the results that have
-// none missing before them. Once ctx ends it waits for the workers no longer
-// than the grace, and emits nothing after the first result that is missing.
-func collect(ctx context.Context, todo []*Result, from <-chan ended, emit func(*Result)) {
-	done := ctx.Done()
-	var late <-chan time.Time
-	emitted := 0
-	for {
-		select {
-		case e, ok := <-from:
-			if !ok {
-				return
-			}
-			r := todo[e.index]
-			r.Record, r.Elapsed, r.Failed = e.record, e.elapsed, e.failed
-			if e.err != nil {
-				r.Err = r.Case.Place(e.err, r.Claim.pos)
-			}
-			for emitted < len(todo) && (todo[emitted].Record != nil || todo[emitted].Err != nil) {
-				emit(todo[emitted])
-				emitted++
-			}
-		case <-done:
-			done = nil
-			timer := time.NewTimer(grace)
-			defer timer.Stop()
-			late = timer.C
-		case <-late:
-			return
-		}
-	}
-}
-
-// attempt decides one claim. A claim stopped by the context comes back with
-// neither a record nor an error.
-func attempt(ctx context.Context, c *Claim, opt identity.Options, decide decide, index int) (e ended) {
+// attempt decides one claim; nil where the context stopped it.
+func attempt(ctx context.Context, c *Case, claim *Claim, opt identity.Options, decide decide) (r *Result) {
 	start := time.Now()
 	defer func() {
-		e.index, e.elapsed = index, time.Since(start)
 		if p := recover(); p != nil {
-			e.failed, e.err = true, nil
-			e.record = &identity.Record{Claim: c.Name, Verdict: identity.Open, Reason: "internal error: " + clip(fmt.Sprint(p), 300)}
+			r = &Result{Case: c, Claim: claim, Failed: true, Record: &identity.Record{
+				Claim: claim.Name, Verdict: identity.Open, Reason: internal(p),
+			}}
+		}
+		if r != nil {
+			r.Elapsed = time.Since(start)
 		}
 	}()
 	if ctx.Err() != nil {
-		return e
+		return nil
 	}
-	record, err := decide(ctx, c.Claim, opt)
+	record, err := decide(ctx, claim.Claim, opt)
 	switch {
 	case err == nil:
-		e.record = record
-	case ctx.Err() != nil && (errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded)):
-	default:
-		e.err = err
+		return &Result{Case: c, Claim: claim, Record: record}
+	case stopped(ctx, err):
+		return nil
 	}
-	return e
+	return &Result{Case: c, Claim: claim, Err: c.Place(err, claim.pos)}
 }
+
+// stopped reports whether an error says only that the context ended.
+func stopped(ctx context.Context, err error) bool {
+	return ctx.Err() != nil && (errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded))
+}
+
+// internal is the reason given for a failure of the program itself.
+func internal(p any) string { return "internal error: " + clip(fmt.Sprint(p), 300) }

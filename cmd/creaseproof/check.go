@@ -31,9 +31,11 @@ or - for standard input; without one, every built-in case is taken.`,
   creaseproof check layered-rotated --only "Young bound" --json
   creaseproof check mine.toml --samples 5000000 --seed 7 --timeout 60`,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			if err := c.check(); err != nil {
+			end, err := c.begin()
+			if err != nil {
 				return err
 			}
+			defer end()
 			if opt.Samples < 1 {
 				return errors.New("--samples: write the number of random jets to draw, at least 1")
 			}
@@ -74,7 +76,7 @@ func selected(list []*cases.Case, opt *cases.Options) []*cases.Case {
 func check(cmd *cobra.Command, list []*cases.Case, opt cases.Options, asJSON, bad, all bool, s streams) error {
 	p := newProgress(s, total(list, &opt))
 	opt.Progress = p.inside
-	text := &checkText{w: s.out, style: style(s.colour), width: s.width, opt: &opt}
+	text := &checkText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt}
 	opt.Report = func(r *cases.Result) {
 		p.clear()
 		if r.Err != nil {
@@ -96,16 +98,7 @@ func check(cmd *cobra.Command, list []*cases.Case, opt cases.Options, asJSON, ba
 		}
 		text.summary(out, total(list, &opt))
 	}
-	switch {
-	case out.Interrupted:
-		fmt.Fprintln(s.err, "creaseproof: interrupted")
-		return status(exitInterrupted)
-	case bad || out.Faulty():
-		return status(exitBadInput)
-	case !out.Met():
-		return status(exitNotMet)
-	}
-	return nil
+	return finish(s, out.Interrupted, bad || out.Faulty(), out.Met())
 }
 
 func total(list []*cases.Case, opt *cases.Options) int {

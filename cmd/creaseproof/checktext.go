@@ -3,7 +3,6 @@ package main
 import (
 	"cmp"
 	"fmt"
-	"io"
 	"maps"
 	"slices"
 	"strings"
@@ -15,37 +14,20 @@ import (
 
 // checkText writes the results of check for people to read.
 type checkText struct {
-	w     io.Writer
-	style style
-	width int
+	sheet
 	opt   *cases.Options
-
-	current *cases.Case
-	names   int // columns of the names of the current case
-	cases   int // written so far
+	names int // columns of the names of the current case
 }
 
+// How much of a record is shown; all of it is in the document.
 const (
-	mostName    = 44   // columns of a name
-	mostText    = 2000 // runes of a reason or a witness shown
-	mostFormula = 240  // runes of a remainder or a list of conditions shown; all of it is in the document
-	mostDetails = 6    // details shown
-	mostDetail  = 120  // runes of one
-	indent      = "                  "
+	mostFormula = 240 // runes of a remainder or a list of conditions
+	mostDetails = 6   // details
+	mostDetail  = 120 // runes of one
 )
 
-// header writes the line that a case begins with.
-func (t *checkText) header(c *cases.Case) {
-	if t.cases > 0 {
-		fmt.Fprintln(t.w)
-	}
-	t.cases++
-	t.current = c
-	title := ""
-	if c.Title != "" {
-		title = "  " + c.Title
-	}
-	fmt.Fprintln(t.w, t.style.head(c.Name)+title)
+// measure finds the width of the names of a case.
+func (t *checkText) measure(c *cases.Case) {
 	t.names = 0
 	for _, cl := range c.Claims {
 		if t.opt.Selected(cl.Name) {
@@ -58,13 +40,10 @@ func (t *checkText) header(c *cases.Case) {
 func (t *checkText) result(r *cases.Result) {
 	if r.Case != t.current {
 		t.header(r.Case)
+		t.measure(r.Case)
 	}
 	rec := r.Record
-	mark := "ok "
-	if !r.Met() {
-		mark = t.style.alarm("NOT")
-	}
-	line := fmt.Sprintf("  %s  %s  %s", mark, t.style.verdict(rec.Verdict, pad(string(rec.Verdict), 9)), pad(r.Claim.Name, t.names))
+	line := fmt.Sprintf("  %s  %s  %s", t.mark(r.Met()), t.style.verdict(rec.Verdict, pad(string(rec.Verdict), 9)), pad(r.Claim.Name, t.names))
 	if rec.Method != "" {
 		line += "  " + t.style.faint(rec.Method)
 	}
@@ -153,22 +132,6 @@ func byLength[V any](m map[string]V) []string {
 	})
 }
 
-func (t *checkText) note(label, text string) {
-	if label != "" {
-		text = label + " " + text
-	}
-	t.lines(nil, text)
-}
-
-func (t *checkText) lines(paint func(string) string, text string) {
-	for _, l := range wrap(text, t.width-len(indent), mostText) {
-		if paint != nil {
-			l = paint(l)
-		}
-		fmt.Fprintln(t.w, indent+l)
-	}
-}
-
 // without names the cases that have no claims.
 func (t *checkText) without(list []*cases.Case) {
 	for _, c := range list {
@@ -186,7 +149,7 @@ func (t *checkText) summary(out *cases.Outcome, total int) {
 	}
 	var parts []string
 	decided, met := 0, 0
-	for _, v := range []identity.Verdict{identity.Proved, identity.Refuted, identity.Supported, identity.Open} {
+	for _, v := range verdicts {
 		if n := out.Count(v); n > 0 {
 			parts = append(parts, t.style.verdict(v, fmt.Sprintf("%d %s", n, v)))
 			decided += n
@@ -203,11 +166,5 @@ func (t *checkText) summary(out *cases.Outcome, total int) {
 	if n := total - len(out.Results); n > 0 {
 		parts = append(parts, fmt.Sprintf("%d not reached", n))
 	}
-	last := "all as expected"
-	if n := len(out.Results) - met; n > 0 {
-		last = t.style.alarm(fmt.Sprintf("%d not as expected", n))
-	} else if len(out.Results) < total {
-		last = "the others as expected"
-	}
-	fmt.Fprintf(t.w, "\n%s: %s; %s\n", count(total, "claim", "claims"), strings.Join(parts, ", "), last)
+	t.last(count(total, "claim", "claims"), parts, decided-met)
 }

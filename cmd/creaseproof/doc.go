@@ -2,6 +2,7 @@
 // creases, the surfaces on which a gradient jumps.
 //
 //	creaseproof check [CASE...]    decide every claim
+//	creaseproof energy [CASE...]   integrate over every surface
 //	creaseproof cases list         the built-in cases
 //	creaseproof cases show NAME    the text of one
 //	creaseproof cases new FILE     a case to start from

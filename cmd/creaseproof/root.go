@@ -64,7 +64,7 @@ Exit status: 0 every expectation met, 1 not so, 2 the input or the call is wrong
 		SilenceUsage:  true,
 		Run:           func(cmd *cobra.Command, _ []string) { _ = cmd.Help() },
 	}
-	root.AddCommand(newCheck(s), newCases(s))
+	root.AddCommand(newCheck(s), newEnergy(s), newCases(s))
 	return root
 }
 
@@ -84,15 +84,17 @@ func (c *common) flags(cmd *cobra.Command, what string) {
 	f.IntVar(&c.jobs, "jobs", 0, "`cores` to use, 0 for all; no result depends on it")
 }
 
-// check refuses values that mean nothing, and limits the cores.
-func (c *common) check() error {
+// begin refuses values that mean nothing, and limits the cores until end is
+// called.
+func (c *common) begin() (end func(), err error) {
 	if c.jobs < 0 {
-		return fmt.Errorf("--jobs %d: write the number of cores to use, or 0 for all", c.jobs)
+		return nil, fmt.Errorf("--jobs %d: write the number of cores to use, or 0 for all", c.jobs)
 	}
-	if c.jobs > 0 && c.jobs < runtime.GOMAXPROCS(0) {
+	if all := runtime.GOMAXPROCS(0); c.jobs > 0 && c.jobs < all {
 		runtime.GOMAXPROCS(c.jobs)
+		return func() { runtime.GOMAXPROCS(all) }, nil
 	}
-	return nil
+	return func() {}, nil
 }
 
 // seconds is a time written as a number of seconds or as 90s or 5m.

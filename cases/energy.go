@@ -1,0 +1,170 @@
+package cases
+
+import (
+	"context"
+	"fmt"
+	"time"
+
+	"creaseproof/cases/casefile"
+	"creaseproof/cases/creases"
+	"creaseproof/identity"
+)
+
+// EnergyOptions say how surfaces are integrated.
+type EnergyOptions struct {
+	creases.Options
+
+	Jobs    int           // cores to use, 0 for all; no result depends on it
+	Only    []string      // surfaces whose name contains one of these; none means all
+	Timeout time.Duration // for all surfaces together; 0 means no end
+
+	// Report is called with each result as soon as those before it are there,
+	// from the goroutine of Energy.
+	Report func(*EnergyResult)
+}
+
+// Selected reports whether a surface of that name is asked for.
+func (o *EnergyOptions) Selected(name string) bool { return selected(o.Only, name) }
+
+// EnergyResult is what came of one surface: one value for each combination of
+// its parameters. An error is a mistake in the file with its place; values
+// found before it are kept.
+type EnergyResult struct {
+	Case    *Case
+	Surface *casefile.Surface
+	Values  []creases.Result
+	Err     error
+	Failed  bool // inside the program; the last value is open and says so
+
+	partial bool // the context ended before the last value
+}
+
+// Met reports whether all values are as the file expects.
+func (r *EnergyResult) Met() bool {
+	for _, v := range r.Values {
+		if !v.Met {
+			return false
+		}
+	}
+	return r.Err == nil && !r.Failed
+}
+
+// EnergyOutcome is what came of all surfaces, in the order of the cases and of
+// their surfaces.
+type EnergyOutcome struct {
+	Results     []*EnergyResult
+	Interrupted bool // the context ended; what was not computed is left out
+}
+
+// Faulty reports whether some surface means nothing.
+func (o *EnergyOutcome) Faulty() bool {
+	for _, r := range o.Results {
+		if r.Err != nil {
+			return true
+		}
+	}
+	return false
+}
+
+// Met reports whether every surface is as the file expects.
+func (o *EnergyOutcome) Met() bool {
+	for _, r := range o.Results {
+		if !r.Met() {
+			return false
+		}
+	}
+	return true
+}
+
+// Energy integrates over the surfaces of the cases, several at once. It ends
+// early as Check does: at an interruption with the values found by then, at
+// the timeout with values that are open.
+func Energy(ctx context.Context, list []*Case, opt EnergyOptions) *EnergyOutcome {
+	return energy(ctx, list, opt, func(ctx context.Context, c *Case, s *casefile.Surface) ([]creases.Result, error) {
+		return creases.New(c.Setting, c.File.Path).Evaluate(ctx, s, opt.Options)
+	})
+}
+
+type integrate func(context.Context, *Case, *casefile.Surface) ([]creases.Result, error)
+
+func energy(ctx context.Context, list []*Case, opt EnergyOptions, integrate integrate) *EnergyOutcome {
+	type todo struct {
+		c *Case
+		s *casefile.Surface
+	}
+	var surfaces []todo
+	for _, c := range list {
+		for i := range c.File.Surfaces {
+			if s := &c.File.Surfaces[i]; opt.Selected(s.Name) {
+				surfaces = append(surfaces, todo{c, s})
+			}
+		}
+	}
+	inner, cancel := limited(ctx, opt.Timeout)
+	defer cancel()
+	out := &EnergyOutcome{}
+	cut := false
+	emit := func(_ int, r *EnergyResult) {
+		if r.partial {
+			if ctx.Err() != nil {
+				cut = true
+			} else {
+				r.Values = append(r.Values, unfinished(r.Surface, fmt.Sprintf("not computed within the %v allowed", opt.Timeout)))
+			}
+		}
+		out.Results = append(out.Results, r)
+		if opt.Report != nil {
+			opt.Report(r)
+		}
+	}
+	results, emitted := pool(inner, len(surfaces), opt.Jobs, func(i int) *EnergyResult {
+		return surface(inner, surfaces[i].c, surfaces[i].s, integrate)
+	}, emit)
+	out.Interrupted = ctx.Err() != nil && emitted < len(surfaces)
+	for i := emitted; i < len(surfaces); i++ {
+		r := results[i]
+		if r == nil && out.Interrupted {
+			continue
+		}
+		if r == nil {
+			r = &EnergyResult{Case: surfaces[i].c, Surface: surfaces[i].s, partial: true}
+		}
+		emit(i, r)
+	}
+	out.Interrupted = out.Interrupted || cut
+	return out
+}
+
+// surface integrates over one surface; nil where the context stopped it before
+// the first value.
+func surface(ctx context.Context, c *Case, s *casefile.Surface, integrate integrate) (r *EnergyResult) {
+	defer func() {
+		if p := recover(); p != nil {
+			r = &EnergyResult{Case: c, Surface: s, Failed: true, Values: []creases.Result{unfinished(s, internal(p))}}
+		}
+	}()
+	if ctx.Err() != nil {
+		return nil
+	}
+	values, err := integrate(ctx, c, s)
+	r = &EnergyResult{Case: c, Surface: s, Values: values}
+	switch {
+	case err == nil:
+	case !stopped(ctx, err):
+		r.Err = c.Place(err, s.Pos)
+	case len(values) == 0:
+		return nil
+	default:
+		r.partial = true
+	}
+	return r
+}
+
+// unfinished is a value that was not computed.
+func unfinished(s *casefile.Surface, reason string) creases.Result {
+	expected := identity.Supported
+	if s.Expect != nil {
+		expected = identity.Verdict(s.Expect.S)
+	}
+	return creases.Result{Surface: s.Name, Verdict: identity.Open, Expected: expected, Reason: reason}
+}

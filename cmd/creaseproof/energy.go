@@ -1,0 +1,116 @@
+package main
+
+import (
+	"fmt"
+	"time"
+
+	"creaseproof/cases"
+
+	"github.com/spf13/cobra"
+)
+
+func newEnergy(s streams) *cobra.Command {
+	var c common
+	cmd := &cobra.Command{
+		Use:   "energy [CASE...]",
+		Short: "Integrate the jump energy over each surface",
+		Long: `Integrate the jump energy over each surface of the cases, and compare it with the
+energy that the case claims.
+
+An energy comes with an estimate of its error. A claimed energy is supported where
+the number agrees within that; a number computed in floating point proves nothing.
+A surface on which a check fails has no energy: the traces off the well, u
+discontinuous across it, or the jump of the gradient not normal to it.
+
+A CASE is a file, a folder (all files *.toml in it), the name of a built-in case,
+or - for standard input; without one, every built-in case is taken.`,
+		Example: `  creaseproof energy mine.toml
+  creaseproof energy crease-paraboloid --only "paraboloid front" --json
+  creaseproof energy`,
+		RunE: func(cmd *cobra.Command, args []string) error {
+			end, err := c.begin()
+			if err != nil {
+				return err
+			}
+			defer end()
+			list, bad, err := load(cmd.Context(), args, s)
+			if err != nil {
+				return err
+			}
+			opt := cases.EnergyOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
+			kept := list[:0]
+			for _, k := range list {
+				if countSurfaces(k, &opt) > 0 || len(c.only) == 0 && len(args) > 0 {
+					kept = append(kept, k)
+				}
+			}
+			if len(kept) == 0 && len(c.only) > 0 && !bad {
+				return fmt.Errorf("no surface has a name that contains %q", c.only)
+			}
+			return energy(cmd, kept, opt, c.json, bad, s)
+		},
+	}
+	c.flags(cmd, "surfaces")
+	return cmd
+}
+
+func countSurfaces(c *cases.Case, opt *cases.EnergyOptions) int {
+	n := 0
+	for i := range c.File.Surfaces {
+		if opt.Selected(c.File.Surfaces[i].Name) {
+			n++
+		}
+	}
+	return n
+}
+
+func energy(cmd *cobra.Command, list []*cases.Case, opt cases.EnergyOptions, asJSON, bad bool, s streams) error {
+	total := 0
+	for _, c := range list {
+		total += countSurfaces(c, &opt)
+	}
+	p := newProgress(s, total)
+	text := &energyText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt}
+	p.inside("surfaces", 0, 0)
+	opt.Report = func(r *cases.EnergyResult) {
+		p.clear()
+		if !asJSON {
+			text.result(r)
+		}
+		if r.Err != nil {
+			complain(s.err, r.Err)
+		}
+		p.step()
+		p.inside(r.Surface.Name, 0, 0)
+	}
+	out := cases.Energy(cmd.Context(), list, opt)
+	p.clear()
+	if asJSON {
+		if err := writeJSON(s.out, out.Document(list)); err != nil {
+			return err
+		}
+	} else {
+		for _, c := range list {
+			if len(c.File.Surfaces) == 0 {
+				text.header(c)
+				fmt.Fprintln(s.out, "  no surfaces")
+			}
+		}
+		text.summary(out, total)
+	}
+	return finish(s, out.Interrupted, bad || out.Faulty(), out.Met())
+}
+
+// finish is the exit status of a command that ran.
+func finish(s streams, interrupted, bad, met bool) error {
+	switch {
+	case interrupted:
+		fmt.Fprintln(s.err, "creaseproof: interrupted")
+		return status(exitInterrupted)
+	case bad:
+		return status(exitBadInput)
+	case !met:
+		return status(exitNotMet)
+	}
+	return nil
+}

@@ -1,0 +1,78 @@
+package main
+
+import (
+	"fmt"
+	"io"
+	"strings"
+
+	"creaseproof/cases"
+	"creaseproof/identity"
+)
+
+// sheet is a page of results, one case after the other.
+type sheet struct {
+	w     io.Writer
+	style style
+	width int
+
+	current *cases.Case
+	cases   int // written so far
+}
+
+const (
+	mostName = 44   // columns of a name
+	mostText = 2000 // runes of a reason or a witness shown
+	indent   = "                  "
+)
+
+// verdicts in the order in which they are counted.
+var verdicts = []identity.Verdict{identity.Proved, identity.Refuted, identity.Supported, identity.Open}
+
+// header writes the line that a case begins with.
+func (s *sheet) header(c *cases.Case) {
+	if s.cases > 0 {
+		fmt.Fprintln(s.w)
+	}
+	s.cases++
+	s.current = c
+	title := ""
+	if c.Title != "" {
+		title = "  " + c.Title
+	}
+	fmt.Fprintln(s.w, s.style.head(c.Name)+title)
+}
+
+// mark says whether an expectation is met.
+func (s *sheet) mark(met bool) string {
+	if met {
+		return "ok "
+	}
+	return s.style.alarm("NOT")
+}
+
+// note writes a text below a result.
+func (s *sheet) note(label, text string) {
+	if label != "" {
+		text = label + " " + text
+	}
+	s.lines(nil, text)
+}
+
+func (s *sheet) lines(paint func(string) string, text string) {
+	for _, l := range wrap(text, s.width-len(indent), mostText) {
+		if paint != nil {
+			l = paint(l)
+		}
+		fmt.Fprintln(s.w, indent+l)
+	}
+}
+
+// last writes the last line: what there was, how it came out, and how many
+// expectations are not met.
+func (s *sheet) last(what string, parts []string, unmet int) {
+	end := "all as expected"
+	if unmet > 0 {
+		end = s.style.alarm(fmt.Sprintf("%d not as expected", unmet))
+	}
+	fmt.Fprintf(s.w, "\n%s: %s; %s\n", what, strings.Join(parts, ", "), end)
+}
