@@ -33,8 +33,8 @@ type EnergyResult struct {
 	Case    *Case
 	Surface *casefile.Surface
 	Values  []creases.Result
-	Err     error
-	Failed  bool // inside the program; the last value is open and says so
+	Err     error // of a formula or a key; or the first refusal that was not expected
+	Failed  bool  // inside the program; the last value is open and says so
 
 	partial bool // the context ended before the last value
 }
@@ -56,7 +56,7 @@ type EnergyOutcome struct {
 	Interrupted bool // the context ended; what was not computed is left out
 }
 
-// Faulty reports whether some surface means nothing.
+// Faulty reports whether some surface means nothing or was refused.
 func (o *EnergyOutcome) Faulty() bool {
 	for _, r := range o.Results {
 		if r.Err != nil {
@@ -150,6 +150,7 @@ func surface(ctx context.Context, c *Case, s *casefile.Surface, integrate integr
 	r = &EnergyResult{Case: c, Surface: s, Values: values}
 	switch {
 	case err == nil:
+		r.Err = refusal(c, s, values)
 	case !stopped(ctx, err):
 		r.Err = c.Place(err, s.Pos)
 	case len(values) == 0:
@@ -158,6 +159,22 @@ func surface(ctx context.Context, c *Case, s *casefile.Surface, integrate integr
 		r.partial = true
 	}
 	return r
+}
+
+// refusal is an error at the place of a surface that has no energy because its
+// shape or its traces are wrong, unless the file expects that.
+func refusal(c *Case, s *casefile.Surface, values []creases.Result) error {
+	for _, v := range values {
+		if v.Energy != nil || v.Met {
+			continue
+		}
+		with := ""
+		for _, p := range s.Values {
+			with += fmt.Sprintf(", %s = %s", p.Name.S, v.Values[p.Name.S])
+		}
+		return c.text.at(s.Pos, "", "%q%s has no energy: %s", clip(s.Name, 40), clip(with, 80), v.Reason)
+	}
+	return nil
 }
 
 // unfinished is a value that was not computed.

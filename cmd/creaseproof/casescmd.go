@@ -57,8 +57,9 @@ func newCases(s streams) *cobra.Command {
 
 func listCases(s streams) error {
 	list, failed := cases.Load(nil, nil)
+	say := complaints{w: s.err}
 	for _, err := range failed {
-		complain(s.err, err)
+		say.add(err)
 	}
 	names, titles := len("name"), len("title")
 	for _, c := range list {

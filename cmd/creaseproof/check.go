@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"encoding/json"
 	"errors"
 	"fmt"
@@ -40,14 +41,15 @@ or - for standard input; without one, every built-in case is taken.`,
 				return errors.New("--samples: write the number of random jets to draw, at least 1")
 			}
 			opt.Only, opt.Timeout, opt.Jobs = c.only, time.Duration(c.timeout), c.jobs
-			list, bad, err := load(cmd.Context(), args, s)
+			say := &complaints{w: s.err}
+			list, bad, err := load(cmd.Context(), args, s.in, say)
 			if err != nil {
 				return err
 			}
 			if list = selected(list, &opt); len(list) == 0 && len(opt.Only) > 0 && !bad {
 				return fmt.Errorf("no claim has a name that contains %q", opt.Only)
 			}
-			return check(cmd, list, opt, c.json, bad, len(args) == 0, s)
+			return check(cmd.Context(), list, opt, s, say, request{c.json, bad, len(args) == 0})
 		},
 	}
 	c.flags(cmd, "claims")
@@ -73,32 +75,39 @@ func selected(list []*cases.Case, opt *cases.Options) []*cases.Case {
 	return out
 }
 
-func check(cmd *cobra.Command, list []*cases.Case, opt cases.Options, asJSON, bad, all bool, s streams) error {
+// request is how a command was called and what came of reading its cases.
+type request struct {
+	json bool
+	bad  bool // some case could not be read
+	all  bool // the built-in cases, since none was named
+}
+
+func check(ctx context.Context, list []*cases.Case, opt cases.Options, s streams, say *complaints, q request) error {
 	p := newProgress(s, total(list, &opt))
 	opt.Progress = p.inside
 	text := &checkText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt}
 	opt.Report = func(r *cases.Result) {
 		p.clear()
 		if r.Err != nil {
-			complain(s.err, r.Err)
-		} else if !asJSON {
+			say.add(r.Err)
+		} else if !q.json {
 			text.result(r)
 		}
 		p.step()
 	}
-	out := cases.Check(cmd.Context(), list, opt)
+	out := cases.Check(ctx, list, opt)
 	p.clear()
-	if asJSON {
+	if q.json {
 		if err := writeJSON(s.out, out.Document(list)); err != nil {
 			return err
 		}
 	} else {
-		if !all {
+		if !q.all {
 			text.without(list)
 		}
 		text.summary(out, total(list, &opt))
 	}
-	return finish(s, out.Interrupted, bad || out.Faulty(), out.Met())
+	return finish(s, out.Interrupted, q.bad || out.Faulty(), out.Met())
 }
 
 func total(list []*cases.Case, opt *cases.Options) int {

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"fmt"
 	"time"
 
@@ -19,8 +20,8 @@ energy that the case claims.
 
 An energy comes with an estimate of its error. A claimed energy is supported where
 the number agrees within that; a number computed in floating point proves nothing.
-A surface on which a check fails has no energy: the traces off the well, u
-discontinuous across it, or the jump of the gradient not normal to it.
+A surface on which a check fails has no energy, and is wrong input: the traces off
+the well, u discontinuous across it, the jump of the gradient not normal to it.
 
 A CASE is a file, a folder (all files *.toml in it), the name of a built-in case,
 or - for standard input; without one, every built-in case is taken.`,
@@ -33,7 +34,8 @@ or - for standard input; without one, every built-in case is taken.`,
 				return err
 			}
 			defer end()
-			list, bad, err := load(cmd.Context(), args, s)
+			say := &complaints{w: s.err}
+			list, bad, err := load(cmd.Context(), args, s.in, say)
 			if err != nil {
 				return err
 			}
@@ -47,7 +49,7 @@ or - for standard input; without one, every built-in case is taken.`,
 			if len(kept) == 0 && len(c.only) > 0 && !bad {
 				return fmt.Errorf("no surface has a name that contains %q", c.only)
 			}
-			return energy(cmd, kept, opt, c.json, bad, s)
+			return energy(cmd.Context(), kept, opt, s, say, request{json: c.json, bad: bad})
 		},
 	}
 	c.flags(cmd, "surfaces")
@@ -64,28 +66,28 @@ func countSurfaces(c *cases.Case, opt *cases.EnergyOptions) int {
 	return n
 }
 
-func energy(cmd *cobra.Command, list []*cases.Case, opt cases.EnergyOptions, asJSON, bad bool, s streams) error {
+func energy(ctx context.Context, list []*cases.Case, opt cases.EnergyOptions, s streams, say *complaints, q request) error {
 	total := 0
 	for _, c := range list {
 		total += countSurfaces(c, &opt)
 	}
 	p := newProgress(s, total)
-	text := &energyText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt}
+	text := &energyText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt, together: s.together}
 	p.inside("surfaces", 0, 0)
 	opt.Report = func(r *cases.EnergyResult) {
 		p.clear()
-		if !asJSON {
+		if !q.json {
 			text.result(r)
 		}
 		if r.Err != nil {
-			complain(s.err, r.Err)
+			say.add(r.Err)
 		}
 		p.step()
 		p.inside(r.Surface.Name, 0, 0)
 	}
-	out := cases.Energy(cmd.Context(), list, opt)
+	out := cases.Energy(ctx, list, opt)
 	p.clear()
-	if asJSON {
+	if q.json {
 		if err := writeJSON(s.out, out.Document(list)); err != nil {
 			return err
 		}
@@ -98,7 +100,7 @@ func energy(cmd *cobra.Command, list []*cases.Case, opt cases.EnergyOptions, asJ
 		}
 		text.summary(out, total)
 	}
-	return finish(s, out.Interrupted, bad || out.Faulty(), out.Met())
+	return finish(s, out.Interrupted, q.bad || out.Faulty(), out.Met())
 }
 
 // finish is the exit status of a command that ran.

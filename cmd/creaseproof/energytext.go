@@ -18,6 +18,8 @@ type energyText struct {
 	opt    *cases.EnergyOptions
 	names  int // columns of the names in the current case
 	values int // columns of the values
+
+	together bool // a refusal on standard error stands right below
 }
 
 // measure finds the widths of the columns of a case.
@@ -49,8 +51,13 @@ func (t *energyText) result(r *cases.EnergyResult) {
 		t.header(r.Case)
 		t.measure(r.Case)
 	}
+	refused := r.Err != nil && t.together
 	for i := range r.Values {
-		t.value(r.Surface, &r.Values[i])
+		v := r.Values[i]
+		if refused && v.Energy == nil && !v.Met {
+			v.Reason, refused = "", false
+		}
+		t.value(r.Surface, &v)
 	}
 }
 
@@ -134,7 +141,7 @@ func (t *energyText) summary(out *cases.EnergyOutcome, surfaces int) {
 				met++
 			}
 		}
-		if r.Err != nil {
+		if r.Err != nil && len(r.Values) == 0 {
 			faulty++
 		}
 	}

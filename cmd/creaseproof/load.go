@@ -3,29 +3,29 @@ package main
 import (
 	"context"
 	"errors"
-	"fmt"
 	"io"
 
 	"creaseproof/cases"
 	"creaseproof/cases/casefile"
+	"creaseproof/entropy/source"
 )
 
 // load reads the cases and says what is wrong with those that cannot be read.
 // It gives up waiting for a slow file or standard input when ctx ends.
-func load(ctx context.Context, args []string, s streams) (list []*cases.Case, bad bool, err error) {
+func load(ctx context.Context, args []string, in io.Reader, say *complaints) (list []*cases.Case, bad bool, err error) {
 	type loaded struct {
 		list   []*cases.Case
 		failed []error
 	}
 	done := make(chan loaded, 1)
 	go func() {
-		l, f := cases.Load(args, s.in)
+		l, f := cases.Load(args, in)
 		done <- loaded{l, f}
 	}()
 	select {
 	case l := <-done:
 		for _, e := range l.failed {
-			complain(s.err, e)
+			say.add(e)
 		}
 		return l.list, len(l.failed) > 0, nil
 	case <-ctx.Done():
@@ -33,24 +33,41 @@ func load(ctx context.Context, args []string, s streams) (list []*cases.Case, ba
 	}
 }
 
-// maxComplaint bounds in bytes what is said about one file.
-const maxComplaint = 2400
+// maxComplaints bounds in bytes what is said about one file.
+const maxComplaints = 2400
 
-// complain prints an error about a file.
-func complain(w io.Writer, err error) {
+// complaints says what is wrong with files, on standard error.
+type complaints struct {
+	w    io.Writer
+	said map[string]int // bytes, by file; beyond maxComplaints where that was said
+}
+
+// add prints an error, unless enough was said about its file.
+func (c *complaints) add(err error) {
+	const more = "and more of this file\n"
 	var list casefile.Errors
-	if !errors.As(err, &list) {
-		fmt.Fprintln(w, err)
+	if errors.As(err, &list) {
+		for _, e := range list {
+			c.add(e)
+		}
 		return
 	}
-	said := 0
-	for i, e := range list {
-		text := e.Error() + "\n"
-		if said+len(text)+40 > maxComplaint {
-			fmt.Fprintf(w, "and %d more of the same file\n", len(list)-i)
-			return
-		}
-		io.WriteString(w, text)
-		said += len(text)
+	file := ""
+	var placed *source.Error
+	if errors.As(err, &placed) {
+		file = placed.File
+	}
+	if c.said == nil {
+		c.said = map[string]int{}
+	}
+	text := err.Error() + "\n"
+	switch n := c.said[file]; {
+	case n > maxComplaints:
+	case n+len(text)+len(more) > maxComplaints:
+		io.WriteString(c.w, more)
+		c.said[file] = maxComplaints + 1
+	default:
+		io.WriteString(c.w, text)
+		c.said[file] = n + len(text)
 	}
 }

@@ -76,7 +76,10 @@ func TestExitStatus(t *testing.T) {
 
 		"energy":               {space + plane, []string{"energy", "-"}, 0, []string{"ok   supported  plane", "0.6666666666", "as claimed", "1 energy of 1 surface: 1 supported; all as expected"}, ""},
 		"wrong energy":         {space + strings.Replace(plane, "2/3", "1/3", 1), []string{"energy", "-"}, 1, []string{"NOT  open       plane", "expected supported"}, ""},
-		"off the well":         {space + strings.Replace(plane, "-x + z/2", "-x + z/3", 1), []string{"energy", "-"}, 1, []string{"NOT  open", "off the well"}, ""},
+		"off the well":         {space + strings.Replace(plane, "-x + z/2", "-x + z/3", 1), []string{"energy", "-"}, 2, []string{"NOT  open", "off the well"}, "-:15:9: \"plane\" has no energy: "},
+		"refused as expected":  {space + strings.Replace(plane, "-x + z/2", "-x + z/3", 1) + "expect = \"open\"\n", []string{"energy", "-"}, 0, []string{"ok   open", "off the well"}, ""},
+		"degenerate":           {space + strings.NewReplacer("\"1\", \"1\"", "\"2\", \"0\"", "\"0\", \"1\"]", "\"3\", \"0\"]").Replace(plane), []string{"energy", "-"}, 2, []string{"NOT  open"}, "has no energy"},
+		"not a number":         {space + strings.Replace(plane, "-x + z/2", "sqrt(x - 1)", 1), []string{"energy", "-"}, 2, []string{"NOT  open"}, "has no energy"},
 		"mistake in a surface": {space + strings.Replace(plane, "-x + z/2", "-x + foo", 1), []string{"energy", "-"}, 2, nil, `-:17:15: unknown name "foo"`},
 		"no surfaces":          {space + yes, []string{"energy", "-"}, 0, []string{"no surfaces"}, ""},
 		"no such surface":      {space + plane, []string{"energy", "-", "--only", "front"}, 2, nil, "no surface has a name"},
@@ -213,6 +216,16 @@ func TestManyMistakesAreShort(t *testing.T) {
 	code, _, errs := call(t, text, "check", "-")
 	assert.Equal(t, 2, code)
 	assert.Less(t, len(errs), 2500)
+
+	// Mistakes that are found while claims are decided count as well.
+	text = space
+	for i := range 200 {
+		text += strings.Replace(mistake, "zero", "zero"+strings.Repeat("o", i), 1)
+	}
+	code, _, errs = call(t, text, "check", "-")
+	assert.Equal(t, 2, code)
+	assert.Less(t, len(errs), 2500)
+	assert.Contains(t, errs, "and more of this file")
 }
 
 func TestColour(t *testing.T) {

@@ -13,6 +13,7 @@ type streams struct {
 	out, err io.Writer
 	colour   bool // on out
 	progress bool // on err
+	together bool // out and err are read together, on a terminal
 	width    int  // of out in columns, for wrapping
 }
 
@@ -33,5 +34,6 @@ func terminalStreams() streams {
 		}
 	}
 	s.progress = term.IsTerminal(int(os.Stderr.Fd()))
+	s.together = s.progress && term.IsTerminal(int(os.Stdout.Fd()))
 	return s
 }
