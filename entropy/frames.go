@@ -126,7 +126,10 @@ func (in *Interpreter[T]) freshJet(n formula.Node, u int, j jet.Index, s state[T
 	}
 	if body, ok := in.Given[u]; ok {
 		if j.Order() == 0 {
-			return in.scalar(body, state[T]{})
+			v, err := in.memoised(n, "given "+in.Setting.Unknowns[u], state[T]{}, func() (Value[T], error) {
+				return one(in.scalar(body, state[T]{}))
+			})
+			return v.Scalar, err
 		}
 		for i, k := range j {
 			if k > 0 {

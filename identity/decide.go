@@ -60,8 +60,18 @@ func (c constraint) holds(r *jet.Ring, at jet.Point) bool {
 // unknown name, a division by zero), or that ctx ended; a claim that cannot be
 // decided within the limits gives a record with the verdict Open.
 func Decide(ctx context.Context, c *Claim, opt Options) (*Record, error) {
-	d := &decider{ctx: ctx, claim: c, opt: opt, rec: &Record{Claim: c.Name}}
-	err := d.run()
+	var d *decider
+	var err error
+	var angles jet.Angles
+	for range 8 { // until the basis of angles is fine enough
+		d = &decider{ctx: ctx, claim: c, opt: opt, rec: &Record{Claim: c.Name}}
+		err = d.run(angles)
+		var finer *jet.FinerAngles
+		if !errors.As(err, &finer) {
+			break
+		}
+		angles = finer.Need
+	}
 	switch {
 	case err == nil:
 	case ctx.Err() != nil:
@@ -90,12 +100,13 @@ func (d *decider) proved(method string) {
 	d.rec.Verdict, d.rec.Method = Proved, method
 }
 
-func (d *decider) run() error {
+func (d *decider) run(angles jet.Angles) error {
 	var err error
 	if d.in, d.ex, err = d.claim.Setting.NewExact(d.ctx); err != nil {
 		return err
 	}
 	d.ring = d.ex.Ring
+	d.ring.SetAngles(angles)
 	d.in.Given = d.claim.Given
 	d.in.Jump = d.claim.Jump
 	d.in.Reset()

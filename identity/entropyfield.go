@@ -16,6 +16,9 @@ func (d *decider) entropy() error {
 	if res == nil {
 		return &entropy.Error{At: d.claim.Statement.Field.At(), Err: fmt.Errorf("entropy() needs the residual of a [model]")}
 	}
+	if len(d.claim.Given) > 0 {
+		return &entropy.Error{At: d.claim.Statement.Field.At(), Err: fmt.Errorf("entropy() is about every gradient"), Advice: "take given away"}
+	}
 	if len(d.ring.Unknowns) != 1 {
 		d.open("entropy() is about fields of one gradient; the case has %d unknowns", len(d.ring.Unknowns))
 		return nil
@@ -55,6 +58,13 @@ func (d *decider) entropy() error {
 	divides := true
 	for i := range n {
 		for k := i; k < n; k++ {
+			second, err := d.ring.Jet(0, jet.Index{}.Plus(i).Plus(k), jet.NoSide)
+			if err != nil {
+				return err
+			}
+			if second.IsZero() {
+				continue // by a restriction: the entry multiplies nothing
+			}
 			sym, err := d.ring.Reduce(part[i][k].Add(part[k][i]).Scale(half))
 			if err != nil {
 				return err
@@ -80,7 +90,7 @@ func (d *decider) entropy() error {
 		d.proved("exact division: sym(D " + d.claim.Statement.Field.ID + ") = R A")
 		return nil
 	}
-	d.proved("the well has no real zero where the entry does not vanish")
+	d.proved("exact: sym(D " + d.claim.Statement.Field.ID + ") vanishes on the zeros of the residual")
 	return nil
 }
 
@@ -112,11 +122,15 @@ func (d *decider) divide(sym, r algebra.Fraction) (algebra.Fraction, bool, error
 // vanishesOnWell decides whether a value that R does not divide still vanishes
 // on the real zeros of R. It reports true where the claim is settled.
 func (d *decider) vanishesOnWell(sym, r algebra.Fraction) (bool, error) {
-	num := algebra.FromPoly(r.Num())
+	rad := radical(r.Num()) // has the same zeros
+	num := algebra.FromPoly(rad)
 	if d.ring.VisiblyPositive(num) || d.ring.VisiblyPositive(num.Neg()) {
 		return false, nil // no real zeros at all
 	}
-	if s, ok := d.solve(r, nil); ok {
+	if _, ok, err := d.divide(sym, num); ok || err != nil {
+		return err != nil, err
+	}
+	if s, ok := d.solve(num, nil); ok {
 		// The well is a graph: put it in.
 		v, err := d.ring.JetVar(s.unknown, s.index, jet.NoSide)
 		if err != nil {
@@ -130,7 +144,7 @@ func (d *decider) vanishesOnWell(sym, r algebra.Fraction) (bool, error) {
 			return false, nil
 		}
 	}
-	d.ideal = []algebra.Poly{r.Num()}
+	d.ideal = []algebra.Poly{rad}
 	d.rec.Remainder = short(d.ring.Format(sym))
 	pts := d.points(sym)
 	for range witnessTries {

@@ -55,6 +55,10 @@ func (d *decider) integrable() error {
 				d.open("%s is not a polynomial in the derivatives: Hölder's inequality on monomials does not apply", s.Name)
 				return nil
 			}
+			if !d.boundedKernel(s) {
+				d.open("%s may be unbounded on a bounded domain", s.Name)
+				return nil
+			}
 		}
 		for _, b := range den {
 			for _, v := range d.ring.Support(algebra.FromPoly(b.Base)) {
@@ -99,4 +103,17 @@ func (d *decider) integrable() error {
 	}
 	d.proved("Hölder's inequality on each monomial, bounded domain")
 	return nil
+}
+
+// boundedKernel reports whether a function of coordinates and constants is
+// bounded on every bounded domain: not a logarithm of a coordinate, and no
+// function of a quotient by one.
+func (d *decider) boundedKernel(s *jet.Symbol) bool {
+	varies := func(f algebra.Fraction) bool {
+		return slices.ContainsFunc(d.ring.Support(f), func(v algebra.Var) bool { return d.ring.Symbol(v).Kind == jet.Coordinate })
+	}
+	if s.Kind == jet.Logarithm && varies(s.Arg) {
+		return false
+	}
+	return !slices.ContainsFunc(s.Arg.DenFactors(), func(f algebra.Factor) bool { return varies(algebra.FromPoly(f.Base)) })
 }

@@ -167,6 +167,12 @@ func (r *Ring) Log(f algebra.Fraction) (algebra.Fraction, error) {
 	if f.IsZero() {
 		return f, fmt.Errorf("log of zero")
 	}
+	if c, ok := f.IsConst(); ok && c.Sign() < 0 {
+		return f, fmt.Errorf("log of the negative number %s", c)
+	}
+	if err := r.Err(f); err != nil {
+		return f, err
+	}
 	r.require(f, NeedPositive)
 	var out algebra.Fraction
 	rest := Whole(1)
@@ -185,6 +191,13 @@ func (r *Ring) Log(f algebra.Fraction) (algebra.Fraction, error) {
 				switch {
 				case s.Kind == Exponential:
 					out = out.Add(s.Arg.Scale(algebra.Int(int64(pw.Exp * e))))
+				case s.Kind == Root && s.Sign != AnySign:
+					// As a factor of what is positive the root is not zero.
+					l, err := r.Log(s.Arg)
+					if err != nil {
+						return err
+					}
+					out = out.Add(l.Scale(algebra.Frac64(int64(pw.Exp*e), int64(s.Degree))))
 				case s.Sign == Positive:
 					if err := r.addLog(&out, Of(pw.Var), e*pw.Exp); err != nil {
 						return err

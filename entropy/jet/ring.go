@@ -168,6 +168,7 @@ type Ring struct {
 	expBasis   []algebra.Var
 	angleBasis []algebra.Var // cosines of independent angles
 	cosines    []algebra.Var // all cosines
+	angles     Angles
 	pi         algebra.Var
 	conditions []Condition
 	derivs     []*Derivation // total derivatives, by coordinate

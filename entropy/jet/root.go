@@ -66,6 +66,10 @@ func (r *Ring) absPoly(p algebra.Poly) (algebra.Fraction, error) {
 	mono := q.MonomialContent()
 	for _, pw := range mono.Powers() {
 		v := Of(pw.Var)
+		if s := r.symbols[pw.Var].Sign; pw.Exp%2 == 1 && (s == Negative || s == NonPositive) {
+			out = out.Mul(v.Pow(pw.Exp).Neg())
+			continue
+		}
 		if pw.Exp%2 == 1 && !r.nonNegativeVar(pw.Var) {
 			a, err := r.absKernel(algebra.Variable(pw.Var))
 			if err != nil {
@@ -143,6 +147,12 @@ func (r *Ring) Root(f algebra.Fraction, q int) (algebra.Fraction, error) {
 			num = num.Mul(d.Base.Pow(q - rem))
 			k++
 		}
+		if q%2 == 1 && k%2 == 1 && !r.visiblyNonNegativePoly(d.Base) {
+			// An odd power of what may be negative would turn the sign under
+			// the root.
+			num = num.Mul(d.Base.Pow(q))
+			k++
+		}
 		b := algebra.FromPoly(d.Base)
 		if q%2 == 0 && k%2 == 1 {
 			a, err := r.absPoly(d.Base)
@@ -185,6 +195,7 @@ func (r *Ring) rootPoly(p algebra.Poly, q int) (algebra.Fraction, error) {
 	if !ok {
 		return out, prim.Err()
 	}
+	squares := false // were taken out that may vanish
 	for _, pw := range mono.Powers() {
 		g, left, err := r.rootPower(pw, q)
 		if err != nil {
@@ -192,6 +203,7 @@ func (r *Ring) rootPoly(p algebra.Poly, q int) (algebra.Fraction, error) {
 		}
 		out = out.Mul(g)
 		rest = rest.Mul(algebra.Variable(pw.Var).Pow(left))
+		squares = squares || left < pw.Exp && !r.nonNegativeVar(pw.Var)
 	}
 	if k, ok := rest.IsConst(); ok && k.IsOne() {
 		return r.Reduce(out)
@@ -209,6 +221,9 @@ func (r *Ring) rootPoly(p algebra.Poly, q int) (algebra.Fraction, error) {
 			}
 			return r.Mul(out, a)
 		}
+	}
+	if squares { // where they vanish the rest may be negative
+		r.require(algebra.FromPoly(rest), NeedNonNegative)
 	}
 	g, err := r.rootKernel(rest, q, rootName(r.FormatPoly(rest), q))
 	if err != nil {
@@ -231,6 +246,9 @@ func (r *Ring) rootPower(pw algebra.Power, q int) (algebra.Fraction, int, error)
 		return g.Pow(pw.Exp), 0, nil
 	}
 	k, rem := pw.Exp/q, pw.Exp%q
+	if q%2 == 1 && k%2 == 1 && !r.nonNegativeVar(pw.Var) {
+		k, rem = k-1, rem+q // what is taken out must not be negative
+	}
 	out := v.Pow(k)
 	if q%2 == 0 && k%2 == 1 && !r.nonNegativeVar(pw.Var) {
 		a, err := r.absPoly(algebra.Variable(pw.Var))

@@ -2,6 +2,8 @@ package jet
 
 import (
 	"fmt"
+	"math/big"
+	"slices"
 
 	"creaseproof/entropy/algebra"
 )
@@ -9,10 +11,53 @@ import (
 // circle is a pair (cos a, sin a).
 type circle struct{ c, s algebra.Fraction }
 
+// Angles says how fine the basis of angles of a ring is: the k-th angle that
+// is independent of those before it is divided by Divisors[k] (1 where it is
+// missing) before it joins the basis, and rational multiples of π that square
+// roots do not settle are whole multiples of π/Turn.
+type Angles struct {
+	Divisors []int64
+	Turn     int64
+}
+
+// FinerAngles says that formulas hold fractions of an angle in use, such as
+// theta/2 after theta, and which basis would hold them all. It wraps
+// ErrOutside.
+type FinerAngles struct {
+	Need Angles
+	text string
+}
+
+func (e *FinerAngles) Error() string { return e.text }
+
+// Unwrap is ErrOutside.
+func (e *FinerAngles) Unwrap() error { return ErrOutside }
+
+// maxTurns bounds the multiples of a basis angle.
+const maxTurns = 1000
+
+// SetAngles chooses the basis of angles. It must be called before formulas
+// with angles are read.
+func (r *Ring) SetAngles(a Angles) { r.angles = a }
+
+func (r *Ring) finer(k int, d int64, f algebra.Fraction) error {
+	need := Angles{slices.Clone(r.angles.Divisors), r.angles.Turn}
+	for len(need.Divisors) <= k {
+		need.Divisors = append(need.Divisors, 1)
+	}
+	need.Divisors[k] *= d
+	text := fmt.Sprintf("%v: cos or sin of %s beside cos or sin of %s; write every angle as a whole multiple of one smallest angle",
+		ErrOutside, r.Format(f), r.Format(r.symbols[r.angleBasis[k]].Arg))
+	if need.Divisors[k] > maxTurns {
+		return fmt.Errorf("%w%s", ErrOutside, text[len(ErrOutside.Error()):])
+	}
+	return &FinerAngles{need, text}
+}
+
 // CosSin is the pair cos f, sin f. Arguments are written over a basis of
 // angles with integer coefficients, and a rational multiple of π, so that the
-// addition theorems hold literally. An argument that is a proper fraction of
-// an angle already in use (theta/2 after theta) is outside.
+// addition theorems hold literally. Where the basis is too coarse (theta/2
+// after theta) the error is a *FinerAngles.
 func (r *Ring) CosSin(f algebra.Fraction) (cos, sin algebra.Fraction, err error) {
 	if f.IsZero() {
 		return Whole(1), algebra.Fraction{}, nil
@@ -37,9 +82,14 @@ func (r *Ring) CosSin(f algebra.Fraction) (cos, sin algebra.Fraction, err error)
 	}
 	x, ok := combination(f, r.args(r.angleBasis))
 	if !ok {
-		// f is independent of the basis, so it joins it as it stands.
-		x = append(make([]algebra.Rat, len(r.angleBasis)), algebra.Int(1))
-		c, err := r.newAngle(f)
+		// f is independent of the basis, so it joins it.
+		k := len(r.angleBasis)
+		d := int64(1)
+		if k < len(r.angles.Divisors) {
+			d = r.angles.Divisors[k]
+		}
+		x = append(make([]algebra.Rat, k), algebra.Int(d))
+		c, err := r.newAngle(f.Scale(algebra.Frac64(1, d)))
 		if err != nil {
 			return z.c, z.s, err
 		}
@@ -49,10 +99,12 @@ func (r *Ring) CosSin(f algebra.Fraction) (cos, sin algebra.Fraction, err error)
 		if q.IsZero() {
 			continue
 		}
+		if den := q.Big().Denom(); !q.IsInt() && den.IsInt64() && den.Int64() <= maxTurns {
+			return z.c, z.s, r.finer(i, den.Int64(), f)
+		}
 		n, okInt := q.Int64()
-		if !q.IsInt() || !okInt || n > 1000 || n < -1000 {
-			return z.c, z.s, fmt.Errorf("%w: cos or sin of %s beside cos or sin of %s; write every angle as a whole multiple of one smallest angle",
-				ErrOutside, r.Format(f), r.Format(r.symbols[r.angleBasis[i]].Arg))
+		if !q.IsInt() || !okInt || n > maxTurns || n < -maxTurns {
+			return z.c, z.s, fmt.Errorf("%w: cos or sin of %s, which is %s times another angle in use", ErrOutside, r.Format(f), q)
 		}
 		v := r.angleBasis[i]
 		w, err := r.turnPow(circle{Of(v), Of(r.symbols[v].Partner)}, int(n))
@@ -157,19 +209,53 @@ func (r *Ring) rationalAngle(q algebra.Rat) (circle, error) {
 			return r.turnMul(a, b)
 		}
 	}
-	// q = n/d: the n-th turn of the basis angle π/d.
+	// q = m/d: turns of the basis angle π/d.
 	d := q.Big().Denom()
-	m := q.Big().Num()
-	if !d.IsInt64() || d.Int64() > 1000 || !m.IsInt64() {
+	if !d.IsInt64() || d.Int64() > maxTurns {
 		return circle{}, fmt.Errorf("%w: cos or sin of %s pi", ErrOutside, q)
 	}
-	unit := Of(r.PiVar()).Scale(algebra.Frac64(1, d.Int64()))
-	v, err := r.newAngle(unit)
+	if r.angles.Turn == 0 {
+		r.angles.Turn = d.Int64()
+	}
+	unit := r.angles.Turn
+	if unit%d.Int64() != 0 {
+		need := Angles{slices.Clone(r.angles.Divisors), lcm(unit, d.Int64())}
+		text := fmt.Sprintf("%v: cos or sin of %s pi beside cos or sin of a multiple of pi/%d", ErrOutside, q, unit)
+		if need.Turn > maxTurns {
+			return circle{}, fmt.Errorf("%w%s", ErrOutside, text[len(ErrOutside.Error()):])
+		}
+		return circle{}, &FinerAngles{need, text}
+	}
+	// By half turns and reflection to 0 < m ≤ unit/2.
+	whole := new(big.Int).Mul(q.Big().Num(), big.NewInt(unit/d.Int64()))
+	m := whole.Mod(whole, big.NewInt(2*unit)).Int64()
+	half, reflect := m >= unit, false
+	if half {
+		m -= unit
+	}
+	if 2*m > unit {
+		m, reflect = unit-m, true
+	}
+	v, err := r.newAngle(Of(r.PiVar()).Scale(algebra.Frac64(1, unit)))
 	if err != nil {
 		return circle{}, err
 	}
-	turns := m.Int64() % (2 * d.Int64())
-	return r.turnPow(circle{Of(v), Of(r.symbols[v].Partner)}, int(turns))
+	z, err := r.turnPow(circle{Of(v), Of(r.symbols[v].Partner)}, int(m))
+	if reflect {
+		z.c = z.c.Neg()
+	}
+	if half {
+		z = circle{z.c.Neg(), z.s.Neg()}
+	}
+	return z, err
+}
+
+func lcm(a, b int64) int64 {
+	g := a
+	for m := b; m != 0; {
+		g, m = m, g%m
+	}
+	return a / g * b
 }
 
 // quadrant turns z by k right angles.
