@@ -62,9 +62,9 @@ func (ex *Exact) AssumeSigns(in *Interpreter[algebra.Fraction], list []Assumptio
 		shift, _ := co[0].IsConst()
 		if lead.Sign() < 0 {
 			rel = map[string]string{">": "<", ">=": "<=", "<": ">", "<=": ">=", "=": "="}[rel]
-			lead, shift = lead.Neg(), shift.Neg()
+			shift = shift.Neg()
 		}
-		// lead·v + shift rel 0 with lead > 0
+		// |lead|·v + shift rel 0
 		cur := ex.Ring.Symbol(v).Sign
 		switch {
 		case rel == ">" && shift.Sign() <= 0, rel == ">=" && shift.Sign() < 0, rel == "=" && shift.Sign() < 0:

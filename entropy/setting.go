@@ -5,7 +5,6 @@ import (
 	"slices"
 
 	"creaseproof/entropy/formula"
-	"creaseproof/entropy/jet"
 	"creaseproof/entropy/source"
 )
 
@@ -116,12 +115,4 @@ func (s *Setting) axis(name string) int {
 type direction[T any] struct {
 	coef  []T
 	index []int
-}
-
-func index(coords []int) jet.Index {
-	var j jet.Index
-	for _, i := range coords {
-		j[i]++
-	}
-	return j
 }
