@@ -22,7 +22,6 @@ type ProfileProgram struct {
 	taylor, along   *program.Program
 	ws, wsAlong     *program.Workspace
 	in, out         []float64
-	r, l            []float64
 }
 
 // Compile compiles the cost with values for the constants in R and L. A

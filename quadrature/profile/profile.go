@@ -12,6 +12,7 @@ package profile
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"math"
 
@@ -55,7 +56,8 @@ func Cost(ctx context.Context, p *entropy.ProfileProgram, x, plus, minus, nu []f
 func Density(ctx context.Context, p *entropy.ProfileProgram) quadrature.Density {
 	return func(x, plus, minus, nu []float64) float64 {
 		cost, estimate, err := Cost(ctx, p, x, plus, minus, nu)
-		if err != nil && !(estimate <= 10*tolerance*math.Abs(cost)) {
+		accurate := errors.Is(err, adaptive.ErrTolerance) && estimate <= 10*tolerance*math.Abs(cost)
+		if err != nil && !accurate {
 			return math.NaN()
 		}
 		return cost
