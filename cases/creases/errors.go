@@ -16,7 +16,8 @@ func fault(t source.Text, advice, format string, args ...any) error {
 	return source.NewError(t, 0, fmt.Sprintf(format, args...), advice)
 }
 
-// placed gives an error of evaluating the formula t its place in the file.
+// placed gives an error of evaluating the formula t its place in the file. One
+// that arises in a formula which t refers to is put at t and names the other.
 func placed(t source.Text, err error) error {
 	if err == nil {
 		return nil
@@ -41,7 +42,7 @@ func placed(t source.Text, err error) error {
 	if pos == (source.Pos{}) {
 		return source.NewError(t, 0, problem, advice)
 	}
-	return &source.Error{File: t.File, Line: pos.Line, Col: pos.Col, Problem: problem, Advice: advice}
+	return source.NewError(t, 0, fmt.Sprintf("%s (in the formula at line %d, column %d)", problem, pos.Line, pos.Col), advice)
 }
 
 // header is the name of a surface as a place for errors that concern all of it.

@@ -37,7 +37,14 @@ func (c *combination) offWell() (reason string, onWell bool, err error) {
 			zeros++
 			continue
 		}
+		u, err := c.in.Scalar(f.node)
+		if err != nil {
+			continue
+		}
 		for _, p := range c.samples() {
+			if !c.exact.Ring.EncloseAt(u, nil, p.wide, precision).IsBounded() {
+				continue // u itself is not defined there
+			}
 			x := c.exact.Ring.EncloseAt(r, nil, p.wide, precision)
 			if s, ok := x.Sign(); !ok || s == 0 {
 				continue

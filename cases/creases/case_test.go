@@ -1,0 +1,267 @@
+package creases_test
+
+import (
+	"errors"
+	"strings"
+	"testing"
+
+	"github.com/stretchr/testify/assert"
+	"github.com/stretchr/testify/require"
+
+	"creaseproof/cases"
+	"creaseproof/cases/creases"
+	"creaseproof/entropy/source"
+	"creaseproof/identity"
+)
+
+const layeredHead = `
+[space]
+coordinates = ["x", "y", "z"]
+unknowns    = ["u"]
+constants   = ["eps"]
+assume      = ["eps > 0"]
+[frame]
+plane = ["x", "y"]
+axes  = ["xi", "eta"]
+angle = "theta"
+[let]
+R = "u_z - (u_x^2 + u_y^2)/2"
+L = "u_xx + u_yy"
+e = "R^2/(2 eps) + eps L^2/2"
+[model]
+residual = "R"
+bending  = "L"
+energy   = "e"
+[field.Sigma]
+xi  = "u_z u_xi - u_xi u_eta^2/2 - u_xi^3/6"
+eta = "-(u_z u_eta - u_eta u_xi^2/2 - u_eta^3/6)"
+z   = "(u_eta^2 - u_xi^2)/2"
+[[surface]]
+name = "s"
+`
+
+const eikonalHead = `
+[space]
+coordinates = ["x", "y"]
+unknowns    = ["u"]
+constants   = ["eps", "c"]
+[let]
+R = "(1 - u_x^2 - u_y^2)/2"
+L = "u_xx + u_yy"
+e = "R^2/(2 eps) + eps L^2/2"
+[model]
+residual = "R"
+bending  = "L"
+energy   = "e"
+[[surface]]
+name = "s"
+`
+
+// run evaluates the one surface of a case.
+func run(t *testing.T, text string) ([]creases.Result, error) {
+	t.Helper()
+	c, err := cases.Parse("case.toml", []byte(text))
+	require.NoError(t, err)
+	return creases.New(c.Setting, "case.toml").Evaluate(t.Context(), &c.File.Surfaces[0], creases.Options{})
+}
+
+func one(t *testing.T, text string) creases.Result {
+	t.Helper()
+	rs, err := run(t, text)
+	require.NoError(t, err)
+	require.Len(t, rs, 1)
+	return rs[0]
+}
+
+const wall = `polygon = [["0", "0", "0"], ["0", "1", "0"], ["0", "0", "1"]]
+`
+
+// What fails a check has no energy, is open, and names the place.
+func TestRefused(t *testing.T) {
+	for _, test := range []struct {
+		name, head, surface string
+		want                []string
+	}{
+		{"off the well", layeredHead, `plus = "x + z/3"
+minus = "-x + z/2"
+` + wall, []string{"plus trace is off the well", "at (x, y, z) = (0, ", "residual is -0.166667"}},
+		{"off the well by less than rounding can tell", layeredHead, `plus = "x + z/2"
+minus = "-x + z/2 + z/1000000000000"
+` + wall, []string{"minus trace is off the well", "residual is 1e-12"}},
+		{"off the well somewhere else", layeredHead, `plus = "x + z/2"
+minus = "-x + z/2 + z y^2/1000000"
+` + wall, []string{"minus trace is off the well", "at (x, y, z) = "}},
+		{"off the well on a patch", layeredHead, `plus = "-(x^2 + y^2)/(2 z)"
+minus = "-k + z/100000"
+values = { k = "3/2" }
+patch = { map = ["sqrt(2 k t) cos(a)", "sqrt(2 k t) sin(a)", "t"], over = { t = ["1/2", "3"], a = ["0", "2 pi"] } }
+`, []string{"minus trace is off the well", "(t, a) = (", "k = 3/2", "residual is 1e-05"}},
+		{"gradient off the well", eikonalHead, `plus_gradient = ["t/2", "-1"]
+minus_gradient = ["0", "1"]
+patch = { map = ["t", "0"], over = { t = ["0", "1"] } }
+`, []string{"plus trace is off the well", "at (x, y) = (", "(t) = ("}},
+		{"discontinuous", layeredHead, `plus = "x + z/2"
+minus = "-x + z/2 + 1"
+` + wall, []string{"u is discontinuous", "jumps by -1"}},
+		{"slightly discontinuous", layeredHead, `plus = "x + z/2"
+minus = "-x + z/2 + 1/1000000"
+` + wall, []string{"u is discontinuous", "jumps by -1e-06"}},
+		{"not normal", layeredHead, `plus_gradient = ["1", "0", "1/2"]
+minus_gradient = ["-1", "0", "1/2"]
+polygon = [["0", "0", "0"], ["1", "1", "0"], ["0", "0", "1"]]
+`, []string{"not normal to the surface", "tangential part is"}},
+		{"slightly not normal", layeredHead, `plus_gradient = ["1", "0", "1/2"]
+minus_gradient = ["-1", "0", "1/2"]
+polygon = [["0", "0", "0"], ["1/100000", "1", "0"], ["0", "0", "1"]]
+`, []string{"not normal to the surface"}},
+		{"a trace that is no number", layeredHead, `plus = "sqrt(x - 1) + z/2"
+minus = "0"
+` + wall, []string{"not finite", "at (x, y, z) = (0, "}},
+		{"a gradient that is no number", eikonalHead, `plus_gradient = ["0", "log(t - 1/2)/log(t - 1/2)"]
+minus_gradient = ["0", "-1"]
+patch = { map = ["t", "0"], over = { t = ["0", "1"] } }
+`, []string{"plus trace is not finite", "(t) = ("}},
+		{"a map that is no number", layeredHead, `density = "1"
+patch = { map = ["sqrt(t)", "a", "t"], over = { t = ["-1", "1"], a = ["0", "1"] } }
+`, []string{"position or tangent of the surface is not finite"}},
+		{"a density that is no number", layeredHead, `density = "sqrt(nu_x)"
+patch = { map = ["cos(a)", "sin(a)", "t"], over = { t = ["0", "1"], a = ["0", "2 pi"] } }
+`, []string{"density is not finite", "(t, a) = ("}},
+		{"a degenerate patch", layeredHead, `density = "1"
+patch = { map = ["t", "t", "t"], over = { t = ["0", "1"], a = ["0", "1"] } }
+`, []string{"degenerate", "at (x, y, z) = "}},
+		{"a degenerate polygon", layeredHead, `density = "1"
+polygon = [["0", "0", "0"], ["1", "1", "1"], ["2", "2", "2"]]
+`, []string{"no area"}},
+		{"a polygon that is not flat", layeredHead, `density = "1"
+polygon = [["0", "0", "0"], ["1", "0", "0"], ["1", "1", "1"], ["0", "1", "0"]]
+`, []string{"not flat"}},
+		{"an empty range", layeredHead, `density = "1"
+patch = { map = ["t", "a", "0"], over = { t = ["1", "0"], a = ["0", "1"] } }
+`, []string{"increasing order"}},
+		{"the second of two values", layeredHead, `values = { m = ["1", "0"] }
+plus = "m x + m^2 z/2"
+minus = "0"
+polygon = [["0", "0", "0"], ["0", "1", "0"], ["-1/2", "1", "1"], ["-1/2", "0", "1"]]
+`, nil},
+	} {
+		rs, err := run(t, test.head+test.surface)
+		require.NoError(t, err, test.name)
+		if test.want == nil {
+			require.Len(t, rs, 2)
+			assert.NotNil(t, rs[0].Energy, rs[0].Reason)
+			assert.True(t, rs[1].Energy == nil || *rs[1].Energy == 0, rs[1].Reason)
+			continue
+		}
+		r := rs[0]
+		assert.Nil(t, r.Energy, test.name)
+		assert.Nil(t, r.Error, test.name)
+		assert.Equal(t, identity.Open, r.Verdict, test.name)
+		assert.False(t, r.Met, test.name)
+		for _, w := range test.want {
+			assert.Contains(t, r.Reason, w, test.name)
+		}
+	}
+}
+
+// Mistakes in the file are errors with their place.
+func TestFaults(t *testing.T) {
+	for _, test := range []struct {
+		head, surface string
+		line          int // in the surface, from 1
+		want          string
+	}{
+		{layeredHead, `plus = "u + x"
+minus = "0"
+` + wall, 1, "the unknown u has no value"},
+		{layeredHead, `plus = "x + eps"
+minus = "0"
+` + wall, 1, "the constant eps has no value"},
+		{layeredHead, `plus = "x + q"
+minus = "0"
+` + wall, 1, "q"},
+		{layeredHead, `plus = "t"
+minus = "0"
+patch = { map = ["t", "a", "t"], over = { t = ["0", "1"], a = ["0", "1"] } }
+`, 1, "t"},
+		{layeredHead, `density = "[u_x]"
+` + wall, 1, ""},
+		{layeredHead, `density = "u_x"
+` + wall, 1, "the derivative u_x has no value"},
+		{layeredHead, `density = "theta"
+` + wall, 1, "the angle theta has no value"},
+		{layeredHead, `density = "sup(theta, [Sigma].nu)"
+plus = "x + z/2"
+minus = "-x + z/2"
+` + wall, 1, "angle theta has no value"},
+		{layeredHead, `density = "u_x"
+plus = "x + z/2"
+minus = "-x + z/2"
+` + wall, 1, "two traces"},
+		{layeredHead, `density = "1/(nu_x - nu_x)"
+` + wall, 1, "vanishes identically"},
+		{layeredHead, `density = "1"
+energy = "log(0)"
+` + wall, 2, ""},
+		{layeredHead, `density = "1"
+energy = "x"
+` + wall, 2, "x has no value here"},
+		{layeredHead, `density = "1"
+energy = "1/(k - 1)"
+values = { k = "1" }
+` + wall, 2, "vanishes identically"},
+		{layeredHead, `density = "1"
+values = { x = "1" }
+` + wall, 2, "coordinate"},
+		{layeredHead, `density = "1"
+values = { k = "x" }
+` + wall, 2, "x"},
+		{layeredHead, `density = "1"
+patch = { map = ["t", "x", "0"], over = { t = ["0", "1"], x = ["0", "1"] } }
+`, 2, "coordinate"},
+		{layeredHead, `density = "1"
+patch = { map = ["t", "eps", "0"], over = { t = ["0", "1"], eps = ["0", "1"] } }
+`, 2, "constant"},
+		{layeredHead, `density = "1"
+patch = { map = ["t", "a", "x"], over = { t = ["0", "1"], a = ["0", "1"] } }
+`, 2, "the coordinate x has no value"},
+		{layeredHead, `density = "1"
+patch = { map = ["t", "0"], over = { t = ["0", "1"] } }
+`, 2, "components"},
+		{layeredHead, `density = "1"
+graph = { of = "x^2", over = { x = ["0", "1"], x = ["0", "1"] } }
+`, -1, ""},
+		{layeredHead, `density = "1"
+graph = { of = "z", over = { x = ["0", "1"], y = ["0", "1"] } }
+`, 2, "the coordinate z has no value"},
+		{layeredHead, `plus = "0"
+minus = "0"
+level = "x"
+box = { x = ["-1", "1"], y = ["-1", "1"], z = ["-1", "1"] }
+`, 0, "not integrated by this version, which integrates polygons, patches and graphs"},
+		{strings.Replace(layeredHead, "eps L^2/2", "eps L^2", 1), `plus = "x + z/2"
+minus = "-x + z/2"
+` + wall, 0, "no profile cost: the energy is not"},
+		{strings.Replace(eikonalHead, "(1 -", "(c -", 1), `plus = "y"
+minus = "-y"
+polygon = [["0", "0"], ["1", "0"]]
+`, 0, "the constant c has no value"},
+	} {
+		text := test.head + test.surface
+		c, err := cases.Parse("case.toml", []byte(text))
+		if err != nil {
+			assert.True(t, test.line < 0 || test.want == "", "%s: %v", test.surface, err)
+			continue
+		}
+		_, err = creases.New(c.Setting, "case.toml").Evaluate(t.Context(), &c.File.Surfaces[0], creases.Options{})
+		if !assert.Error(t, err, test.surface) {
+			continue
+		}
+		assert.ErrorContains(t, err, test.want, test.surface)
+		var e *source.Error
+		if assert.True(t, errors.As(err, &e), "%s: %v", test.surface, err) {
+			assert.Equal(t, strings.Count(test.head, "\n")+test.line, e.Line, "%s: %v", test.surface, err)
+			assert.Equal(t, "case.toml", e.File)
+		}
+	}
+}
