@@ -9,6 +9,7 @@ import (
 	"time"
 
 	"creaseproof/cases"
+	"creaseproof/cases/library"
 	"creaseproof/identity"
 
 	"github.com/spf13/cobra"
@@ -31,6 +32,7 @@ or - for standard input; without one, every built-in case is taken.`,
 		Example: `  creaseproof check mine.toml
   creaseproof check layered-rotated --only "Young bound" --json
   creaseproof check mine.toml --samples 5000000 --seed 7 --timeout 60`,
+		ValidArgsFunction: completeCase,
 		RunE: func(cmd *cobra.Command, args []string) error {
 			end, err := c.begin()
 			if err != nil {
@@ -75,6 +77,11 @@ func selected(list []*cases.Case, opt *cases.Options) []*cases.Case {
 	return out
 }
 
+// completeCase offers the built-in cases to the shell, beside files.
+func completeCase(*cobra.Command, []string, string) ([]string, cobra.ShellCompDirective) {
+	return library.Names(), cobra.ShellCompDirectiveDefault
+}
+
 // request is how a command was called and what came of reading its cases.
 type request struct {
 	json bool
@@ -87,16 +94,16 @@ func check(ctx context.Context, list []*cases.Case, opt cases.Options, s streams
 	opt.Progress = p.inside
 	text := &checkText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt}
 	opt.Report = func(r *cases.Result) {
-		p.clear()
-		if r.Err != nil {
-			say.add(r.Err)
-		} else if !q.json {
-			text.result(r)
-		}
-		p.step()
+		p.report(func() {
+			if r.Err != nil {
+				say.add(r.Err)
+			} else if !q.json {
+				text.result(r)
+			}
+		})
 	}
 	out := cases.Check(ctx, list, opt)
-	p.clear()
+	p.end()
 	if q.json {
 		if err := writeJSON(s.out, out.Document(list)); err != nil {
 			return err

@@ -87,10 +87,13 @@ func (t *checkText) counts(rec *identity.Record) {
 	if rec.Verdict != identity.Supported && rec.Verdict != identity.Open || rec.Samples == 0 && rec.Searches == 0 {
 		return
 	}
-	s := fmt.Sprintf("no counterexample in %d samples and %s, seed %d: a numerical check is not a proof",
-		rec.Samples, count(rec.Searches, "search", "searches"), rec.Seed)
+	s := fmt.Sprintf("seed %d", rec.Seed)
+	if !strings.Contains(rec.Reason, "not a proof") {
+		s = fmt.Sprintf("no counterexample in %d samples and %s, seed %d: a numerical check is not a proof",
+			rec.Samples, count(rec.Searches, "search", "searches"), rec.Seed)
+	}
 	if rec.Margin != nil {
-		s += fmt.Sprintf("; least margin met %.3g", *rec.Margin)
+		s += fmt.Sprintf(", least margin met %.3g", *rec.Margin)
 	}
 	t.note("", s)
 }
@@ -166,5 +169,5 @@ func (t *checkText) summary(out *cases.Outcome, total int) {
 	if n := total - len(out.Results); n > 0 {
 		parts = append(parts, fmt.Sprintf("%d not reached", n))
 	}
-	t.last(count(total, "claim", "claims"), parts, decided-met)
+	t.last(count(total, "claim", "claims"), parts, tally{met, decided - met, decided < total})
 }

@@ -28,6 +28,7 @@ or - for standard input; without one, every built-in case is taken.`,
 		Example: `  creaseproof energy mine.toml
   creaseproof energy crease-paraboloid --only "paraboloid front" --json
   creaseproof energy`,
+		ValidArgsFunction: completeCase,
 		RunE: func(cmd *cobra.Command, args []string) error {
 			end, err := c.begin()
 			if err != nil {
@@ -75,18 +76,18 @@ func energy(ctx context.Context, list []*cases.Case, opt cases.EnergyOptions, s 
 	text := &energyText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt, together: s.together}
 	p.inside("surfaces", 0, 0)
 	opt.Report = func(r *cases.EnergyResult) {
-		p.clear()
-		if !q.json {
-			text.result(r)
-		}
-		if r.Err != nil {
-			say.add(r.Err)
-		}
-		p.step()
+		p.report(func() {
+			if !q.json {
+				text.result(r)
+			}
+			if r.Err != nil {
+				say.add(r.Err)
+			}
+		})
 		p.inside(r.Surface.Name, 0, 0)
 	}
 	out := cases.Energy(ctx, list, opt)
-	p.clear()
+	p.end()
 	if q.json {
 		if err := writeJSON(s.out, out.Document(list)); err != nil {
 			return err

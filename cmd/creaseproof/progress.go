@@ -48,18 +48,26 @@ func (p *progress) inside(name string, done, total int64) {
 	fmt.Fprintf(p.w, "\r\x1b[K%d of %d; %s%s", p.done, p.total, clip(name, 50), part)
 }
 
-// step counts one claim or surface.
-func (p *progress) step() {
+// report counts one claim or surface and writes what there is to say of it,
+// with the line out of the way.
+func (p *progress) report(write func()) {
 	p.mu.Lock()
 	defer p.mu.Unlock()
+	p.clear()
+	write()
 	p.done++
 	p.ended = p.done == p.total
 }
 
-// clear takes the line away, so that something else can be written.
-func (p *progress) clear() {
+// end takes the line away for good.
+func (p *progress) end() {
 	p.mu.Lock()
 	defer p.mu.Unlock()
+	p.clear()
+	p.ended = true
+}
+
+func (p *progress) clear() {
 	if p.shown {
 		io.WriteString(p.w, "\r\x1b[K")
 		p.shown = false

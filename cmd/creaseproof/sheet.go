@@ -67,12 +67,22 @@ func (s *sheet) lines(paint func(string) string, text string) {
 	}
 }
 
-// last writes the last line: what there was, how it came out, and how many
-// expectations are not met.
-func (s *sheet) last(what string, parts []string, unmet int) {
-	end := "all as expected"
-	if unmet > 0 {
-		end = s.style.alarm(fmt.Sprintf("%d not as expected", unmet))
+// tally is how the results of a run came out.
+type tally struct {
+	met, unmet int
+	missing    bool // there is something without a result
+}
+
+// last writes the last line: what there was, how it came out, and whether the
+// expectations are met.
+func (s *sheet) last(what string, parts []string, n tally) {
+	switch {
+	case n.unmet > 0:
+		parts = append(parts, s.style.alarm(fmt.Sprintf("%d not as expected", n.unmet)))
+	case n.missing && n.met > 0:
+		parts = append(parts, "the others as expected")
+	case n.met > 0:
+		parts = append(parts, "all as expected")
 	}
-	fmt.Fprintf(s.w, "\n%s: %s; %s\n", what, strings.Join(parts, ", "), end)
+	fmt.Fprintf(s.w, "\n%s: %s\n", what, strings.Join(parts, ", "))
 }
