@@ -4,6 +4,7 @@ import (
 	"context"
 	"math"
 	"math/rand/v2"
+	"sync/atomic"
 	"testing"
 	"time"
 
@@ -84,21 +85,21 @@ func TestIterationLimit(t *testing.T) {
 // countdown is a context that is done after some questions.
 type countdown struct {
 	context.Context
-	left *int
+	left *atomic.Int64
 }
 
 func (c countdown) Err() error {
-	if *c.left == 0 {
+	if c.left.Add(-1) < 0 {
 		return context.Canceled
 	}
-	*c.left--
 	return nil
 }
 
 func TestCancelledAnywhere(t *testing.T) {
 	p := randomFeasible(rand.New(rand.NewPCG(1, 2)), []int{10, -2}, 20, 1, 0.3)
 	for n := 0; ; n++ {
-		left := n
+		var left atomic.Int64
+		left.Store(int64(n))
 		s, err := Solve(countdown{context.Background(), &left}, p, Options{})
 		if err == nil {
 			assert.Equal(t, Optimal, s.Status)

@@ -109,6 +109,9 @@ func (s *solver) run() (Status, error) {
 		s.inverse(s.inv, s.ls)
 		s.residuals()
 		now := s.measure()
+		if s.withoutCost(now) {
+			now = s.measure()
+		}
 		merit := s.merit(now)
 		if math.IsNaN(merit) || math.IsInf(merit, 0) {
 			return s.finish(Stalled)
@@ -139,6 +142,28 @@ func (s *solver) run() (Status, error) {
 			return s.finish(Stalled)
 		}
 	}
+}
+
+// withoutCost scales the dual iterate if there is no cost and the point is
+// feasible: all multiples of y and S by a positive factor are then feasible, and
+// the gap is a matter of the factor.
+func (s *solver) withoutCost(now measures) bool {
+	if s.target > 0 || s.dualScale != 1 || max(now.primal, now.dual) > s.opt.Feasibility || now.gap <= s.opt.Gap {
+		return false
+	}
+	size := s.beta * s.gamma * max(s.x.dot(s.s), math.Abs(floats.Dot(s.b, s.y)))
+	factor := min(1, 0.5*s.opt.Gap/size)
+	if !(factor > 0) {
+		return false
+	}
+	s.s.scale(factor)
+	floats.Scale(factor, s.y)
+	if !s.cholesky(s.ls, s.s) {
+		return false
+	}
+	s.inverse(s.inv, s.ls)
+	s.residuals()
+	return true
 }
 
 func (s *solver) patience() int {

@@ -1,7 +1,6 @@
 package semidefinite
 
 import (
-	"context"
 	"errors"
 	"math"
 
@@ -20,10 +19,10 @@ type schur struct {
 	half   []float64 // L⁻¹ F, in rows
 	inner  []float64 // the factor of F' (M + delta F F')⁻¹ F
 	// Scratch.
-	xr, zr, u []float64
-	r1, r2    []float64
-	dy, dz    []float64
-	outer     []float64 // F F'
+	workers []*former
+	r1, r2  []float64
+	dy, dz  []float64
+	outer   []float64 // F F'
 }
 
 func newSchur(g *program) *schur {
@@ -37,148 +36,8 @@ func newSchur(g *program) *schur {
 		c.outer = make([]float64, m*m)
 		blasImpl.Dsyrk(blas.Lower, blas.NoTrans, m, nf, 1, g.free, nf, 0, c.outer, m)
 	}
-	var cells, band int
-	for k, n := range g.shape {
-		if n < 0 {
-			continue
-		}
-		cells = max(cells, n*n)
-		for _, r := range g.parts[k] {
-			band = max(band, n*len(r.support))
-		}
-	}
-	c.xr, c.zr, c.u = make([]float64, band), make([]float64, band), make([]float64, cells)
+	c.workers = newFormers(g)
 	return c
-}
-
-// form computes M from X and Z = S⁻¹.
-func (c *schur) form(ctx context.Context, x, z element) error {
-	clear(c.m)
-	for k, n := range c.shape {
-		if n < 0 {
-			c.formDiagonal(c.parts[k], -n, x[k], z[k])
-		} else if err := c.formDense(ctx, c.parts[k], n, x[k], z[k]); err != nil {
-			return err
-		}
-	}
-	return nil
-}
-
-func (c *schur) formDiagonal(parts []part, n int, x, z []float64) {
-	type term struct {
-		row int
-		v   float64
-	}
-	columns := make([][]term, n)
-	for _, r := range parts {
-		for t, p := range r.p {
-			columns[p] = append(columns[p], term{r.row, r.v[t]})
-		}
-	}
-	m := len(c.b)
-	for p, column := range columns {
-		ratio := x[p] * z[p]
-		for a, s := range column {
-			for _, t := range column[:a+1] {
-				c.m[max(s.row, t.row)*m+min(s.row, t.row)] += ratio * s.v * t.v
-			}
-		}
-	}
-}
-
-func (c *schur) formDense(ctx context.Context, parts []part, n int, x, z []float64) error {
-	m := len(c.b)
-	entries := 0
-	for _, r := range parts {
-		entries += len(r.v)
-	}
-	for a, r := range parts {
-		if a%16 == 0 {
-			if err := ctx.Err(); err != nil {
-				return err
-			}
-		}
-		// X A_j Z = Σ_k X[:, k] (A_j Z)[k, :] over the support of A_j.
-		c.gather(r, n, x, z)
-		// Per term, a dense product is about twice as fast as the entries.
-		if 4*entries >= n*n {
-			c.product(n, len(r.support))
-			for _, s := range parts[a:] {
-				var sum float64
-				w := s.w[:len(s.p)]
-				q := s.q[:len(s.p)]
-				for t, p := range s.p {
-					sum += w[t] * c.u[p*n+q[t]]
-				}
-				c.m[max(r.row, s.row)*m+min(r.row, s.row)] += sum
-			}
-		} else {
-			for _, s := range parts[a:] {
-				c.m[max(r.row, s.row)*m+min(r.row, s.row)] += c.entrywise(s, n, len(r.support))
-			}
-		}
-		entries -= len(r.v)
-	}
-	return nil
-}
-
-// gather puts the rows of X in the support of r into xr, and those of A Z into zr.
-func (c *schur) gather(r part, n int, x, z []float64) {
-	support := len(r.support)
-	index := 0
-	clear(c.zr[:support*n])
-	find := func(p int) int {
-		lo, hi := 0, support
-		for lo < hi {
-			if mid := (lo + hi) / 2; r.support[mid] < p {
-				lo = mid + 1
-			} else {
-				hi = mid
-			}
-		}
-		return lo
-	}
-	for k, p := range r.support {
-		copy(c.xr[k*n:(k+1)*n], x[p*n:(p+1)*n])
-	}
-	for t, p := range r.p {
-		q := r.q[t]
-		if r.support[index] != p {
-			index = find(p)
-		}
-		floats.AddScaled(c.zr[index*n:(index+1)*n], r.v[t], z[q*n:(q+1)*n])
-		if p != q {
-			k := find(q)
-			floats.AddScaled(c.zr[k*n:(k+1)*n], r.v[t], z[p*n:(p+1)*n])
-		}
-	}
-}
-
-// product sets the upper triangle of u to that of the symmetric part of xrᵀ zr.
-func (c *schur) product(n, support int) {
-	u := c.u[:n*n]
-	clear(u)
-	blasImpl.Dgemm(blas.Trans, blas.NoTrans, n, n, support, 1, c.xr, n, c.zr, n, 0, u, n)
-	for i := 0; i < n; i++ {
-		for j := i + 1; j < n; j++ {
-			u[i*n+j] = 0.5 * (u[i*n+j] + u[j*n+i])
-		}
-	}
-}
-
-// entrywise returns <A, xrᵀ zr> for the matrix A of s.
-func (c *schur) entrywise(s part, n, support int) float64 {
-	var sum float64
-	for t, p := range s.p {
-		q := s.q[t]
-		var pq, qp float64
-		for k := 0; k < support*n; k += n {
-			pq += c.xr[k+p] * c.zr[k+q]
-			qp += c.xr[k+q] * c.zr[k+p]
-		}
-		sum += s.w[t] * 0.5 * (pq + qp)
-	}
-	return sum
 }
 
 var errFactor = errors.New("semidefinite: the Schur complement has no factor")
@@ -265,7 +124,7 @@ func (c *schur) solve(dy, dz, r, s []float64) {
 			floats.Sub(dz, c.dz)
 			return
 		}
-		if norm <= 1e-15*floats.Norm(r, 2) || norm > 0.5*best {
+		if norm <= 1e-14*floats.Norm(r, 2) || norm > 0.5*best {
 			return
 		}
 		best = norm
