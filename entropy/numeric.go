@@ -45,7 +45,12 @@ type Numeric struct {
 	Constants map[string]float64
 	// Closed refuses inputs that were not declared.
 	Closed bool
+	// Suprema are the harmonics of the suprema over the frame angle, in the
+	// order in which they are met: see Setting.Suprema. Where it is nil they
+	// are refused. The cosine and sine of the angle must be inputs.
+	Suprema []int
 
+	met    int
 	set    *Setting
 	inputs []Input
 	index  map[Input]int
@@ -276,11 +281,6 @@ func (n *Numeric) Total(x program.Ref, i int) (program.Ref, error) {
 // Euler is refused: it is decided exactly, not compiled.
 func (n *Numeric) Euler(program.Ref, int) (program.Ref, error) {
 	return 0, fmt.Errorf("%w: the Euler operator of a compiled formula", jet.ErrOutside)
-}
-
-// Sup is refused: it is decided exactly, not compiled.
-func (n *Numeric) Sup(angle string, _ program.Ref) (program.Ref, error) {
-	return 0, fmt.Errorf("%w: the supremum over %s in a compiled formula; write the norm of two fields that span the family", jet.ErrOutside, angle)
 }
 
 var _ Arithmetic[program.Ref] = (*Numeric)(nil)

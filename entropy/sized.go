@@ -112,7 +112,7 @@ func (s Sizing) Euler(x Sized, unknown int) (Sized, error) {
 	return s.termErr(s.Numeric.Euler(x.Value, unknown))
 }
 
-// Sup is refused.
+// Sup is the supremum over an angle.
 func (s Sizing) Sup(angle string, x Sized) (Sized, error) {
 	return s.termErr(s.Numeric.Sup(angle, x.Value))
 }

@@ -190,10 +190,14 @@ patch = { map = ["t", "a", "t"], over = { t = ["0", "1"], a = ["0", "1"] } }
 ` + wall, 1, "the derivative u_x has no value"},
 		{layeredHead, `density = "theta"
 ` + wall, 1, "the angle theta has no value"},
-		{layeredHead, `density = "sup(theta, [Sigma].nu)"
+		{layeredHead, `density = "sup(theta, [Sigma].nu) + [Sigma].nu"
 plus = "x + z/2"
 minus = "-x + z/2"
 ` + wall, 1, "angle theta has no value"},
+		{layeredHead, `density = "sup(theta, [Sigma].nu + ([Sigma].nu)^2)"
+plus = "x + z/2"
+minus = "-x + z/2"
+` + wall, 1, "2 harmonics at once"},
 		{layeredHead, `density = "u_x"
 plus = "x + z/2"
 minus = "-x + z/2"

@@ -7,7 +7,9 @@ import (
 	"strings"
 
 	"creaseproof/entropy"
+	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
+	"creaseproof/entropy/program"
 	"creaseproof/identity"
 	"creaseproof/quadrature"
 	"creaseproof/quadrature/profile"
@@ -56,31 +58,62 @@ func (c *combination) givenDensity() (quadrature.Density, error) {
 			}
 		}
 	}
-	in, num := c.set.NewNumeric(nil, inputs...)
-	num.Closed = true
-	in.Jump = jump
 	f := c.s.density
-	x, err := in.Scalar(f.node)
-	if err == nil {
-		err = num.Err()
+	compile := func(suprema []int) (program.Ref, *entropy.Numeric, error) {
+		in, num := c.set.NewNumeric(nil, inputs...)
+		num.Closed, num.Suprema, in.Jump = true, suprema, jump
+		x, err := in.Scalar(f.node)
+		if err == nil {
+			err = num.Err()
+		}
+		return x, num, placed(f.text, err)
+	}
+	x, num, err := compile(nil)
+	if err != nil && c.set.Frame != nil && holdsSup(f.node, c.set.Lets) {
+		suprema, exact := c.set.Suprema(c.ctx, f.node, jump)
+		if exact != nil {
+			return nil, placed(f.text, exact)
+		}
+		angle := c.set.Frame.Angle
+		inputs = append(inputs, entropy.Input{Kind: entropy.ConstantInput, Name: angle},
+			entropy.Input{Kind: entropy.CosineInput, Name: angle}, entropy.Input{Kind: entropy.SineInput, Name: angle})
+		x, num, err = compile(suprema)
 	}
 	if err != nil {
-		return nil, placed(f.text, err)
+		return nil, err
 	}
 	p, err := num.Compile(x)
 	if err != nil {
 		return nil, placed(f.text, err)
 	}
 	ws, values, out := p.NewWorkspace(), make([]float64, len(inputs)), make([]float64, 1)
+	if last := inputs[len(inputs)-1]; last.Kind == entropy.SineInput {
+		values[len(values)-2] = 1 // the angle is 0
+	}
 	return func(x, plus, minus, nu []float64) float64 {
 		k := copy(values, x)
 		k += copy(values[k:], c.params)
 		k += copy(values[k:], nu)
 		k += copy(values[k:], plus)
-		copy(values[k:], minus)
+		copy(values[k:], minus) // the angle stands behind them
 		p.Eval(ws, values, out)
 		return out[0]
 	}, nil
+}
+
+// holdsSup reports whether a formula, or a named formula, has a supremum.
+func holdsSup(n formula.Node, lets map[string]formula.Node) (found bool) {
+	look := func(n formula.Node) bool {
+		if call, ok := n.(*formula.Call); ok && call.Func == "sup" {
+			found = true
+		}
+		return !found
+	}
+	formula.Walk(n, look)
+	for _, l := range lets {
+		formula.Walk(l, look)
+	}
+	return found
 }
 
 // slice adds the second value where the density is the profile cost of the

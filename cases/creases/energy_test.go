@@ -101,6 +101,8 @@ func TestGivenDensity(t *testing.T) {
 	for _, d := range []string{
 		"norm([u_x], [u_y])^4/(12 norm([u_x], [u_y], [u_z]))",
 		"norm([Sigma(0)].nu, [Sigma(pi/4)].nu)",
+		"sup(theta, [Sigma].nu)",
+		"(sup(theta, -[Sigma].nu) + 2 sup(theta, 1 + [Sigma(theta/1)].nu/2) - 2)/2",
 		"norm([u_x], [u_y])^3 sqrt(nu_x^2 + nu_y^2)/12",
 		"(norm(x, y)/t)^3 sqrt(nu_x^2 + nu_y^2)/12",
 	} {
