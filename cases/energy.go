@@ -146,6 +146,10 @@ func surface(ctx context.Context, c *Case, s *casefile.Surface, integrate integr
 	if ctx.Err() != nil {
 		return nil
 	}
+	if combinations(s) > maxCombinations {
+		err := c.text.at(s.Values[0].Name.Pos, "make a surface for each part of them", "the values have more than %d combinations", maxCombinations)
+		return &EnergyResult{Case: c, Surface: s, Err: err}
+	}
 	values, err := integrate(ctx, c, s)
 	r = &EnergyResult{Case: c, Surface: s, Values: values}
 	switch {
@@ -159,6 +163,21 @@ func surface(ctx context.Context, c *Case, s *casefile.Surface, integrate integr
 		r.partial = true
 	}
 	return r
+}
+
+// maxCombinations bounds how often one surface is repeated.
+const maxCombinations = 10_000
+
+// combinations is how often a surface is repeated, at most one more than is
+// allowed.
+func combinations(s *casefile.Surface) int {
+	n := 1
+	for _, v := range s.Values {
+		if n *= len(v.List); n > maxCombinations {
+			return maxCombinations + 1
+		}
+	}
+	return n
 }
 
 // refusal is an error at the place of a surface that has no energy because its

@@ -143,3 +143,15 @@ func TestEnergyDocument(t *testing.T) {
 	require.NoError(t, err, "what JSON cannot say is left out")
 	assert.NotContains(t, string(data), `"error"`)
 }
+
+func TestTooManyCombinations(t *testing.T) {
+	list := manySurfaces(t, "a")
+	s := &list[0].File.Surfaces[0]
+	for range 64 {
+		s.Values = append(s.Values, casefile.Values{Name: casefile.Name{S: "k", Pos: source.Pos{Line: 7, Col: 1}}, List: make([]source.Text, 10)})
+	}
+	out := Energy(t.Context(), list, EnergyOptions{})
+	assert.ErrorContains(t, out.Results[0].Err, "more than 10000 combinations")
+	s.Values = s.Values[:4]
+	assert.Equal(t, 10000, combinations(s))
+}

@@ -23,7 +23,7 @@ type checkText struct {
 const (
 	mostFormula = 240 // runes of a remainder or a list of conditions
 	mostDetails = 6   // details
-	mostDetail  = 120 // runes of one
+	mostDetail  = 200 // runes of one
 )
 
 // measure finds the width of the names of a case.

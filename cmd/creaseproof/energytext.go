@@ -160,5 +160,5 @@ func (t *energyText) summary(out *cases.EnergyOutcome, surfaces int) {
 	if n := surfaces - len(out.Results); n > 0 {
 		parts = append(parts, fmt.Sprintf("%s not reached", count(n, "surface", "surfaces")))
 	}
-	t.last(fmt.Sprintf("%s of %s", count(total, "energy", "energies"), count(surfaces, "surface", "surfaces")), parts, tally{met, total - met, faulty > 0 || len(out.Results) < surfaces})
+	t.last(fmt.Sprintf("%s of %s", count(total, "energy", "energies"), count(surfaces, "surface", "surfaces")), parts, tally{met, total - met, faulty > 0 || out.Interrupted})
 }
