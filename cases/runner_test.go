@@ -200,3 +200,10 @@ func TestJobsDoNotMatter(t *testing.T) {
 	}
 	require.Equal(t, one(1), one(4))
 }
+
+// A best constant is not a claim for every value of it.
+func TestBestIsOpen(t *testing.T) {
+	out := Check(t.Context(), []*Case{parsed(t, space+"[[claim]]\nname = 'b'\nstates = 'u_x u_y <= C (u_x^2 + u_y^2)'\nbest = 'C'\n")}, Options{Options: identity.DefaultOptions()})
+	assert.Equal(t, []string{"b open"}, verdicts(out))
+	assert.NotEmpty(t, out.Results[0].Record.Reason)
+}

@@ -95,10 +95,11 @@ func check(ctx context.Context, list []*cases.Case, opt cases.Options, s streams
 	text := &checkText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt}
 	opt.Report = func(r *cases.Result) {
 		p.report(func() {
+			if !q.json {
+				text.result(r)
+			}
 			if r.Err != nil {
 				say.add(r.Err)
-			} else if !q.json {
-				text.result(r)
 			}
 		})
 	}

@@ -42,6 +42,10 @@ func (t *checkText) result(r *cases.Result) {
 		t.header(r.Case)
 		t.measure(r.Case)
 	}
+	if r.Err != nil {
+		t.nothing(r.Claim.Name, t.names, "without meaning, see the error")
+		return
+	}
 	rec := r.Record
 	line := fmt.Sprintf("  %s  %s  %s", t.mark(r.Met()), t.style.verdict(rec.Verdict, pad(string(rec.Verdict), 9)), pad(r.Claim.Name, t.names))
 	if rec.Method != "" {

@@ -51,6 +51,9 @@ func (t *energyText) result(r *cases.EnergyResult) {
 		t.header(r.Case)
 		t.measure(r.Case)
 	}
+	if r.Err != nil && len(r.Values) == 0 {
+		t.nothing(r.Surface.Name, t.names, "not read, see the error")
+	}
 	refused := r.Err != nil && t.together
 	for i := range r.Values {
 		v := r.Values[i]

@@ -59,7 +59,7 @@ func TestExitStatus(t *testing.T) {
 		"met":             {space + yes, []string{"check", "-"}, 0, []string{"ok   proved     yes", "1 claim: 1 proved, all as expected"}, ""},
 		"expected false":  {space + no + "expect = \"refuted\"\n", []string{"check", "-"}, 0, []string{"ok   refuted    no", "at u_x = ", "left side", "remainder u_x"}, ""},
 		"not met":         {space + yes + no, []string{"check", "-"}, 1, []string{"NOT  refuted    no", "expected proved", "2 claims: 1 proved, 1 refuted, 1 not as expected"}, ""},
-		"mistake":         {space + mistake + yes, []string{"check", "-"}, 2, []string{"ok   proved     yes", "2 claims: 1 proved, 1 without meaning, the others as expected"}, "-:16:14: division by zero"},
+		"mistake":         {space + mistake + yes, []string{"check", "-"}, 2, []string{"ok   proved     yes", "NOT  -          zero  without meaning", "2 claims: 1 proved, 1 without meaning, the others as expected"}, "-:16:14: division by zero"},
 		"bad file":        {"colour = 1\n", []string{"check", "-"}, 2, nil, "colour"},
 		"no such file":    {"", []string{"check", "no-such.toml"}, 2, nil, "no-such.toml: there is no such file"},
 		"one of two":      {space + yes, []string{"check", "no-such.toml", "-"}, 2, []string{"ok   proved     yes"}, "no-such.toml"},
@@ -80,7 +80,7 @@ func TestExitStatus(t *testing.T) {
 		"refused as expected":  {space + strings.Replace(plane, "-x + z/2", "-x + z/3", 1) + "expect = \"open\"\n", []string{"energy", "-"}, 0, []string{"ok   open", "off the well"}, ""},
 		"degenerate":           {space + strings.NewReplacer("\"1\", \"1\"", "\"2\", \"0\"", "\"0\", \"1\"]", "\"3\", \"0\"]").Replace(plane), []string{"energy", "-"}, 2, []string{"NOT  open"}, "has no energy"},
 		"not a number":         {space + strings.Replace(plane, "-x + z/2", "sqrt(x - 1)", 1), []string{"energy", "-"}, 2, []string{"NOT  open"}, "has no energy"},
-		"mistake in a surface": {space + strings.Replace(plane, "-x + z/2", "-x + foo", 1), []string{"energy", "-"}, 2, nil, `-:17:15: unknown name "foo"`},
+		"mistake in a surface": {space + strings.Replace(plane, "-x + z/2", "-x + foo", 1), []string{"energy", "-"}, 2, []string{"NOT  -          plane  not read", "0 energies of 1 surface: 1 surface not read"}, `-:17:15: unknown name "foo"`},
 		"no surfaces":          {space + yes, []string{"energy", "-"}, 0, []string{"no surfaces"}, ""},
 		"no such surface":      {space + plane, []string{"energy", "-", "--only", "front"}, 2, nil, "no surface has a name"},
 

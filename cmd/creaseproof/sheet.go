@@ -50,6 +50,11 @@ func (s *sheet) mark(met bool) string {
 	return s.style.alarm("NOT")
 }
 
+// nothing writes a line for what has no result.
+func (s *sheet) nothing(name string, width int, why string) {
+	fmt.Fprintf(s.w, "  %s  %s  %s  %s\n", s.mark(false), pad("-", 9), pad(name, width), s.style.faint(why))
+}
+
 // note writes a text below a result.
 func (s *sheet) note(label, text string) {
 	if label != "" {
