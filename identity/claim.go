@@ -6,6 +6,7 @@ import (
 	"creaseproof/entropy"
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
+	"creaseproof/identity/certificate"
 )
 
 // Verdict is what is known of a claim.
@@ -63,16 +64,17 @@ type Exponent struct {
 // seed gives the same verdict on any machine and any number of cores.
 type Options struct {
 	Seed    uint64
-	Samples int64 // of random jets for an inequality
-	Starts  int   // of descents of the adversary
-	Jobs    int   // cores to use; no verdict depends on it
+	Samples int64  // of random jets for an inequality
+	Starts  int    // of descents of the adversary
+	Effort  string // of the search for certificates: low, normal or high
+	Jobs    int    // cores to use; no verdict depends on it
 
 	Progress func(claim string, done, total int64)
 }
 
 // DefaultOptions are the budgets that the program uses.
 func DefaultOptions() Options {
-	return Options{Seed: 1, Samples: 200_000, Starts: 48, Jobs: 0}
+	return Options{Seed: 1, Samples: 200_000, Starts: 48, Effort: "normal"}
 }
 
 // Record is a decided claim.
@@ -90,6 +92,17 @@ type Record struct {
 	Reason      string // why open; what a refutation rests on
 	Assumptions []string
 	Details     []string // such as the terms of a sum of squares
+
+	Equality    *Equality // when an inequality proved by a certificate is an equation
+	Reduced     *certificate.Claim
+	Certificate *certificate.Certificate
+}
+
+// Equality says when equality holds in a certified inequality.
+type Equality struct {
+	Conditions []string          // what must vanish; empty where the two sides are equal
+	Jet        map[string]string // an exact jet at which equality holds, if one was found
+	Consistent string            // "yes", "no" or "unknown"
 }
 
 // CosSin is a rational point of the circle.

@@ -9,6 +9,7 @@ import (
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
+	"creaseproof/identity/gram"
 )
 
 // decider is the state of deciding one claim.
@@ -23,10 +24,12 @@ type decider struct {
 
 	assumed []constraint
 	wells   []algebra.Poly // at a jump: the well on each side, where it is not solved
+	picture *gram.Picture  // what the last search for a certificate saw
 	// jumpRewriter is what atJump installed.
 	jumpRewriter jet.Rewriter
 	ideal        []algebra.Poly // modulo: generators that are not solved
 	equations    []algebra.Poly // modulo: the same before they were differentiated
+	solved       []*solved      // modulo: equations that determine a derivative
 	// hidden says that the equations may have consequences that were not
 	// found, so that a point is no refutation.
 	hidden bool

@@ -16,6 +16,8 @@ type gap struct {
 	value       algebra.Fraction // right - left of A <= B
 	left, right algebra.Fraction // as written
 	poly        algebra.Poly     // value times something positive
+	factor      algebra.Fraction // value = poly · factor, before the angle is removed
+	turned      *turned          // poly is at frame angle 0, which is enough
 }
 
 // inequality decides A <= B or A >= B.
@@ -38,15 +40,24 @@ func (d *decider) inequality() error {
 		d.proved("exact normal form: both sides are equal")
 		return nil
 	}
+	if err := d.removeAngle(g); err != nil {
+		return err
+	}
 	res := squares.Complete(d.ctx, d.ring, g.poly, d.squareVars(g.poly))
 	if err := d.ctx.Err(); err != nil {
 		return err
 	}
-	if res.Proved {
-		d.squaresProved(g, res.Terms)
+	if !res.Proved && (d.refuteRests(g, res.Rests) || d.refuteFar(g)) {
 		return nil
 	}
-	if d.refuteRests(g, res.Rests) || d.refuteFar(g) {
+	if ok, err := d.prove(g, res.Terms); err != nil || ok {
+		return err
+	}
+	if res.Proved {
+		d.proved("completing squares, multiplied out exactly")
+		for _, t := range res.Terms {
+			d.rec.Details = append(d.rec.Details, short("("+d.ring.Format(t.Weight)+") ("+d.ring.Format(t.Base)+")^2"))
+		}
 		return nil
 	}
 	if err := d.ctx.Err(); err != nil {
@@ -82,6 +93,10 @@ func (d *decider) gap() (*gap, error) {
 		}
 	}
 	g.poly = d.ring.ReducePoly(g.poly)
+	g.factor = jet.Whole(1)
+	if f, ok := g.value.Quo(algebra.FromPoly(g.poly)); ok {
+		g.factor = f
+	}
 	return g, g.poly.Err()
 }
 
@@ -130,23 +145,6 @@ func (d *decider) squareVars(p algebra.Poly) []algebra.Var {
 	return out
 }
 
-func (d *decider) squaresProved(g *gap, terms []squares.Term) {
-	d.proved("completing squares, multiplied out exactly")
-	// The factor that was cleared: value = poly·factor, factor > 0.
-	factor, ok := g.value.Quo(algebra.FromPoly(g.poly))
-	for _, t := range terms {
-		w := t.Weight
-		if ok {
-			w = w.Mul(factor)
-		}
-		text := "(" + d.ring.Format(w) + ")"
-		if c, ok := t.Base.IsConst(); !ok || !c.IsOne() {
-			text += " (" + d.ring.Format(t.Base) + ")^2"
-		}
-		d.rec.Details = append(d.rec.Details, short(text))
-	}
-}
-
 // falseAt reports whether the inequality certainly fails at an admissible
 // point, in exact arithmetic or with outward rounding.
 func (d *decider) falseAt(g *gap, p *points, at jet.Point) bool {
@@ -158,7 +156,7 @@ func (d *decider) falseAt(g *gap, p *points, at jet.Point) bool {
 // negative. With the minimisers put in, the gap is negative there as well,
 // however thin the set on which it is.
 func (d *decider) refuteRests(g *gap, rests []squares.Rest) bool {
-	pts := d.points(g.value, g.left, g.right)
+	pts := d.gapPoints(g)
 	for _, rest := range rests {
 		value := algebra.FromPoly(rest.Poly)
 		for range 120 {
@@ -177,6 +175,16 @@ func (d *decider) refuteRests(g *gap, rests []squares.Rest) bool {
 		}
 	}
 	return false
+}
+
+// gapPoints draws points for a gap, at the frame angle at which it is looked at.
+func (d *decider) gapPoints(g *gap) *points {
+	p := d.points(g.value, g.left, g.right)
+	if g.turned != nil {
+		p.fixed = jet.Point{g.turned.cos: algebra.Int(1), g.turned.sin: algebra.Rat{}}
+		p.angles = slices.DeleteFunc(p.angles, func(c algebra.Var) bool { return c == g.turned.cos })
+	}
+	return p
 }
 
 // lift puts the minimisers in, last one first.
@@ -216,7 +224,7 @@ func (d *decider) consistent(p *points, at jet.Point) bool {
 // refuteFar looks for directions in which the gap falls to minus infinity:
 // the leading coefficient in one indeterminate is negative, or its degree odd.
 func (d *decider) refuteFar(g *gap) bool {
-	pts := d.points(g.value, g.left, g.right)
+	pts := d.gapPoints(g)
 	vars := d.squareVars(g.poly)
 	for range 24 {
 		base, ok := pts.next()

@@ -1,6 +1,7 @@
 package identity
 
 import (
+	"maps"
 	"math/rand/v2"
 	"slices"
 
@@ -16,6 +17,7 @@ type points struct {
 	free   []algebra.Var // coordinates, constants, jets
 	angles []algebra.Var // cosines of free angles
 	signs  []algebra.Var // orientations
+	fixed  jet.Point     // values that are not drawn
 	rng    *rand.Rand
 	drawn  int
 }
@@ -192,6 +194,7 @@ func (p *points) draw() jet.Point {
 	for _, s := range p.signs {
 		at[s] = algebra.Int(1 - 2*p.rng.Int64N(2))
 	}
+	maps.Copy(at, p.fixed)
 	if len(p.d.ideal) > 0 && (!p.onVariety(at, p.d.ideal) || !p.d.extends(at)) {
 		return nil
 	}

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"maps"
 	"math"
 	"math/big"
 	"math/rand/v2"
@@ -33,7 +34,7 @@ type task struct {
 // search samples the margin and sends the adversary after it. Every candidate
 // is settled in exact arithmetic.
 func (d *decider) search(g *gap) error {
-	pts := d.points(g.value, g.left, g.right)
+	pts := d.gapPoints(g)
 	if len(pts.vars()) == 0 {
 		return d.constant(g, pts)
 	}
@@ -116,6 +117,9 @@ func (t *task) compile() error {
 		}
 		for i, v := range t.pts.free {
 			c.of[v] = c.b.Input(i)
+		}
+		for v, x := range t.pts.fixed {
+			c.of[v] = c.b.Const(x.Float64())
 		}
 	}
 	build := func(c *compiler) (gap, size program.Ref) {
@@ -309,6 +313,7 @@ func (t *task) point(x []*big.Rat) (jet.Point, bool) {
 	for i, s := range t.pts.signs {
 		at[s] = t.signs[i]
 	}
+	maps.Copy(at, t.pts.fixed)
 	if t.d.claim.Jump {
 		if err := t.d.traces(at); err != nil {
 			return nil, false
@@ -333,6 +338,9 @@ func (t *task) laws() []sample.Law {
 		}
 		for k, w := range t.pts.free {
 			c.of[w] = c.b.Input(k)
+		}
+		for w, x := range t.pts.fixed {
+			c.of[w] = c.b.Const(x.Float64())
 		}
 		n := len(t.pts.free)
 		for k, a := range t.pts.angles {

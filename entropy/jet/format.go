@@ -45,7 +45,10 @@ func (r *Ring) Format(f algebra.Fraction) string {
 
 // FormatPoly prints a polynomial in the formula grammar, terms in the order
 // of the polynomial.
-func (r *Ring) FormatPoly(p algebra.Poly) string {
+func (r *Ring) FormatPoly(p algebra.Poly) string { return r.FormatPolyNamed(p, r.Name) }
+
+// FormatPolyNamed prints a polynomial with names of the caller's.
+func (r *Ring) FormatPolyNamed(p algebra.Poly, name func(algebra.Var) string) string {
 	if err := p.Err(); err != nil {
 		return "(" + err.Error() + ")"
 	}
@@ -65,7 +68,7 @@ func (r *Ring) FormatPoly(p algebra.Poly) string {
 		}
 		first = false
 		c = c.Abs()
-		mono := r.formatMonomial(m)
+		mono := formatMonomial(m, name)
 		switch {
 		case mono == "":
 			b.WriteString(c.String())
@@ -80,10 +83,10 @@ func (r *Ring) FormatPoly(p algebra.Poly) string {
 	return b.String()
 }
 
-func (r *Ring) formatMonomial(m algebra.Monomial) string {
+func formatMonomial(m algebra.Monomial, name func(algebra.Var) string) string {
 	var parts []string
 	for _, pw := range m.Powers() {
-		parts = append(parts, power(r.Name(pw.Var), pw.Exp))
+		parts = append(parts, power(name(pw.Var), pw.Exp))
 	}
 	return strings.Join(parts, " ")
 }

@@ -4,8 +4,8 @@ import (
 	"creaseproof/entropy/algebra"
 )
 
-// relation is the q and the polynomial a of v^q = a; q is 0 where v is free.
-func (r *Ring) relation(v algebra.Var) (q int, a algebra.Poly) {
+// Relation is the q and the polynomial a of v^q = a; q is 0 where v is free.
+func (r *Ring) Relation(v algebra.Var) (q int, a algebra.Poly) {
 	switch s := &r.symbols[v]; s.Kind {
 	case Sine:
 		c := algebra.Variable(s.Partner)
@@ -21,7 +21,7 @@ func (r *Ring) relation(v algebra.Var) (q int, a algebra.Poly) {
 func (r *Ring) ReducePoly(p algebra.Poly) algebra.Poly {
 	for i := len(r.related) - 1; i >= 0; i-- {
 		v := r.related[i]
-		q, a := r.relation(v)
+		q, a := r.Relation(v)
 		if p.Err() != nil || p.Degree(v) < q {
 			continue
 		}
@@ -100,7 +100,7 @@ func (r *Ring) reduceDenominators(f algebra.Fraction) (algebra.Fraction, error) 
 			continue
 		}
 		if v, ok := loneVar(base); ok {
-			if q, a := r.relation(v); q > 0 && r.symbols[v].Kind == Root {
+			if q, a := r.Relation(v); q > 0 && r.symbols[v].Kind == Root {
 				k := (d.Exp + q - 1) / q
 				out = out.Mul(algebra.FromPoly(algebra.Variable(v).Pow(k*q - d.Exp)))
 				out = out.Mul(algebra.FromPoly(a).Pow(-k))

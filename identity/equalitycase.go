@@ -1,0 +1,212 @@
+package identity
+
+import (
+	"slices"
+	"strings"
+
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/formula"
+	"creaseproof/entropy/jet"
+	"creaseproof/identity/certificate"
+	"creaseproof/identity/gram"
+)
+
+// certified records a claim proved by a certificate that the checker accepted.
+func (d *decider) certified(method string, g *gap, r *reduction, p *gram.Proof, cert *certificate.Certificate) {
+	d.proved(method + ", certificate checked")
+	d.rec.Reduced, d.rec.Certificate = r.claim, cert
+	if certificate.UsesContinuity(r.claim, cert) {
+		d.rec.Reason = "the certificate has a multiplier that may vanish; there the claim holds by continuity"
+	}
+	for _, s := range p.Squares {
+		d.rec.Details = append(d.rec.Details, short(r.term(s)))
+	}
+	if len(p.Multiplier) > 0 {
+		var m []string
+		for _, s := range p.Multiplier {
+			m = append(m, r.term(s))
+		}
+		d.rec.Details = append(d.rec.Details, short("after multiplying the gap by "+d.inverse(g)+strings.Join(m, " + ")))
+	} else if f := d.inverse(g); f != "" {
+		d.rec.Details = append(d.rec.Details, short("after multiplying the gap by "+strings.TrimSuffix(f, " times ")))
+	}
+	d.rec.Equality = r.equality(g, p)
+}
+
+// inverse is the factor that cleared denominators, for the record.
+func (d *decider) inverse(g *gap) string {
+	if c, ok := g.factor.IsConst(); ok && c.IsOne() {
+		return ""
+	}
+	inv, ok := g.factor.Inv()
+	if !ok {
+		return ""
+	}
+	return d.ring.Format(inv) + " times "
+}
+
+// term prints weight · factors · base².
+func (r *reduction) term(s gram.Square) string {
+	w := algebra.Const(s.Weight)
+	for _, f := range s.Factors {
+		w = w.Mul(r.positive[f].Poly)
+	}
+	text := r.format(w)
+	if w.Len() > 1 {
+		text = "(" + text + ")"
+	}
+	if c, ok := s.Base.IsConst(); ok && c.IsOne() {
+		return text
+	}
+	base := r.format(s.Base)
+	if s.Base.Len() > 1 || strings.ContainsAny(base, " ") {
+		base = "(" + base + ")"
+	}
+	if text == "1" {
+		return base + "^2"
+	}
+	sep := " "
+	if strings.Contains(text, "/") && !strings.HasSuffix(text, ")") {
+		sep = "*"
+	}
+	return text + sep + base + "^2"
+}
+
+// format prints a polynomial in the names of the reduction.
+func (r *reduction) format(p algebra.Poly) string {
+	return r.d.ring.FormatPolyNamed(p, func(v algebra.Var) string { return r.names[v] })
+}
+
+// equality is the system of squares that must vanish, in reduced echelon form
+// over its monomials, and an exact jet at which it does.
+func (r *reduction) equality(g *gap, p *gram.Proof) *Equality {
+	var list []algebra.Poly
+	for _, s := range p.Squares {
+		q := s.Base
+		for _, f := range s.Factors {
+			if !r.positive[f].Strict {
+				q = q.Mul(r.positive[f].Poly)
+			}
+		}
+		list = append(list, q)
+	}
+	list = echelon(list)
+	eq := &Equality{Consistent: "unknown"}
+	for _, q := range list {
+		if _, ok := q.IsConst(); ok {
+			return &Equality{Conditions: []string{"never"}, Consistent: "no"}
+		}
+		eq.Conditions = append(eq.Conditions, r.condition(q))
+	}
+	if at, ok := r.equalityPoint(g, list); ok {
+		eq.Consistent, eq.Jet = "yes", map[string]string{}
+		for _, v := range r.vars {
+			if x, ok := at[v]; ok {
+				eq.Jet[r.names[v]] = x.String()
+			}
+		}
+	}
+	return eq
+}
+
+// echelon brings polynomials to reduced row echelon form over their monomials,
+// largest first, without those that vanish.
+func echelon(list []algebra.Poly) []algebra.Poly {
+	var out []algebra.Poly
+	for _, p := range list {
+		for _, q := range out {
+			p = without(p, q)
+		}
+		if p.IsZero() || p.Err() != nil {
+			continue
+		}
+		_, p = p.Primitive()
+		for i, q := range out {
+			_, out[i] = without(q, p).Primitive()
+		}
+		out = append(out, p)
+	}
+	return out
+}
+
+// without removes the leading monomial of q from p.
+func without(p, q algebra.Poly) algebra.Poly {
+	lead, c := q.Leading()
+	for m, x := range p.Terms() {
+		if m == lead {
+			f, ok := x.Quo(c)
+			if !ok {
+				return p
+			}
+			return p.Sub(q.Scale(f))
+		}
+	}
+	return p
+}
+
+// condition prints q = 0, as R = … where the residual stands in it with a
+// constant factor.
+func (r *reduction) condition(q algebra.Poly) string {
+	res := r.d.claim.Setting.Model.Residual
+	if res == nil || r.d.claim.Jump {
+		return r.format(q) + " = 0"
+	}
+	f, err := r.d.in.Scalar(res)
+	if err != nil {
+		return r.format(q) + " = 0"
+	}
+	for _, v := range f.Num().Vars() {
+		if f.Num().Degree(v) != 1 || q.Degree(v) != 1 {
+			continue
+		}
+		a, rest := q.Coeffs(v)[1], algebra.FromPoly(q)
+		b := f.Deriv(v)
+		k, ok := algebra.FromPoly(a).Quo(b)
+		if !ok || slices.ContainsFunc(k.Vars(), func(w algebra.Var) bool { return r.d.ring.Symbol(w).Kind != jet.Constant }) {
+			continue
+		}
+		rest = rest.Sub(k.Mul(f))
+		if rest.Num().Len() >= q.Len() {
+			continue
+		}
+		name := "R"
+		if n, ok := res.(*formula.Name); ok {
+			name = n.ID
+		}
+		value, ok := rest.Neg().Quo(k)
+		if !ok {
+			continue
+		}
+		return name + " = " + r.formatFraction(value)
+	}
+	return r.format(q) + " = 0"
+}
+
+func (r *reduction) formatFraction(f algebra.Fraction) string {
+	if p, ok := f.IsPoly(); ok {
+		return r.format(p)
+	}
+	return "(" + r.format(f.Num()) + ")/(" + r.format(f.Den()) + ")"
+}
+
+// equalityPoint looks for an exact admissible point where all conditions hold
+// and the gap is zero.
+func (r *reduction) equalityPoint(g *gap, list []algebra.Poly) (jet.Point, bool) {
+	d := r.d
+	pts := d.gapPoints(g)
+	for range 60 {
+		at := pts.draw()
+		if at == nil {
+			continue
+		}
+		if !pts.onVariety(at, list) {
+			continue
+		}
+		if d.consistent(pts, at) && pts.admissible(at) {
+			if x, ok := d.ring.Exact(g.value, at); ok && x.IsZero() {
+				return at, true
+			}
+		}
+	}
+	return nil, false
+}
