@@ -12,8 +12,11 @@
 // but two reasons to be open: that the time given was over, and that the
 // decision failed inside the program.
 //
-// CheckDocument is the document of results that `creaseproof check --json`
-// prints.
+// Energy integrates over the surfaces in the same manner, by package
+// cases/creases.
+//
+// CheckDocument and EnergyDocument are the documents of results that
+// `creaseproof check --json` and `creaseproof energy --json` print.
 //
 // Errors about a file are source.Errors, with the place, the line it stands on
 // and what to write instead.
