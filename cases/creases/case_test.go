@@ -139,20 +139,12 @@ polygon = [["0", "0", "0"], ["1", "0", "0"], ["1", "1", "1"], ["0", "1", "0"]]
 		{"an empty range", layeredHead, `density = "1"
 patch = { map = ["t", "a", "0"], over = { t = ["1", "0"], a = ["0", "1"] } }
 `, []string{"increasing order"}},
-		{"the second of two values", layeredHead, `values = { m = ["1", "0"] }
-plus = "m x + m^2 z/2"
-minus = "0"
-polygon = [["0", "0", "0"], ["0", "1", "0"], ["-1/2", "1", "1"], ["-1/2", "0", "1"]]
-`, nil},
+		{"a value against an assumption", layeredHead, `density = "1"
+values = { eps = "sqrt(2) - 3/2" }
+` + wall, []string{`"eps > 0"`, "eps = sqrt(2) - 3/2"}},
 	} {
 		rs, err := run(t, test.head+test.surface)
 		require.NoError(t, err, test.name)
-		if test.want == nil {
-			require.Len(t, rs, 2)
-			assert.NotNil(t, rs[0].Energy, rs[0].Reason)
-			assert.True(t, rs[1].Energy == nil || *rs[1].Energy == 0, rs[1].Reason)
-			continue
-		}
 		r := rs[0]
 		assert.Nil(t, r.Energy, test.name)
 		assert.Nil(t, r.Error, test.name)
@@ -162,6 +154,23 @@ polygon = [["0", "0", "0"], ["0", "1", "0"], ["-1/2", "1", "1"], ["-1/2", "0", "
 			assert.Contains(t, r.Reason, w, test.name)
 		}
 	}
+}
+
+// One choice of values may be refused and another not.
+func TestRefusedForOneValue(t *testing.T) {
+	rs, err := run(t, layeredHead+`values = { m = ["1", "2"] }
+plus = "m x + m^2 z/2"
+minus = "0"
+polygon = [["0", "0", "0"], ["0", "1", "0"], ["-1/2", "1", "1"], ["-1/2", "0", "1"]]
+energy = "1/12"
+`)
+	require.NoError(t, err)
+	require.Len(t, rs, 2)
+	assert.True(t, rs[0].Met, rs[0].Reason)
+	assert.False(t, rs[1].Met)
+	assert.Nil(t, rs[1].Energy)
+	assert.Contains(t, rs[1].Reason, "discontinuous")
+	assert.Contains(t, rs[1].Reason, "for m = 2")
 }
 
 // Mistakes in the file are errors with their place.

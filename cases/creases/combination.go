@@ -180,6 +180,9 @@ func (c *combination) evaluate() (Result, error) {
 		}
 		r.Claimed = &x
 	}
+	if reason := c.broken(); reason != "" {
+		return r.refuse(reason), nil
+	}
 	surface, err := c.surfaceOf()
 	if err != nil {
 		return r, err
@@ -207,7 +210,7 @@ func (c *combination) evaluate() (Result, error) {
 	if onWell {
 		options.Well = nil
 	}
-	q, err := quadrature.Integrate(c.ctx, surface, tr, density, options)
+	q, err := c.integrate(surface, tr, density, options)
 	if c.ctx.Err() != nil {
 		return r, c.ctx.Err()
 	}
