@@ -43,6 +43,22 @@ func TestCentralPoint(t *testing.T) {
 	}
 }
 
+func TestCentralPointScales(t *testing.T) {
+	// minimise 200x + 300y - mu (log x + log y), x + y = 50.
+	p := Problem{
+		Blocks: []int{-2}, C: SparseSym{{0, 0, 0, 200}, {0, 1, 1, 300}},
+		A: []SparseSym{{{0, 0, 0, 1}, {0, 1, 1, 1}}}, B: []float64{50},
+	}
+	for _, mu := range []float64{1, 500, 1e4} {
+		s := solve(t, p, Options{Mode: CentralPoint, Barrier: mu})
+		require.Equal(t, Optimal, s.Status)
+		x, y := s.X[0].At(0, 0), s.X[0].At(1, 1)
+		assert.InDelta(t, 50, x+y, 1e-6)
+		assert.InDelta(t, mu/x-200, mu/y-300, 1e-4)
+		assert.InEpsilon(t, mu, x*s.S[0].At(0, 0), 1e-6)
+	}
+}
+
 func TestCentreIsStationary(t *testing.T) {
 	// X⁻¹ is in the span of the A_i at the centre: X⁻¹ = -Σ y_i A_i.
 	rng := rand.New(rand.NewPCG(2, 8))
@@ -112,6 +128,16 @@ func TestNumericalKernel(t *testing.T) {
 	assert.Zero(t, k.Dimension)
 	assert.Nil(t, k.Vectors)
 	assert.InEpsilon(t, 0.25e6, k.Gap, 1e-6)
+	// Just outside of the kernel, and just inside.
+	for _, c := range []struct {
+		value     float64
+		dimension int
+	}{{2.1e-6, 0}, {1.9e-6, 1}} {
+		x.SetSym(1, 1, c.value)
+		k, err = NumericalKernel(x, 1e-6)
+		require.NoError(t, err)
+		assert.Equal(t, c.dimension, k.Dimension)
+	}
 	k, err = NumericalKernel(mat.NewSymDense(2, nil), 1e-6)
 	require.NoError(t, err)
 	assert.Equal(t, 2, k.Dimension)

@@ -11,7 +11,7 @@ import (
 )
 
 // former is the scratch of one worker that forms rows of M.
-type former struct{ xr, zr, u []float64 }
+type former struct{ xr, zr, u, packed []float64 }
 
 // newFormers returns one former for each processor, as far as there is work.
 func newFormers(g *program) []*former {
@@ -28,7 +28,7 @@ func newFormers(g *program) []*former {
 	const rowsOfWorker, most = 32, 8
 	out := make([]*former, min(1+rows/rowsOfWorker, runtime.GOMAXPROCS(0), most))
 	for i := range out {
-		out[i] = &former{make([]float64, band), make([]float64, band), make([]float64, cells)}
+		out[i] = &former{make([]float64, band), make([]float64, band), make([]float64, cells), make([]float64, cells)}
 	}
 	return out
 }
@@ -144,7 +144,8 @@ func (w *former) gather(r part, n int, x, z []float64) {
 	}
 }
 
-// product sets the upper triangle of u to that of the symmetric part of xrᵀ zr.
+// product sets the upper triangle of u, and packed, to that of the symmetric
+// part of xrᵀ zr.
 func (w *former) product(n, support int) {
 	u := w.u[:n*n]
 	blasImpl.Dgemm(blas.Trans, blas.NoTrans, n, n, support, 1, w.xr, n, w.zr, n, 0, u, n)
@@ -152,11 +153,15 @@ func (w *former) product(n, support int) {
 		for j := i + 1; j < n; j++ {
 			u[i*n+j] = 0.5 * (u[i*n+j] + u[j*n+i])
 		}
+		copy(w.packed[i*n-i*(i-1)/2:], u[i*n+i:(i+1)*n])
 	}
 }
 
 // weighted returns <A, u> for the matrix A of s.
 func (w *former) weighted(s part, n int) float64 {
+	if s.packed != nil {
+		return floats.Dot(s.packed, w.packed[:len(s.packed)])
+	}
 	var sum float64
 	weights, q := s.w[:len(s.p)], s.q[:len(s.p)]
 	for t, p := range s.p {

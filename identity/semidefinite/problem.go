@@ -123,7 +123,7 @@ func (p *Problem) memory() float64 {
 	m, f := float64(len(p.A)), float64(len(p.Free))
 	cells += 3*m*m + 3*m*f + 2*f*f + 30*m
 	for _, a := range p.A {
-		cells += 12 * float64(len(a))
+		cells += 15 * float64(len(a))
 	}
 	return 8 * cells
 }

@@ -23,6 +23,9 @@ func WriteSDPA(w io.Writer, p Problem) error {
 		return err
 	}
 	q, _ := p.merged()
+	if err := q.Validate(); err != nil {
+		return fmt.Errorf("sums of entries: %w", err)
+	}
 	blocks := append([]int(nil), p.Blocks...)
 	free := len(p.Free)
 	if free > 0 {

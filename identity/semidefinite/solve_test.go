@@ -360,6 +360,40 @@ func TestNoRows(t *testing.T) {
 	checkPrimalRay(t, p, solve(t, p, Options{}), 1e-8)
 }
 
+func TestScales(t *testing.T) {
+	// Large and small rows, right sides and costs.
+	rng := rand.New(rand.NewPCG(9, 3))
+	for range 10 {
+		p := randomFeasible(rng, []int{6, -3}, 5, 1, 0.5)
+		for i := range p.A {
+			scale := math.Pow(10, float64(rng.IntN(9)-4))
+			for k := range p.A[i] {
+				p.A[i][k].Value *= scale
+			}
+			for k, f := range p.Free[0].Terms {
+				if f.Row == i {
+					p.Free[0].Terms[k].Value *= scale
+				}
+			}
+			p.B[i] *= 1e5 * scale
+		}
+		for k := range p.C {
+			p.C[k].Value *= 1e4
+		}
+		p.Free[0].Cost *= 1e4
+		checkOptimal(t, p, solve(t, p, Options{}), 1e-8)
+	}
+}
+
+func TestFeasibilityStopsEarly(t *testing.T) {
+	p := largeProgram()
+	withCost := solve(t, p, Options{})
+	p.C = nil
+	s := solve(t, p, Options{})
+	checkOptimal(t, p, s, 1e-8)
+	assert.Less(t, 2*s.Iterations, withCost.Iterations)
+}
+
 func TestRepeatable(t *testing.T) {
 	p := randomFeasible(rand.New(rand.NewPCG(1, 1)), []int{70, -5}, 60, 2, 0.2)
 	assert.Equal(t, solve(t, p, Options{}), solve(t, p, Options{}))
