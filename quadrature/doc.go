@@ -52,9 +52,11 @@
 //     with the extent of the surface or where p+ and p- nearly cancel. A
 //     feature narrower than the distance of the first nodes can be missed
 //     altogether, and then the estimate is wrong.
-//   - Checks: made at every node used, with a relative tolerance, hence not a
-//     proof that the conditions hold on the surface. A refusal names a place at
-//     which they do not hold, to the tolerance.
+//   - Checks: made at every node used and at some 256 places spread over the
+//     surface, with a relative tolerance, hence not a proof that the conditions
+//     hold on the surface. A refusal names a place at which they do not hold, to
+//     the tolerance. It is wider where positions are far from the origin
+//     compared with the extent of the surface, but at most 1e-7.
 //   - Evaluations: exact count of evaluations of the density.
 //
 // Results are deterministic and do not depend on the number of cores.

@@ -121,7 +121,11 @@ func (g Graph) pieces() ([]*piece, error) {
 			jac[j][n] = d
 		}
 	}
-	return []*piece{{dim: n + 1, n: n, over: over, eval: eval, flip: n == 1}}, nil
+	q := &piece{dim: n + 1, n: n, over: over, eval: eval, flip: n == 1}
+	if t, ok := g.Over.(Triangle); ok {
+		q.vertices = unsure(t[0][:], t[1][:], t[2][:])
+	}
+	return []*piece{q}, nil
 }
 
 func finite(x float64) bool { return !math.IsNaN(x) && !math.IsInf(x, 0) }

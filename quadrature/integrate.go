@@ -78,7 +78,8 @@ type Result struct {
 
 // Integrate integrates a density over a surface.
 //
-// At every node used it checks that positions, tangents, traces and density
+// At every node used, and where there are traces at further places spread over
+// the surface, it checks that positions, tangents, traces and density
 // are finite, that both traces lie on the well, that u is continuous across
 // the surface (if the values are known) and that the jump of the gradient is
 // parallel to the normal, each relative to the sum of the absolute terms. If
@@ -123,19 +124,33 @@ func Integrate(ctx context.Context, s Surface, tr Traces, d Density, o Options) 
 		}
 	}
 	reach := norm(far[:])
+	whole := norm([]float64{high[0] - low[0], high[1] - low[1], high[2] - low[2]})
 	var total sums
 	for i, p := range pieces {
 		e := newEvaluator(ctx, p, tr, d, o, work, reach)
-		e.shaky = shapes[i].shaky()
+		e.settle(shapes[i])
+		e.whole = whole
 		abs := total.tolerance(o, len(pieces))
 		r, err := run(e.at, shapes[i], o, abs, work, e.rowDone)
 		if err != nil {
 			return Result{Evaluations: work.Used}, fmt.Errorf("quadrature: %w", err)
 		}
+		if tr.Plus != nil {
+			if err := e.patrol(max(fewest, patrols/len(pieces))); err != nil {
+				return Result{Evaluations: work.Used}, fmt.Errorf("quadrature: %w", err)
+			}
+		}
 		total.add(r)
 	}
 	return total.finish(o, work)
 }
+
+// patrols is the number of places at which the traces are checked beside the
+// nodes, and fewest the least on a piece.
+const (
+	patrols = 256
+	fewest  = 16
+)
 
 // sums adds up the pieces.
 type sums struct {

@@ -254,6 +254,7 @@ func (p Polygon) faces() ([]*piece, error) {
 		ps = append(ps, &piece{
 			name: fmt.Sprintf("triangle of the vertices %d, %d, %d", t[0]+1, t[1]+1, t[2]+1),
 			dim:  3, n: 2, over: unitSquare, normal: normal[:],
+			vertices: unsure(p.Vertices[t[0]], p.Vertices[t[1]], p.Vertices[t[2]]),
 			eval: func(s, x []float64, jac [][]float64) {
 				for k := range 3 {
 					d := e[k] + s[1]*f[k]
@@ -263,6 +264,19 @@ func (p Polygon) faces() ([]*piece, error) {
 		})
 	}
 	return ps, nil
+}
+
+// unsure is the relative error of the area of a triangle that errors of the
+// relative size 1 in its corners cause: the distance of the corners from the
+// origin times the perimeter over twice the area.
+func unsure(a, b, c []float64) float64 {
+	var e, f, g [3]float64
+	for k := range a {
+		e[k], f[k], g[k] = b[k]-a[k], c[k]-b[k], c[k]-a[k]
+	}
+	area := cross(e, f)
+	far := math.Max(norm(a), math.Max(norm(b), norm(c)))
+	return far * (norm(e[:]) + norm(f[:]) + norm(g[:])) / norm(area[:]) / 2
 }
 
 func cross(a, b [3]float64) [3]float64 {

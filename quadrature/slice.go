@@ -62,7 +62,7 @@ func Slice(ctx context.Context, s Surface, tr Traces, g LineDensity, o Options) 
 			return SliceResult{}, fmt.Errorf("quadrature: %w", sh.degenerate)
 		}
 		e := &slicer{evaluator: newEvaluator(ctx, p, tr, nil, o, work, 0), g: g}
-		e.shaky = sh.shaky()
+		e.settle(sh)
 		flat, err := e.direction(sh)
 		if err != nil {
 			return SliceResult{}, fmt.Errorf("quadrature: %w", err)

@@ -32,6 +32,9 @@ type piece struct {
 	flip bool
 	// normal is the unit normal of a flat piece, or nil: from the tangents.
 	normal []float64
+	// vertices is the relative error of the area by the rounding of vertices,
+	// in units in the last place.
+	vertices float64
 	// wedge marks a slice of a triangle, whose area nobody needs.
 	wedge bool
 }

@@ -30,6 +30,18 @@ func (s *shape) shaky() float64 {
 	return 1 + far/extent
 }
 
+// ends is the number of units in the last place that the rounding of the ends
+// of the parameters and of vertices costs, relative to the area, beyond the
+// unavoidable.
+func (s *shape) ends() float64 {
+	sum := s.vertices
+	for j := range s.n {
+		r := s.over[j]
+		sum += math.Max(0, math.Max(math.Abs(r.Lo), math.Abs(r.Hi))/(r.Hi-r.Lo)-1)
+	}
+	return sum
+}
+
 // survey looks at a piece at a few places: its extent, whether it is finite,
 // whether it is degenerate, and which parameters are periodic.
 func survey(p *piece) (*shape, error) {

@@ -1,0 +1,121 @@
+package quadrature
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"testing"
+)
+
+// A dent in a paraboloid, where u is discontinuous, with a radius of a
+// twentieth of the ranges of its parameters.
+func TestFaultsOnASmallPart(t *testing.T) {
+	for i := range 40 {
+		_, a := math.Modf(0.5 + golden*float64(i))
+		_, b := math.Modf(0.5 + 0.7548776662466927*float64(i))
+		a, b = 0.1+0.8*a, 0.1+0.8*b
+		c := paraboloid(2, 1, 2)
+		p := c.surface.(Patch)
+		in := p.Map
+		p.Map = func(s, x []float64, jac [][]float64) {
+			in(s, x, jac)
+			u, v := (s[0]-p.Params[0].Lo)/(p.Params[0].Hi-p.Params[0].Lo)-a, (s[1]-p.Params[1].Lo)/(p.Params[1].Hi-p.Params[1].Lo)-b
+			if d := 0.0025 - u*u - v*v; d > 0 {
+				x[0] *= 1 + 1000*d*d*d
+			}
+		}
+		_, err := Integrate(context.Background(), p, Traces{Plus: c.plus, Minus: c.minus, HasValue: true}, layeredDensity, Options{Well: layeredWell})
+		var place *PlaceError
+		if !errors.As(err, &place) {
+			t.Errorf("a dent at %.3f, %.3f: %v", a, b, err)
+		}
+	}
+}
+
+// However large u is, it may not jump by more than a small part of what it
+// varies by.
+func TestDiscontinuityOfALargeFunction(t *testing.T) {
+	for _, c := range []struct {
+		constant, jump float64
+		refused        bool
+	}{{1e6, 1e-6, true}, {1e6, 1e-4, true}, {1e8, 1e-3, true}, {1e6, 0, false}, {1e10, 0, false}, {1e6, 1e-9, false}} {
+		_, err := Integrate(context.Background(), wallTriangle, Traces{Plus: linear(c.constant, 1, 0, 0.5), Minus: linear(c.constant+c.jump, -1, 0, 0.5), HasValue: true}, layeredDensity, Options{Well: layeredWell})
+		var place *PlaceError
+		if errors.As(err, &place) != c.refused {
+			t.Errorf("a jump of %g of u = %g + ...: %v", c.jump, c.constant, err)
+		}
+	}
+}
+
+// Very far from the origin positions are too coarse for the tolerance of the
+// checks, and the error says so.
+func TestVeryFarFromTheOrigin(t *testing.T) {
+	for _, far := range []float64{1e4, 1e6, 1e7, 1e8} {
+		at := [3]float64{far, -2 * far, 3 * far}
+		move := func(f func(x, g []float64) float64) func(x, g []float64) float64 {
+			return func(x, g []float64) float64 { return f([]float64{x[0] - at[0], x[1] - at[1], x[2] - at[2]}, g) }
+		}
+		c := paraboloid(1.25, 1, 2)
+		p := c.surface.(Patch)
+		in := p.Map
+		p.Map = func(s, x []float64, jac [][]float64) {
+			in(s, x, jac)
+			for k := range x {
+				x[k] += at[k]
+			}
+		}
+		tr := Traces{Plus: move(c.plus), Minus: move(c.minus), HasValue: true}
+		r, err := Integrate(context.Background(), p, tr, layeredDensity, Options{Well: layeredWell, MaxEvaluations: 20000})
+		if err != nil && !errors.Is(err, ErrAccuracy) && !errors.Is(err, ErrBudget) {
+			t.Errorf("%g away: %v", far, err)
+		} else if miss := math.Abs(r.Energy - c.want); miss > r.Error || r.Error > 1e-14*far*c.want {
+			t.Errorf("%g away: reported error %.3g, true error %.3g", far, r.Error, miss)
+		}
+		// Faults of a millionth are still seen.
+		for name, f := range map[string]float64{"map": 1e-6, "larger": 1e-4} {
+			q := p
+			q.Map = func(s, x []float64, jac [][]float64) {
+				p.Map(s, x, jac)
+				x[0] += f * math.Sin(3*s[0])
+			}
+			_, err = Integrate(context.Background(), q, tr, layeredDensity, Options{Well: layeredWell, MaxEvaluations: 20000})
+			var place *PlaceError
+			if far < 1e8 && !errors.As(err, &place) {
+				t.Errorf("%g away, %s off by %g: %v", far, name, f, err)
+			}
+		}
+	}
+}
+
+// The ends of ranges and the vertices are rounded, and a narrow surface is
+// wider or narrower by that.
+func TestRoundingOfEnds(t *testing.T) {
+	one := func(_, _, _, _ []float64) float64 { return 1 }
+	for _, width := range []float64{1e-3, 1e-6, 1e-9} {
+		lo, hi := 1.1, 1.1+width
+		for _, c := range []struct {
+			s    Surface
+			want float64
+		}{
+			{Graph{Over: Rectangle{Range{lo, hi}, Range{0, 1}}, F: flat}, width},
+			{Graph{Over: Triangle{{lo, 0}, {hi, 0}, {lo, 1}}, F: flat}, width / 2},
+			{Polygon{[][]float64{{lo, 0, 0}, {hi, 0, 0}, {hi, 1, 0}, {lo, 1, 0}}}, width},
+			{Polygon{[][]float64{{lo, 0}, {hi, 0}}}, width},
+			{Graph{Over: Interval{lo, hi}, F: flat}, width},
+		} {
+			r, err := Integrate(context.Background(), c.s, Traces{}, one, Options{Rel: 1e-4})
+			if err != nil {
+				t.Errorf("%T of width %g: %v", c.s, width, err)
+			}
+			if miss := math.Abs(r.Energy - c.want); !(miss <= r.Error) || r.Error > 1e-14/width*c.want {
+				t.Errorf("%s of width %g: reported error %.3g, true error %.3g", fmt.Sprintf("%T", c.s), width, r.Error, miss)
+			}
+		}
+	}
+}
+
+func flat(_, g []float64) float64 {
+	clear(g)
+	return 0
+}
