@@ -229,6 +229,15 @@ values = { x = "1" }
 		{layeredHead, `density = "1"
 values = { k = "x" }
 ` + wall, 2, "x"},
+		{layeredHead, `density = "k"
+values = { k = ["1", "1/(1 - 1)"] }
+` + wall, 2, "vanishes identically"},
+		{layeredHead, `density = "k"
+values = { k = "log(-1)" }
+` + wall, 2, "no finite value"},
+		{layeredHead, `density = "k"
+values = { k = "j", j = "k" }
+` + wall, 2, "defined by itself"},
 		{layeredHead, `density = "1"
 patch = { map = ["t", "x", "0"], over = { t = ["0", "1"], x = ["0", "1"] } }
 `, 2, "coordinate"},

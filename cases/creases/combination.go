@@ -100,6 +100,11 @@ func (s *Surface) combine(ctx context.Context, at []int, o Options) (*combinatio
 	if c.in, c.exact, err = set.NewExact(ctx); err != nil {
 		return nil, placed(s.place, err)
 	}
+	for _, v := range s.values {
+		if _, err := c.enclose(c.chosen[v.name]); err != nil {
+			return nil, err
+		}
+	}
 	return c, nil
 }
 
