@@ -39,7 +39,7 @@ func (d *decider) integrable() error {
 	}
 	want, ok := algebra.FromBig(st.Exponent).Inv()
 	if !ok || want.Sign() < 0 {
-		return &entropy.Error{At: st.Field.At(), Err: fmt.Errorf("L^%s: the exponent must be positive", st.Exponent.RatString())}
+		return &entropy.Error{At: st.Field.At(), Err: fmt.Errorf("the exponent of L^%s is not positive", st.Exponent.RatString())}
 	}
 	holds := true
 	var why string

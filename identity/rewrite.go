@@ -70,6 +70,7 @@ func (d *decider) rewrite() error {
 		d.ring.SetRewriter(d.rewriter(eqs))
 		d.in.Reset()
 	}
+	d.solved = eqs[min(fixed, len(eqs)):]
 	return d.compatible(eqs)
 }
 
@@ -92,7 +93,7 @@ func (d *decider) rewriter(eqs []*solved) jet.Rewriter {
 				return x, true, nil
 			}
 			key := fmt.Sprint(unknown, j)
-			if busy[key] || j.Order() > jet.MaxOrder {
+			if busy[key] || j.Order() > jet.MaxProlonged {
 				return algebra.Fraction{}, false, fmt.Errorf("%w: the equations do not determine %v without going round in a circle", jet.ErrOutside, j)
 			}
 			busy[key] = true

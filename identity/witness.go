@@ -1,6 +1,7 @@
 package identity
 
 import (
+	"maps"
 	"math/big"
 
 	"creaseproof/entropy/algebra"
@@ -20,6 +21,11 @@ func (d *decider) refuted(method string, at jet.Point, left, right algebra.Fract
 	for _, v := range d.ring.Kernels(left, right) {
 		shown[v] = true
 	}
+	for _, g := range d.ideal { // and what makes it a jet on the equations
+		for _, v := range d.ring.Support(algebra.FromPoly(g)) {
+			shown[v] = true
+		}
+	}
 	for v, x := range at {
 		s := d.ring.Symbol(v)
 		switch {
@@ -35,13 +41,41 @@ func (d *decider) refuted(method string, at jet.Point, left, right algebra.Fract
 		}
 	}
 	if d.claim.Jump {
-		d.showTraces(w, at)
+		d.showTraces(w, func(f algebra.Fraction) string { return d.ring.Show(f, at) })
 	}
+	d.showDetermined(w, at)
 	d.rec.Witness = w
 }
 
+// showDetermined writes the derivatives that the equations determine. Jets in
+// them that the sides do not depend on are free, and taken as zero.
+func (d *decider) showDetermined(w *Witness, at jet.Point) {
+	at = at.Clone()
+	for _, e := range d.solved {
+		values := map[jet.Index]algebra.Fraction{e.index: e.value}
+		maps.Copy(values, e.derived)
+		for _, x := range values {
+			for _, v := range d.ring.Support(x) {
+				if s := d.ring.Symbol(v); s.Kind == jet.Derivative {
+					y, ok := at[v]
+					if !ok {
+						at[v] = algebra.Rat{}
+					}
+					w.Jet[s.Name] = y.String()
+				}
+			}
+		}
+		for j, x := range values {
+			v, err := d.ring.JetVar(e.unknown, j, jet.NoSide)
+			if text := d.ring.Show(x, at); err == nil && text != "undefined" {
+				w.Jet[d.ring.Name(v)] = text
+			}
+		}
+	}
+}
+
 // showTraces writes the traces of the gradient and the unit normal.
-func (d *decider) showTraces(w *Witness, at jet.Point) {
+func (d *decider) showTraces(w *Witness, show func(algebra.Fraction) string) {
 	w.Plus, w.Minus, w.Normal = map[string]string{}, map[string]string{}, map[string]string{}
 	for i, c := range d.ring.Coordinates {
 		j := jet.Index{}.Plus(i)
@@ -50,7 +84,7 @@ func (d *decider) showTraces(w *Witness, at jet.Point) {
 			if err != nil {
 				continue
 			}
-			x := d.ring.Show(f, at)
+			x := show(f)
 			if side == jet.PlusSide {
 				w.Plus[d.ring.Unknowns[0]+"_"+c] = x
 			} else {
@@ -58,7 +92,7 @@ func (d *decider) showTraces(w *Witness, at jet.Point) {
 			}
 		}
 		if nu, err := d.ex.Normal(i); err == nil {
-			w.Normal[c] = d.ring.Show(nu, at)
+			w.Normal[c] = show(nu)
 		}
 	}
 }
@@ -90,10 +124,16 @@ func (d *decider) isolatedWitness(g, left, right algebra.Fraction) bool {
 				}
 			}
 			show := func(f algebra.Fraction) string {
+				if x, ok := d.ring.Exact(f, at); ok {
+					return x.String()
+				}
 				lo, hi := d.ring.EncloseAt(f, at, roots, 256).Text(20)
 				return "[" + lo + ", " + hi + "]"
 			}
 			d.rec.Witness.Left, d.rec.Witness.Right = show(left), show(right)
+			if d.claim.Jump {
+				d.showTraces(d.rec.Witness, show)
+			}
 			return true
 		}
 	}
@@ -123,11 +163,18 @@ func (p *points) drawIsolated(gens []algebra.Poly) (jet.Point, map[algebra.Var]e
 		at[s] = algebra.Int(1 - 2*p.rng.Int64N(2))
 	}
 	roots := map[algebra.Var]enclosure.Interval{}
+	used := map[algebra.Var]bool{} // by generators before
 	for _, g := range gens {
 		vs := g.Vars()
-		v := vs[p.rng.IntN(len(vs))]
-		if p.d.ring.Symbol(v).Kind != jet.Derivative {
+		if len(vs) == 0 {
 			return nil, nil, false
+		}
+		v := vs[p.rng.IntN(len(vs))]
+		if p.d.ring.Symbol(v).Kind != jet.Derivative || used[v] {
+			return nil, nil, false
+		}
+		for _, w := range vs {
+			used[w] = true
 		}
 		for _, w := range vs {
 			if _, taken := roots[w]; taken {

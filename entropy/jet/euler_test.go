@@ -215,11 +215,11 @@ func TestTotalDerivativesCommute(t *testing.T) {
 
 func TestLimitsOfJets(t *testing.T) {
 	r := ringOf(t, 1, 1)
-	f, err := r.Jet(0, jet.Index{jet.MaxOrder}, jet.NoSide)
+	f, err := r.Jet(0, jet.Index{jet.MaxProlonged}, jet.NoSide)
 	require.NoError(t, err)
 	_, err = r.Total(f, 0)
 	require.ErrorIs(t, err, algebra.ErrLimit)
-	_, err = r.JetVar(0, jet.Index{jet.MaxOrder + 1}, jet.NoSide)
+	_, err = r.JetVar(0, jet.Index{jet.MaxProlonged + 1}, jet.NoSide)
 	require.ErrorIs(t, err, algebra.ErrLimit)
 	_, err = jet.NewRing(context.Background(), make([]string, jet.MaxCoordinates+1), nil)
 	require.Error(t, err)

@@ -14,7 +14,8 @@ import (
 const (
 	MaxCoordinates = 6
 	MaxUnknowns    = 4
-	MaxOrder       = 8    // of a derivative
+	MaxOrder       = 8    // of a derivative in a formula
+	MaxProlonged   = 24   // of a derivative that differentiation makes
 	MaxSymbols     = 4096 // indeterminates in one ring
 )
 
@@ -279,8 +280,8 @@ func (r *Ring) Jet(unknown int, j Index, side Side) (algebra.Fraction, error) {
 
 // JetVar is the indeterminate of the derivative of an unknown.
 func (r *Ring) JetVar(unknown int, j Index, side Side) (algebra.Var, error) {
-	if n := j.Order(); n > MaxOrder {
-		return 0, fmt.Errorf("%w: a derivative of order %d; at most order %d is supported", algebra.ErrLimit, n, MaxOrder)
+	if n := j.Order(); n > MaxProlonged {
+		return 0, fmt.Errorf("%w: a derivative of order %d; at most order %d is supported", algebra.ErrLimit, n, MaxProlonged)
 	}
 	key := jetKey{unknown, j, side}
 	if v, ok := r.jets[key]; ok {
