@@ -5,7 +5,6 @@ import (
 	"math"
 	"slices"
 
-	"gonum.org/v1/gonum/blas"
 	"gonum.org/v1/gonum/floats"
 )
 
@@ -41,26 +40,37 @@ func independent(ctx context.Context, p *Problem, f [][]float64, opt Options) (k
 	if err != nil {
 		return nil, nil, err
 	}
-	n := len(keep)
-	pivot := make([]int, n)
-	rank, full := lapackImpl.Dpstrf(blas.Lower, n, gram, n, pivot, dependence, make([]float64, 2*n))
-	if full {
+	l, pivots, err := pivoted(ctx, gram, len(keep))
+	if err != nil {
+		return nil, nil, err
+	}
+	n, rank := len(keep), len(pivots)
+	if rank == n {
 		return keep, nil, nil
 	}
 	kept := make([]int, 0, n)
-	for _, j := range pivot[:rank] {
+	basic := make([]bool, n)
+	for _, j := range pivots {
 		kept = append(kept, keep[j])
+		basic[j] = true
 	}
-	for t := rank; t < n; t++ {
-		i := keep[pivot[t]]
-		x := slices.Clone(gram[t*n : t*n+rank])
-		blasImpl.Dtrsv(blas.Lower, blas.Trans, blas.NonUnit, rank, gram, n, x, 1)
+	for t, i := range keep {
+		if basic[t] {
+			continue
+		}
+		// The combination x of the pivots: Lᵀ x = l.
+		x := slices.Clone(l[t*n : t*n+rank])
+		for k := rank - 1; k >= 0; k-- {
+			p := pivots[k]
+			x[k] /= l[p*n+k]
+			floats.AddScaled(x[:k], -x[k], l[p*n:p*n+k])
+		}
 		y := make([]float64, len(p.A))
 		y[i] = 1 / norm[i]
 		gap, size := p.B[i]/norm[i], math.Abs(p.B[i]/norm[i])
-		for s, j := range pivot[:rank] {
+		for k, j := range pivots {
 			r := keep[j]
-			y[r] = -x[s] / norm[r]
+			y[r] = -x[k] / norm[r]
 			gap += y[r] * p.B[r]
 			size += math.Abs(y[r] * p.B[r])
 		}
@@ -77,6 +87,40 @@ func independent(ctx context.Context, p *Problem, f [][]float64, opt Options) (k
 	}
 	slices.Sort(kept)
 	return kept, nil, nil
+}
+
+// pivoted factors a Gram matrix of order n, given by its lower triangle, as
+// L Lᵀ with the largest pivot first, and the first of equal ones. The rows of L
+// are in the order of the matrix, its columns in that of the pivots.
+func pivoted(ctx context.Context, gram []float64, n int) (l []float64, pivots []int, err error) {
+	l = make([]float64, n*n)
+	left := make([]float64, n)
+	for i := range left {
+		left[i] = gram[i*n+i]
+	}
+	for k := range n {
+		if err := ctx.Err(); err != nil {
+			return nil, nil, err
+		}
+		p := floats.MaxIdx(left)
+		if !(left[p] > dependence) {
+			return l, pivots, nil
+		}
+		root := math.Sqrt(left[p])
+		pivots = append(pivots, p)
+		for i := range n {
+			if math.IsInf(left[i], -1) || i == p {
+				continue
+			}
+			v := gram[max(i, p)*n+min(i, p)] - floats.Dot(l[i*n:i*n+k], l[p*n:p*n+k])
+			v /= root
+			l[i*n+k] = v
+			left[i] -= v * v
+		}
+		l[p*n+k] = root
+		left[p] = math.Inf(-1) // Used.
+	}
+	return l, pivots, nil
 }
 
 // disjoint reports whether no two rows of p, which is merged, have entries at

@@ -50,6 +50,12 @@
 // pivoted Cholesky factorisation of their Gram matrix. They are left out where
 // they are consistent, and otherwise give a ray at once.
 //
+// Where C and c are zero, a primal feasible point is optimal: the dual iterate is
+// then a direction of feasible points and is scaled until the gap is within its
+// tolerance, so that the run ends with feasibility. X is only as close to the
+// central path as it was then; what is asked for more should be asked with a
+// smaller tolerance, or in the mode AnalyticCentre.
+//
 // # Rays
 //
 // A dual ray is y with b'y = 1, F'y = 0 and -Σ y_i A_i ⪰ -eta I. Every feasible

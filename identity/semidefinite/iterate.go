@@ -2,6 +2,7 @@ package semidefinite
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"math"
 
@@ -314,10 +315,10 @@ func (s *solver) step() (bool, error) {
 	if err := s.sys.form(s.ctx, s.x, s.inv); err != nil {
 		return false, fmt.Errorf("semidefinite: %w", err)
 	}
-	if err := s.sys.factorise(); err != nil {
-		return false, nil
-	}
-	if err := s.ctx.Err(); err != nil {
+	if err := s.sys.factorise(s.ctx); err != nil {
+		if errors.Is(err, errFactor) {
+			return false, nil
+		}
 		return false, fmt.Errorf("semidefinite: %w", err)
 	}
 	n := float64(s.order())

@@ -121,7 +121,7 @@ func (p *Problem) memory() float64 {
 		cells += copies * float64(n) * float64(n)
 	}
 	m, f := float64(len(p.A)), float64(len(p.Free))
-	cells += 3*m*m + 3*m*f + 2*f*f + 30*m
+	cells += 4*m*m + 3*m*f + 2*f*f + 30*m
 	for _, a := range p.A {
 		cells += 15 * float64(len(a))
 	}

@@ -1,6 +1,7 @@
 package semidefinite
 
 import (
+	"context"
 	"errors"
 	"math"
 
@@ -44,7 +45,7 @@ var errFactor = errors.New("semidefinite: the Schur complement has no factor")
 
 // factorise factors the system, with a multiple of the diagonal added if it
 // breaks down.
-func (c *schur) factorise() error {
+func (c *schur) factorise(ctx context.Context) error {
 	m, nf := len(c.b), len(c.freeCost)
 	if m == 0 {
 		return nil
@@ -73,11 +74,45 @@ func (c *schur) factorise() error {
 		for i := range m {
 			c.factor[i*m+i] *= 1 + shift
 		}
-		if lapackImpl.Dpotrf(blas.Lower, m, c.factor, m) && c.factoriseFree() {
+		ok, err := potrf(ctx, c.factor, m)
+		if err != nil {
+			return err
+		}
+		if ok && c.factoriseFree() {
 			return nil
 		}
 	}
 	return errFactor
+}
+
+// potrf replaces the lower triangle of a by its Cholesky factor, panel by panel,
+// and reports whether a is positive definite.
+func potrf(ctx context.Context, a []float64, n int) (bool, error) {
+	const panel = 64
+	for k := 0; k < n; k += panel {
+		if err := ctx.Err(); err != nil {
+			return false, err
+		}
+		w := min(panel, n-k)
+		row := a[k*n:]
+		diagonal := row[k:]
+		if k > 0 {
+			blasImpl.Dsyrk(blas.Lower, blas.NoTrans, w, k, -1, row, n, 1, diagonal, n)
+		}
+		if !lapackImpl.Dpotrf(blas.Lower, w, diagonal, n) {
+			return false, nil
+		}
+		rest := n - k - w
+		if rest == 0 {
+			break
+		}
+		below := a[(k+w)*n:]
+		if k > 0 {
+			blasImpl.Dgemm(blas.NoTrans, blas.Trans, rest, w, k, -1, below, n, row, n, 1, below[k:], n)
+		}
+		blasImpl.Dtrsm(blas.Right, blas.Lower, blas.Trans, blas.NonUnit, rest, w, 1, diagonal, n, below[k:], n)
+	}
+	return true, nil
 }
 
 func (c *schur) factoriseFree() bool {
