@@ -234,7 +234,7 @@ values = { k = ["1", "1/(1 - 1)"] }
 ` + wall, 2, "vanishes identically"},
 		{layeredHead, `density = "k"
 values = { k = "log(-1)" }
-` + wall, 2, "no finite value"},
+` + wall, 2, "log of the negative number -1"},
 		{layeredHead, `density = "k"
 values = { k = "j", j = "k" }
 ` + wall, 2, "defined by itself"},

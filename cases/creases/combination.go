@@ -33,6 +33,8 @@ type combination struct {
 	values map[string]string      // as written
 	chosen map[string]formulaText // by folded name
 	params []float64              // of the patch, at the last position computed
+	fixed  map[string]bool        // which names are without variables
+	folded *entropy.Setting       // see numeric
 }
 
 // Evaluate integrates the surface for every combination of its values, the
@@ -89,7 +91,7 @@ func (s *Surface) combine(ctx context.Context, at []int, o Options) (*combinatio
 	if set.Lets == nil {
 		set.Lets = map[string]formula.Node{}
 	}
-	c := &combination{ctx: ctx, s: s, set: &set, o: o, values: map[string]string{}, chosen: map[string]formulaText{}, params: make([]float64, len(s.params))}
+	c := &combination{ctx: ctx, s: s, set: &set, o: o, values: map[string]string{}, chosen: map[string]formulaText{}, params: make([]float64, len(s.params)), fixed: map[string]bool{}}
 	for i, v := range s.values {
 		f := v.list[at[i]]
 		set.Lets[v.name] = f.node

@@ -60,9 +60,9 @@ func (c *combination) givenDensity() (quadrature.Density, error) {
 	}
 	f := c.s.density
 	compile := func(suprema []int) (program.Ref, *entropy.Numeric, error) {
-		in, num := c.set.NewNumeric(nil, inputs...)
+		in, num := c.numeric().NewNumeric(nil, inputs...)
 		num.Closed, num.Suprema, in.Jump = true, suprema, jump
-		x, err := in.Scalar(f.node)
+		x, err := in.Scalar(c.fold(f.node))
 		if err == nil {
 			err = num.Err()
 		}

@@ -168,11 +168,11 @@ func (c *combination) ranges() ([]quadrature.Range, error) {
 // mapProgram compiles formulas in the given inputs, with their derivatives by
 // them: the values first, then all derivatives by the first input, and so on.
 func (c *combination) mapProgram(inputs []entropy.Input, formulas []formulaText) (*program.Program, error) {
-	in, num := c.set.NewNumeric(nil, inputs...)
+	in, num := c.numeric().NewNumeric(nil, inputs...)
 	num.Closed = true
 	var outs []program.Ref
 	for _, f := range formulas {
-		x, err := in.Scalar(f.node)
+		x, err := in.Scalar(c.fold(f.node))
 		if err == nil {
 			err = num.Err()
 		}

@@ -22,12 +22,12 @@ func (c *combination) side(list []formulaText, value bool) (*side, error) {
 	if !value {
 		inputs = append(inputs, constants(c.s.params)...)
 	}
-	_, num := c.set.NewNumeric(nil, inputs...)
+	_, num := c.numeric().NewNumeric(nil, inputs...)
 	num.Closed = true
 	in := num.Sized()
 	var outs, sizes []program.Ref
 	for _, f := range list {
-		x, err := in.Scalar(f.node)
+		x, err := in.Scalar(c.fold(f.node))
 		if err == nil {
 			err = num.Err()
 		}

@@ -36,9 +36,9 @@ func (w *well) compile(c *combination, plus, minus *side) error {
 		grad = append(grad, len(inputs))
 		inputs = append(inputs, entropy.Input{Kind: entropy.JetInput, Index: jet.Index{}.Plus(i)})
 	}
-	_, num := c.set.NewNumeric(nil, inputs...)
+	_, num := c.numeric().NewNumeric(nil, inputs...)
 	num.Closed = true
-	x, err := num.Sized().Scalar(c.set.Model.Residual)
+	x, err := num.Sized().Scalar(c.fold(c.set.Model.Residual))
 	if err != nil {
 		return placed(c.s.place, err)
 	}
