@@ -34,23 +34,40 @@ func (d *decider) removeAngle(g *gap) error {
 		return nil
 	}
 	theta := d.ring.ConstantVar(f.Angle)
+	var invariant []algebra.Poly // radicands that must not depend on the angle
 	for _, k := range d.ring.Kernels(algebra.FromPoly(g.poly)) {
 		if k == cos || k == sin {
 			continue
 		}
-		for _, v := range d.ring.Support(d.ring.Symbol(k).Arg) {
-			s := d.ring.Symbol(v)
-			if v == theta || s.Kind == jet.Derivative || s.Kind == jet.Coordinate {
-				return nil
-			}
+		s := d.ring.Symbol(k)
+		varies := slices.ContainsFunc(d.ring.Support(s.Arg), func(v algebra.Var) bool {
+			return v == theta || d.ring.Symbol(v).Kind == jet.Derivative || d.ring.Symbol(v).Kind == jet.Coordinate
+		})
+		switch {
+		case !varies:
+		case s.Kind == jet.Root:
+			invariant = append(invariant, s.Arg.Num())
+		default:
+			return nil
 		}
+	}
+	for _, w := range d.wells {
+		invariant = append(invariant, w)
 	}
 	if g.poly.Has(theta) || d.holdsPlane(g.poly, f.Plane) || !d.assumptionsTurn(f.Plane) {
 		return nil
 	}
 	along := map[algebra.Var]algebra.Poly{}
 	names := map[algebra.Var]string{}
-	for _, v := range g.poly.Vars() {
+	var vars []algebra.Var
+	for _, p := range append(invariant[:len(invariant):len(invariant)], g.poly) {
+		for _, v := range p.Vars() {
+			if !slices.Contains(vars, v) {
+				vars = append(vars, v)
+			}
+		}
+	}
+	for _, v := range vars {
 		s := d.ring.Symbol(v)
 		if s.Kind != jet.Derivative || s.Index[f.Plane[0]] == 0 && s.Index[f.Plane[1]] == 0 {
 			continue
@@ -64,12 +81,17 @@ func (d *decider) removeAngle(g *gap) error {
 	if len(along) == 0 {
 		return nil
 	}
+	for _, p := range invariant {
+		if !d.ring.ReducePoly(p.SubstMany(along)).Equal(p) {
+			return nil
+		}
+	}
 	rotated := d.ring.ReducePoly(g.poly.SubstMany(along))
 	at0 := g.poly.EvalPartial(map[algebra.Var]algebra.Rat{cos: algebra.Int(1), sin: {}})
 	if err := rotated.Err(); err != nil || !rotated.Equal(at0) {
 		return nil
 	}
-	for _, v := range at0.Vars() {
+	for _, v := range vars {
 		if s := d.ring.Symbol(v); s.Kind == jet.Derivative {
 			names[v] = d.axisName(v, f.Plane, f.Axes)
 		}
@@ -99,7 +121,7 @@ func (d *decider) holdsPlane(p algebra.Poly, plane [2]int) bool {
 // assumptionsTurn reports whether no assumption singles out a direction of the
 // plane: none holds a derivative along it or a coordinate of it.
 func (d *decider) assumptionsTurn(plane [2]int) bool {
-	if len(d.wells) > 0 || len(d.ideal) > 0 {
+	if len(d.ideal) > 0 {
 		return false
 	}
 	for _, c := range d.assumed {
@@ -179,6 +201,10 @@ func (d *decider) axisName(v algebra.Var, plane [2]int, axes [2]string) string {
 		return "{" + b.String() + "}"
 	case jet.Difference:
 		return "[" + b.String() + "]"
+	case jet.PlusSide:
+		return b.String() + "(+)"
+	case jet.MinusSide:
+		return b.String() + "(-)"
 	}
 	return b.String()
 }

@@ -1,8 +1,6 @@
 package identity
 
 import (
-	"errors"
-	"fmt"
 	"slices"
 
 	"creaseproof/entropy/algebra"
@@ -24,7 +22,8 @@ type reduction struct {
 	claim    *certificate.Claim
 }
 
-// relation is v^Degree = value, as an equation of the claim.
+// relation is v^degree = value, as an equation of the claim; value holds only
+// lower powers of v.
 type relation struct {
 	v      algebra.Var
 	degree int
@@ -51,17 +50,21 @@ func (d *decider) reduce(g *gap) *reduction {
 			r.vars = append(r.vars, v)
 			r.describe(v)
 			if q, a := d.ring.Relation(v); q > 0 {
-				visit(a)
-				if d.ring.Symbol(v).Kind == jet.Sine {
-					// c² + s² - 1 as it stands
-					r.zero = append(r.zero, relation{v, 2, a})
-				} else {
-					r.zero = append(r.zero, relation{v, q, a})
+				if len(g.wells) > 0 { // everything is written in the traces
+					if t, err := d.inTraces(a); err == nil {
+						a = t
+					}
 				}
+				visit(a)
+				r.zero = append(r.zero, relation{v, q, a})
 			}
 		}
 	}
 	visit(g.poly)
+	for _, w := range g.wells {
+		visit(w.poly())
+		r.zero = append(r.zero, w)
+	}
 	for _, c := range d.assumed {
 		p, ok := c.value.IsPoly()
 		if !ok || slices.ContainsFunc(p.Vars(), func(v algebra.Var) bool { return d.ring.Symbol(v).Kind >= jet.Cosine }) {
@@ -184,17 +187,47 @@ func (r *reduction) certify(p *gram.Proof) (*certificate.Certificate, error) {
 		rest = rest.Mul(expand(p.Multiplier))
 	}
 	rest = rest.Sub(expand(p.Squares))
-	cofactors := make([]certificate.Polynomial, len(r.zero))
-	for k := len(r.zero) - 1; k >= 0; k-- {
-		var quo algebra.Poly
-		quo, rest = r.zero[k].divide(rest)
-		cofactors[k] = r.polynomial(quo)
-	}
 	cert := &certificate.Certificate{Multiplier: r.squares(p.Multiplier), Squares: r.squares(p.Squares)}
-	if len(r.zero) > 0 {
-		cert.Cofactors = cofactors
-	}
+	cert.Cofactors = r.cofactors(rest)
 	return cert, certificate.Check(r.claim, cert)
+}
+
+// cofactors writes a polynomial that vanishes modulo the relations as a
+// combination of them.
+func (r *reduction) cofactors(rest algebra.Poly) []certificate.Polynomial {
+	if len(r.zero) == 0 {
+		return nil
+	}
+	total := make([]algebra.Poly, len(r.zero))
+	for range 64 {
+		for k := len(r.zero) - 1; k >= 0; k-- {
+			var quo algebra.Poly
+			quo, rest = r.zero[k].divide(rest)
+			total[k] = total[k].Add(quo)
+		}
+		if rest.IsZero() || rest.Err() != nil {
+			break
+		}
+	}
+	out := make([]certificate.Polynomial, len(r.zero))
+	for k, t := range total {
+		out[k] = r.polynomial(t)
+	}
+	return out
+}
+
+// normal is the normal form modulo all relations, newest first.
+func (r *reduction) normal(p algebra.Poly) algebra.Poly {
+	for range 64 {
+		old := p
+		for k := len(r.zero) - 1; k >= 0; k-- {
+			_, p = r.zero[k].divide(p)
+		}
+		if p.Err() != nil || p.Equal(old) {
+			return p
+		}
+	}
+	return p
 }
 
 // divide is monic division by v^q - a.
@@ -293,11 +326,57 @@ func (r *reduction) signOf(v algebra.Var) (int, bool) {
 	return -1, false
 }
 
-// problem is the reduction in the terms of the search.
-func (r *reduction) problem() *gram.Problem {
-	p := &gram.Problem{Target: r.target, Positive: r.positive}
+// content is a monomial that is visibly non-negative: half² times assumed
+// signs.
+type content struct {
+	half    algebra.Poly
+	factors []int
+}
+
+// times multiplies squares by the content.
+func (c content) times(list []gram.Square) []gram.Square {
+	for i, s := range list {
+		list[i].Base = s.Base.Mul(c.half)
+		list[i].Factors = slices.Concat(s.Factors, c.factors)
+	}
+	return list
+}
+
+// split takes the visibly non-negative monomial out of p.
+func (r *reduction) split(p algebra.Poly) (content, algebra.Poly) {
+	c := content{half: algebra.Const(algebra.Int(1))}
+	whole := c.half
+	for _, pw := range p.MonomialContent().Powers() {
+		v := algebra.Variable(pw.Var)
+		if q, _ := r.d.ring.Relation(pw.Var); q > 0 && pw.Exp > 1 {
+			continue // powers of it are not normal forms
+		}
+		c.half = c.half.Mul(v.Pow(pw.Exp / 2))
+		whole = whole.Mul(v.Pow(pw.Exp / 2 * 2))
+		if pw.Exp%2 == 1 {
+			if i, negative := r.signOf(pw.Var); i >= 0 {
+				c.factors = append(c.factors, i)
+				whole = whole.Mul(v)
+				if negative {
+					whole = whole.Neg()
+				}
+			}
+		}
+	}
+	q, ok := p.DivExact(whole)
+	if !ok {
+		return content{half: algebra.Const(algebra.Int(1))}, p
+	}
+	return c, q
+}
+
+// problem is the reduction in the terms of the search, with the monomial
+// content of the target taken out.
+func (r *reduction) problem() (*gram.Problem, content) {
+	c, target := r.split(r.normal(r.target))
+	p := &gram.Problem{Target: target, Positive: r.positive}
 	if len(r.zero) > 0 {
-		p.Reduce = r.d.ring.ReducePoly
+		p.Reduce = r.normal
 	}
 	groups := map[int][]algebra.Var{}
 	for _, v := range r.vars {
@@ -310,40 +389,5 @@ func (r *reduction) problem() *gram.Problem {
 			p.Groups = append(p.Groups, groups[order])
 		}
 	}
-	return p
-}
-
-// prove searches for a certificate of a gap: completed squares first, then
-// sums of squares. It reports whether the claim is proved by it.
-func (d *decider) prove(g *gap, done []squares.Term) (bool, error) {
-	r := d.reduce(g)
-	if len(done) > 0 {
-		if p, ok := r.fromSquares(done); ok {
-			if cert, err := r.certify(p); err == nil {
-				d.certified("completing squares", g, r, p, cert)
-				return true, nil
-			}
-		}
-	}
-	if len(d.wells) > 0 || len(d.ideal) > 0 {
-		return false, nil // the equations are not part of the reduction
-	}
-	effort, ok := gram.Efforts(d.opt.Effort)
-	if !ok {
-		return false, fmt.Errorf("unknown effort %q", d.opt.Effort)
-	}
-	p, pic, err := gram.Prove(d.ctx, r.problem(), effort)
-	switch {
-	case errors.Is(err, gram.ErrNotFound):
-		d.picture = pic
-		return false, nil
-	case err != nil:
-		return false, err
-	}
-	cert, err := r.certify(p)
-	if err != nil {
-		return false, fmt.Errorf("%w: a certificate that the checker refuses: %w", jet.ErrOutside, err)
-	}
-	d.certified("sum of squares", g, r, p, cert)
-	return true, nil
+	return p, c
 }

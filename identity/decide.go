@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"slices"
 
 	"creaseproof/entropy"
 	"creaseproof/entropy/algebra"
@@ -86,13 +87,22 @@ func Decide(ctx context.Context, c *Claim, opt Options) (*Record, error) {
 	}
 	if d.ring != nil && d.rec.Verdict != Open {
 		for _, c := range d.ring.Conditions() {
-			if d.ex.NoJump(c) {
+			if d.ex.NoJump(c) || d.ofParameters(c.Value) {
 				continue
 			}
 			d.rec.Assumptions = append(d.rec.Assumptions, d.ring.Format(c.Value)+" "+c.Need.String())
 		}
 	}
 	return d.rec, nil
+}
+
+// ofParameters reports a condition on the parameters of a parametrised well,
+// which excludes no trace.
+func (d *decider) ofParameters(f algebra.Fraction) bool {
+	return slices.ContainsFunc(d.ring.Support(f), func(v algebra.Var) bool {
+		s := d.ring.Symbol(v)
+		return s.Kind == jet.Constant && s.Place < 0
+	})
 }
 
 func (d *decider) open(format string, args ...any) {

@@ -18,6 +18,7 @@ type gap struct {
 	poly        algebra.Poly     // value times something positive
 	factor      algebra.Fraction // value = poly · factor, before the angle is removed
 	turned      *turned          // poly is at frame angle 0, which is enough
+	wells       []relation       // what holds on the jets looked at
 }
 
 // inequality decides A <= B or A >= B.
@@ -29,8 +30,13 @@ func (d *decider) inequality() error {
 	if len(d.claim.Solve) > 0 {
 		return &entropy.Error{At: d.claim.Statement.Left.At(), Err: errors.New("solve is for equations"), Advice: "write the constant's value, or claim an equation"}
 	}
-	if _, err := d.parametrise(); err != nil {
-		return err
+	if len(d.wells) > 0 {
+		if ok, err := d.proveOnWells(); err != nil || ok {
+			return err
+		}
+		if _, err := d.parametrise(); err != nil {
+			return err
+		}
 	}
 	g, err := d.gap()
 	if err != nil {

@@ -29,16 +29,32 @@ type Square struct {
 }
 
 // Certificate is the proof: Multiplier · Target = Squares + Σ Cofactors · Zero.
-// Without a multiplier it is 1.
+// Without a multiplier it is 1. With a Squaring it is that instead.
 type Certificate struct {
 	Multiplier []Square     `json:"multiplier,omitempty"`
-	Squares    []Square     `json:"squares"`
+	Squares    []Square     `json:"squares,omitempty"`
 	Cofactors  []Polynomial `json:"cofactors,omitempty"`
+	Squaring   *Squaring    `json:"squaring,omitempty"`
 }
+
+// Squaring proves that x - y >= 0, with x = Left a sum of squares as in a
+// certificate and y = Right any polynomial, from x² - y² >= 0, which Proof is a
+// certificate of. The target is x - y + Σ Cofactors · Zero.
+type Squaring struct {
+	Left      []Square     `json:"left"`
+	Right     Polynomial   `json:"right"`
+	Cofactors []Polynomial `json:"cofactors,omitempty"`
+	Proof     *Certificate `json:"proof"`
+}
+
+// maxDepth bounds squarings inside squarings.
+const maxDepth = 8
 
 // Check verifies a certificate of a claim. A nil error means that the claim is
 // proved; any other says what is wrong.
-func Check(claim *Claim, cert *Certificate) error {
+func Check(claim *Claim, cert *Certificate) error { return check(claim, cert, maxDepth) }
+
+func check(claim *Claim, cert *Certificate, depth int) error {
 	c, err := newChecker(claim.Variables)
 	if err != nil {
 		return err
@@ -59,6 +75,12 @@ func Check(claim *Claim, cert *Certificate) error {
 	if err != nil {
 		return fmt.Errorf("target: %w", err)
 	}
+	if cert.Squaring != nil {
+		if len(cert.Multiplier)+len(cert.Squares)+len(cert.Cofactors) > 0 {
+			return errors.New("a squaring and squares at once")
+		}
+		return c.squaring(claim, cert.Squaring, target, positive, zero, depth)
+	}
 
 	multiplier := sum{key(make([]int, c.n)): big.NewRat(1, 1)}
 	if len(cert.Multiplier) > 0 {
@@ -77,10 +99,22 @@ func Check(claim *Claim, cert *Certificate) error {
 	if err != nil {
 		return fmt.Errorf("squares: %w", err)
 	}
-	if len(cert.Cofactors) != len(zero) {
-		return fmt.Errorf("%d cofactors for %d equations", len(cert.Cofactors), len(zero))
+	if err := c.addCofactors(right, cert.Cofactors, zero); err != nil {
+		return err
 	}
-	for k, t := range cert.Cofactors {
+	left.add(big.NewRat(-1, 1), right)
+	if len(left) != 0 {
+		return fmt.Errorf("the identity does not hold: %d terms are left over", len(left))
+	}
+	return nil
+}
+
+// addCofactors adds Σ t_k h_k.
+func (c *checker) addCofactors(to sum, cofactors []Polynomial, zero []sum) error {
+	if len(cofactors) != len(zero) {
+		return fmt.Errorf("%d cofactors for %d equations", len(cofactors), len(zero))
+	}
+	for k, t := range cofactors {
 		q, err := c.read(t)
 		if err != nil {
 			return fmt.Errorf("cofactor %d: %w", k, err)
@@ -89,11 +123,48 @@ func Check(claim *Claim, cert *Certificate) error {
 		if err != nil {
 			return err
 		}
-		right.add(big.NewRat(1, 1), prod)
+		to.add(big.NewRat(1, 1), prod)
 	}
-	left.add(big.NewRat(-1, 1), right)
-	if len(left) != 0 {
-		return fmt.Errorf("the identity does not hold: %d terms are left over", len(left))
+	return nil
+}
+
+// squaring checks that the target is x - y, and the proof of x² - y² >= 0:
+// with x >= 0 then x = |x| >= |y| >= y.
+func (c *checker) squaring(claim *Claim, s *Squaring, target sum, positive, zero []sum, depth int) error {
+	if depth == 0 || s.Proof == nil {
+		return errors.New("a squaring without a proof, or too many inside each other")
+	}
+	x, err := c.squares(s.Left, positive)
+	if err != nil {
+		return fmt.Errorf("left: %w", err)
+	}
+	y, err := c.read(s.Right)
+	if err != nil {
+		return fmt.Errorf("right: %w", err)
+	}
+	diff := sum{}
+	diff.add(big.NewRat(1, 1), x)
+	diff.add(big.NewRat(-1, 1), y)
+	if err := c.addCofactors(diff, s.Cofactors, zero); err != nil {
+		return err
+	}
+	diff.add(big.NewRat(-1, 1), target)
+	if len(diff) != 0 {
+		return fmt.Errorf("the target is not the difference of the two sides: %d terms are left over", len(diff))
+	}
+	next, err := c.mul(x, x)
+	if err != nil {
+		return err
+	}
+	ysq, err := c.mul(y, y)
+	if err != nil {
+		return err
+	}
+	next.add(big.NewRat(-1, 1), ysq)
+	squared := *claim
+	squared.Target = c.write(next)
+	if err := check(&squared, s.Proof, depth-1); err != nil {
+		return fmt.Errorf("after squaring: %w", err)
 	}
 	return nil
 }
@@ -238,6 +309,9 @@ func (c *checker) bound(g sum) (v int, at *big.Rat, lower, ok bool) {
 // UsesContinuity reports whether the proof rests on continuity where its
 // multiplier vanishes.
 func UsesContinuity(claim *Claim, cert *Certificate) bool {
+	if cert.Squaring != nil {
+		return cert.Squaring.Proof != nil && UsesContinuity(claim, cert.Squaring.Proof)
+	}
 	switch len(cert.Multiplier) {
 	case 0:
 		return false

@@ -24,4 +24,7 @@
 // The set of the claim is then an open part of a product of intervals, lines
 // and circles, on which a polynomial that is not identically zero vanishes on
 // a set without interior points.
+//
+// A certificate may also be a squaring: x >= y follows from x² >= y² where x is
+// a sum Σ w · g_a g_b … · q², which is how roots are removed.
 package certificate

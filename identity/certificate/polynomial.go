@@ -120,6 +120,25 @@ func exponents(k string) []int {
 	return out
 }
 
+// write is the inverse of read.
+func (c *checker) write(p sum) Polynomial {
+	names := make([]string, c.n)
+	for v, i := range c.index {
+		names[i] = v
+	}
+	var out Polynomial
+	for k, x := range p {
+		t := Term{C: x.RatString(), M: map[string]int{}}
+		for i, e := range exponents(k) {
+			if e > 0 {
+				t.M[names[i]] = e
+			}
+		}
+		out = append(out, t)
+	}
+	return out
+}
+
 // add adds w·q to p.
 func (p sum) add(w *big.Rat, q sum) {
 	for k, x := range q {
@@ -135,9 +154,18 @@ func (p sum) add(w *big.Rat, q sum) {
 	}
 }
 
+// bits is the size of the largest coefficient.
+func (p sum) bits() int {
+	n := 0
+	for _, x := range p {
+		n = max(n, x.Num().BitLen()+x.Denom().BitLen())
+	}
+	return n
+}
+
 // mul is the product of p and q.
 func (c *checker) mul(p, q sum) (sum, error) {
-	if c.work += len(p) * len(q); c.work > maxProducts {
+	if c.work += len(p) * len(q) * (1 + (p.bits()+q.bits())/512); c.work > maxProducts {
 		return nil, fmt.Errorf("the identity takes more than %d products of terms", maxProducts)
 	}
 	out := sum{}
