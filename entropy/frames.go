@@ -222,6 +222,16 @@ func (in *Interpreter[T]) turned(angle formula.Node, s state[T]) (state[T], erro
 	return s, nil
 }
 
+// normal is a component of the unit normal. In exact arithmetic that is the
+// direction of [grad u], which there is at a jump only.
+func (in *Interpreter[T]) normal(n formula.Node, i int) (T, error) {
+	if _, exact := any(in.Arith).(*Exact); exact && !in.Jump {
+		var zero T
+		return zero, fault(n, `give the claim at = "jump"`, "the normal of a jump outside a claim at a jump")
+	}
+	return in.Arith.Normal(i)
+}
+
 func (in *Interpreter[T]) component(n *formula.Component, s state[T]) (T, error) {
 	var zero T
 	var v []T
@@ -229,7 +239,7 @@ func (in *Interpreter[T]) component(n *formula.Component, s state[T]) (T, error)
 		v = make([]T, len(in.Setting.Coordinates))
 		for i := range v {
 			var err error
-			if v[i], err = in.Arith.Normal(i); err != nil {
+			if v[i], err = in.normal(n, i); err != nil {
 				return v[i], err
 			}
 		}

@@ -52,7 +52,7 @@ func (in *Interpreter[T]) dotNu(n *formula.DotNu, s state[T]) (T, error) {
 		return sum, fault(n, "", ".nu needs a vector before it")
 	}
 	for i, x := range v.Vector {
-		nu, err := in.Arith.Normal(i)
+		nu, err := in.normal(n, i)
 		if err != nil {
 			return sum, err
 		}
