@@ -29,8 +29,8 @@ func (b *bisection) audit() (again bool, err error) {
 				r, okr := p.reaches(0, c)
 				if okl && okr {
 					m := math.Abs(l - r)
-					miss[i-1][c] += m * all[i-1].gap
-					miss[i][c] += m * p.gap
+					miss[i-1][c] += m * all[i-1].blind(1)
+					miss[i][c] += m * p.blind(0)
 				}
 			}
 		}
@@ -71,15 +71,8 @@ func (p *panel) reaches(side, c int) (value float64, ok bool) {
 	case plain:
 		return p.ends[side][c], true
 	case squareLeft, squareRight:
-		// In v the ends are the other way round for squareRight, and at v = 0
-		// the substitution is singular.
-		v, k := p.lo, side
-		if p.kind == squareRight {
-			k = 1 - side
-		}
-		if k == 1 {
-			v = p.hi
-		}
+		// At v = 0 the substitution is singular.
+		k, v := p.inner(side)
 		if v == 0 {
 			return 0, false
 		}
@@ -89,6 +82,26 @@ func (p *panel) reaches(side, c int) (value float64, ok bool) {
 		return p.ends[side][c], true
 	}
 	return 0, false
+}
+
+// inner is the end in v that belongs to the left (0) or right (1) end of a
+// panel: for squareRight they are the other way round.
+func (p *panel) inner(side int) (k int, v float64) {
+	if p.kind == squareRight {
+		side = 1 - side
+	}
+	if side == 1 {
+		return 1, p.hi
+	}
+	return 0, p.lo
+}
+
+// blind is the distance of the left (0) or right (1) end of a panel from the
+// node next to it.
+func (p *panel) blind(side int) float64 {
+	_, v := p.inner(side)
+	_, ds := p.at(v)
+	return p.gap * ds
 }
 
 // probeEnd compares the integrand with the extrapolation of a panel next to an

@@ -167,8 +167,10 @@ func (b *bisection) put(p *panel) {
 			p.key = math.Max(p.key, p.est[c]/b.scale[c])
 		}
 	}
+	lo, _ := p.at(p.lo)
+	hi, _ := p.at(p.hi)
 	if p.key == 0 || p.depth >= deepest || p.stall >= longStall ||
-		p.width() <= 8*epsilon*math.Max(math.Abs(p.lo), math.Abs(p.hi)) {
+		p.width() <= 8*epsilon*math.Max(math.Abs(lo), math.Abs(hi)) {
 		b.final = append(b.final, p)
 		return
 	}
