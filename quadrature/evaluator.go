@@ -154,7 +154,7 @@ func (e *evaluator) at(s [2]float64, out *adaptive.Sample) error {
 	}
 	out.Value[0], out.Value[1] = d*e.area, e.area
 	out.Size[0], out.Size[1] = math.Abs(d)*e.area, e.area
-	out.Noise[0] = 2 * epsilon * (1 + condition) * out.Size[0]
+	out.Noise[0] = (2*epsilon*(1+condition) + e.o.DensityError) * out.Size[0]
 	out.Noise[1] = 2 * epsilon * (1 + e.shaky) * e.area
 	return nil
 }

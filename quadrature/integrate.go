@@ -41,6 +41,9 @@ type Options struct {
 	Well func(grad []float64) (residual, scale float64)
 	// Tolerance is the relative tolerance of the checks, 1e-9 if zero.
 	Tolerance float64
+	// DensityError is the relative error of the values of the density beside
+	// rounding, 0 for closed forms. It is counted in the error estimates.
+	DensityError float64
 }
 
 func (o Options) withDefaults() Options {
@@ -58,7 +61,7 @@ func (o Options) withDefaults() Options {
 
 func (o Options) check() error {
 	switch {
-	case !(o.Rel >= 0) || !(o.Abs >= 0) || !(o.Tolerance >= 0):
+	case !(o.Rel >= 0) || !(o.Abs >= 0) || !(o.Tolerance >= 0) || !(o.DensityError >= 0):
 		return fmt.Errorf("quadrature: tolerances must not be negative or NaN")
 	case o.MaxEvaluations < 0:
 		return fmt.Errorf("quadrature: a negative number of evaluations")

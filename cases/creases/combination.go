@@ -198,11 +198,11 @@ func (c *combination) evaluate() (Result, error) {
 	if err != nil {
 		return r, err
 	}
-	density, err := c.density()
+	density, inexact, err := c.density()
 	if err != nil {
 		return r, err
 	}
-	options.MaxEvaluations = c.o.MaxEvaluations
+	options.MaxEvaluations, options.DensityError = c.o.MaxEvaluations, inexact
 	options.Rel = math.Max(1e-13, math.Min(1e-11, rel/10))
 	if r.Claimed != nil && *r.Claimed == 0 {
 		options.Abs = rel / 10

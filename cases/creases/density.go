@@ -15,31 +15,33 @@ import (
 	"creaseproof/quadrature/profile"
 )
 
-// density is the given density, or the profile cost of the model.
-func (c *combination) density() (quadrature.Density, error) {
+// density is the given density, or the profile cost of the model, and the
+// relative error of its values beside rounding.
+func (c *combination) density() (d quadrature.Density, inexact float64, err error) {
 	s := c.s
 	if s.density != nil {
-		return c.givenDensity()
+		d, err = c.givenDensity()
+		return d, 0, err
 	}
 	if err := s.ev.profileErr; err != nil {
 		if !errors.Is(err, entropy.ErrNoProfile) {
-			return nil, placed(s.place, err)
+			return nil, 0, placed(s.place, err)
 		}
-		return nil, fault(s.place, `add density = "..."`, "the surface gives no density, and the model has no profile cost: %s", strings.TrimPrefix(err.Error(), entropy.ErrNoProfile.Error()+": "))
+		return nil, 0, fault(s.place, `add density = "..."`, "the surface gives no density, and the model has no profile cost: %s", strings.TrimPrefix(err.Error(), entropy.ErrNoProfile.Error()+": "))
 	}
 	known := map[string]float64{}
 	for _, v := range s.values {
 		x, err := c.number(c.chosen[v.name])
 		if err != nil {
-			return nil, err
+			return nil, 0, err
 		}
 		known[v.name] = x
 	}
 	p, err := s.ev.profile.Compile(known)
 	if err != nil {
-		return nil, placed(s.place, err)
+		return nil, 0, placed(s.place, err)
 	}
-	return profile.Density(c.ctx, p), nil
+	return profile.Density(c.ctx, p), profile.Uncertainty(p), nil
 }
 
 // givenDensity compiles a density in the position, the parameters of a patch,

@@ -102,7 +102,9 @@ func (c *combination) foldAll(list []formula.Node) []formula.Node {
 // constant reports whether a formula holds nothing but numbers, functions and
 // names that stand for such.
 func (c *combination) constant(n formula.Node) bool {
-	all := func(list []formula.Node) bool { return !slices.ContainsFunc(list, func(n formula.Node) bool { return !c.constant(n) }) }
+	all := func(list []formula.Node) bool {
+		return !slices.ContainsFunc(list, func(n formula.Node) bool { return !c.constant(n) })
+	}
 	switch n := n.(type) {
 	case *formula.Num:
 		return true

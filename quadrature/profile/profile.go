@@ -50,13 +50,22 @@ func Cost(ctx context.Context, p *entropy.ProfileProgram, x, plus, minus, nu []f
 	return cost, estimate, err
 }
 
+// Uncertainty is the relative error that the values of Density may have beside
+// rounding: 0 where the cost is a closed form.
+func Uncertainty(p *entropy.ProfileProgram) float64 {
+	if p.Polynomial() {
+		return 0
+	}
+	return 10 * tolerance
+}
+
 // Density is the cost as a density over surfaces. It is NaN where the cost is
 // not known to a relative 1e-12, so that an integral over it is refused there
 // instead of being wrong. It is not safe for concurrent use.
 func Density(ctx context.Context, p *entropy.ProfileProgram) quadrature.Density {
 	return func(x, plus, minus, nu []float64) float64 {
 		cost, estimate, err := Cost(ctx, p, x, plus, minus, nu)
-		accurate := errors.Is(err, adaptive.ErrTolerance) && estimate <= 10*tolerance*math.Abs(cost)
+		accurate := errors.Is(err, adaptive.ErrTolerance) && estimate <= Uncertainty(p)*math.Abs(cost)
 		if err != nil && !accurate {
 			return math.NaN()
 		}
