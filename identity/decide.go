@@ -153,7 +153,7 @@ func (d *decider) decide() error {
 	case formula.Equal:
 		return d.equality()
 	case formula.LessEqual, formula.GreaterEqual:
-		if err := d.prolongInequality(); err != nil || d.rec.Verdict != "" {
+		if err := d.atOnce(); err != nil || d.rec.Verdict != "" {
 			return err
 		}
 		return d.inequality()

@@ -2,6 +2,7 @@ package identity
 
 import (
 	"math/rand/v2"
+	"slices"
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/enclosure"
@@ -189,10 +190,11 @@ func rankIs(rows [][]algebra.Rat, rank int) bool {
 	return ok && len(rows)-len(null) == rank
 }
 
-// prolongInequality differentiates the equations up to the order of the
-// inequality, and proves it where its two sides agree on their zeros.
-func (d *decider) prolongInequality() error {
-	if len(d.ideal) == 0 {
+// atOnce proves an inequality between numbers by enclosing both sides. On
+// equations it differentiates these up to the order of the inequality, and
+// proves it where its two sides agree on their zeros.
+func (d *decider) atOnce() error {
+	if d.claim.Divergence || len(d.claim.Solve) > 0 {
 		return nil
 	}
 	l, r, err := d.inequalitySides()
@@ -203,6 +205,19 @@ func (d *decider) prolongInequality() error {
 	g, err := d.ring.Sub(l, r)
 	if err != nil {
 		return err
+	}
+	if !slices.ContainsFunc(d.ring.Support(g), func(v algebra.Var) bool { return d.ring.Symbol(v).Kind != jet.Pi }) {
+		want := -1
+		if d.claim.Statement.Relation == formula.GreaterEqual {
+			want = 1
+		}
+		if s, ok := d.ring.Sign(g, nil); ok && s == want && len(d.ring.Conditions()) == 0 {
+			d.proved("both sides enclosed with outward rounding")
+		}
+		return nil
+	}
+	if len(d.ideal) == 0 {
+		return nil
 	}
 	rest, err := d.onIdeal(g)
 	if err != nil {

@@ -52,6 +52,8 @@ func TestRootsAndSigns(t *testing.T) {
 		{"1/(sqrt(2) - 1) = sqrt(2) + 1", nil, []identity.Verdict{proved}},
 		{"sqrt(a b) = sqrt(a) sqrt(b)", []edit{assuming(t, "a > 0", "b > 0")}, []identity.Verdict{proved}},
 		{"log(a b) = log(a) + log(b)", []edit{assuming(t, "a > 0", "b > 0")}, []identity.Verdict{proved}},
+		{"log(a) + log(b) = log(a b)", nil, []identity.Verdict{proved}}, // a > 0 and b > 0 are asked for
+		{"log(a b) = log(a) + log(b)", nil, []identity.Verdict{open, proved}},
 		{"log(a/b) = log(a) - log(b)", []edit{assuming(t, "a > 0", "b > 0")}, []identity.Verdict{proved}},
 		{"log(a + b) = log(a) + log(b)", []edit{assuming(t, "a > 0", "b > 0")}, []identity.Verdict{refuted}},
 		{"log(u_x^2) = 2 log(abs(u_x))", nil, []identity.Verdict{proved}},

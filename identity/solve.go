@@ -72,7 +72,45 @@ func (d *decider) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 		sub[v] = x[i]
 	}
 	d.rec.Solution = strings.Join(parts, ", ")
+	if !slices.Contains(free, true) {
+		if ok, err := d.allowed(sub); err != nil || !ok {
+			d.forbidden()
+			return nil, err
+		}
+	}
 	return d.substitute(gaps, sub)
+}
+
+// forbidden refutes a claim whose only solution contradicts an assumption.
+func (d *decider) forbidden() {
+	d.rec.Verdict, d.rec.Method = Refuted, "coefficients and assumptions, exact"
+	d.rec.Reason = "what makes all coefficients vanish, " + d.rec.Solution + ", contradicts an assumption"
+	d.rec.Solution = "none"
+}
+
+// allowed reports whether values of the unknowns may satisfy the assumptions.
+// Where that depends on other constants the record says so.
+func (d *decider) allowed(sub map[algebra.Var]algebra.Fraction) (bool, error) {
+	for _, c := range d.assumed {
+		if !slices.ContainsFunc(d.ring.Support(c.value), func(v algebra.Var) bool { _, ok := sub[v]; return ok }) {
+			continue
+		}
+		f, err := d.ring.Reduce(c.value.SubstMany(sub))
+		if err != nil {
+			return false, err
+		}
+		switch s, ok := d.ring.Sign(f, nil); {
+		case ok:
+			if !(constraint{jet.Whole(int64(s)), c.relation}).holds(d.ring, nil) {
+				return false, nil
+			}
+		case d.ring.VisiblyPositive(f) && c.relation[0] == '<', d.ring.VisiblyPositive(f.Neg()) && c.relation[0] == '>':
+			return false, nil
+		default:
+			d.rec.Assumptions = append(d.rec.Assumptions, d.ring.Format(f)+" "+c.relation+" 0")
+		}
+	}
+	return true, nil
 }
 
 func (d *decider) substitute(gaps []algebra.Fraction, sub map[algebra.Var]algebra.Fraction) ([]algebra.Fraction, error) {
@@ -202,6 +240,11 @@ func (d *decider) solveNonlinear(gaps []algebra.Fraction, rows []algebra.Poly, u
 				return nil, err
 			}
 			all = all && rest.IsZero()
+		}
+		if all {
+			if all, err = d.allowed(map[algebra.Var]algebra.Fraction{v: jet.Rational(x.Big())}); err != nil {
+				return nil, err
+			}
 		}
 		if all {
 			good = append(good, d.claim.Solve[0]+" = "+x.String())

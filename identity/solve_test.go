@@ -12,6 +12,8 @@ import (
 
 func TestSolve(t *testing.T) {
 	const none = "none"
+	signed := plane
+	signed.constants, signed.assume = []string{"c", "eps"}, []string{"c > 0", "eps > 0"}
 	for _, c := range []struct {
 		name     string
 		th       theory
@@ -40,6 +42,10 @@ func TestSolve(t *testing.T) {
 		{"nonlinear, none", plane, "c^2 u_x + c u_y = 4 u_x + 3 u_y", []string{"c"}, nil, identity.Refuted, none},
 		{"nonlinear, no real root", plane, "(c^2 + 1) u_x = 0", []string{"c"}, nil, identity.Refuted, none},
 		{"nonlinear, irrational", plane, "c^2 u_x = 2 u_x", []string{"c"}, nil, identity.Open, ""},
+		{"an assumption leaves one root", signed, "c^2 u_x = 4 u_x", []string{"c"}, nil, identity.Proved, "c = 2"},
+		{"an assumption leaves none", signed, "c u_x = -4 u_x", []string{"c"}, nil, identity.Refuted, none},
+		{"an assumption leaves none, symbolic", signed, "c u_x = -eps u_x", []string{"c"}, nil, identity.Refuted, none},
+		{"an assumption that the solution satisfies", signed, "c u_x = eps u_x", []string{"c"}, nil, identity.Proved, "c = eps"},
 		{"cubic", plane, "c^3 u_x = 8 u_x", []string{"c"}, nil, identity.Proved, "c = 2"},
 		{"curvature coefficient", layered, "2 R L = c u K", []string{"c"}, []edit{divergence}, identity.Proved, "c = 4/3"},
 		{"curvature coefficient, none", layered, "2 R L + u_x^4 = c u K", []string{"c"}, []edit{divergence}, identity.Refuted, none},

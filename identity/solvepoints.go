@@ -97,6 +97,10 @@ func (d *decider) solveAtPoints(gaps []algebra.Fraction, unknown []algebra.Var) 
 		}
 	}
 	d.rec.Solution = strings.Join(text, ", ")
+	if ok, err := d.allowed(sub); err != nil || !ok {
+		d.forbidden()
+		return nil, err
+	}
 	return out, nil
 }
 

@@ -141,6 +141,28 @@ func TestInequalitiesAtTheEdge(t *testing.T) {
 	}
 }
 
+// Inequalities between numbers are settled by enclosures.
+func TestInequalitiesOfNumbers(t *testing.T) {
+	for states, want := range map[string]identity.Verdict{
+		"pi <= 22/7":                              identity.Proved,
+		"pi >= 22/7":                              identity.Refuted,
+		"355/113 >= pi":                           identity.Proved,
+		"exp(pi) - pi <= 20":                      identity.Proved,
+		"exp(pi) - pi >= 20":                      identity.Refuted,
+		"sqrt(2) + sqrt(3) >= 22/7":               identity.Proved,
+		"exp(pi sqrt(163)) >= 262537412640768744": identity.Refuted,
+		"exp(pi sqrt(163)) <= 262537412640768744": identity.Proved,
+		"erf(1) + cos(1) <= tanh(3) + 2/5":        identity.Proved,
+		"0 >= 1":                                  identity.Refuted,
+		"1 >= 1":                                  identity.Proved,
+	} {
+		rec := decideSmall(t, state(t, plane, states))
+		assert.Equal(t, want, rec.Verdict, "%s: %+v", states, rec)
+	}
+	rec := decideSmall(t, state(t, plane, "sqrt(5 + 2 sqrt(6)) <= sqrt(2) + sqrt(3)"))
+	assert.NotEqual(t, identity.Refuted, rec.Verdict)
+}
+
 func TestSpan(t *testing.T) {
 	th := layered
 	th.fields = map[string]map[string]string{

@@ -198,7 +198,7 @@ func (r *Ring) Log(f algebra.Fraction) (algebra.Fraction, error) {
 						return err
 					}
 					out = out.Add(l.Scale(algebra.Frac64(int64(pw.Exp*e), int64(s.Degree))))
-				case s.Sign == Positive:
+				case s.Sign == Positive || r.requiredPositive(pw.Var):
 					if err := r.addLog(&out, Of(pw.Var), e*pw.Exp); err != nil {
 						return err
 					}
@@ -235,6 +235,16 @@ func (r *Ring) Log(f algebra.Fraction) (algebra.Fraction, error) {
 		}
 	}
 	return r.Reduce(out)
+}
+
+// requiredPositive reports whether what was read before rests on v > 0.
+func (r *Ring) requiredPositive(v algebra.Var) bool {
+	for _, c := range r.conditions {
+		if w, ok := loneVar(c.Value.Num()); ok && w == v && c.Need == NeedPositive && len(c.Value.DenFactors()) == 0 {
+			return true
+		}
+	}
+	return false
 }
 
 func (r *Ring) addLog(out *algebra.Fraction, f algebra.Fraction, times int) error {
