@@ -175,11 +175,11 @@ func (c *combination) numbers(list []formulaText) ([]float64, error) {
 func (c *combination) evaluate() (Result, error) {
 	s := c.s
 	r := Result{Surface: s.Name, Values: c.values, Expected: s.Expected}
-	within := s.src.Within
-	if within == nil {
-		within = defaultWithin
+	rel, allowed := defaultAccuracy, noDigits
+	if s.src.Within != nil {
+		rel, _ = s.src.Within.Float64()
+		allowed = rel
 	}
-	rel, _ := within.Float64()
 	if s.energy != nil {
 		x, err := c.number(*s.energy)
 		if err != nil {
@@ -227,7 +227,7 @@ func (c *combination) evaluate() (Result, error) {
 		return r.refuse(c.explain(err)), nil
 	}
 	r.Energy, r.Error, r.Area = &q.Energy, &q.Error, &q.Area
-	c.compare(&r, rel)
+	c.compare(&r, rel, allowed)
 	if limited && r.Verdict != identity.Supported {
 		r.Verdict = identity.Open
 		r.add("the accuracy asked for was not reached: " + strings.TrimPrefix(err.Error(), "quadrature: "))
@@ -261,25 +261,32 @@ func (r *Result) add(reason string) {
 // margin.
 const rounding = 0x1p-52
 
-// compare compares the energy with the claimed one. rel is the difference
-// allowed relative to it, or absolutely where it is 0.
-func (c *combination) compare(r *Result, rel float64) {
+// compare compares the energy with the claimed one: they may differ by the
+// error and by allowed, and the error may be accuracy. Both are relative to the
+// claimed energy, or absolute where that is 0.
+func (c *combination) compare(r *Result, accuracy, allowed float64) {
 	if r.Claimed == nil {
+		if r.Expected != "" {
+			r.add("the surface claims no energy, so that there is nothing to decide")
+		}
 		return
 	}
 	size := math.Abs(*r.Claimed)
-	allowed := rel * size
+	unit := size
 	if size == 0 {
-		allowed = rel
+		unit = 1
 	}
 	difference := math.Abs(*r.Energy - *r.Claimed)
 	switch {
-	case !(difference <= *r.Error+allowed+rounding*size):
+	case !(difference <= *r.Error+allowed*unit+rounding*size):
 		r.Verdict = identity.Open
 		r.add(fmt.Sprintf("the energy is %.17g with an estimated error of %.2g, the claimed energy %.17g: they differ by %.3g, and floating-point numbers refute nothing", *r.Energy, *r.Error, *r.Claimed, difference))
-	case !(*r.Error <= allowed+1e-12*size):
+		if c.s.src.Within == nil && difference <= 1e-3*size {
+			r.add(fmt.Sprintf("if the claim has been rounded, allow for it: within = %.0e", math.Pow(10, math.Ceil(math.Log10(difference/size)))))
+		}
+	case !(*r.Error <= accuracy*unit+1e-12*size):
 		r.Verdict = identity.Open
-		r.add(fmt.Sprintf("the energy %.17g agrees with the claimed %.17g, but its estimated error %.2g is more than the %.2g allowed", *r.Energy, *r.Claimed, *r.Error, allowed))
+		r.add(fmt.Sprintf("the energy %.17g agrees with the claimed %.17g, but its estimated error %.2g is more than the %.2g allowed", *r.Energy, *r.Claimed, *r.Error, accuracy*unit))
 	default:
 		r.Verdict = identity.Supported
 	}

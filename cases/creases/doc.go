@@ -19,7 +19,8 @@
 //
 // # Verdicts
 //
-// An energy that agrees with the claim within the error is supported; nothing
+// An energy that agrees with the claim within the error, and the relative
+// difference that the case allows (within), is supported; nothing
 // here is a proof, and a float never refutes. Disagreement, a failed check and
 // an accuracy that was not reached leave the claim open, with the reason. A
 // surface that fails a check has no energy.

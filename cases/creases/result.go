@@ -1,10 +1,6 @@
 package creases
 
-import (
-	"math/big"
-
-	"creaseproof/identity"
-)
+import "creaseproof/identity"
 
 // Result is what came of one surface at one choice of its values.
 type Result struct {
@@ -43,6 +39,10 @@ type Options struct {
 	NoSlices bool
 }
 
-// defaultWithin is the relative difference allowed between an energy and the
-// claimed one, beside the error estimate.
-var defaultWithin = big.NewRat(1, 1e9)
+// Without within, a claimed energy has to agree with the number to its error
+// estimate and noDigits, and the estimate has to be at most defaultAccuracy, all
+// relative to the claimed energy.
+const (
+	defaultAccuracy = 1e-10
+	noDigits        = 1e-13
+)

@@ -64,6 +64,9 @@ type choice struct {
 	list          []formulaText
 }
 
+// mostCombinations bounds the number of results of a surface.
+const mostCombinations = 100000
+
 // Read reads the formulas of a surface. An error is a mistake in the file and
 // carries its place (*source.Error).
 func (e *Evaluator) Read(src *casefile.Surface) (*Surface, error) {
@@ -111,6 +114,7 @@ func (s *Surface) declare() error {
 	if err != nil {
 		return placed(s.place, err)
 	}
+	total := 1
 	for i, v := range s.src.Values {
 		c := choice{name: names[i], written: v.Name.S}
 		for _, t := range v.List {
@@ -121,6 +125,9 @@ func (s *Surface) declare() error {
 			c.list = append(c.list, formulaText{t, n})
 		}
 		s.values = append(s.values, c)
+		if total *= len(c.list); total > mostCombinations {
+			return fault(nameText(s.ev.file, v.Name), "give fewer values, or several surfaces", "the values have more than %d combinations", mostCombinations)
+		}
 	}
 	s.inner = base
 	if s.src.Patch != nil {
