@@ -31,6 +31,8 @@ type decider struct {
 	ideal        []algebra.Poly // modulo: generators that are not solved
 	equations    []algebra.Poly // modulo: the same before they were differentiated
 	solved       []*solved      // modulo: equations that determine a derivative
+	basis        []algebra.Poly // of the ideal of that many generators, completed
+	basisOf      int
 	// hidden says that the equations may have consequences that were not
 	// found, so that a point is no refutation.
 	hidden bool

@@ -118,6 +118,15 @@ func (d *decider) onIdeal(g algebra.Fraction) (algebra.Fraction, error) {
 	num = d.ring.ReducePoly(num)
 	_, rem := num.DivMod(gens, algebra.GradedLex)
 	rem = d.ring.ReducePoly(rem)
+	if len(d.ideal) > 0 && !rem.IsZero() && rem.Err() == nil {
+		// The division depends on the order of the generators until they are
+		// completed to a Gröbner basis.
+		if len(d.basis) == 0 || d.basisOf != len(gens) {
+			d.basis, d.basisOf = d.completed(gens), len(gens)
+		}
+		_, rem = num.DivMod(d.basis, algebra.GradedLex)
+		rem = d.ring.ReducePoly(rem)
+	}
 	if err := rem.Err(); err != nil {
 		return g, err
 	}
