@@ -34,7 +34,12 @@ func (b *builder) expectation(f *casefile.Claim) Expectation {
 	}
 	asked := folded(f.Solve)
 	if f.Best != nil {
-		asked = append(asked, fold(*f.Best))
+		if !boundsOf(f.Expect.S, fold(*f.Best)) {
+			b.fault(position(*f.Expect), `write a verdict, or the set of values such as "C = 2", "C >= 1/2" or "-2 <= C <= 2"`, "%q is no verdict and no set of values of %s", clip(f.Expect.S, 60), fold(*f.Best))
+			return e
+		}
+		e.Solution = strings.TrimSpace(f.Expect.S)
+		return e
 	}
 	for _, part := range strings.Split(f.Expect.S, ",") {
 		name, value, ok := strings.Cut(part, "=")
@@ -53,9 +58,32 @@ func (b *builder) expectation(f *casefile.Claim) Expectation {
 	return e
 }
 
+// boundsOf reports whether a text says which values of a constant are good.
+func boundsOf(s, name string) bool {
+	s = spaceless(s)
+	ops := 0
+	for _, op := range []string{"<=", ">="} {
+		ops += strings.Count(s, op)
+		s = strings.ReplaceAll(s, op, "=")
+	}
+	fields := strings.Split(s, "=")
+	named := 0
+	for _, f := range fields {
+		if folded, err := formula.FoldName(f); err == nil && folded == name {
+			named++
+		} else if _, ok := new(big.Rat).SetString(f); !ok {
+			return false
+		}
+	}
+	return named == 1 && (len(fields) == 2 && fields[0] != "" || len(fields) == 3 && ops == 2)
+}
+
 // sameSolution compares solutions such as "a = 1, b = 3/2": the order, white
 // space, Greek spellings and the spelling of a rational number do not count.
 func sameSolution(a, b string) bool {
+	if strings.ContainsAny(a, "<>") || strings.ContainsAny(b, "<>") {
+		return spaceless(a) == spaceless(b)
+	}
 	x, y := parts(a), parts(b)
 	return len(x) > 0 && slices.Equal(x, y)
 }

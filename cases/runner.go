@@ -96,11 +96,6 @@ func attempt(ctx context.Context, c *Case, claim *Claim, opt identity.Options, d
 	if ctx.Err() != nil {
 		return nil
 	}
-	if claim.Best != "" { // the claim is about one value of the constant, not about all
-		return &Result{Case: c, Claim: claim, Record: &identity.Record{
-			Claim: claim.Name, Verdict: identity.Open, Reason: "the best value of a constant is not searched for in this version",
-		}}
-	}
 	record, err := decide(ctx, claim.Claim, opt)
 	switch {
 	case err == nil:

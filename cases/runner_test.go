@@ -202,8 +202,9 @@ func TestJobsDoNotMatter(t *testing.T) {
 }
 
 // A best constant is not a claim for every value of it.
-func TestBestIsOpen(t *testing.T) {
-	out := Check(t.Context(), []*Case{parsed(t, space+"[[claim]]\nname = 'b'\nstates = 'u_x u_y <= C (u_x^2 + u_y^2)'\nbest = 'C'\n")}, Options{Options: identity.DefaultOptions()})
-	assert.Equal(t, []string{"b open"}, verdicts(out))
-	assert.NotEmpty(t, out.Results[0].Record.Reason)
+func TestBestConstant(t *testing.T) {
+	out := Check(t.Context(), []*Case{parsed(t, space+"[[claim]]\nname = 'b'\nstates = 'u_x u_y <= C (u_x^2 + u_y^2)'\nbest = 'C'\nexpect = 'C >= 1/2'\n")}, Options{Options: identity.DefaultOptions()})
+	assert.Equal(t, []string{"b proved"}, verdicts(out))
+	assert.Equal(t, "C >= 1/2", out.Results[0].Record.Solution)
+	assert.True(t, out.Results[0].Met())
 }

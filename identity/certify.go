@@ -374,6 +374,11 @@ func (r *reduction) split(p algebra.Poly) (content, algebra.Poly) {
 // content of the target taken out.
 func (r *reduction) problem() (*gram.Problem, content) {
 	c, target := r.split(r.normal(r.target))
+	return r.problemFor(target), c
+}
+
+// problemFor is the problem of another target on the same set.
+func (r *reduction) problemFor(target algebra.Poly) *gram.Problem {
 	p := &gram.Problem{Target: target, Positive: r.positive}
 	if len(r.zero) > 0 {
 		p.Reduce = r.normal
@@ -389,5 +394,5 @@ func (r *reduction) problem() (*gram.Problem, content) {
 			p.Groups = append(p.Groups, groups[order])
 		}
 	}
-	return p, c
+	return p
 }

@@ -93,6 +93,7 @@ type Record struct {
 	Assumptions []string
 	Details     []string // such as the terms of a sum of squares
 
+	Ends        []End     // of the set of best values
 	Equality    *Equality // when an inequality proved by a certificate is an equation
 	Reduced     *certificate.Claim
 	Certificate *certificate.Certificate

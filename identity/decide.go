@@ -26,6 +26,8 @@ type decider struct {
 	assumed []constraint
 	wells   []algebra.Poly // at a jump: the well on each side, where it is not solved
 	picture *gram.Picture  // what the last search for a certificate saw
+	// vanishing is what has to vanish for equality in the last certificate.
+	vanishing []algebra.Poly
 	// jumpRewriter is what atJump installed.
 	jumpRewriter jet.Rewriter
 	ideal        []algebra.Poly // modulo: generators that are not solved

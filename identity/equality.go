@@ -243,7 +243,7 @@ func (d *decider) divergence(gaps []algebra.Fraction) error {
 		if err := d.ring.Err(e); err != nil {
 			return err
 		}
-		if len(d.claim.Restrict) > 0 {
+		if len(d.claim.Restrict) > 0 || d.pinned() {
 			// u_x^2 = D_z(z u_x^2) where u_xz vanishes.
 			d.open("the Euler expression is not zero, but with derivatives that are held constant that does not exclude a divergence")
 			return nil

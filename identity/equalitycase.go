@@ -90,6 +90,7 @@ func (r *reduction) equality(g *gap, p *gram.Proof) *Equality {
 		}
 		list = append(list, q)
 	}
+	r.d.vanishing = list
 	list = echelon(list)
 	eq := &Equality{Consistent: "unknown"}
 	for _, q := range list {

@@ -24,11 +24,13 @@ type gap struct {
 // inequality decides A <= B or A >= B.
 func (d *decider) inequality() error {
 	if d.claim.Divergence {
-		d.open("a null Lagrangian for an inequality is not searched for in this version")
-		return nil
+		return d.upToDivergence()
 	}
 	if len(d.claim.Solve) > 0 {
 		return &entropy.Error{At: d.claim.Statement.Left.At(), Err: errors.New("solve is for equations"), Advice: "write the constant's value, or claim an equation"}
+	}
+	if d.claim.Best != "" {
+		return d.best()
 	}
 	if len(d.wells) > 0 {
 		if ok, err := d.proveOnWells(); err != nil || ok {
@@ -87,6 +89,11 @@ func (d *decider) gap() (*gap, error) {
 	if g.value, err = d.ring.Sub(r, l); err != nil {
 		return nil, err
 	}
+	return g, d.clear(g)
+}
+
+// clear fills in the polynomial of a gap.
+func (d *decider) clear(g *gap) error {
 	g.poly = g.value.Num()
 	for _, b := range g.value.DenFactors() {
 		base := algebra.FromPoly(b.Base)
@@ -103,7 +110,7 @@ func (d *decider) gap() (*gap, error) {
 	if f, ok := g.value.Quo(algebra.FromPoly(g.poly)); ok {
 		g.factor = f
 	}
-	return g, g.poly.Err()
+	return g.poly.Err()
 }
 
 // inequalitySides evaluates both sides. Where a side is the supremum over an

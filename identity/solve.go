@@ -49,7 +49,7 @@ func (d *decider) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 	if err != nil {
 		return nil, err
 	}
-	if !ok && (len(d.ideal) > 0 || len(d.wells) > 0 || !d.independent(gaps...)) {
+	if !ok && (d.pinned() || !d.independent(gaps...)) {
 		return d.solveAtPoints(gaps, unknown)
 	}
 	if !ok {
@@ -79,6 +79,23 @@ func (d *decider) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 		}
 	}
 	return d.substitute(gaps, sub)
+}
+
+// pinned reports whether the jets and constants of the claim lie on a set on
+// which different monomials may agree: the zeros of equations, a well, an
+// assumption that is an equation, a box without width.
+func (d *decider) pinned() bool {
+	for _, c := range d.assumed {
+		if c.relation == "=" {
+			return true
+		}
+	}
+	for _, b := range d.claim.Box {
+		if b.Lo.Cmp(b.Hi) == 0 {
+			return true
+		}
+	}
+	return len(d.ideal) > 0 || len(d.wells) > 0
 }
 
 // forbidden refutes a claim whose only solution contradicts an assumption.
@@ -254,7 +271,7 @@ func (d *decider) solveNonlinear(gaps []algebra.Fraction, rows []algebra.Poly, u
 	switch {
 	case !complete:
 		return nil, fmt.Errorf("%w: %s solves an equation with roots that are not rational", jet.ErrOutside, d.claim.Solve[0])
-	case len(good) == 0 && (len(d.ideal) > 0 || len(d.wells) > 0 || !d.independent(gaps...)):
+	case len(good) == 0 && (d.pinned() || !d.independent(gaps...)):
 		return nil, fmt.Errorf("%w: no rational value solves the normal form, but kernels in it may depend on each other", jet.ErrOutside)
 	case len(good) == 0:
 		d.rec.Verdict, d.rec.Method, d.rec.Solution = Refuted, "rational roots of the coefficients, exact", "none"

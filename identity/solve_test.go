@@ -82,6 +82,24 @@ func TestSolveWithDependentKernels(t *testing.T) {
 	}
 }
 
+// On what assumptions that are equations say, different monomials may agree.
+func TestSolveUnderEquations(t *testing.T) {
+	for _, c := range []struct {
+		states, assume string
+	}{
+		{"c u_x = 1", "u_x = 1"},
+		{"c u_x = u_x + (a - 2) u_y", "a = 2"},
+		{"c^2 u_x = u_x^2", "u_x = 1"},
+	} {
+		rec, err := decided(t, state(t, plane, c.states, solving("c"), assuming(t, c.assume)))
+		require.NoError(t, err)
+		assert.NotEqual(t, identity.Refuted, rec.Verdict, "%s: %+v", c.states, rec)
+	}
+	rec, err := decided(t, state(t, plane, "u_y^2 = 0", divergence, assuming(t, "u_x = 1")))
+	require.NoError(t, err)
+	assert.NotEqual(t, identity.Refuted, rec.Verdict, "u_y^2 = D_x(x u_y^2) where u_xy vanishes")
+}
+
 func TestSolveOnARestriction(t *testing.T) {
 	rec := decide(t, state(t, layered, "R = c (1 - u_x^2 - u_y^2)", solving("c"), restricting(t, 0, jet.Index{0, 0, 1}, "1/2")))
 	assert.Equal(t, identity.Proved, rec.Verdict)

@@ -74,7 +74,7 @@ func (d *decider) span() error {
 	for k, g := range st.Generators {
 		names[k] = formula.Text(g)
 	}
-	if !ok && !d.independent(slices.Concat(all...)...) {
+	if !ok && d.pinned() || !ok && !d.independent(slices.Concat(all...)...) {
 		d.open("the linear system of the coefficients has no solution in normal form, but kernels in it may depend on each other")
 		return nil
 	}

@@ -13,6 +13,11 @@ import (
 // differ. The caller has settled that exactly.
 func (d *decider) refuted(method string, at jet.Point, left, right algebra.Fraction) {
 	d.rec.Verdict, d.rec.Method = Refuted, method
+	d.witness(at, left, right)
+}
+
+// witness writes a point into the record, with both sides there.
+func (d *decider) witness(at jet.Point, left, right algebra.Fraction) {
 	w := &Witness{Jet: map[string]string{}, Left: d.ring.Show(left, at), Right: d.ring.Show(right, at)}
 	shown := map[algebra.Var]bool{} // what the sides depend on
 	for _, v := range d.ring.Support(left, right) {

@@ -1,0 +1,388 @@
+package identity
+
+import (
+	"errors"
+	"math"
+	"math/big"
+	"slices"
+
+	"creaseproof/entropy"
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/jet"
+	"creaseproof/identity/certificate"
+	"creaseproof/identity/gram"
+	"creaseproof/identity/squares"
+)
+
+// End is one end of the set of values of a constant for which an inequality
+// holds: at Value it holds, by the certificate; beyond Value it fails, at the
+// jet Beyond, where the gap at Value is zero and falls in that direction. Where
+// that is not known exactly, the end lies between Value and Outer, at which the
+// inequality fails.
+type End struct {
+	Upper       bool
+	Value       string
+	Outer       string // empty where Value is the end
+	Beyond      *Witness
+	Reduced     *certificate.Claim
+	Certificate *certificate.Certificate
+}
+
+// best decides for which values of a constant an inequality holds. The gap
+// must be affine in it, so that the set is an interval.
+func (d *decider) best() error {
+	v := d.ring.ConstantVar(d.claim.Best)
+	st := d.claim.Statement
+	g, err := d.gap()
+	if err != nil {
+		return err
+	}
+	if err := d.removeAngle(g); err != nil {
+		return err
+	}
+	if !g.poly.Has(v) {
+		return &entropy.Error{At: st.Left.At(), Err: errors.New("the inequality does not depend on " + d.claim.Best), Advice: "take `best` away, or let the constant occur"}
+	}
+	if g.poly.Degree(v) > 1 || slices.ContainsFunc(d.ring.Kernels(algebra.FromPoly(g.poly)), func(k algebra.Var) bool { return d.dependsOn(d.ring.Symbol(k).Arg, v) }) {
+		d.open("the inequality is not affine in %s: its best values are not searched for", d.claim.Best)
+		return nil
+	}
+	if len(d.wells) > 0 || len(d.ideal) > 0 {
+		d.open("best values on a well that determines no derivative are not searched for")
+		return nil
+	}
+	b := &bestSearch{d: d, g: g, v: v, slope: g.poly.Deriv(v), rest: g.poly.Coeffs(v)[0]}
+	return b.run()
+}
+
+func (d *decider) dependsOn(f algebra.Fraction, v algebra.Var) bool {
+	return slices.Contains(d.ring.Support(f), v)
+}
+
+type bestSearch struct {
+	d           *decider
+	g           *gap
+	v           algebra.Var
+	slope, rest algebra.Poly // poly = rest + v slope
+}
+
+// at is the gap with the constant put in.
+func (b *bestSearch) at(x algebra.Rat) *gap {
+	put := map[algebra.Var]algebra.Fraction{b.v: jet.Rational(x.Big())}
+	g := *b.g
+	g.value, g.left, g.right = g.value.SubstMany(put), g.left.SubstMany(put), g.right.SubstMany(put)
+	g.poly = b.rest.Add(b.slope.Scale(x))
+	return &g
+}
+
+// proves looks for a certificate at a value; the record then holds it.
+func (b *bestSearch) proves(g *gap) (bool, error) {
+	if g.poly.IsZero() {
+		b.d.proved("exact normal form")
+		return true, nil
+	}
+	res := squares.Complete(b.d.ctx, b.d.ring, g.poly, b.d.squareVars(g.poly))
+	return b.d.prove(g, res.Terms)
+}
+
+func (b *bestSearch) run() error {
+	d := b.d
+	var ends []End
+	for _, upper := range []bool{false, true} {
+		unbounded, err := b.proves(b.recession(upper))
+		if err != nil {
+			return err
+		}
+		if unbounded {
+			continue
+		}
+		e, ok, err := b.end(upper)
+		if err != nil {
+			return err
+		}
+		if !ok {
+			d.clearProof()
+			d.rec.Method = ""
+			d.open("no end of the set of %s was found on the %s side", d.claim.Best, map[bool]string{false: "lower", true: "upper"}[upper])
+			return nil
+		}
+		ends = append(ends, *e)
+	}
+	d.clearProof()
+	d.rec.Ends = ends
+	d.rec.Method = "certificates at the ends, jets beyond them"
+	d.rec.Verdict = Proved
+	for _, e := range ends {
+		if e.Outer != "" {
+			d.rec.Verdict = Open
+			d.rec.Reason = "an end is bracketed, not exact"
+		}
+	}
+	d.rec.Solution = solutionText(d.claim.Best, ends)
+	return nil
+}
+
+// clearProof forgets what proofs along the way have left in the record.
+func (d *decider) clearProof() {
+	d.rec.Certificate, d.rec.Reduced, d.rec.Equality, d.rec.Details, d.rec.Reason = nil, nil, nil, nil, ""
+}
+
+func solutionText(name string, ends []End) string {
+	text := func(e End) string {
+		if e.Outer == "" {
+			return e.Value
+		}
+		return "(between " + e.Value + " and " + e.Outer + ")"
+	}
+	switch {
+	case len(ends) == 0:
+		return name + " arbitrary"
+	case len(ends) == 2 && ends[0].Value == ends[1].Value && ends[0].Outer == "" && ends[1].Outer == "":
+		return name + " = " + ends[0].Value
+	case len(ends) == 2:
+		return text(ends[0]) + " <= " + name + " <= " + text(ends[1])
+	case ends[0].Upper:
+		return name + " <= " + text(ends[0])
+	}
+	return name + " >= " + text(ends[0])
+}
+
+// recession is the inequality that says that there is no end on a side: the
+// slope, or its negative, is non-negative.
+func (b *bestSearch) recession(upper bool) *gap {
+	g := *b.g
+	g.poly = b.slope
+	if !upper {
+		g.poly = g.poly.Neg()
+	}
+	g.value = algebra.FromPoly(g.poly)
+	return &g
+}
+
+// end finds the end on one side.
+func (b *bestSearch) end(upper bool) (*End, bool, error) {
+	d := b.d
+	guesses := b.guesses(upper)
+	for _, x := range guesses {
+		e, ok, err := b.exactEnd(x, upper)
+		if err != nil || ok {
+			return e, ok, err
+		}
+	}
+	return b.bracket(guesses, upper, d)
+}
+
+// exactEnd proves the inequality at x and looks for an equality jet at which
+// the gap falls beyond x.
+func (b *bestSearch) exactEnd(x algebra.Rat, upper bool) (*End, bool, error) {
+	d := b.d
+	g := b.at(x)
+	ok, err := b.proves(g)
+	if err != nil || !ok {
+		return nil, false, err
+	}
+	e := &End{Upper: upper, Value: x.String(), Reduced: d.rec.Reduced, Certificate: d.rec.Certificate}
+	at, ok := b.beyond(g, upper)
+	if !ok {
+		return nil, false, nil
+	}
+	d.witness(at, g.left, g.right)
+	e.Beyond = d.rec.Witness
+	d.rec.Witness = nil
+	return e, true, nil
+}
+
+// beyond looks for an admissible point where the gap at the end is zero and
+// the slope has the sign that makes it negative beyond.
+func (b *bestSearch) beyond(g *gap, upper bool) (jet.Point, bool) {
+	d := b.d
+	slope := algebra.FromPoly(b.slope)
+	good := func(at jet.Point) bool {
+		s, ok := d.ring.Sign(slope, at)
+		return ok && (upper && s < 0 || !upper && s > 0)
+	}
+	list := echelon(d.vanishing)
+	pts := d.gapPoints(g)
+	for range 600 { // small rational points first
+		at, ok := pts.next()
+		if !ok {
+			break
+		}
+		if x, ok := d.ring.Exact(g.value, at); ok && x.IsZero() && good(at) {
+			return at, true
+		}
+	}
+	for range 200 {
+		at := pts.draw()
+		if at == nil || !pts.onVariety(at, list) {
+			continue
+		}
+		if !d.consistent(pts, at) || !pts.admissible(at) {
+			continue
+		}
+		if x, ok := d.ring.Exact(g.value, at); ok && x.IsZero() && good(at) {
+			return at, true
+		}
+	}
+	return nil, false
+}
+
+// guesses are candidates for the end: recognised from the semidefinite program
+// that moves the constant as far as it goes, then from bisection.
+func (b *bestSearch) guesses(upper bool) []algebra.Rat {
+	d := b.d
+	r := d.reduce(b.at(algebra.Rat{}))
+	effort, _ := gram.Efforts(d.opt.Effort)
+	cost := 1.0
+	if upper {
+		cost = -1
+	}
+	x, ok := gram.Fit(d.ctx, r.problemFor(r.normal(b.rest)), []algebra.Poly{b.slope}, []float64{cost}, effort)
+	if !ok || math.IsNaN(x[0]) || math.Abs(x[0]) > 1e9 {
+		return nil
+	}
+	return gram.Recognise(x[0])
+}
+
+// bisections bounds the values tried by bracket.
+const bisections = 40
+
+// bracket finds a value at which the inequality is proved and one beyond at
+// which it is refuted, as near to each other as the budget allows; the
+// simplest rationals between are tried as exact ends.
+func (b *bestSearch) bracket(guesses []algebra.Rat, upper bool, d *decider) (*End, bool, error) {
+	inner, ok, err := b.provedValue(guesses)
+	if err != nil || !ok {
+		return nil, false, err
+	}
+	dir := algebra.Int(1)
+	if !upper {
+		dir = dir.Neg()
+	}
+	// Go outwards until it fails.
+	step := algebra.Int(1)
+	var outer algebra.Rat
+	found := false
+	for range 40 {
+		x := inner.Add(dir.Mul(step))
+		ok, err := b.proves(b.at(x))
+		if err != nil {
+			return nil, false, err
+		}
+		if ok {
+			inner = x
+		} else if b.fails(x) {
+			outer, found = x, true
+			break
+		}
+		step = step.Add(step)
+	}
+	if !found {
+		return nil, false, nil
+	}
+	if e, ok, err := b.exactEnd(inner, upper); err != nil || ok {
+		return e, ok, err
+	}
+	for range bisections {
+		mid := simplestBetween(inner, outer)
+		ok, err := b.proves(b.at(mid))
+		switch {
+		case err != nil:
+			return nil, false, err
+		case ok:
+			if e, ok, err := b.exactEnd(mid, upper); err != nil || ok {
+				return e, ok, err
+			}
+			inner = mid
+		case b.fails(mid):
+			outer = mid
+		default:
+			// Undecided: halve towards the proved side.
+			mid = inner.Add(mid).Mul(algebra.Frac64(1, 2))
+			if ok, err := b.proves(b.at(mid)); err != nil {
+				return nil, false, err
+			} else if ok {
+				inner = mid
+				continue
+			}
+			return b.bracketed(inner, outer, upper)
+		}
+	}
+	return b.bracketed(inner, outer, upper)
+}
+
+func (b *bestSearch) bracketed(inner, outer algebra.Rat, upper bool) (*End, bool, error) {
+	ok, err := b.proves(b.at(inner))
+	if err != nil || !ok {
+		return nil, false, err
+	}
+	e := &End{Upper: upper, Value: inner.String(), Outer: outer.String(), Reduced: b.d.rec.Reduced, Certificate: b.d.rec.Certificate}
+	g := b.at(outer)
+	if at, ok := b.d.cheapCounterexample(g, b.d.gapPoints(g)); ok {
+		b.d.witness(at, g.left, g.right)
+		e.Beyond, b.d.rec.Witness = b.d.rec.Witness, nil
+	}
+	return e, true, nil
+}
+
+// fails reports whether the inequality is refuted at a value.
+func (b *bestSearch) fails(x algebra.Rat) bool {
+	g := b.at(x)
+	pts := b.d.gapPoints(g)
+	if _, ok := b.d.cheapCounterexample(g, pts); ok {
+		return true
+	}
+	if len(pts.signs) > 0 {
+		return false
+	}
+	t := &task{d: b.d, g: g, pts: pts}
+	if t.compile() != nil {
+		return false
+	}
+	found, err := t.attack(nil)
+	return err == nil && found.Witness != nil
+}
+
+// provedValue is some value at which the inequality is proved.
+func (b *bestSearch) provedValue(guesses []algebra.Rat) (algebra.Rat, bool, error) {
+	try := slices.Clone(guesses)
+	for _, n := range []int64{0, 1, -1, 2, -2, 3, -3, 4, -4, 6, -6, 10, -10, 100, -100} {
+		try = append(try, algebra.Int(n))
+	}
+	for _, x := range try {
+		ok, err := b.proves(b.at(x))
+		if err != nil || ok {
+			return x, ok, err
+		}
+	}
+	return algebra.Rat{}, false, nil
+}
+
+// simplestBetween is a rational well between two others, with a denominator as
+// small as that allows.
+func simplestBetween(a, b algebra.Rat) algebra.Rat {
+	third := b.Sub(a).Mul(algebra.Frac64(1, 3))
+	lo, hi := a.Add(third), b.Sub(third)
+	if lo.Cmp(hi) > 0 {
+		lo, hi = hi, lo
+	}
+	for den := int64(1); den < 1<<40; den *= 2 {
+		for _, k := range []int64{den, den * 3, den * 5} {
+			x := lo.Mul(algebra.Int(k)).Big()
+			n := algebra.FromBig(ceil(x))
+			if y, ok := n.Quo(algebra.Int(k)); ok && y.Cmp(hi) <= 0 {
+				return y
+			}
+		}
+	}
+	return a.Add(b).Mul(algebra.Frac64(1, 2))
+}
+
+// ceil is the least whole number not below x.
+func ceil(x *big.Rat) *big.Rat {
+	q, m := new(big.Int).DivMod(x.Num(), x.Denom(), new(big.Int))
+	if m.Sign() != 0 {
+		q.Add(q, big.NewInt(1))
+	}
+	return new(big.Rat).SetInt(q)
+}
