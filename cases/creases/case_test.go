@@ -96,6 +96,10 @@ minus = "-k + z/100000"
 values = { k = "3/2" }
 patch = { map = ["sqrt(2 k t) cos(a)", "sqrt(2 k t) sin(a)", "t"], over = { t = ["1/2", "3"], a = ["0", "2 pi"] } }
 `, []string{"minus trace is off the well", "(t, a) = (", "k = 3/2", "residual is 1e-05"}},
+		{"the kink of a trace on the surface", eikonalHead, `plus = "abs(x)"
+minus = "abs(x)"
+polygon = [["0", "-1"], ["0", "1"]]
+`, []string{"trace is off the well", "residual is 0.5"}},
 		{"gradient off the well", eikonalHead, `plus_gradient = ["t/2", "-1"]
 minus_gradient = ["0", "1"]
 patch = { map = ["t", "0"], over = { t = ["0", "1"] } }

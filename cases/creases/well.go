@@ -52,7 +52,7 @@ func (w *well) compile(c *combination, plus, minus *side) error {
 }
 
 // residual is the residual at a gradient and the size of its terms, enlarged
-// by what the rounding of a gradient given by formulas does to it.
+// by what the rounding of the gradient does to it.
 func (w *well) residual(grad []float64) (value, size float64) {
 	copy(w.in, w.here[:w.known])
 	copy(w.in[w.known:], grad)
@@ -60,10 +60,12 @@ func (w *well) residual(grad []float64) (value, size float64) {
 	value, size = w.out[0], w.out[1]
 	s := w.sides[w.next]
 	w.next = 1 - w.next
-	if !s.value {
-		for i, d := range w.out[2:] {
-			size += noise * math.Abs(d) * s.out[len(grad)+i]
+	for i, d := range w.out[2:] {
+		terms := math.Abs(grad[i])
+		if !s.value {
+			terms = s.out[len(grad)+i]
 		}
+		size += noise * math.Abs(d) * terms
 	}
 	return value, size
 }
