@@ -51,9 +51,7 @@ func (d *decider) removeAngle(g *gap) error {
 			return nil
 		}
 	}
-	for _, w := range d.wells {
-		invariant = append(invariant, w)
-	}
+	invariant = append(invariant, d.wells...)
 	if g.poly.Has(theta) || d.holdsPlane(g.poly, f.Plane) || !d.assumptionsTurn(f.Plane) {
 		return nil
 	}

@@ -202,7 +202,7 @@ func (b *bestSearch) beyond(g *gap, upper bool) (jet.Point, bool) {
 		return ok && (upper && s < 0 || !upper && s > 0)
 	}
 	list := echelon(d.vanishing)
-	pts := d.gapPoints(g)
+	pts := d.gapPoints(b.g) // with what only the slope depends on
 	for range 600 { // small rational points first
 		at, ok := pts.next()
 		if !ok {

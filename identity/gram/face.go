@@ -86,7 +86,6 @@ func rationalSpan(vectors [][]float64, rankTol, entryTol float64) ([][]algebra.R
 		m[i] = slices.Clone(v)
 	}
 	used := make([]bool, n)
-	var pivots []int
 	rank := 0
 	for rank < len(m) {
 		// Full pivoting, with a preference for the first columns of a tie.
@@ -103,7 +102,6 @@ func rationalSpan(vectors [][]float64, rankTol, entryTol float64) ([][]algebra.R
 		}
 		m[rank], m[bi] = m[bi], m[rank]
 		used[bk] = true
-		pivots = append(pivots, bk)
 		p := m[rank][bk]
 		for k := range n {
 			m[rank][k] /= p
