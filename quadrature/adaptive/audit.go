@@ -115,6 +115,9 @@ func (t *Task) probeEnd(p *panel, side int, end float64) (miss [Width]float64, e
 	if side == 1 {
 		d = -d
 	}
+	if math.Abs(d) <= 16*epsilon*math.Max(math.Abs(t.Lo), math.Abs(t.Hi)) {
+		return miss, nil // it cannot be told from the end
+	}
 	var q Sample
 	if err := t.F(end+d, &q); err != nil {
 		return miss, err

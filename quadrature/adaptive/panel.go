@@ -87,7 +87,7 @@ func (t *Task) apply(p *panel) error {
 	for _, i := range k.Order {
 		s, ds := p.at(mid + half*k.X[i])
 		q := &g[i]
-		if err := t.F(s, q); err != nil {
+		if err := t.value(s, q); err != nil {
 			return err
 		}
 		for c := range q.Value {
@@ -127,6 +127,31 @@ func (t *Task) apply(p *panel) error {
 		p.est[c], p.decay[c] = judge(k, math.Abs(d.Value())*half, pair, peak, half)
 	}
 	return nil
+}
+
+// value is the integrand at s. Where it has none because s has been rounded to
+// an end of the interval, or almost, it is the one next to it.
+func (t *Task) value(s float64, out *Sample) error {
+	err := t.F(s, out)
+	if err == nil {
+		return nil
+	}
+	ulp := epsilon * math.Max(math.Abs(t.Lo), math.Abs(t.Hi))
+	inwards := 1.0
+	switch {
+	case s-t.Lo <= 2*ulp:
+	case t.Hi-s <= 2*ulp:
+		inwards = -1
+	default:
+		return err
+	}
+	for k := 1.0; k <= 16; k *= 2 {
+		*out = Sample{}
+		if t.F(s+inwards*k*ulp, out) == nil {
+			return nil
+		}
+	}
+	return err
 }
 
 // extrapolate fills the extrapolations of component c.

@@ -21,8 +21,9 @@ type Sample struct {
 }
 
 // A Func evaluates an integrand at s into out, which is zero on entry. An
-// error ends the integration, except very close to an end of the interval,
-// where it only cuts off the tail of a double exponential rule.
+// error ends the integration, except very close to an end of the interval:
+// there it only cuts off the tail of a double exponential rule, and of a node
+// that has been rounded to the end it makes one a few units further in.
 type Func func(s float64, out *Sample) error
 
 // Work is a budget of evaluations, shared by nested integrals. The leaves
