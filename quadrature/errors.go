@@ -17,6 +17,9 @@ var ErrBudget = errors.New("evaluation budget used up before the tolerance was m
 // estimate.
 var ErrAccuracy = errors.New("tolerance not met, and further subdivision does not help")
 
+// ErrRange says that an integral is beyond the largest floating-point number.
+var ErrRange = errors.New("the integral is beyond the range of floating-point numbers")
+
 // ErrNoSlicing says that the horizontal slices of a surface are not known in
 // closed form.
 var ErrNoSlicing = errors.New("the horizontal slices of this surface are not known: its height must depend on one parameter only")

@@ -119,3 +119,21 @@ func flat(_, g []float64) float64 {
 	clear(g)
 	return 0
 }
+
+func TestOverflow(t *testing.T) {
+	one := func(_, _, _, _ []float64) float64 { return 1 }
+	for _, s := range []Surface{
+		Graph{Over: Rectangle{Range{0, 1e200}, Range{0, 1e200}}, F: flat},
+		Graph{Over: Disc{Radius: 1e200}, F: flat},
+		Polygon{[][]float64{{0, 0, 0}, {1e160, 0, 0}, {0, 1e160, 0}}},
+	} {
+		r, err := Integrate(context.Background(), s, Traces{}, one, Options{})
+		if err == nil || r.Energy != 0 || errors.Is(err, ErrAccuracy) {
+			t.Errorf("%T: %v, %v", s, r.Energy, err)
+		}
+	}
+	r, err := Integrate(context.Background(), Graph{Over: Rectangle{Range{0, 1e150}, Range{0, 1e150}}, F: flat}, Traces{}, one, Options{})
+	if err != nil || math.Abs(r.Energy-1e300) > 1e286 {
+		t.Errorf("1e300: %v, %v", r.Energy, err)
+	}
+}

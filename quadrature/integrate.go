@@ -91,7 +91,7 @@ type Result struct {
 // nil.
 //
 // If the tolerance is not met the result is returned together with ErrBudget
-// or ErrAccuracy. A cancelled context ends the work at once with its cause.
+// or ErrAccuracy. An integral that overflows has the error ErrRange. A cancelled context ends the work at once with its cause.
 func Integrate(ctx context.Context, s Surface, tr Traces, d Density, o Options) (Result, error) {
 	if s == nil || d == nil {
 		return Result{}, fmt.Errorf("quadrature: a surface and a density are needed")
@@ -185,6 +185,9 @@ func (s *sums) finish(o Options, work *adaptive.Work) (Result, error) {
 	}
 	for c, e := range []float64{r.Error, r.AreaError} {
 		v := math.Abs(s.value[c].Value())
+		if !finite(v) || !finite(e) {
+			return Result{Evaluations: work.Used}, fmt.Errorf("quadrature: %w", ErrRange)
+		}
 		if e <= math.Max(o.Rel*v, 256*epsilon*s.size[c].Value()) || c == 0 && e <= o.Abs {
 			continue
 		}
