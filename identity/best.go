@@ -9,79 +9,65 @@ import (
 	"creaseproof/entropy"
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
-	"creaseproof/identity/certificate"
+	"creaseproof/identity/exact"
 	"creaseproof/identity/gram"
 	"creaseproof/identity/squares"
 )
 
-// End is one end of the set of values of a constant for which an inequality
-// holds: at Value it holds, by the certificate; beyond Value it fails, at the
-// jet Beyond, where the gap at Value is zero and falls in that direction. Where
-// that is not known exactly, the end lies between Value and Outer, at which the
-// inequality fails.
-type End struct {
-	Upper       bool
-	Value       string
-	Outer       string // empty where Value is the end
-	Beyond      *Witness
-	Reduced     *certificate.Claim
-	Certificate *certificate.Certificate
-}
-
 // best decides for which values of a constant an inequality holds. The gap
 // must be affine in it, so that the set is an interval.
 func (d *decider) best() error {
-	v := d.ring.ConstantVar(d.claim.Best)
-	st := d.claim.Statement
-	g, err := d.gap()
+	v := d.Ring.ConstantVar(d.Claim.Best)
+	st := d.Claim.Statement
+	g, err := d.Gap()
 	if err != nil {
 		return err
 	}
-	if err := d.removeAngle(g); err != nil {
+	if err := d.RemoveAngle(g); err != nil {
 		return err
 	}
-	if !g.poly.Has(v) {
-		return &entropy.Error{At: st.Left.At(), Err: errors.New("the inequality does not depend on " + d.claim.Best), Advice: "take `best` away, or let the constant occur"}
+	if !g.Poly.Has(v) {
+		return &entropy.Error{At: st.Left.At(), Err: errors.New("the inequality does not depend on " + d.Claim.Best), Advice: "take `best` away, or let the constant occur"}
 	}
-	if g.poly.Degree(v) > 1 || slices.ContainsFunc(d.ring.Kernels(algebra.FromPoly(g.poly)), func(k algebra.Var) bool { return d.dependsOn(d.ring.Symbol(k).Arg, v) }) {
-		d.open("the inequality is not affine in %s: its best values are not searched for", d.claim.Best)
+	if g.Poly.Degree(v) > 1 || slices.ContainsFunc(d.Ring.Kernels(algebra.FromPoly(g.Poly)), func(k algebra.Var) bool { return d.DependsOn(d.Ring.Symbol(k).Arg, v) }) {
+		d.Open("the inequality is not affine in %s: its best values are not searched for", d.Claim.Best)
 		return nil
 	}
-	if len(d.wells) > 0 || len(d.ideal) > 0 {
-		d.open("best values on a well that determines no derivative are not searched for")
+	if len(d.Wells) > 0 || len(d.Ideal) > 0 {
+		d.Open("best values on a well that determines no derivative are not searched for")
 		return nil
 	}
-	b := &bestSearch{d: d, g: g, v: v, slope: g.poly.Deriv(v), rest: g.poly.Coeffs(v)[0]}
+	b := &bestSearch{d: d, g: g, v: v, slope: g.Poly.Deriv(v), rest: g.Poly.Coeffs(v)[0]}
 	return b.run()
 }
 
-func (d *decider) dependsOn(f algebra.Fraction, v algebra.Var) bool {
-	return slices.Contains(d.ring.Support(f), v)
+func (d *decider) DependsOn(f algebra.Fraction, v algebra.Var) bool {
+	return slices.Contains(d.Ring.Support(f), v)
 }
 
 type bestSearch struct {
 	d           *decider
-	g           *gap
+	g           *exact.Gap
 	v           algebra.Var
 	slope, rest algebra.Poly // poly = rest + v slope
 }
 
 // at is the gap with the constant put in.
-func (b *bestSearch) at(x algebra.Rat) *gap {
+func (b *bestSearch) at(x algebra.Rat) *exact.Gap {
 	put := map[algebra.Var]algebra.Fraction{b.v: jet.Rational(x.Big())}
 	g := *b.g
-	g.value, g.left, g.right = g.value.SubstMany(put), g.left.SubstMany(put), g.right.SubstMany(put)
-	g.poly = b.rest.Add(b.slope.Scale(x))
+	g.Value, g.Left, g.Right = g.Value.SubstMany(put), g.Left.SubstMany(put), g.Right.SubstMany(put)
+	g.Poly = b.rest.Add(b.slope.Scale(x))
 	return &g
 }
 
 // proves looks for a certificate at a value; the record then holds it.
-func (b *bestSearch) proves(g *gap) (bool, error) {
-	if g.poly.IsZero() {
-		b.d.proved("exact normal form")
+func (b *bestSearch) proves(g *exact.Gap) (bool, error) {
+	if g.Poly.IsZero() {
+		b.d.Proved("exact normal form")
 		return true, nil
 	}
-	res := squares.Complete(b.d.ctx, b.d.ring, g.poly, b.d.squareVars(g.poly))
+	res := squares.Complete(b.d.Ctx, b.d.Ring, g.Poly, b.d.squareVars(g.Poly))
 	return b.d.prove(g, res.Terms)
 }
 
@@ -102,29 +88,29 @@ func (b *bestSearch) run() error {
 		}
 		if !ok {
 			d.clearProof()
-			d.rec.Method = ""
-			d.open("no end of the set of %s was found on the %s side", d.claim.Best, map[bool]string{false: "lower", true: "upper"}[upper])
+			d.Rec.Method = ""
+			d.Open("no end of the set of %s was found on the %s side", d.Claim.Best, map[bool]string{false: "lower", true: "upper"}[upper])
 			return nil
 		}
 		ends = append(ends, *e)
 	}
 	d.clearProof()
-	d.rec.Ends = ends
-	d.rec.Method = "certificates at the ends, jets beyond them"
-	d.rec.Verdict = Proved
+	d.Rec.Ends = ends
+	d.Rec.Method = "certificates at the ends, jets beyond them"
+	d.Rec.Verdict = Proved
 	for _, e := range ends {
 		if e.Outer != "" {
-			d.rec.Verdict = Open
-			d.rec.Reason = "an end is bracketed, not exact"
+			d.Rec.Verdict = Open
+			d.Rec.Reason = "an end is bracketed, not exact"
 		}
 	}
-	d.rec.Solution = solutionText(d.claim.Best, ends)
+	d.Rec.Solution = solutionText(d.Claim.Best, ends)
 	return nil
 }
 
 // clearProof forgets what proofs along the way have left in the record.
 func (d *decider) clearProof() {
-	d.rec.Certificate, d.rec.Reduced, d.rec.Equality, d.rec.Details, d.rec.Reason = nil, nil, nil, nil, ""
+	d.Rec.Certificate, d.Rec.Reduced, d.Rec.Equality, d.Rec.Details, d.Rec.Reason = nil, nil, nil, nil, ""
 }
 
 func solutionText(name string, ends []End) string {
@@ -149,13 +135,13 @@ func solutionText(name string, ends []End) string {
 
 // recession is the inequality that says that there is no end on a side: the
 // slope, or its negative, is non-negative.
-func (b *bestSearch) recession(upper bool) *gap {
+func (b *bestSearch) recession(upper bool) *exact.Gap {
 	g := *b.g
-	g.poly = b.slope
+	g.Poly = b.slope
 	if !upper {
-		g.poly = g.poly.Neg()
+		g.Poly = g.Poly.Neg()
 	}
-	g.value = algebra.FromPoly(g.poly)
+	g.Value = algebra.FromPoly(g.Poly)
 	return &g
 }
 
@@ -181,46 +167,46 @@ func (b *bestSearch) exactEnd(x algebra.Rat, upper bool) (*End, bool, error) {
 	if err != nil || !ok {
 		return nil, false, err
 	}
-	e := &End{Upper: upper, Value: x.String(), Reduced: d.rec.Reduced, Certificate: d.rec.Certificate}
+	e := &End{Upper: upper, Value: x.String(), Reduced: d.Rec.Reduced, Certificate: d.Rec.Certificate}
 	at, ok := b.beyond(g, upper)
 	if !ok {
 		return nil, false, nil
 	}
-	d.witness(at, g.left, g.right)
-	e.Beyond = d.rec.Witness
-	d.rec.Witness = nil
+	d.ShowWitness(at, g.Left, g.Right)
+	e.Beyond = d.Rec.Witness
+	d.Rec.Witness = nil
 	return e, true, nil
 }
 
 // beyond looks for an admissible point where the gap at the end is zero and
 // the slope has the sign that makes it negative beyond.
-func (b *bestSearch) beyond(g *gap, upper bool) (jet.Point, bool) {
+func (b *bestSearch) beyond(g *exact.Gap, upper bool) (jet.Point, bool) {
 	d := b.d
 	slope := algebra.FromPoly(b.slope)
 	good := func(at jet.Point) bool {
-		s, ok := d.ring.Sign(slope, at)
+		s, ok := d.Ring.Sign(slope, at)
 		return ok && (upper && s < 0 || !upper && s > 0)
 	}
 	list := echelon(d.vanishing)
-	pts := d.gapPoints(b.g) // with what only the slope depends on
-	for range 600 { // small rational points first
-		at, ok := pts.next()
+	pts := d.GapPoints(b.g) // with what only the slope depends on
+	for range 600 {         // small rational points first
+		at, ok := pts.Next()
 		if !ok {
 			break
 		}
-		if x, ok := d.ring.Exact(g.value, at); ok && x.IsZero() && good(at) {
+		if x, ok := d.Ring.Exact(g.Value, at); ok && x.IsZero() && good(at) {
 			return at, true
 		}
 	}
 	for range 200 {
-		at := pts.draw()
-		if at == nil || !pts.onVariety(at, list) {
+		at := pts.Draw()
+		if at == nil || !pts.OnVariety(at, list) {
 			continue
 		}
-		if !d.consistent(pts, at) || !pts.admissible(at) {
+		if !d.Consistent(pts, at) || !pts.Admissible(at) {
 			continue
 		}
-		if x, ok := d.ring.Exact(g.value, at); ok && x.IsZero() && good(at) {
+		if x, ok := d.Ring.Exact(g.Value, at); ok && x.IsZero() && good(at) {
 			return at, true
 		}
 	}
@@ -231,13 +217,13 @@ func (b *bestSearch) beyond(g *gap, upper bool) (jet.Point, bool) {
 // that moves the constant as far as it goes, then from bisection.
 func (b *bestSearch) guesses(upper bool) []algebra.Rat {
 	d := b.d
-	r := d.reduce(b.at(algebra.Rat{}))
+	r := d.reduction(b.at(algebra.Rat{}))
 	effort, _ := gram.Efforts(d.opt.Effort)
 	cost := 1.0
 	if upper {
 		cost = -1
 	}
-	x, ok := gram.Fit(d.ctx, r.problemFor(r.normal(b.rest)), []algebra.Poly{b.slope}, []float64{cost}, effort)
+	x, ok := gram.Fit(d.Ctx, r.problemFor(r.Normal(b.rest)), []algebra.Poly{b.slope}, []float64{cost}, effort)
 	if !ok || math.IsNaN(x[0]) || math.Abs(x[0]) > 1e9 {
 		return nil
 	}
@@ -316,11 +302,11 @@ func (b *bestSearch) bracketed(inner, outer algebra.Rat, upper bool) (*End, bool
 	if err != nil || !ok {
 		return nil, false, err
 	}
-	e := &End{Upper: upper, Value: inner.String(), Outer: outer.String(), Reduced: b.d.rec.Reduced, Certificate: b.d.rec.Certificate}
+	e := &End{Upper: upper, Value: inner.String(), Outer: outer.String(), Reduced: b.d.Rec.Reduced, Certificate: b.d.Rec.Certificate}
 	g := b.at(outer)
-	if at, ok := b.d.cheapCounterexample(g, b.d.gapPoints(g)); ok {
-		b.d.witness(at, g.left, g.right)
-		e.Beyond, b.d.rec.Witness = b.d.rec.Witness, nil
+	if at, ok := b.d.cheapCounterexample(g, b.d.GapPoints(g)); ok {
+		b.d.ShowWitness(at, g.Left, g.Right)
+		e.Beyond, b.d.Rec.Witness = b.d.Rec.Witness, nil
 	}
 	return e, true, nil
 }
@@ -328,11 +314,11 @@ func (b *bestSearch) bracketed(inner, outer algebra.Rat, upper bool) (*End, bool
 // fails reports whether the inequality is refuted at a value.
 func (b *bestSearch) fails(x algebra.Rat) bool {
 	g := b.at(x)
-	pts := b.d.gapPoints(g)
+	pts := b.d.GapPoints(g)
 	if _, ok := b.d.cheapCounterexample(g, pts); ok {
 		return true
 	}
-	if len(pts.signs) > 0 {
+	if len(pts.Signs) > 0 {
 		return false
 	}
 	t := &task{d: b.d, g: g, pts: pts}

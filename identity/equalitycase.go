@@ -8,57 +8,58 @@ import (
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
 	"creaseproof/identity/certificate"
+	"creaseproof/identity/exact"
 	"creaseproof/identity/gram"
 )
 
 // certified records a claim proved by a certificate that the checker accepted.
-func (d *decider) certified(method string, g *gap, r *reduction, p *gram.Proof, cert *certificate.Certificate) {
-	d.proved(method + ", certificate checked")
-	d.rec.Reduced, d.rec.Certificate = r.claim, cert
-	if certificate.UsesContinuity(r.claim, cert) {
-		d.rec.Reason = "the certificate has a multiplier that may vanish; there the claim holds by continuity"
+func (d *decider) certified(method string, g *exact.Gap, r *reduction, p *gram.Proof, cert *certificate.Certificate) {
+	d.Proved(method + ", certificate checked")
+	d.Rec.Reduced, d.Rec.Certificate = r.Claim, cert
+	if certificate.UsesContinuity(r.Claim, cert) {
+		d.Rec.Reason = "the certificate has a multiplier that may vanish; there the claim holds by continuity"
 	}
 	for _, s := range p.Squares {
-		d.rec.Details = append(d.rec.Details, short(r.term(s)))
+		d.Rec.Details = append(d.Rec.Details, exact.Short(r.term(s)))
 	}
 	if len(p.Multiplier) > 0 {
 		var m []string
 		for _, s := range p.Multiplier {
 			m = append(m, r.term(s))
 		}
-		d.rec.Details = append(d.rec.Details, short("after multiplying the gap by "+d.inverse(g)+strings.Join(m, " + ")))
+		d.Rec.Details = append(d.Rec.Details, exact.Short("after multiplying the gap by "+d.inverse(g)+strings.Join(m, " + ")))
 	} else if f := d.inverse(g); f != "" {
-		d.rec.Details = append(d.rec.Details, short("after multiplying the gap by "+strings.TrimSuffix(f, " times ")))
+		d.Rec.Details = append(d.Rec.Details, exact.Short("after multiplying the gap by "+strings.TrimSuffix(f, " times ")))
 	}
-	d.rec.Equality = r.equality(g, p)
+	d.Rec.Equality = r.equality(g, p)
 }
 
 // inverse is the factor that cleared denominators, for the record.
-func (d *decider) inverse(g *gap) string {
-	if c, ok := g.factor.IsConst(); ok && c.IsOne() {
+func (d *decider) inverse(g *exact.Gap) string {
+	if c, ok := g.Factor.IsConst(); ok && c.IsOne() {
 		return ""
 	}
-	inv, ok := g.factor.Inv()
+	inv, ok := g.Factor.Inv()
 	if !ok {
 		return ""
 	}
-	return d.ring.Format(inv) + " times "
+	return d.Ring.Format(inv) + " times "
 }
 
 // term prints weight · factors · base².
 func (r *reduction) term(s gram.Square) string {
 	w := algebra.Const(s.Weight)
 	for _, f := range s.Factors {
-		w = w.Mul(r.positive[f].Poly)
+		w = w.Mul(r.Positive[f].Poly)
 	}
-	text := r.format(w)
+	text := r.Format(w)
 	if w.Len() > 1 {
 		text = "(" + text + ")"
 	}
 	if c, ok := s.Base.IsConst(); ok && c.IsOne() {
 		return text
 	}
-	base := r.format(s.Base)
+	base := r.Format(s.Base)
 	if s.Base.Len() > 1 || strings.ContainsAny(base, " ") {
 		base = "(" + base + ")"
 	}
@@ -73,19 +74,19 @@ func (r *reduction) term(s gram.Square) string {
 }
 
 // format prints a polynomial in the names of the reduction.
-func (r *reduction) format(p algebra.Poly) string {
-	return r.d.ring.FormatPolyNamed(p, func(v algebra.Var) string { return r.names[v] })
+func (r *reduction) Format(p algebra.Poly) string {
+	return r.d.Ring.FormatPolyNamed(p, func(v algebra.Var) string { return r.Names[v] })
 }
 
 // equality is the system of squares that must vanish, in reduced echelon form
 // over its monomials, and an exact jet at which it does.
-func (r *reduction) equality(g *gap, p *gram.Proof) *Equality {
+func (r *reduction) equality(g *exact.Gap, p *gram.Proof) *Equality {
 	var list []algebra.Poly
 	for _, s := range p.Squares {
 		q := s.Base
 		for _, f := range s.Factors {
-			if !r.positive[f].Strict {
-				q = q.Mul(r.positive[f].Poly)
+			if !r.Positive[f].Strict {
+				q = q.Mul(r.Positive[f].Poly)
 			}
 		}
 		list = append(list, q)
@@ -101,9 +102,9 @@ func (r *reduction) equality(g *gap, p *gram.Proof) *Equality {
 	}
 	if at, ok := r.equalityPoint(g, list); ok {
 		eq.Consistent, eq.Jet = "yes", map[string]string{}
-		for _, v := range r.vars {
+		for _, v := range r.Vars {
 			if x, ok := at[v]; ok {
-				eq.Jet[r.names[v]] = x.String()
+				eq.Jet[r.Names[v]] = x.String()
 			}
 		}
 	}
@@ -148,13 +149,13 @@ func without(p, q algebra.Poly) algebra.Poly {
 // condition prints q = 0, as R = … where the residual stands in it with a
 // constant factor.
 func (r *reduction) condition(q algebra.Poly) string {
-	res := r.d.claim.Setting.Model.Residual
-	if res == nil || r.d.claim.Jump {
-		return r.format(q) + " = 0"
+	res := r.d.Claim.Setting.Model.Residual
+	if res == nil || r.d.Claim.Jump {
+		return r.Format(q) + " = 0"
 	}
-	f, err := r.d.in.Scalar(res)
+	f, err := r.d.In.Scalar(res)
 	if err != nil {
-		return r.format(q) + " = 0"
+		return r.Format(q) + " = 0"
 	}
 	for _, v := range f.Num().Vars() {
 		if f.Num().Degree(v) != 1 || q.Degree(v) != 1 {
@@ -163,7 +164,7 @@ func (r *reduction) condition(q algebra.Poly) string {
 		a, rest := q.Coeffs(v)[1], algebra.FromPoly(q)
 		b := f.Deriv(v)
 		k, ok := algebra.FromPoly(a).Quo(b)
-		if !ok || slices.ContainsFunc(k.Vars(), func(w algebra.Var) bool { return r.d.ring.Symbol(w).Kind != jet.Constant }) {
+		if !ok || slices.ContainsFunc(k.Vars(), func(w algebra.Var) bool { return r.d.Ring.Symbol(w).Kind != jet.Constant }) {
 			continue
 		}
 		rest = rest.Sub(k.Mul(f))
@@ -180,31 +181,31 @@ func (r *reduction) condition(q algebra.Poly) string {
 		}
 		return name + " = " + r.formatFraction(value)
 	}
-	return r.format(q) + " = 0"
+	return r.Format(q) + " = 0"
 }
 
 func (r *reduction) formatFraction(f algebra.Fraction) string {
 	if p, ok := f.IsPoly(); ok {
-		return r.format(p)
+		return r.Format(p)
 	}
-	return "(" + r.format(f.Num()) + ")/(" + r.format(f.Den()) + ")"
+	return "(" + r.Format(f.Num()) + ")/(" + r.Format(f.Den()) + ")"
 }
 
 // equalityPoint looks for an exact admissible point where all conditions hold
 // and the gap is zero.
-func (r *reduction) equalityPoint(g *gap, list []algebra.Poly) (jet.Point, bool) {
+func (r *reduction) equalityPoint(g *exact.Gap, list []algebra.Poly) (jet.Point, bool) {
 	d := r.d
-	pts := d.gapPoints(g)
+	pts := d.GapPoints(g)
 	for range 60 {
-		at := pts.draw()
+		at := pts.Draw()
 		if at == nil {
 			continue
 		}
-		if !pts.onVariety(at, list) {
+		if !pts.OnVariety(at, list) {
 			continue
 		}
-		if d.consistent(pts, at) && pts.admissible(at) {
-			if x, ok := d.ring.Exact(g.value, at); ok && x.IsZero() {
+		if d.Consistent(pts, at) && pts.Admissible(at) {
+			if x, ok := d.Ring.Exact(g.Value, at); ok && x.IsZero() {
 				return at, true
 			}
 		}

@@ -6,53 +6,43 @@ import (
 
 	"creaseproof/entropy"
 	"creaseproof/entropy/algebra"
-	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
+	"creaseproof/identity/exact"
 	"creaseproof/identity/squares"
 )
 
-// gap is an inequality brought to the form poly >= 0.
-type gap struct {
-	value       algebra.Fraction // right - left of A <= B
-	left, right algebra.Fraction // as written
-	poly        algebra.Poly     // value times something positive
-	factor      algebra.Fraction // value = poly · factor, before the angle is removed
-	turned      *turned          // poly is at frame angle 0, which is enough
-	wells       []relation       // what holds on the jets looked at
-}
-
 // inequality decides A <= B or A >= B.
 func (d *decider) inequality() error {
-	if d.claim.Divergence {
+	if d.Claim.Divergence {
 		return d.upToDivergence()
 	}
-	if len(d.claim.Solve) > 0 {
-		return &entropy.Error{At: d.claim.Statement.Left.At(), Err: errors.New("solve is for equations"), Advice: "write the constant's value, or claim an equation"}
+	if len(d.Claim.Solve) > 0 {
+		return &entropy.Error{At: d.Claim.Statement.Left.At(), Err: errors.New("solve is for equations"), Advice: "write the constant's value, or claim an equation"}
 	}
-	if d.claim.Best != "" {
+	if d.Claim.Best != "" {
 		return d.best()
 	}
-	if len(d.wells) > 0 {
+	if len(d.Wells) > 0 {
 		if ok, err := d.proveOnWells(); err != nil || ok {
 			return err
 		}
-		if _, err := d.parametrise(); err != nil {
+		if _, err := d.Parametrise(); err != nil {
 			return err
 		}
 	}
-	g, err := d.gap()
+	g, err := d.Gap()
 	if err != nil {
 		return err
 	}
-	if g.value.IsZero() {
-		d.proved("exact normal form: both sides are equal")
+	if g.Value.IsZero() {
+		d.Proved("exact normal form: both sides are equal")
 		return nil
 	}
-	if err := d.removeAngle(g); err != nil {
+	if err := d.RemoveAngle(g); err != nil {
 		return err
 	}
-	res := squares.Complete(d.ctx, d.ring, g.poly, d.squareVars(g.poly))
-	if err := d.ctx.Err(); err != nil {
+	res := squares.Complete(d.Ctx, d.Ring, g.Poly, d.squareVars(g.Poly))
+	if err := d.Ctx.Err(); err != nil {
 		return err
 	}
 	if !res.Proved && (d.refuteRests(g, res.Rests) || d.refuteFar(g)) {
@@ -62,75 +52,16 @@ func (d *decider) inequality() error {
 		return err
 	}
 	if res.Proved {
-		d.proved("completing squares, multiplied out exactly")
+		d.Proved("completing squares, multiplied out exactly")
 		for _, t := range res.Terms {
-			d.rec.Details = append(d.rec.Details, short("("+d.ring.Format(t.Weight)+") ("+d.ring.Format(t.Base)+")^2"))
+			d.Rec.Details = append(d.Rec.Details, exact.Short("("+d.Ring.Format(t.Weight)+") ("+d.Ring.Format(t.Base)+")^2"))
 		}
 		return nil
 	}
-	if err := d.ctx.Err(); err != nil {
+	if err := d.Ctx.Err(); err != nil {
 		return err
 	}
 	return d.search(g)
-}
-
-// gap evaluates both sides and clears denominators: with N/Π b^e the gap, its
-// sign is that of N times the b of odd exponents whose sign does not show.
-func (d *decider) gap() (*gap, error) {
-	st := d.claim.Statement
-	l, r, err := d.inequalitySides()
-	if err != nil {
-		return nil, err
-	}
-	g := &gap{left: l, right: r}
-	if st.Relation == formula.GreaterEqual {
-		l, r = r, l
-	}
-	if g.value, err = d.ring.Sub(r, l); err != nil {
-		return nil, err
-	}
-	return g, d.clear(g)
-}
-
-// clear fills in the polynomial of a gap.
-func (d *decider) clear(g *gap) error {
-	g.poly = g.value.Num()
-	for _, b := range g.value.DenFactors() {
-		base := algebra.FromPoly(b.Base)
-		switch {
-		case b.Exp%2 == 0, d.ring.VisiblyNonNegative(base):
-		case d.ring.VisiblyNonNegative(base.Neg()):
-			g.poly = g.poly.Neg()
-		default:
-			g.poly = g.poly.Mul(b.Base)
-		}
-	}
-	g.poly = d.ring.ReducePoly(g.poly)
-	g.factor = jet.Whole(1)
-	if f, ok := g.value.Quo(algebra.FromPoly(g.poly)); ok {
-		g.factor = f
-	}
-	return g.poly.Err()
-}
-
-// inequalitySides evaluates both sides. Where a side is the supremum over an
-// angle and that is not in closed form, sup f <= B is f <= B for all angles.
-func (d *decider) inequalitySides() (left, right algebra.Fraction, err error) {
-	st := d.claim.Statement
-	side := func(n formula.Node, upper bool) (algebra.Fraction, error) {
-		f, err := d.in.Scalar(n)
-		call, ok := n.(*formula.Call)
-		if err == nil || !ok || call.Func != "sup" || !upper || !errors.Is(err, jet.ErrOutside) || len(call.Args) != 2 {
-			return f, err
-		}
-		d.rec.Details = append(d.rec.Details, "the supremum is bounded by bounding every member of the family")
-		return d.in.Scalar(call.Args[1])
-	}
-	if left, err = side(st.Left, st.Relation == formula.LessEqual); err != nil {
-		return left, right, err
-	}
-	right, err = side(st.Right, st.Relation == formula.GreaterEqual)
-	return left, right, err
 }
 
 // squareVars orders the indeterminates in which squares are completed:
@@ -138,17 +69,17 @@ func (d *decider) inequalitySides() (left, right algebra.Fraction, err error) {
 func (d *decider) squareVars(p algebra.Poly) []algebra.Var {
 	var out []algebra.Var
 	for _, v := range p.Vars() {
-		if d.ring.Symbol(v).Kind <= jet.Derivative {
+		if d.Ring.Symbol(v).Kind <= jet.Derivative {
 			out = append(out, v)
 		}
 	}
-	for _, k := range d.ring.Kernels(algebra.FromPoly(p)) {
-		for _, v := range d.ring.Support(d.ring.Symbol(k).Arg) {
+	for _, k := range d.Ring.Kernels(algebra.FromPoly(p)) {
+		for _, v := range d.Ring.Support(d.Ring.Symbol(k).Arg) {
 			out = slices.DeleteFunc(out, func(w algebra.Var) bool { return w == v })
 		}
 	}
 	rank := func(v algebra.Var) int {
-		s := d.ring.Symbol(v)
+		s := d.Ring.Symbol(v)
 		if s.Kind != jet.Derivative {
 			return 100
 		}
@@ -158,31 +89,24 @@ func (d *decider) squareVars(p algebra.Poly) []algebra.Var {
 	return out
 }
 
-// falseAt reports whether the inequality certainly fails at an admissible
-// point, in exact arithmetic or with outward rounding.
-func (d *decider) falseAt(g *gap, p *points, at jet.Point) bool {
-	s, ok := d.ring.Sign(g.value, at)
-	return ok && s < 0 && p.admissible(at)
-}
-
 // refuteRests looks for a point where what completing squares left over is
 // negative. With the minimisers put in, the gap is negative there as well,
 // however thin the set on which it is.
-func (d *decider) refuteRests(g *gap, rests []squares.Rest) bool {
-	pts := d.gapPoints(g)
+func (d *decider) refuteRests(g *exact.Gap, rests []squares.Rest) bool {
+	pts := d.GapPoints(g)
 	for _, rest := range rests {
 		value := algebra.FromPoly(rest.Poly)
 		for range 120 {
-			at, ok := pts.next()
+			at, ok := pts.Next()
 			if !ok {
 				return false
 			}
-			if s, ok := d.ring.Sign(value, at); !ok || s >= 0 {
+			if s, ok := d.Ring.Sign(value, at); !ok || s >= 0 {
 				continue
 			}
-			if d.lift(rest.Steps, at) && d.consistent(pts, at) && d.falseAt(g, pts, at) {
+			if d.lift(rest.Steps, at) && d.Consistent(pts, at) && d.FalseAt(g, pts, at) {
 				at = d.simplify(g, pts, at)
-				d.refuted("completing squares leaves a rest that is negative; exact arithmetic at the witness", at, g.left, g.right)
+				d.Refuted("completing squares leaves a rest that is negative; exact arithmetic at the witness", at, g.Left, g.Right)
 				return true
 			}
 		}
@@ -190,20 +114,10 @@ func (d *decider) refuteRests(g *gap, rests []squares.Rest) bool {
 	return false
 }
 
-// gapPoints draws points for a gap, at the frame angle at which it is looked at.
-func (d *decider) gapPoints(g *gap) *points {
-	p := d.points(g.value, g.left, g.right)
-	if g.turned != nil {
-		p.fixed = jet.Point{g.turned.cos: algebra.Int(1), g.turned.sin: algebra.Rat{}}
-		p.angles = slices.DeleteFunc(p.angles, func(c algebra.Var) bool { return c == g.turned.cos })
-	}
-	return p
-}
-
 // lift puts the minimisers in, last one first.
 func (d *decider) lift(steps []squares.Step, at jet.Point) bool {
 	for _, s := range slices.Backward(steps) {
-		x, ok := d.ring.Exact(s.Value, at)
+		x, ok := d.Ring.Exact(s.Value, at)
 		if !ok {
 			return false
 		}
@@ -223,42 +137,31 @@ func (d *decider) lift(steps []squares.Step, at jet.Point) bool {
 	return true
 }
 
-// consistent renews what follows from other values at a point: the traces.
-func (d *decider) consistent(p *points, at jet.Point) bool {
-	if d.claim.Jump {
-		if len(d.wells) > 0 {
-			return false // moving one value leaves the well
-		}
-		return d.traces(at) == nil
-	}
-	return len(d.ideal) == 0
-}
-
 // refuteFar looks for directions in which the gap falls to minus infinity:
 // the leading coefficient in one indeterminate is negative, or its degree odd.
-func (d *decider) refuteFar(g *gap) bool {
-	pts := d.gapPoints(g)
-	vars := d.squareVars(g.poly)
+func (d *decider) refuteFar(g *exact.Gap) bool {
+	pts := d.GapPoints(g)
+	vars := d.squareVars(g.Poly)
 	for range 24 {
-		base, ok := pts.next()
+		base, ok := pts.Next()
 		if !ok {
 			return false
 		}
-		if d.consistent(pts, base) && d.falseAt(g, pts, base) {
+		if d.Consistent(pts, base) && d.FalseAt(g, pts, base) {
 			base = d.simplify(g, pts, base)
-			d.refuted("exact arithmetic at the witness", base, g.left, g.right)
+			d.Refuted("exact arithmetic at the witness", base, g.Left, g.Right)
 			return true
 		}
 		for _, v := range vars {
-			x, ok := d.farValue(g.poly, v, base)
+			x, ok := d.farValue(g.Poly, v, base)
 			if !ok {
 				continue
 			}
 			at := base.Clone()
 			at[v] = x
-			if d.consistent(pts, at) && d.falseAt(g, pts, at) {
+			if d.Consistent(pts, at) && d.FalseAt(g, pts, at) {
 				at = d.simplify(g, pts, at)
-				d.refuted("the gap is unbounded below; exact arithmetic at the witness", at, g.left, g.right)
+				d.Refuted("the gap is unbounded below; exact arithmetic at the witness", at, g.Left, g.Right)
 				return true
 			}
 		}
@@ -274,7 +177,7 @@ func (d *decider) farValue(p algebra.Poly, v algebra.Var, at jet.Point) (algebra
 		if w == v {
 			continue
 		}
-		x, ok := d.ring.Exact(jet.Of(w), at)
+		x, ok := d.Ring.Exact(jet.Of(w), at)
 		if !ok {
 			return x, false
 		}
@@ -296,7 +199,7 @@ func (d *decider) farValue(p algebra.Poly, v algebra.Var, at jet.Point) (algebra
 			bound = bound.Add(q.Abs())
 		}
 	}
-	sign := d.ring.Symbol(v).Sign
+	sign := d.Ring.Symbol(v).Sign
 	low := sign == jet.AnySign || sign == jet.Negative || sign == jet.NonPositive
 	high := sign != jet.Negative && sign != jet.NonPositive
 	switch {

@@ -1,8 +1,6 @@
 package identity
 
 import (
-	"slices"
-
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
 	"creaseproof/entropy/program"
@@ -11,7 +9,7 @@ import (
 // compiler turns normal forms into float64 programs. Indeterminates that have
 // no input are computed from what they are kernels of.
 type compiler struct {
-	ring *jet.Ring
+	Ring *jet.Ring
 	b    *program.Builder
 	of   map[algebra.Var]program.Ref
 }
@@ -20,7 +18,7 @@ func (c *compiler) value(v algebra.Var) program.Ref {
 	if x, ok := c.of[v]; ok {
 		return x
 	}
-	s := c.ring.Symbol(v)
+	s := c.Ring.Symbol(v)
 	var x program.Ref
 	switch s.Kind {
 	case jet.Pi:
@@ -81,6 +79,3 @@ func (c *compiler) where(x, g program.Ref) program.Ref {
 	s := c.b.Add(c.b.Func(program.Sqrt, g), c.b.Const(1))
 	return c.b.Mul(x, c.b.Quo(s, s))
 }
-
-// vars are the indeterminates that p and the assumptions depend on.
-func (p *points) vars() []algebra.Var { return slices.Concat(p.free, p.angles, p.signs) }

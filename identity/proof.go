@@ -7,6 +7,7 @@ import (
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
 	"creaseproof/identity/certificate"
+	"creaseproof/identity/exact"
 	"creaseproof/identity/gram"
 	"creaseproof/identity/squares"
 )
@@ -14,8 +15,8 @@ import (
 // prove searches for a certificate of a gap: completed squares, sums of
 // squares, and squaring away roots. A certificate that does not rest on
 // continuity is preferred. It reports whether the claim is proved.
-func (d *decider) prove(g *gap, done []squares.Term) (bool, error) {
-	r := d.reduce(g)
+func (d *decider) prove(g *exact.Gap, done []squares.Term) (bool, error) {
+	r := d.reduction(g)
 	type found struct {
 		method string
 		proof  *gram.Proof
@@ -25,7 +26,7 @@ func (d *decider) prove(g *gap, done []squares.Term) (bool, error) {
 	if len(done) > 0 {
 		if p, ok := r.fromSquares(done); ok {
 			if cert, err := r.certify(p); err == nil {
-				if !certificate.UsesContinuity(r.claim, cert) {
+				if !certificate.UsesContinuity(r.Claim, cert) {
 					d.certified("completing squares", g, r, p, cert)
 					return true, nil
 				}
@@ -33,7 +34,7 @@ func (d *decider) prove(g *gap, done []squares.Term) (bool, error) {
 			}
 		}
 	}
-	if len(d.ideal) > 0 || len(d.wells) > len(g.wells) {
+	if len(d.Ideal) > 0 || len(d.Wells) > len(g.Wells) {
 		return false, nil // equations that are not part of the reduction
 	}
 	effort, ok := gram.Efforts(d.opt.Effort)
@@ -59,56 +60,38 @@ func (d *decider) prove(g *gap, done []squares.Term) (bool, error) {
 		return false, err
 	}
 	d.certified("squaring, and sum of squares", g, r, &gram.Proof{}, cert)
-	d.rec.Details, d.rec.Equality = steps, nil
+	d.Rec.Details, d.Rec.Equality = steps, nil
 	return true, nil
 }
 
 // proveOnWells searches for a certificate in the traces themselves, with the
 // wells on both sides as equations.
 func (d *decider) proveOnWells() (bool, error) {
-	g, err := d.gap()
+	g, err := d.Gap()
 	if err != nil {
 		return false, err
 	}
-	for _, w := range d.wells {
-		rel, ok := monic(w)
+	for _, w := range d.Wells {
+		rel, ok := exact.Monic(w)
 		if !ok {
 			return false, nil
 		}
-		g.wells = append(g.wells, rel)
+		g.Wells = append(g.Wells, rel)
 	}
-	if g.poly, err = d.inTraces(g.poly); err != nil {
+	if g.Poly, err = d.InTraces(g.Poly); err != nil {
 		return false, err
 	}
-	if err := d.removeAngle(g); err != nil {
+	if err := d.RemoveAngle(g); err != nil {
 		return false, err
 	}
 	return d.prove(g, nil)
-}
-
-// monic writes w = 0 as a relation for an indeterminate in which w is monic up
-// to a constant.
-func monic(w algebra.Poly) (relation, bool) {
-	for _, v := range w.Vars() {
-		n := w.Degree(v)
-		c, ok := w.Coeffs(v)[n].IsConst()
-		if !ok {
-			continue
-		}
-		inv, ok := c.Inv()
-		if !ok {
-			continue
-		}
-		return relation{v, n, algebra.Variable(v).Pow(n).Sub(w.Scale(inv))}, true
-	}
-	return relation{}, false
 }
 
 // sumOfSquares is one search, its result checked; no certificate and no error
 // where none was found.
 func (d *decider) sumOfSquares(r *reduction, effort gram.Effort) (*gram.Proof, *certificate.Certificate, error) {
 	problem, m := r.problem()
-	p, pic, err := gram.Prove(d.ctx, problem, effort)
+	p, pic, err := gram.Prove(d.Ctx, problem, effort)
 	switch {
 	case errors.Is(err, gram.ErrNotFound):
 		d.picture = pic
@@ -130,17 +113,17 @@ func (d *decider) sumOfSquares(r *reduction, effort gram.Effort) (*gram.Proof, *
 // that does not apply or leads nowhere.
 func (d *decider) squareRoots(r *reduction, effort gram.Effort, depth int) (*certificate.Certificate, []string, error) {
 	root := false
-	for _, v := range r.target.Vars() {
-		root = root || d.ring.Symbol(v).Kind == jet.Root
+	for _, v := range r.Target.Vars() {
+		root = root || d.Ring.Symbol(v).Kind == jet.Root
 	}
 	if depth == 0 || !root {
 		return nil, nil, nil
 	}
 	one := algebra.Const(algebra.Int(1))
 	var x, y algebra.Poly
-	for m, c := range r.target.Terms() {
+	for m, c := range r.Target.Terms() {
 		t := algebra.FromTerms([]algebra.Term{{Mono: m, Coef: c}})
-		if d.ring.VisiblyNonNegative(algebra.FromPoly(t)) {
+		if d.Ring.VisiblyNonNegative(algebra.FromPoly(t)) {
 			x = x.Add(t)
 		} else {
 			y = y.Sub(t)
@@ -151,18 +134,18 @@ func (d *decider) squareRoots(r *reduction, effort gram.Effort, depth int) (*cer
 		return nil, nil, nil
 	}
 	next := *r
-	next.target = x.Mul(x).Sub(y.Mul(y))
-	if next.target.Err() != nil {
+	next.Target = x.Mul(x).Sub(y.Mul(y))
+	if next.Target.Err() != nil {
 		return nil, nil, nil
 	}
-	next.claim = next.statement()
-	step := short("the square of " + r.format(x) + " is at least the square of " + r.format(y) + ":")
+	next.Claim = next.Statement()
+	step := exact.Short("the square of " + r.Format(x) + " is at least the square of " + r.Format(y) + ":")
 	reduced := next
-	reduced.target = next.normal(next.target)
+	reduced.Target = next.Normal(next.Target)
 	var inner *certificate.Certificate
 	var steps []string
-	if reduced.target.IsZero() {
-		inner = &certificate.Certificate{Cofactors: next.cofactors(next.target)}
+	if reduced.Target.IsZero() {
+		inner = &certificate.Certificate{Cofactors: next.Cofactors(next.Target)}
 	} else {
 		p, cert, err := d.sumOfSquares(&next, effort)
 		if err != nil {
@@ -171,7 +154,7 @@ func (d *decider) squareRoots(r *reduction, effort gram.Effort, depth int) (*cer
 		if cert != nil {
 			inner = cert
 			for _, s := range p.Squares {
-				steps = append(steps, short(r.term(s)))
+				steps = append(steps, exact.Short(r.term(s)))
 			}
 		} else {
 			// The reduced form has fewer roots: go on with it.
@@ -180,15 +163,15 @@ func (d *decider) squareRoots(r *reduction, effort gram.Effort, depth int) (*cer
 				return nil, nil, err
 			}
 			// Its target differs from the literal one by multiples of the relations.
-			deeper.Squaring.Cofactors = addPolynomials(deeper.Squaring.Cofactors, next.cofactors(next.target.Sub(reduced.target)))
+			deeper.Squaring.Cofactors = addPolynomials(deeper.Squaring.Cofactors, next.Cofactors(next.Target.Sub(reduced.Target)))
 			inner, steps = deeper, more
 		}
 	}
-	cert := &certificate.Certificate{Squaring: &certificate.Squaring{Left: r.squares(left), Right: r.polynomial(y), Proof: inner}}
-	if len(r.zero) > 0 {
-		cert.Squaring.Cofactors = make([]certificate.Polynomial, len(r.zero))
+	cert := &certificate.Certificate{Squaring: &certificate.Squaring{Left: r.squares(left), Right: r.Polynomial(y), Proof: inner}}
+	if len(r.Zero) > 0 {
+		cert.Squaring.Cofactors = make([]certificate.Polynomial, len(r.Zero))
 	}
-	if err := certificate.Check(r.claim, cert); err != nil && depth == 3 {
+	if err := certificate.Check(r.Claim, cert); err != nil && depth == 3 {
 		return nil, nil, fmt.Errorf("%w: a certificate that the checker refuses: %w", jet.ErrOutside, err)
 	}
 	return cert, append([]string{step}, steps...), nil

@@ -14,6 +14,7 @@ import (
 	"creaseproof/entropy/jet"
 	"creaseproof/entropy/program"
 	"creaseproof/identity/adversary"
+	"creaseproof/identity/exact"
 	"creaseproof/identity/sample"
 )
 
@@ -22,9 +23,9 @@ import (
 // fixed.
 type task struct {
 	d     *decider
-	g     *gap
-	pts   *points
-	signs []algebra.Rat // of pts.signs
+	g     *exact.Gap
+	pts   *exact.Points
+	Signs []algebra.Rat // of pts.Signs
 
 	layout  *sample.Layout
 	sampled *program.Program // gap and sum of absolute monomials, over the layout
@@ -33,19 +34,19 @@ type task struct {
 
 // search samples the margin and sends the adversary after it. Every candidate
 // is settled in exact arithmetic.
-func (d *decider) search(g *gap) error {
-	pts := d.gapPoints(g)
-	if len(pts.vars()) == 0 {
+func (d *decider) search(g *exact.Gap) error {
+	pts := d.GapPoints(g)
+	if len(pts.Vars()) == 0 {
 		return d.constant(g, pts)
 	}
-	if len(d.ideal) > 0 || len(d.wells) > 0 {
+	if len(d.Ideal) > 0 || len(d.Wells) > 0 {
 		return d.searchOnVariety(g, pts)
 	}
 	least := math.Inf(1)
-	for k := range 1 << len(pts.signs) {
+	for k := range 1 << len(pts.Signs) {
 		t := &task{d: d, g: g, pts: pts}
-		for i := range pts.signs {
-			t.signs = append(t.signs, algebra.Int(int64(1-2*(k>>i&1))))
+		for i := range pts.Signs {
+			t.Signs = append(t.Signs, algebra.Int(int64(1-2*(k>>i&1))))
 		}
 		if err := t.compile(); err != nil {
 			return err
@@ -61,48 +62,48 @@ func (d *decider) search(g *gap) error {
 }
 
 func (d *decider) supported(least float64) {
-	d.rec.Verdict, d.rec.Method, d.rec.Seed = Supported, "sampling and adversarial search", d.opt.Seed
+	d.Rec.Verdict, d.Rec.Method, d.Rec.Seed = Supported, "sampling and adversarial search", d.opt.Seed
 	if !math.IsInf(least, 0) {
-		d.rec.Margin = &least
+		d.Rec.Margin = &least
 	}
-	d.rec.Reason = fmt.Sprintf("no counterexample in %d random jets and %d descents; a numerical check is not a proof", d.rec.Samples, d.rec.Searches)
+	d.Rec.Reason = fmt.Sprintf("no counterexample in %d random jets and %d descents; a numerical check is not a proof", d.Rec.Samples, d.Rec.Searches)
 }
 
 // constant decides an inequality between constants.
-func (d *decider) constant(g *gap, pts *points) error {
+func (d *decider) constant(g *exact.Gap, pts *exact.Points) error {
 	at := jet.Point{}
-	s, ok := d.ring.Sign(g.value, at)
+	s, ok := d.Ring.Sign(g.Value, at)
 	switch {
 	case !ok:
-		d.open("the two sides are constants too close to tell apart at %d bits", 640)
+		d.Open("the two sides are constants too close to tell apart at %d bits", 640)
 	case s < 0:
-		d.refuted("disjoint enclosures of constants", at, g.left, g.right)
+		d.Refuted("disjoint enclosures of constants", at, g.Left, g.Right)
 	default:
-		d.proved("disjoint enclosures of constants")
+		d.Proved("disjoint enclosures of constants")
 	}
 	return nil
 }
 
 // searchOnVariety samples exact rational points of a well or of equations
 // that are not solved for a derivative.
-func (d *decider) searchOnVariety(g *gap, pts *points) error {
+func (d *decider) searchOnVariety(g *exact.Gap, pts *exact.Points) error {
 	tries := min(d.opt.Samples, 4000)
 	for range tries {
-		at, ok := pts.next()
+		at, ok := pts.Next()
 		if !ok {
 			break
 		}
-		d.rec.Samples++
-		if d.falseAt(g, pts, at) {
-			d.refuted("exact arithmetic at a rational point of the well", at, g.left, g.right)
+		d.Rec.Samples++
+		if d.FalseAt(g, pts, at) {
+			d.Refuted("exact arithmetic at a rational point of the well", at, g.Left, g.Right)
 			return nil
 		}
 	}
-	if err := d.ctx.Err(); err != nil {
+	if err := d.Ctx.Err(); err != nil {
 		return err
 	}
-	if d.rec.Samples == 0 {
-		d.open("no rational point was found on which the claim could be tried")
+	if d.Rec.Samples == 0 {
+		d.Open("no rational point was found on which the claim could be tried")
 		return nil
 	}
 	d.supported(math.Inf(1))
@@ -110,38 +111,38 @@ func (d *decider) searchOnVariety(g *gap, pts *points) error {
 }
 
 func (t *task) compile() error {
-	ring := t.d.ring
+	ring := t.d.Ring
 	inputs := func(c *compiler) {
-		for i, s := range t.pts.signs {
-			c.of[s] = c.b.Const(t.signs[i].Float64())
+		for i, s := range t.pts.Signs {
+			c.of[s] = c.b.Const(t.Signs[i].Float64())
 		}
-		for i, v := range t.pts.free {
+		for i, v := range t.pts.Free {
 			c.of[v] = c.b.Input(i)
 		}
-		for v, x := range t.pts.fixed {
+		for v, x := range t.pts.Fixed {
 			c.of[v] = c.b.Const(x.Float64())
 		}
 	}
 	build := func(c *compiler) (gap, size program.Ref) {
-		gap, size = c.poly(t.g.poly), c.absSum(t.g.poly)
-		for _, a := range t.d.assumed {
-			if len(ring.Support(a.value)) <= 1 {
+		gap, size = c.poly(t.g.Poly), c.absSum(t.g.Poly)
+		for _, a := range t.d.Assumed {
+			if len(ring.Support(a.Value)) <= 1 {
 				continue // a sign or a bound, which the layout knows
 			}
-			switch a.relation {
+			switch a.Relation {
 			case ">", ">=":
-				gap = c.where(gap, c.fraction(a.value))
+				gap = c.where(gap, c.fraction(a.Value))
 			case "<", "<=":
-				gap = c.where(gap, c.b.Neg(c.fraction(a.value)))
+				gap = c.where(gap, c.b.Neg(c.fraction(a.Value)))
 			}
 		}
 		return gap, size
 	}
-	n := len(t.pts.free)
+	n := len(t.pts.Free)
 
 	c := &compiler{ring, program.NewBuilder(), map[algebra.Var]program.Ref{}}
 	inputs(c)
-	for i, a := range t.pts.angles {
+	for i, a := range t.pts.Angles {
 		c.of[a], c.of[ring.Symbol(a).Partner] = c.b.Input(n+2*i), c.b.Input(n+2*i+1)
 	}
 	gap, size := build(c)
@@ -156,7 +157,7 @@ func (t *task) compile() error {
 	c = &compiler{ring, program.NewBuilder(), map[algebra.Var]program.Ref{}}
 	inputs(c)
 	one := c.b.Const(1)
-	for i, a := range t.pts.angles {
+	for i, a := range t.pts.Angles {
 		x := c.b.Input(n + i)
 		sq := c.b.Mul(x, x)
 		den := c.b.Add(one, sq)
@@ -165,7 +166,7 @@ func (t *task) compile() error {
 	}
 	gap, size = build(c)
 	m := c.b.Quo(gap, size)
-	idx := make([]int, n+len(t.pts.angles))
+	idx := make([]int, n+len(t.pts.Angles))
 	for i := range idx {
 		idx[i] = i
 		c.b.Input(i)
@@ -178,12 +179,12 @@ func (t *task) compile() error {
 
 func (t *task) makeLayout() (*sample.Layout, error) {
 	var cols []sample.Column
-	for _, v := range t.pts.free {
-		s := t.d.ring.Symbol(v)
+	for _, v := range t.pts.Free {
+		s := t.d.Ring.Symbol(v)
 		c := sample.Column{Name: s.Name}
 		if s.Kind == jet.Derivative && s.Side == jet.NoSide {
-			c.Unknown, c.Order = t.d.ring.Unknowns[s.Place], s.Index.Order()
-			for i := range t.d.ring.Coordinates {
+			c.Unknown, c.Order = t.d.Ring.Unknowns[s.Place], s.Index.Order()
+			for i := range t.d.Ring.Coordinates {
 				c.Index = append(c.Index, int(s.Index[i]))
 			}
 		}
@@ -199,8 +200,8 @@ func (t *task) makeLayout() (*sample.Layout, error) {
 		}
 		cols = append(cols, c)
 	}
-	for i, a := range t.pts.angles {
-		name := t.d.ring.Format(t.d.ring.Symbol(a).Arg)
+	for i, a := range t.pts.Angles {
+		name := t.d.Ring.Format(t.d.Ring.Symbol(a).Arg)
 		cols = append(cols, sample.Column{Name: "cos " + name, Kind: sample.Cosine, Angle: i},
 			sample.Column{Name: "sin " + name, Kind: sample.Sine, Angle: i})
 	}
@@ -211,18 +212,18 @@ func (t *task) makeLayout() (*sample.Layout, error) {
 // they only guide the search.
 func (t *task) bounds(v algebra.Var) (lo, hi float64) {
 	lo, hi = math.Inf(-1), math.Inf(1)
-	switch t.d.ring.Symbol(v).Sign {
+	switch t.d.Ring.Symbol(v).Sign {
 	case jet.Positive, jet.NonNegative:
 		lo = 0
 	case jet.Negative, jet.NonPositive:
 		hi = 0
 	}
-	for _, b := range t.d.claim.Box {
-		f, err := t.d.in.Scalar(b.Node)
+	for _, b := range t.d.Claim.Box {
+		f, err := t.d.In.Scalar(b.Node)
 		if err != nil {
 			continue
 		}
-		if w, ok := loneVar(f); ok && w == v {
+		if w, ok := exact.LoneVar(f); ok && w == v {
 			l, _ := b.Lo.Float64()
 			h, _ := b.Hi.Float64()
 			lo, hi = max(lo, l), min(hi, h)
@@ -239,10 +240,10 @@ func (t *task) run() (float64, bool, error) {
 	d := t.d
 	opts := sample.Options{Seed: d.opt.Seed, Samples: d.opt.Samples, Jobs: d.opt.Jobs, Laws: t.laws()}
 	if d.opt.Progress != nil {
-		opts.Progress = func(done, total int64) { d.opt.Progress(d.claim.Name, done, total) }
+		opts.Progress = func(done, total int64) { d.opt.Progress(d.Claim.Name, done, total) }
 	}
-	res, err := sample.Run(d.ctx, opts, t.layout, t.sampled, keepBest)
-	d.rec.Samples += res.Drawn
+	res, err := sample.Run(d.Ctx, opts, t.layout, t.sampled, keepBest)
+	d.Rec.Samples += res.Drawn
 	if err != nil {
 		return 0, false, err
 	}
@@ -252,7 +253,7 @@ func (t *task) run() (float64, bool, error) {
 	}
 	least := res.MinMargin
 	found, err := t.attack(starts)
-	d.rec.Searches += found.Starts
+	d.Rec.Searches += found.Starts
 	least = min(least, found.BestMargin)
 	if err != nil && !errors.Is(err, context.Canceled) && !errors.Is(err, context.DeadlineExceeded) {
 		return least, false, fmt.Errorf("%w: %w", jet.ErrOutside, err)
@@ -261,8 +262,8 @@ func (t *task) run() (float64, bool, error) {
 	}
 	if found.Witness != nil {
 		at, _ := t.point(found.Witness)
-		d.rec.Margin = &least
-		d.refuted("adversarial search; exact arithmetic at the witness", at, t.g.left, t.g.right)
+		d.Rec.Margin = &least
+		d.Refuted("adversarial search; exact arithmetic at the witness", at, t.g.Left, t.g.Right)
 		return least, true, nil
 	}
 	for _, x := range starts { // samples that fail, should no descent have led to one
@@ -272,9 +273,9 @@ func (t *task) run() (float64, bool, error) {
 				q[i] = new(big.Rat)
 			}
 		}
-		if at, ok := t.point(q); ok && d.falseAt(t.g, t.pts, at) {
-			d.rec.Margin = &least
-			d.refuted("random sample; exact arithmetic at the witness", at, t.g.left, t.g.right)
+		if at, ok := t.point(q); ok && d.FalseAt(t.g, t.pts, at) {
+			d.Rec.Margin = &least
+			d.Refuted("random sample; exact arithmetic at the witness", at, t.g.Left, t.g.Right)
 			return least, true, nil
 		}
 	}
@@ -283,9 +284,9 @@ func (t *task) run() (float64, bool, error) {
 
 // coordinates are the free coordinates of a sampled point.
 func (t *task) coordinates(values []float64) []float64 {
-	n := len(t.pts.free)
+	n := len(t.pts.Free)
 	x := slices.Clone(values[:n])
-	for i := range t.pts.angles {
+	for i := range t.pts.Angles {
 		c, s := values[n+2*i], values[n+2*i+1]
 		if 1+c > 1e-9 {
 			x = append(x, s/(1+c))
@@ -299,23 +300,23 @@ func (t *task) coordinates(values []float64) []float64 {
 // point is the exact point with the given rational coordinates.
 func (t *task) point(x []*big.Rat) (jet.Point, bool) {
 	at := jet.Point{}
-	n := len(t.pts.free)
-	for i, v := range t.pts.free {
+	n := len(t.pts.Free)
+	for i, v := range t.pts.Free {
 		at[v] = algebra.FromBig(x[i])
 	}
-	for i, a := range t.pts.angles {
+	for i, a := range t.pts.Angles {
 		h := algebra.FromBig(x[n+i])
 		sq := h.Mul(h)
 		den := sq.Add(algebra.Int(1))
 		at[a], _ = algebra.Int(1).Sub(sq).Quo(den)
-		at[t.d.ring.Symbol(a).Partner], _ = h.Add(h).Quo(den)
+		at[t.d.Ring.Symbol(a).Partner], _ = h.Add(h).Quo(den)
 	}
-	for i, s := range t.pts.signs {
-		at[s] = t.signs[i]
+	for i, s := range t.pts.Signs {
+		at[s] = t.Signs[i]
 	}
-	maps.Copy(at, t.pts.fixed)
-	if t.d.claim.Jump {
-		if err := t.d.traces(at); err != nil {
+	maps.Copy(at, t.pts.Fixed)
+	if t.d.Claim.Jump {
+		if err := t.d.Traces(at); err != nil {
 			return nil, false
 		}
 	}
@@ -326,28 +327,28 @@ func (t *task) point(x []*big.Rat) (jet.Point, bool) {
 // steps on the gap in one derivative.
 func (t *task) laws() []sample.Law {
 	laws := sample.DefaultLaws()
-	for _, v := range t.d.squareVars(t.g.poly) {
-		i := slices.Index(t.pts.free, v)
-		if i < 0 || t.g.poly.Degree(v) < 2 {
+	for _, v := range t.d.squareVars(t.g.Poly) {
+		i := slices.Index(t.pts.Free, v)
+		if i < 0 || t.g.Poly.Degree(v) < 2 {
 			continue
 		}
 		// The gap touches zero where its derivative by v vanishes.
-		c := &compiler{t.d.ring, program.NewBuilder(), map[algebra.Var]program.Ref{}}
-		for k, s := range t.pts.signs {
-			c.of[s] = c.b.Const(t.signs[k].Float64())
+		c := &compiler{t.d.Ring, program.NewBuilder(), map[algebra.Var]program.Ref{}}
+		for k, s := range t.pts.Signs {
+			c.of[s] = c.b.Const(t.Signs[k].Float64())
 		}
-		for k, w := range t.pts.free {
+		for k, w := range t.pts.Free {
 			c.of[w] = c.b.Input(k)
 		}
-		for w, x := range t.pts.fixed {
+		for w, x := range t.pts.Fixed {
 			c.of[w] = c.b.Const(x.Float64())
 		}
-		n := len(t.pts.free)
-		for k, a := range t.pts.angles {
-			c.of[a], c.of[t.d.ring.Symbol(a).Partner] = c.b.Input(n+2*k), c.b.Input(n+2*k+1)
+		n := len(t.pts.Free)
+		for k, a := range t.pts.Angles {
+			c.of[a], c.of[t.d.Ring.Symbol(a).Partner] = c.b.Input(n+2*k), c.b.Input(n+2*k+1)
 		}
-		first := c.poly(t.g.poly.Deriv(v))
-		second := c.poly(t.g.poly.Deriv(v).Deriv(v))
+		first := c.poly(t.g.Poly.Deriv(v))
+		second := c.poly(t.g.Poly.Deriv(v).Deriv(v))
 		for k := range t.layout.Len() {
 			c.b.Input(k)
 		}
@@ -368,12 +369,12 @@ func (t *task) laws() []sample.Law {
 // attack minimises the margin from the worst samples and from random starts.
 func (t *task) attack(starts [][]float64) (adversary.Result, error) {
 	d := t.d
-	n := len(t.pts.free) + len(t.pts.angles)
+	n := len(t.pts.Free) + len(t.pts.Angles)
 	p := adversary.Problem{Dim: n, Lower: make([]float64, n), Upper: make([]float64, n)}
 	for i := range n {
 		p.Lower[i], p.Upper[i] = math.Inf(-1), math.Inf(1)
-		if i < len(t.pts.free) {
-			p.Lower[i], p.Upper[i] = t.bounds(t.pts.free[i])
+		if i < len(t.pts.Free) {
+			p.Lower[i], p.Upper[i] = t.bounds(t.pts.Free[i])
 		}
 	}
 	outs := t.margin.NumOutputs()
@@ -403,17 +404,17 @@ func (t *task) attack(starts [][]float64) (adversary.Result, error) {
 	}
 	p.Verify = func(x []*big.Rat) bool {
 		at, ok := t.point(x)
-		return ok && d.falseAt(t.g, t.pts, at)
+		return ok && d.FalseAt(t.g, t.pts, at)
 	}
 	p.Polish = func(x []*big.Rat, i int) (*big.Rat, bool) {
 		at, ok := t.point(x)
-		if !ok || i >= len(t.pts.free) {
+		if !ok || i >= len(t.pts.Free) {
 			return nil, false
 		}
-		v := t.pts.free[i]
+		v := t.pts.Free[i]
 		values := map[algebra.Var]algebra.Rat{}
-		for _, w := range t.g.poly.Vars() {
-			y, ok := d.ring.Exact(jet.Of(w), at)
+		for _, w := range t.g.Poly.Vars() {
+			y, ok := d.Ring.Exact(jet.Of(w), at)
 			if !ok {
 				return nil, false
 			}
@@ -421,7 +422,7 @@ func (t *task) attack(starts [][]float64) (adversary.Result, error) {
 				values[w] = y
 			}
 		}
-		co := t.g.poly.EvalPartial(values).Coeffs(v)
+		co := t.g.Poly.EvalPartial(values).Coeffs(v)
 		if len(co) != 3 {
 			return nil, false
 		}
@@ -433,5 +434,5 @@ func (t *task) attack(starts [][]float64) (adversary.Result, error) {
 		}
 		return y.Big(), true
 	}
-	return adversary.Search(d.ctx, p, adversary.Options{Seed: d.opt.Seed, Starts: d.opt.Starts, Jobs: d.opt.Jobs})
+	return adversary.Search(d.Ctx, p, adversary.Options{Seed: d.opt.Seed, Starts: d.opt.Starts, Jobs: d.opt.Jobs})
 }

@@ -5,39 +5,40 @@ import (
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
+	"creaseproof/identity/exact"
 )
 
 // simplify replaces coordinates of a counterexample by simpler rationals as
 // long as it stays one. Every step is settled exactly; the number of steps is
 // bounded.
-func (d *decider) simplify(g *gap, p *points, at jet.Point) jet.Point {
-	if len(d.wells) > 0 || len(d.ideal) > 0 {
+func (d *decider) simplify(g *exact.Gap, p *exact.Points, at jet.Point) jet.Point {
+	if len(d.Wells) > 0 || len(d.Ideal) > 0 {
 		return at // a single coordinate cannot move along the well
 	}
 	budget := 600
 	try := func(change func(jet.Point)) bool {
-		if budget--; budget < 0 || d.ctx.Err() != nil {
+		if budget--; budget < 0 || d.Ctx.Err() != nil {
 			return false
 		}
 		next := at.Clone()
 		change(next)
-		if !d.consistent(p, next) || !d.falseAt(g, p, next) {
+		if !d.Consistent(p, next) || !d.FalseAt(g, p, next) {
 			return false
 		}
 		at = next
 		return true
 	}
-	for _, c := range p.angles {
-		s := d.ring.Symbol(c).Partner
-		for _, t := range triples[:4] {
-			x, y := algebra.Frac64(int64(t[0]), int64(t[2])), algebra.Frac64(int64(t[1]), int64(t[2]))
+	for _, c := range p.Angles {
+		s := d.Ring.Symbol(c).Partner
+		for _, t := range exact.SimpleAngles() {
+			x, y := algebra.Frac64(t[0], t[2]), algebra.Frac64(t[1], t[2])
 			if at[c].Equal(x) && at[s].Equal(y) || try(func(q jet.Point) { q[c], q[s] = x, y }) {
 				break
 			}
 		}
 	}
 	for range 2 {
-		for _, v := range p.free {
+		for _, v := range p.Free {
 			for _, x := range simplerThan(at[v]) {
 				if try(func(q jet.Point) { q[v] = x }) {
 					break

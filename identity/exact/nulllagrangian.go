@@ -1,0 +1,202 @@
+package exact
+
+import (
+	"slices"
+
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/jet"
+)
+
+// NullLagrangian is N = div of a potential: a minor of the Hessian or of the
+// Jacobian, times a coefficient with which it still is a divergence.
+type NullLagrangian struct {
+	Value     algebra.Fraction
+	Potential []algebra.Fraction
+	Minor     algebra.Fraction
+	Coef      algebra.Fraction
+}
+
+// maxNull bounds the null Lagrangians that are combined.
+const maxNull = 60
+
+// Minors lists the minors of order two (and three, in the Hessian) that may be
+// added, times the coefficients that the quadratic part of the gap shows.
+func (d *Problem) Minors(g *Gap) ([]NullLagrangian, error) {
+	n := len(d.Ring.Coordinates)
+	var out []NullLagrangian
+	add := func(m *minor) error {
+		for _, c := range d.quadraticCoefficients(g, m.order) {
+			if len(out) >= maxNull {
+				return nil
+			}
+			l, ok, err := d.nullFrom(m, c)
+			if err != nil {
+				return err
+			}
+			if ok && !slices.ContainsFunc(out, func(o NullLagrangian) bool { return o.Value.Equal(l.Value) || o.Value.Equal(l.Value.Neg()) }) {
+				out = append(out, l)
+			}
+		}
+		return nil
+	}
+	for u := range d.Ring.Unknowns {
+		for i := range n {
+			for j := i + 1; j < n; j++ {
+				for a := range n {
+					for b := a + 1; b < n; b++ {
+						m, err := d.hessianMinor(u, i, j, a, b)
+						if err != nil {
+							return nil, err
+						}
+						if err := add(m); err != nil {
+							return nil, err
+						}
+					}
+				}
+			}
+		}
+		for w := u + 1; w < len(d.Ring.Unknowns); w++ {
+			for i := range n {
+				for j := i + 1; j < n; j++ {
+					m, err := d.jacobianMinor(u, w, i, j)
+					if err != nil {
+						return nil, err
+					}
+					if err := add(m); err != nil {
+						return nil, err
+					}
+				}
+			}
+		}
+	}
+	return out, nil
+}
+
+// minor is f·minor = D_a(F q_b) - D_b(F q_a) with F = ∫ f dp: p and q are two
+// functions whose Jacobian in the coordinates a, b it is.
+type minor struct {
+	order int // of the derivatives in it
+	Value algebra.Fraction
+	p, q  algebra.Var
+	a, b  int
+}
+
+func (d *Problem) minorOf(p, q algebra.Var, a, b, order int) (*minor, error) {
+	m := &minor{p: p, q: q, a: a, b: b, order: order}
+	part := func(v algebra.Var, i int) (algebra.Fraction, error) { return d.Ring.Total(jet.Of(v), i) }
+	pa, err := part(p, a)
+	if err != nil {
+		return nil, err
+	}
+	qb, err := part(q, b)
+	if err != nil {
+		return nil, err
+	}
+	pb, err := part(p, b)
+	if err != nil {
+		return nil, err
+	}
+	qa, err := part(q, a)
+	if err != nil {
+		return nil, err
+	}
+	m.Value, err = d.Ring.Reduce(pa.Mul(qb).Sub(pb.Mul(qa)))
+	return m, err
+}
+
+func (d *Problem) hessianMinor(u, i, j, a, b int) (*minor, error) {
+	p, err := d.Ring.JetVar(u, jet.Index{}.Plus(i), jet.NoSide)
+	if err != nil {
+		return nil, err
+	}
+	q, err := d.Ring.JetVar(u, jet.Index{}.Plus(j), jet.NoSide)
+	if err != nil {
+		return nil, err
+	}
+	return d.minorOf(p, q, a, b, 2)
+}
+
+func (d *Problem) jacobianMinor(u, w, a, b int) (*minor, error) {
+	p, err := d.Ring.JetVar(u, jet.Index{}, jet.NoSide)
+	if err != nil {
+		return nil, err
+	}
+	q, err := d.Ring.JetVar(w, jet.Index{}, jet.NoSide)
+	if err != nil {
+		return nil, err
+	}
+	return d.minorOf(p, q, a, b, 1)
+}
+
+// nullFrom multiplies a minor by a coefficient in the constants and in the two
+// functions whose Jacobian it is. Other coefficients spoil the divergence.
+func (d *Problem) nullFrom(m *minor, c algebra.Fraction) (NullLagrangian, bool, error) {
+	var l NullLagrangian
+	if m.Value.IsZero() {
+		return l, false, nil
+	}
+	for _, v := range c.Vars() {
+		if k := d.Ring.Symbol(v).Kind; k != jet.Constant && v != m.p && v != m.q {
+			return l, false, nil
+		}
+	}
+	// F = ∫ f dp, f polynomial in p.
+	num := c.Num()
+	var integral algebra.Poly
+	for e, co := range num.Coeffs(m.p) {
+		integral = integral.Add(co.Mul(algebra.Variable(m.p).Pow(e + 1)).Scale(algebra.Frac64(1, int64(e+1))))
+	}
+	f := algebra.FromFactors(integral, c.DenFactors())
+	l = NullLagrangian{Value: c.Mul(m.Value), Minor: m.Value, Coef: c, Potential: make([]algebra.Fraction, len(d.Ring.Coordinates))}
+	qa, err := d.Ring.Total(jet.Of(m.q), m.a)
+	if err != nil {
+		return l, false, err
+	}
+	qb, err := d.Ring.Total(jet.Of(m.q), m.b)
+	if err != nil {
+		return l, false, err
+	}
+	l.Potential[m.a] = f.Mul(qb)
+	l.Potential[m.b] = f.Mul(qa).Neg()
+	return l, true, nil
+}
+
+// quadraticCoefficients are the monomials in constants and lower jets that
+// stand beside products of two derivatives of the given order in the gap.
+func (d *Problem) quadraticCoefficients(g *Gap, order int) []algebra.Fraction {
+	var out []algebra.Fraction
+	den := algebra.FromFactors(algebra.Const(algebra.Int(1)), g.Value.DenFactors())
+	for m := range g.Value.Num().Terms() {
+		var rest []algebra.Power
+		degree := 0
+		for _, pw := range m.Powers() {
+			s := d.Ring.Symbol(pw.Var)
+			switch {
+			case s.Kind == jet.Derivative && s.Index.Order() == order:
+				degree += pw.Exp
+			case s.Kind == jet.Cosine || s.Kind == jet.Sine:
+			default:
+				rest = append(rest, pw)
+			}
+		}
+		if degree != 2 {
+			continue
+		}
+		c := algebra.FromPoly(algebra.FromTerms([]algebra.Term{{Mono: algebra.NewMonomial(rest...), Coef: algebra.Int(1)}})).Mul(den)
+		if content, p := c.Num().Primitive(); !content.IsOne() {
+			c = algebra.FromFactors(p, c.DenFactors())
+		}
+		// The denominator may hold a number; only the shape matters.
+		if !slices.ContainsFunc(out, func(o algebra.Fraction) bool {
+			q, ok := o.Quo(c)
+			if !ok {
+				return false
+			}
+			_, same := q.IsConst()
+			return same
+		}) {
+			out = append(out, c)
+		}
+	}
+	return out
+}
