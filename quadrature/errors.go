@@ -41,6 +41,8 @@ const (
 	Discontinuous
 	// NotNormal: the jump of the gradient is not parallel to the normal.
 	NotNormal
+	// NotSmooth: the gradient of a trace jumps from the surface to its own side.
+	NotSmooth
 	// NotFinite: a position, tangent, trace or density is infinite or NaN.
 	NotFinite
 	// Degenerate: the area element vanishes on more than isolated points or
@@ -56,6 +58,8 @@ func (r Reason) String() string {
 		return "u discontinuous across the surface"
 	case NotNormal:
 		return "jump of the gradient not normal to the surface"
+	case NotSmooth:
+		return "trace with a kink on the surface"
 	case NotFinite:
 		return "not finite"
 	case Degenerate:
@@ -94,6 +98,8 @@ func (e *PlaceError) Error() string {
 		fmt.Fprintf(&b, "u is discontinuous across the surface%s: jump %.6g against terms of size %.6g", place, e.Residual, e.Scale)
 	case NotNormal:
 		fmt.Fprintf(&b, "the jump of the gradient is not normal to the surface%s: tangential part %.6g against gradients of size %.6g", place, e.Residual, e.Scale)
+	case NotSmooth:
+		fmt.Fprintf(&b, "the %s trace has a kink on the surface itself%s: its gradient jumps by %.6g", e.What, place, e.Residual)
 	case NotFinite:
 		fmt.Fprintf(&b, "the %s is not finite%s", e.What, place)
 	case Degenerate:

@@ -251,10 +251,11 @@ func (e *evaluator) rowDone(s float64) error {
 	return nil
 }
 
-// patrol checks the traces at n places spread evenly over the piece (the
-// multiples of powers of the generalised golden section, Roberts 2018): where
-// the integrand is smooth the nodes are so few that a fault on a small part of
-// the surface lies between them. The density is not evaluated.
+// patrol checks the traces, and that they are smooth, at n places spread evenly
+// over the piece (the multiples of powers of the generalised golden section,
+// Roberts 2018): where the integrand is smooth the nodes are so few that a fault
+// on a small part of the surface lies between them. The density is not
+// evaluated.
 func (e *evaluator) patrol(n int) error {
 	step := [2]float64{golden}
 	if e.p.n == 2 {
@@ -272,8 +273,49 @@ func (e *evaluator) patrol(n int) error {
 		if e.area == 0 {
 			continue
 		}
-		if _, _, err := e.checkTraces(); err != nil {
+		_, size, err := e.checkTraces()
+		if err == nil && e.tr.HasValue {
+			err = e.smooth(size)
+		}
+		if err != nil {
 			return err
+		}
+	}
+	return nil
+}
+
+// smooth checks that the gradient of u at the present place is its limit from
+// the side that it is the trace on. At a kink on the surface itself, such as
+// that of |x| on x = 0, the value of the derivative means nothing. The gradient
+// is compared with those at two small distances: where it is continuous the
+// difference falls with the distance.
+func (e *evaluator) smooth(size float64) error {
+	const step, ratio = 0x1p-20, 0x1p-10
+	far := step * e.whole
+	near := math.Max(ratio*far, 64*epsilon*e.reach)
+	if near > far/8 {
+		return nil // too far from the origin to tell
+	}
+	x, grad := make([]float64, e.p.dim), make([]float64, e.p.dim)
+	differs := func(f func(x, grad []float64) float64, at []float64, h float64) float64 {
+		for k := range x {
+			x[k] = e.x[k] + h*e.nu[k]
+		}
+		f(x, grad)
+		for k := range grad {
+			grad[k] -= at[k]
+		}
+		return norm(grad)
+	}
+	for i, f := range []func(x, grad []float64) float64{e.tr.Plus, e.tr.Minus} {
+		what, at, sign := "plus", e.plus, 1.0
+		if i == 1 {
+			what, at, sign = "minus", e.minus, -1
+		}
+		one := differs(f, at, sign*far)
+		two := differs(f, at, sign*near)
+		if finite(one) && finite(two) && two > 1e-3*(size+one) && two > one/2 {
+			return e.fail(NotSmooth, what, two, size)
 		}
 	}
 	return nil

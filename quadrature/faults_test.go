@@ -137,3 +137,54 @@ func TestOverflow(t *testing.T) {
 		t.Errorf("1e300: %v, %v", r.Energy, err)
 	}
 }
+
+// At a kink of u on the surface itself the derivative is neither limit.
+func TestKinksOnTheSurface(t *testing.T) {
+	wall := Polygon{[][]float64{{0, -1, 0}, {0, 1, 0}, {0, 1, 1}, {0, -1, 1}}}
+	sign := func(v float64) float64 {
+		switch {
+		case v > 0:
+			return 1
+		case v < 0:
+			return -1
+		}
+		return 0
+	}
+	bent := func(x, g []float64) float64 { // |x|
+		copy(g, []float64{sign(x[0]), 0, 0})
+		return math.Abs(x[0])
+	}
+	partly := func(x, g []float64) float64 { // max(0, y) x + |x| where y < 0
+		w := math.Max(0, x[1])
+		copy(g, []float64{w + sign(x[0])*math.Max(0, -sign(x[1])), 0, 0})
+		return w*x[0] + math.Max(0, -sign(x[1]))*math.Abs(x[0])
+	}
+	across := func(x, g []float64) float64 { // |y|, a kink that only crosses the surface
+		copy(g, []float64{0, sign(x[1]), 0})
+		return math.Abs(x[1])
+	}
+	root := func(x, g []float64) float64 { // a gradient like the root of the distance
+		d := math.Max(0, x[0])
+		copy(g, []float64{1 + math.Sqrt(d), 0, 0})
+		return d + d*math.Sqrt(d)/1.5
+	}
+	for _, c := range []struct {
+		name        string
+		plus, minus func(x, g []float64) float64
+		refused     bool
+	}{
+		{"both", bent, bent, true},
+		{"plus", bent, linear(0, -1, 0, 0), true},
+		{"minus", linear(0, 1, 0, 0), bent, true},
+		{"on a half", partly, linear(0, -1, 0, 0), true},
+		{"across", across, across, false},
+		{"root", root, linear(0, -1, 0, 0), false},
+		{"none", linear(0, 1, 0, 0), linear(0, -1, 0, 0), false},
+	} {
+		_, err := Integrate(context.Background(), wall, Traces{Plus: c.plus, Minus: c.minus, HasValue: true}, layeredDensity, Options{})
+		var place *PlaceError
+		if errors.As(err, &place) != c.refused || c.refused && place.Reason != NotSmooth {
+			t.Errorf("%s: %v", c.name, err)
+		}
+	}
+}

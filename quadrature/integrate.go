@@ -82,16 +82,18 @@ type Result struct {
 // Integrate integrates a density over a surface.
 //
 // At every node used, and where there are traces at further places spread over
-// the surface, it checks that positions, tangents, traces and density
-// are finite, that both traces lie on the well, that u is continuous across
-// the surface (if the values are known) and that the jump of the gradient is
+// the surface, it checks that positions, tangents, traces and density are
+// finite, that both traces lie on the well, that u is continuous across the
+// surface (if the values are known) and that the jump of the gradient is
 // parallel to the normal, each relative to the sum of the absolute terms. If
 // not, or if the area element vanishes on a whole region, the error is a
-// *PlaceError. Traces without functions are not checked and are passed on as
-// nil.
+// *PlaceError, and so it is where the gradient of u jumps between the surface
+// and its own side. Traces without functions are not checked and are passed on
+// as nil.
 //
 // If the tolerance is not met the result is returned together with ErrBudget
-// or ErrAccuracy. An integral that overflows has the error ErrRange. A cancelled context ends the work at once with its cause.
+// or ErrAccuracy. An integral that overflows has the error ErrRange. A cancelled
+// context ends the work at once with its cause.
 func Integrate(ctx context.Context, s Surface, tr Traces, d Density, o Options) (Result, error) {
 	if s == nil || d == nil {
 		return Result{}, fmt.Errorf("quadrature: a surface and a density are needed")

@@ -99,7 +99,10 @@ patch = { map = ["sqrt(2 k t) cos(a)", "sqrt(2 k t) sin(a)", "t"], over = { t = 
 		{"the kink of a trace on the surface", eikonalHead, `plus = "abs(x)"
 minus = "abs(x)"
 polygon = [["0", "-1"], ["0", "1"]]
-`, []string{"trace is off the well", "residual is 0.5"}},
+`, []string{"plus trace has a kink on the surface", "at (x, y) = (0, "}},
+		{"such a kink on one side", layeredHead, `plus = "x + z/2"
+minus = "-abs(x) + z/2"
+` + wall, []string{"minus trace has a kink on the surface"}},
 		{"gradient off the well", eikonalHead, `plus_gradient = ["t/2", "-1"]
 minus_gradient = ["0", "1"]
 patch = { map = ["t", "0"], over = { t = ["0", "1"] } }

@@ -215,7 +215,7 @@ func (c *combination) evaluate() (Result, error) {
 		return r.refuse(reason), nil
 	}
 	if onWell {
-		options.Well = lenient(options.Well)
+		options.Well = nil
 	}
 	q, err := c.integrate(surface, tr, density, options)
 	if c.ctx.Err() != nil {
@@ -237,27 +237,6 @@ func (c *combination) evaluate() (Result, error) {
 	}
 	r.Met = r.Verdict == r.Expected || r.Verdict == "" && r.Expected == ""
 	return r, nil
-}
-
-// lenient is a residual that is judged a thousand times less strictly, and
-// against the largest terms met on the surface, once enough are known. On a
-// trace that is on the well exactly rounding is all that is left, but for kinks
-// of abs, where the derivative is no limit from either side.
-func lenient(well func([]float64) (float64, float64)) func([]float64) (float64, float64) {
-	if well == nil {
-		return nil
-	}
-	const enough = 100
-	calls, most := 0, 0.0
-	return func(grad []float64) (residual, scale float64) {
-		residual, scale = well(grad)
-		calls++
-		most = math.Max(most, scale)
-		if calls <= enough && !math.IsNaN(residual) {
-			return 0, most
-		}
-		return residual, 1000 * most
-	}
 }
 
 // refuse is a result without an energy.

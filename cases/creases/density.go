@@ -170,6 +170,8 @@ func (c *combination) explain(err error) string {
 		return fmt.Sprintf("u is discontinuous across the surface%s: it jumps by %.6g, its terms are of size %.6g", at, p.Residual, p.Scale)
 	case quadrature.NotNormal:
 		return fmt.Sprintf("the jump of the gradient is not normal to the surface%s: its tangential part is %.6g, the gradients are of size %.6g", at, p.Residual, p.Scale)
+	case quadrature.NotSmooth:
+		return fmt.Sprintf("the %s trace has a kink on the surface itself%s: give it as u is on that side, without abs", p.What, at)
 	case quadrature.NotFinite:
 		return fmt.Sprintf("the %s is not finite%s", p.What, at)
 	case quadrature.Degenerate:
