@@ -5,7 +5,7 @@ import (
 	"creaseproof/entropy"
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/source"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 )
 
 // Case is a case file with its formulas read.
@@ -21,10 +21,10 @@ type Case struct {
 
 // Claim is a claim and what the file expects of it.
 type Claim struct {
-	*identity.Claim
+	*claim.Claim
 	Expected Expectation
 
-	pos source.Pos // of the statement
+	Pos source.Pos // of the statement
 }
 
 // Parse reads a case. The name is the path as the user gave it, "-" for
@@ -51,6 +51,11 @@ func Parse(name string, data []byte) (*Case, error) {
 		return nil, b.list
 	}
 	return c, nil
+}
+
+// Fault is an error at a place of the case.
+func (c *Case) Fault(pos source.Pos, advice, format string, args ...any) error {
+	return c.text.at(pos, advice, format, args...)
 }
 
 // Place gives an error of evaluating formulas of the case its place in the

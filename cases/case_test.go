@@ -14,7 +14,7 @@ import (
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
 	"creaseproof/entropy/source"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 )
 
 const space = `[space]
@@ -117,7 +117,7 @@ modulo = ["R", "u_y = u_z^2", "u_x = 0"]
 		modulo = append(modulo, formula.Text(m))
 	}
 	assert.Equal(t, []string{"R", "u_y - u_z^2", "u_x"}, modulo)
-	assert.Equal(t, Expectation{Verdict: identity.Proved}, c.Expected)
+	assert.Equal(t, Expectation{Verdict: claim.Proved}, c.Expected)
 	require.Len(t, c.Assumed(), 2)
 }
 
@@ -137,7 +137,7 @@ best = "C"
 	assert.Equal(t, "C", c.Claims[1].Best)
 	assert.Equal(t, []string{"eps", "C"}, c.Claims[1].Setting.Constants)
 	assert.Equal(t, []string{"eps"}, c.Setting.Constants, "the setting of the case is left as it is")
-	assert.Equal(t, identity.Proved, c.Claims[0].Expected.Verdict)
+	assert.Equal(t, claim.Proved, c.Claims[0].Expected.Verdict)
 }
 
 func TestGivenAndJump(t *testing.T) {

@@ -7,20 +7,20 @@ import (
 	"creaseproof/entropy"
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/source"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 )
 
 // claim reads a claim in the scope it has: that of the setting, the names of
 // solve and best beside its constants, brackets for jumps at a jump.
 func (b *builder) claim(f *casefile.Claim) *Claim {
-	c := &Claim{Claim: &identity.Claim{Name: f.Name, Setting: b.set, Divergence: f.Divergence, Jump: f.At == "jump"}, pos: position(f.States)}
+	c := &Claim{Claim: &claim.Claim{Name: f.Name, Setting: b.set, Divergence: f.Divergence, Jump: f.At == "jump"}, Pos: position(f.States)}
 	scope := b.claimScope(f, c)
 	if scope == nil {
 		return c
 	}
 	var err error
 	if c.Statement, err = scope.ParseStatement(f.States); err != nil {
-		b.add(b.text.place(err, c.pos))
+		b.add(b.text.place(err, c.Pos))
 		return c
 	}
 	for _, t := range f.Modulo {
@@ -139,7 +139,7 @@ func (b *builder) given(scope *formula.Scope, f *casefile.Claim, c *Claim) {
 	for _, a := range f.Given {
 		u := slices.Index(b.set.Unknowns, fold(a.Name))
 		if u < 0 {
-			b.fault(a.Name.Pos, `write given = { u = "..." }; a derivative that is a constant belongs to restrict`, "%q is no unknown", clip(a.Name.S, 60))
+			b.fault(a.Name.Pos, `write given = { u = "..." }; a derivative that is a constant belongs to restrict`, "%q is no unknown", Clip(a.Name.S, 60))
 			continue
 		}
 		if _, twice := c.Given[u]; twice {
@@ -151,7 +151,7 @@ func (b *builder) given(scope *formula.Scope, f *casefile.Claim, c *Claim) {
 			continue
 		}
 		if bad := b.depends(n); bad != nil {
-			b.fault(bad.At(), "write it in coordinates and constants", "a closed form of %s depends on an unknown: %s", b.set.Unknowns[u], clip(formula.Text(bad), 60))
+			b.fault(bad.At(), "write it in coordinates and constants", "a closed form of %s depends on an unknown: %s", b.set.Unknowns[u], Clip(formula.Text(bad), 60))
 			continue
 		}
 		if c.Given == nil {
@@ -169,11 +169,11 @@ func (b *builder) restrict(scope *formula.Scope, f *casefile.Claim, c *Claim) {
 			continue
 		}
 		if key.unknown < 0 || key.index.Order() == 0 {
-			b.fault(a.Name.Pos, `write restrict = { u_z = "1/2" }; u itself belongs to given`, "restrict fixes a derivative, and %q is none", clip(a.Name.S, 60))
+			b.fault(a.Name.Pos, `write restrict = { u_z = "1/2" }; u itself belongs to given`, "restrict fixes a derivative, and %q is none", Clip(a.Name.S, 60))
 			continue
 		}
-		if slices.ContainsFunc(c.Restrict, func(r identity.Restriction) bool { return r.Unknown == key.unknown && r.Index == key.index }) {
-			b.fault(a.Name.Pos, "keep one of the two", "%s is restricted twice", clip(a.Name.S, 60))
+		if slices.ContainsFunc(c.Restrict, func(r claim.Restriction) bool { return r.Unknown == key.unknown && r.Index == key.index }) {
+			b.fault(a.Name.Pos, "keep one of the two", "%s is restricted twice", Clip(a.Name.S, 60))
 			continue
 		}
 		n := b.expr(scope, a.Formula)
@@ -181,10 +181,10 @@ func (b *builder) restrict(scope *formula.Scope, f *casefile.Claim, c *Claim) {
 			continue
 		}
 		if bad := b.depends(n); bad != nil {
-			b.fault(bad.At(), "write a constant", "a restriction to something that is no constant: %s", clip(formula.Text(bad), 60))
+			b.fault(bad.At(), "write a constant", "a restriction to something that is no constant: %s", Clip(formula.Text(bad), 60))
 			continue
 		}
-		c.Restrict = append(c.Restrict, identity.Restriction{Unknown: key.unknown, Index: key.index, Value: n})
+		c.Restrict = append(c.Restrict, claim.Restriction{Unknown: key.unknown, Index: key.index, Value: n})
 	}
 }
 
@@ -200,10 +200,10 @@ func (b *builder) box(scope *formula.Scope, f *casefile.Claim, c *Claim) {
 			continue
 		}
 		if lo.Cmp(hi) >= 0 {
-			b.fault(i.Name.Pos, "write [lower, upper]", "the box of %s is empty or a point: [%s, %s]", clip(i.Name.S, 60), clip(lo.RatString(), 40), clip(hi.RatString(), 40))
+			b.fault(i.Name.Pos, "write [lower, upper]", "the box of %s is empty or a point: [%s, %s]", Clip(i.Name.S, 60), Clip(lo.RatString(), 40), Clip(hi.RatString(), 40))
 			continue
 		}
-		c.Box = append(c.Box, identity.Bound{Node: key.node, Lo: lo, Hi: hi})
+		c.Box = append(c.Box, claim.Bound{Node: key.node, Lo: lo, Hi: hi})
 	}
 }
 
@@ -215,10 +215,10 @@ func (b *builder) integrability(scope *formula.Scope, f *casefile.Claim, c *Clai
 			continue
 		}
 		if key.unknown < 0 {
-			b.fault(e.Name.Pos, "write integrability = { u_x = 3 }", "integrability is of unknowns and their derivatives, and %q is none", clip(e.Name.S, 60))
+			b.fault(e.Name.Pos, "write integrability = { u_x = 3 }", "integrability is of unknowns and their derivatives, and %q is none", Clip(e.Name.S, 60))
 			continue
 		}
-		c.Integrability = append(c.Integrability, identity.Exponent{Node: key.node, P: e.P})
+		c.Integrability = append(c.Integrability, claim.Exponent{Node: key.node, P: e.P})
 	}
 }
 

@@ -7,35 +7,35 @@ import (
 
 	"creaseproof/cases/casefile"
 	"creaseproof/entropy/formula"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 )
 
 // Expectation is what a file expects of a claim: a verdict and, where
 // constants are asked for, what they are.
 type Expectation struct {
-	Verdict  identity.Verdict
+	Verdict  claim.Verdict
 	Solution string // as written; "" where any solution will do
 }
 
 // Met reports whether a record is as expected.
-func (e Expectation) Met(r *identity.Record) bool {
+func (e Expectation) Met(r *claim.Record) bool {
 	return r != nil && r.Verdict == e.Verdict && (e.Solution == "" || sameSolution(e.Solution, r.Solution))
 }
 
 func (b *builder) expectation(f *casefile.Claim) Expectation {
-	e := Expectation{Verdict: identity.Proved}
+	e := Expectation{Verdict: claim.Proved}
 	if f.Expect == nil {
 		return e
 	}
-	switch v := identity.Verdict(strings.TrimSpace(f.Expect.S)); v {
-	case identity.Proved, identity.Refuted, identity.Supported, identity.Open:
+	switch v := claim.Verdict(strings.TrimSpace(f.Expect.S)); v {
+	case claim.Proved, claim.Refuted, claim.Supported, claim.Open:
 		e.Verdict = v
 		return e
 	}
 	asked := folded(f.Solve)
 	if f.Best != nil {
 		if !boundsOf(f.Expect.S, fold(*f.Best)) {
-			b.fault(position(*f.Expect), `write a verdict, or the set of values such as "C = 2", "C >= 1/2" or "-2 <= C <= 2"`, "%q is no verdict and no set of values of %s", clip(f.Expect.S, 60), fold(*f.Best))
+			b.fault(position(*f.Expect), `write a verdict, or the set of values such as "C = 2", "C >= 1/2" or "-2 <= C <= 2"`, "%q is no verdict and no set of values of %s", Clip(f.Expect.S, 60), fold(*f.Best))
 			return e
 		}
 		e.Solution = strings.TrimSpace(f.Expect.S)
@@ -47,10 +47,10 @@ func (b *builder) expectation(f *casefile.Claim) Expectation {
 		folded, err := formula.FoldName(name)
 		switch {
 		case !ok || err != nil || spaceless(value) == "":
-			b.fault(position(*f.Expect), `write a verdict, or a solution such as "c = 4/3" or "a = 1, b = 2"`, "%q is no verdict and no solution", clip(f.Expect.S, 60))
+			b.fault(position(*f.Expect), `write a verdict, or a solution such as "c = 4/3" or "a = 1, b = 2"`, "%q is no verdict and no solution", Clip(f.Expect.S, 60))
 			return e
 		case !slices.Contains(asked, folded):
-			b.fault(position(*f.Expect), "name it in solve or best", "%q is expected to be found, and is not asked for", clip(name, 60))
+			b.fault(position(*f.Expect), "name it in solve or best", "%q is expected to be found, and is not asked for", Clip(name, 60))
 			return e
 		}
 	}

@@ -5,7 +5,7 @@ import (
 
 	"github.com/stretchr/testify/assert"
 
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 )
 
 func TestSameSolution(t *testing.T) {
@@ -32,14 +32,14 @@ func TestSameSolution(t *testing.T) {
 }
 
 func TestMet(t *testing.T) {
-	rec := func(v identity.Verdict, s string) *identity.Record { return &identity.Record{Verdict: v, Solution: s} }
-	proved := Expectation{Verdict: identity.Proved}
-	assert.True(t, proved.Met(rec(identity.Proved, "c = 7")))
-	assert.False(t, proved.Met(rec(identity.Supported, "")), "supported is not proved")
+	rec := func(v claim.Verdict, s string) *claim.Record { return &claim.Record{Verdict: v, Solution: s} }
+	proved := Expectation{Verdict: claim.Proved}
+	assert.True(t, proved.Met(rec(claim.Proved, "c = 7")))
+	assert.False(t, proved.Met(rec(claim.Supported, "")), "supported is not proved")
 	assert.False(t, proved.Met(nil))
-	solution := Expectation{Verdict: identity.Proved, Solution: "c = 4/3"}
-	assert.True(t, solution.Met(rec(identity.Proved, "c = 4/3")))
-	assert.False(t, solution.Met(rec(identity.Proved, "c = 2")))
-	assert.False(t, solution.Met(rec(identity.Open, "c = 4/3")), "a solution that is not proved")
-	assert.True(t, Expectation{Verdict: identity.Refuted}.Met(rec(identity.Refuted, "")))
+	solution := Expectation{Verdict: claim.Proved, Solution: "c = 4/3"}
+	assert.True(t, solution.Met(rec(claim.Proved, "c = 4/3")))
+	assert.False(t, solution.Met(rec(claim.Proved, "c = 2")))
+	assert.False(t, solution.Met(rec(claim.Open, "c = 4/3")), "a solution that is not proved")
+	assert.True(t, Expectation{Verdict: claim.Refuted}.Met(rec(claim.Refuted, "")))
 }

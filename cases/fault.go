@@ -60,7 +60,7 @@ func (t *text) place(err error, fallback source.Pos) error {
 	}
 	var name *formula.NameError
 	if errors.As(err, &name) {
-		return t.at(fallback, name.Advice, "%s %q: %s", name.Kind, clip(name.Name, 60), name.Problem)
+		return t.at(fallback, name.Advice, "%s %q: %s", name.Kind, Clip(name.Name, 60), name.Problem)
 	}
 	return t.at(fallback, "", "%v", err)
 }
@@ -83,8 +83,8 @@ func (f *faults) fault(pos source.Pos, advice, format string, args ...any) {
 	f.add(f.text.at(pos, advice, format, args...))
 }
 
-// clip shortens a text to at most n bytes, at a rune.
-func clip(s string, n int) string {
+// Clip shortens a text to at most n bytes, at a rune.
+func Clip(s string, n int) string {
 	if len(s) <= n {
 		return s
 	}

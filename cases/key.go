@@ -45,7 +45,7 @@ func (b *builder) key(scope *formula.Scope, name casefile.Name) key {
 		for _, c := range n.By {
 			i := slices.Index(b.set.Coordinates, c)
 			if i < 0 {
-				b.fault(name.Pos, "write it along coordinates", "%q is a derivative along an axis of the frame", clip(name.S, 60))
+				b.fault(name.Pos, "write it along coordinates", "%q is a derivative along an axis of the frame", Clip(name.S, 60))
 				return out
 			}
 			out.index = out.index.Plus(i)
@@ -53,7 +53,7 @@ func (b *builder) key(scope *formula.Scope, name casefile.Name) key {
 		out.unknown, out.node = u, n
 	}
 	if out.node == nil {
-		b.fault(name.Pos, "name a coordinate, a constant, or a derivative such as u_x", "%q cannot stand here", clip(name.S, 60))
+		b.fault(name.Pos, "name a coordinate, a constant, or a derivative such as u_x", "%q cannot stand here", Clip(name.S, 60))
 	}
 	return out
 }
@@ -70,7 +70,7 @@ func (b *builder) number(scope *formula.Scope, t source.Text) *big.Rat {
 		if pos.Line == 0 {
 			pos = position(t)
 		}
-		b.fault(pos, `write a number such as "1", "-3/2" or "0.25"`, "%s is not a rational number", clip(formula.Text(bad), 60))
+		b.fault(pos, `write a number such as "1", "-3/2" or "0.25"`, "%s is not a rational number", Clip(formula.Text(bad), 60))
 		return nil
 	}
 	return r

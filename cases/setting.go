@@ -105,7 +105,7 @@ func (b *builder) frame(f *casefile.Frame) bool {
 	for i, n := range f.Plane {
 		out.Plane[i] = slices.Index(b.set.Coordinates, fold(n))
 		if out.Plane[i] < 0 {
-			b.fault(n.Pos, "the plane of a frame is a pair of coordinates", "%q is no coordinate", clip(n.S, 60))
+			b.fault(n.Pos, "the plane of a frame is a pair of coordinates", "%q is no coordinate", Clip(n.S, 60))
 			return false
 		}
 		out.Axes[i] = fold(f.Axes[i])
@@ -133,13 +133,13 @@ func (b *builder) field(f *casefile.Field) {
 		case isAxis:
 			axis = &c.Index
 		case at < 0:
-			b.fault(c.Index.Pos, "a component is named by a coordinate or by an axis of the frame", "%q is no direction", clip(c.Index.S, 60))
+			b.fault(c.Index.Pos, "a component is named by a coordinate or by an axis of the frame", "%q is no direction", Clip(c.Index.S, 60))
 			continue
 		case frame != nil && slices.Contains(frame.Plane[:], at):
 			plane = &c.Index
 		}
 		if _, twice := out.Components[name]; twice {
-			b.fault(c.Index.Pos, "Greek letters and their names are one name", "the component %q of %s is given twice", clip(c.Index.S, 60), out.Name)
+			b.fault(c.Index.Pos, "Greek letters and their names are one name", "the component %q of %s is given twice", Clip(c.Index.S, 60), out.Name)
 			continue
 		}
 		if n := b.expr(b.scope, c.Formula); n != nil {
@@ -148,7 +148,7 @@ func (b *builder) field(f *casefile.Field) {
 	}
 	if axis != nil && plane != nil {
 		b.fault(plane.Pos, "give both components in the plane along the axes, or both along the coordinates",
-			"the field %s has a component along %s beside one along the axis %s", out.Name, clip(plane.S, 60), clip(axis.S, 60))
+			"the field %s has a component along %s beside one along the axis %s", out.Name, Clip(plane.S, 60), Clip(axis.S, 60))
 	}
 	b.set.Fields[out.Name] = out
 }

@@ -10,6 +10,7 @@ import (
 
 	"creaseproof/cases"
 	"creaseproof/cases/library"
+	"creaseproof/cases/run"
 	"creaseproof/identity"
 
 	"github.com/spf13/cobra"
@@ -17,7 +18,7 @@ import (
 
 func newCheck(s streams) *cobra.Command {
 	var c common
-	opt := cases.Options{Options: identity.DefaultOptions()}
+	opt := run.Options{Options: identity.DefaultOptions()}
 	cmd := &cobra.Command{
 		Use:   "check [CASE...]",
 		Short: "Decide every claim",
@@ -61,7 +62,7 @@ or - for standard input; without one, every built-in case is taken.`,
 }
 
 // selected are the cases that have a claim of the names asked for.
-func selected(list []*cases.Case, opt *cases.Options) []*cases.Case {
+func selected(list []*cases.Case, opt *run.Options) []*cases.Case {
 	if len(opt.Only) == 0 {
 		return list
 	}
@@ -89,11 +90,11 @@ type request struct {
 	all  bool // the built-in cases, since none was named
 }
 
-func check(ctx context.Context, list []*cases.Case, opt cases.Options, s streams, say *complaints, q request) error {
+func check(ctx context.Context, list []*cases.Case, opt run.Options, s streams, say *complaints, q request) error {
 	p := newProgress(s, total(list, &opt))
 	opt.Progress = p.inside
 	text := &checkText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt}
-	opt.Report = func(r *cases.Result) {
+	opt.Report = func(r *run.Result) {
 		p.report(func() {
 			if !q.json {
 				text.result(r)
@@ -103,7 +104,7 @@ func check(ctx context.Context, list []*cases.Case, opt cases.Options, s streams
 			}
 		})
 	}
-	out := cases.Check(ctx, list, opt)
+	out := run.Check(ctx, list, opt)
 	p.end()
 	if q.json {
 		if err := writeJSON(s.out, out.Document(list)); err != nil {
@@ -118,7 +119,7 @@ func check(ctx context.Context, list []*cases.Case, opt cases.Options, s streams
 	return finish(s, out.Interrupted, q.bad || out.Faulty(), out.Met())
 }
 
-func total(list []*cases.Case, opt *cases.Options) int {
+func total(list []*cases.Case, opt *run.Options) int {
 	n := 0
 	for _, c := range list {
 		for _, cl := range c.Claims {

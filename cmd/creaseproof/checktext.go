@@ -9,13 +9,14 @@ import (
 	"unicode/utf8"
 
 	"creaseproof/cases"
+	"creaseproof/cases/run"
 	"creaseproof/identity"
 )
 
 // checkText writes the results of check for people to read.
 type checkText struct {
 	sheet
-	opt   *cases.Options
+	opt   *run.Options
 	names int // columns of the names of the current case
 }
 
@@ -37,7 +38,7 @@ func (t *checkText) measure(c *cases.Case) {
 }
 
 // result writes one claim.
-func (t *checkText) result(r *cases.Result) {
+func (t *checkText) result(r *run.Result) {
 	if r.Case != t.current {
 		t.header(r.Case)
 		t.measure(r.Case)
@@ -150,7 +151,7 @@ func (t *checkText) without(list []*cases.Case) {
 }
 
 // summary writes the last line.
-func (t *checkText) summary(out *cases.Outcome, total int) {
+func (t *checkText) summary(out *run.Outcome, total int) {
 	if total == 0 {
 		return
 	}

@@ -6,6 +6,7 @@ import (
 	"time"
 
 	"creaseproof/cases"
+	"creaseproof/cases/run"
 
 	"github.com/spf13/cobra"
 )
@@ -40,7 +41,7 @@ or - for standard input; without one, every built-in case is taken.`,
 			if err != nil {
 				return err
 			}
-			opt := cases.EnergyOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
+			opt := run.EnergyOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
 			kept := list[:0]
 			for _, k := range list {
 				if countSurfaces(k, &opt) > 0 || len(c.only) == 0 && len(args) > 0 {
@@ -57,7 +58,7 @@ or - for standard input; without one, every built-in case is taken.`,
 	return cmd
 }
 
-func countSurfaces(c *cases.Case, opt *cases.EnergyOptions) int {
+func countSurfaces(c *cases.Case, opt *run.EnergyOptions) int {
 	n := 0
 	for i := range c.File.Surfaces {
 		if opt.Selected(c.File.Surfaces[i].Name) {
@@ -67,7 +68,7 @@ func countSurfaces(c *cases.Case, opt *cases.EnergyOptions) int {
 	return n
 }
 
-func energy(ctx context.Context, list []*cases.Case, opt cases.EnergyOptions, s streams, say *complaints, q request) error {
+func energy(ctx context.Context, list []*cases.Case, opt run.EnergyOptions, s streams, say *complaints, q request) error {
 	total := 0
 	for _, c := range list {
 		total += countSurfaces(c, &opt)
@@ -75,7 +76,7 @@ func energy(ctx context.Context, list []*cases.Case, opt cases.EnergyOptions, s 
 	p := newProgress(s, total)
 	text := &energyText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt, together: s.together}
 	p.inside("surfaces", 0, 0)
-	opt.Report = func(r *cases.EnergyResult) {
+	opt.Report = func(r *run.EnergyResult) {
 		p.report(func() {
 			if !q.json {
 				text.result(r)
@@ -86,7 +87,7 @@ func energy(ctx context.Context, list []*cases.Case, opt cases.EnergyOptions, s 
 		})
 		p.inside(r.Surface.Name, 0, 0)
 	}
-	out := cases.Energy(ctx, list, opt)
+	out := run.Energy(ctx, list, opt)
 	p.end()
 	if q.json {
 		if err := writeJSON(s.out, out.Document(list)); err != nil {

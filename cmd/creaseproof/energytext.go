@@ -9,13 +9,14 @@ import (
 	"creaseproof/cases"
 	"creaseproof/cases/casefile"
 	"creaseproof/cases/creases"
+	"creaseproof/cases/run"
 	"creaseproof/identity"
 )
 
 // energyText writes the results of energy for people to read.
 type energyText struct {
 	sheet
-	opt    *cases.EnergyOptions
+	opt    *run.EnergyOptions
 	names  int // columns of the names in the current case
 	values int // columns of the values
 
@@ -46,7 +47,7 @@ func (t *energyText) measure(c *cases.Case) {
 	}
 }
 
-func (t *energyText) result(r *cases.EnergyResult) {
+func (t *energyText) result(r *run.EnergyResult) {
 	if r.Case != t.current {
 		t.header(r.Case)
 		t.measure(r.Case)
@@ -130,7 +131,7 @@ func values(s *casefile.Surface, v *creases.Result) string {
 }
 
 // summary writes the last line.
-func (t *energyText) summary(out *cases.EnergyOutcome, surfaces int) {
+func (t *energyText) summary(out *run.EnergyOutcome, surfaces int) {
 	if surfaces == 0 {
 		return
 	}

@@ -10,5 +10,5 @@ import (
 func main() {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	context.AfterFunc(ctx, stop) // a second interrupt ends the process at once
-	os.Exit(run(ctx, os.Args[1:], terminalStreams()))
+	os.Exit(execute(ctx, os.Args[1:], terminalStreams()))
 }

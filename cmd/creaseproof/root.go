@@ -25,7 +25,7 @@ type status int
 func (s status) Error() string { return "exit status " + strconv.Itoa(int(s)) }
 
 // run runs one command and returns its exit status.
-func run(ctx context.Context, args []string, s streams) int {
+func execute(ctx context.Context, args []string, s streams) int {
 	root := newRoot(s)
 	root.SetArgs(args)
 	root.SetIn(s.in)

@@ -22,7 +22,7 @@ import (
 func call(t *testing.T, stdin string, args ...string) (code int, out, errs string) {
 	t.Helper()
 	var o, e bytes.Buffer
-	code = run(t.Context(), args, streams{in: strings.NewReader(stdin), out: &o, err: &e, width: defaultWidth})
+	code = execute(t.Context(), args, streams{in: strings.NewReader(stdin), out: &o, err: &e, width: defaultWidth})
 	return code, o.String(), e.String()
 }
 
@@ -231,7 +231,7 @@ func TestManyMistakesAreShort(t *testing.T) {
 
 func TestColour(t *testing.T) {
 	var o, e bytes.Buffer
-	code := run(t.Context(), []string{"check", "-"}, streams{in: strings.NewReader(space + yes + no), out: &o, err: &e, width: 80, colour: true, progress: true})
+	code := execute(t.Context(), []string{"check", "-"}, streams{in: strings.NewReader(space + yes + no), out: &o, err: &e, width: 80, colour: true, progress: true})
 	assert.Equal(t, 1, code)
 	assert.Contains(t, o.String(), "\x1b[32mproved")
 	assert.Contains(t, o.String(), "\x1b[1;31mNOT")
@@ -243,7 +243,7 @@ func TestWaitingForInputCanBeInterrupted(t *testing.T) {
 	require.NoError(t, err)
 	defer w.Close()
 	time.AfterFunc(20*time.Millisecond, cancel)
-	assert.Equal(t, 3, run(ctx, []string{"check", "-"}, streams{in: r, out: &bytes.Buffer{}, err: &bytes.Buffer{}}))
+	assert.Equal(t, 3, execute(ctx, []string{"check", "-"}, streams{in: r, out: &bytes.Buffer{}, err: &bytes.Buffer{}}))
 }
 
 // The built program, interrupted: what is decided is printed, soon.

@@ -1,10 +1,12 @@
-package cases
+package run
 
 import (
 	"context"
 	"errors"
 	"fmt"
 	"time"
+
+	"creaseproof/cases"
 
 	"creaseproof/identity"
 )
@@ -30,16 +32,16 @@ func (o *Options) Selected(name string) bool { return selected(o.Only, name) }
 // When the context ends, Check returns soon with the claims that were decided
 // by then. A claim that is not decided when Timeout is over is open. A panic
 // while a claim is decided makes that claim open, and no other.
-func Check(ctx context.Context, list []*Case, opt Options) *Outcome {
+func Check(ctx context.Context, list []*cases.Case, opt Options) *Outcome {
 	return check(ctx, list, opt, identity.Decide)
 }
 
 type decide func(context.Context, *identity.Claim, identity.Options) (*identity.Record, error)
 
-func check(ctx context.Context, list []*Case, opt Options, decide decide) *Outcome {
+func check(ctx context.Context, list []*cases.Case, opt Options, decide decide) *Outcome {
 	type todo struct {
-		c     *Case
-		claim *Claim
+		c     *cases.Case
+		claim *cases.Claim
 	}
 	var claims []todo
 	for _, c := range list {
@@ -81,7 +83,7 @@ func check(ctx context.Context, list []*Case, opt Options, decide decide) *Outco
 }
 
 // attempt decides one claim; nil where the context stopped it.
-func attempt(ctx context.Context, c *Case, claim *Claim, opt identity.Options, decide decide) (r *Result) {
+func attempt(ctx context.Context, c *cases.Case, claim *cases.Claim, opt identity.Options, decide decide) (r *Result) {
 	start := time.Now()
 	defer func() {
 		if p := recover(); p != nil {
@@ -103,7 +105,7 @@ func attempt(ctx context.Context, c *Case, claim *Claim, opt identity.Options, d
 	case stopped(ctx, err):
 		return nil
 	}
-	return &Result{Case: c, Claim: claim, Err: c.Place(err, claim.pos)}
+	return &Result{Case: c, Claim: claim, Err: c.Place(err, claim.Pos)}
 }
 
 // stopped reports whether an error says only that the context ended.
@@ -112,4 +114,4 @@ func stopped(ctx context.Context, err error) bool {
 }
 
 // internal is the reason given for a failure of the program itself.
-func internal(p any) string { return "internal error: " + clip(fmt.Sprint(p), 300) }
+func internal(p any) string { return "internal error: " + cases.Clip(fmt.Sprint(p), 300) }

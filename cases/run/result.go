@@ -1,15 +1,17 @@
-package cases
+package run
 
 import (
 	"time"
+
+	"creaseproof/cases"
 
 	"creaseproof/identity"
 )
 
 // Result is what came of one claim. Exactly one of Record and Err is set.
 type Result struct {
-	Case    *Case
-	Claim   *Claim
+	Case    *cases.Case
+	Claim   *cases.Claim
 	Record  *identity.Record
 	Err     error // the claim means nothing: a mistake in the file, with its place
 	Elapsed time.Duration

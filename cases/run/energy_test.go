@@ -1,4 +1,4 @@
-package cases
+package run
 
 import (
 	"context"
@@ -8,6 +8,8 @@ import (
 	"strings"
 	"testing"
 	"time"
+
+	"creaseproof/cases"
 
 	"github.com/stretchr/testify/assert"
 	"github.com/stretchr/testify/require"
@@ -19,13 +21,13 @@ import (
 )
 
 // manySurfaces makes surfaces that only their names tell apart.
-func manySurfaces(t *testing.T, names ...string) []*Case {
+func manySurfaces(t *testing.T, names ...string) []*cases.Case {
 	b := strings.Builder{}
 	b.WriteString(space)
 	for _, n := range names {
 		b.WriteString("[[surface]]\nname = '" + n + "'\ndensity = '1'\npolygon = [['0','0','0'],['1','0','0'],['0','1','0']]\nenergy = '1/2'\n")
 	}
-	return []*Case{parsed(t, b.String())}
+	return []*cases.Case{parsed(t, b.String())}
 }
 
 func value(s *casefile.Surface, x float64) creases.Result {
@@ -44,7 +46,7 @@ func surfacesOf(o *EnergyOutcome) (out []string) {
 func TestEnergyIsInOrder(t *testing.T) {
 	var reported []string
 	opt := EnergyOptions{Jobs: 3, Only: []string{"a"}, Report: func(r *EnergyResult) { reported = append(reported, r.Surface.Name) }}
-	out := energy(t.Context(), manySurfaces(t, "a1", "a2", "b", "a3", "a4"), opt, func(_ context.Context, _ *Case, s *casefile.Surface) ([]creases.Result, error) {
+	out := energy(t.Context(), manySurfaces(t, "a1", "a2", "b", "a3", "a4"), opt, func(_ context.Context, _ *cases.Case, s *casefile.Surface) ([]creases.Result, error) {
 		if s.Name == "a1" {
 			time.Sleep(20 * time.Millisecond)
 		}
@@ -58,7 +60,7 @@ func TestEnergyIsInOrder(t *testing.T) {
 
 func TestEnergyInterrupted(t *testing.T) {
 	ctx, cancel := context.WithCancel(t.Context())
-	out := energy(ctx, manySurfaces(t, "a", "half", "never"), EnergyOptions{Jobs: 1}, func(ctx context.Context, _ *Case, s *casefile.Surface) ([]creases.Result, error) {
+	out := energy(ctx, manySurfaces(t, "a", "half", "never"), EnergyOptions{Jobs: 1}, func(ctx context.Context, _ *cases.Case, s *casefile.Surface) ([]creases.Result, error) {
 		if s.Name == "half" {
 			cancel()
 			return []creases.Result{value(s, 1)}, ctx.Err()
@@ -70,7 +72,7 @@ func TestEnergyInterrupted(t *testing.T) {
 }
 
 func TestEnergyTimeout(t *testing.T) {
-	out := energy(t.Context(), manySurfaces(t, "a", "half", "never"), EnergyOptions{Jobs: 1, Timeout: 20 * time.Millisecond}, func(ctx context.Context, _ *Case, s *casefile.Surface) ([]creases.Result, error) {
+	out := energy(t.Context(), manySurfaces(t, "a", "half", "never"), EnergyOptions{Jobs: 1, Timeout: 20 * time.Millisecond}, func(ctx context.Context, _ *cases.Case, s *casefile.Surface) ([]creases.Result, error) {
 		if s.Name == "half" {
 			<-ctx.Done()
 			return []creases.Result{value(s, 1)}, ctx.Err()
@@ -87,7 +89,7 @@ func TestEnergyTimeout(t *testing.T) {
 func TestEnergyFailures(t *testing.T) {
 	list := manySurfaces(t, "panics", "refused", "expected", "mistake", "fine")
 	list[0].File.Surfaces[2].Expect = &source.Text{S: "open"}
-	out := energy(t.Context(), list, EnergyOptions{}, func(_ context.Context, _ *Case, s *casefile.Surface) ([]creases.Result, error) {
+	out := energy(t.Context(), list, EnergyOptions{}, func(_ context.Context, _ *cases.Case, s *casefile.Surface) ([]creases.Result, error) {
 		open := creases.Result{Surface: s.Name, Verdict: identity.Open, Expected: identity.Supported, Reason: "off the well"}
 		switch s.Name {
 		case "panics":

@@ -1,4 +1,4 @@
-package cases
+package run
 
 import (
 	"encoding/json"
@@ -7,6 +7,8 @@ import (
 	"testing"
 	"time"
 
+	"creaseproof/cases"
+
 	"github.com/stretchr/testify/assert"
 	"github.com/stretchr/testify/require"
 
@@ -14,7 +16,7 @@ import (
 )
 
 func TestDocument(t *testing.T) {
-	list, failed := Load([]string{"-"}, strings.NewReader(`title = "t"
+	list, failed := cases.Load([]string{"-"}, strings.NewReader(`title = "t"
 [space]
 coordinates = ["x", "y"]
 unknowns = ["u"]
@@ -108,7 +110,7 @@ func TestDocumentOfNothing(t *testing.T) {
 	data, err := json.Marshal((&Outcome{}).Document(nil))
 	require.NoError(t, err)
 	assert.JSONEq(t, `{"schema":1,"cases":[]}`, string(data))
-	list := []*Case{parsed(t, space+"[let]\nA = '1'\n")}
+	list := []*cases.Case{parsed(t, space+"[let]\nA = '1'\n")}
 	data, err = json.Marshal((&Outcome{}).Document(list))
 	require.NoError(t, err)
 	assert.JSONEq(t, `{"schema":1,"cases":[{"case":"case","claims":[]}]}`, string(data))

@@ -1,8 +1,10 @@
-package cases
+package run
 
 import (
 	"math"
 	"slices"
+
+	"creaseproof/cases"
 
 	"creaseproof/identity"
 )
@@ -64,9 +66,9 @@ type CheckedCircle struct {
 
 // Document is the outcome for the given cases, in their order. Claims that
 // mean nothing are left out: they have no verdict.
-func (o *Outcome) Document(list []*Case) CheckDocument {
+func (o *Outcome) Document(list []*cases.Case) CheckDocument {
 	doc := CheckDocument{Schema: Schema, Cases: []CheckedCase{}}
-	byCase := map[*Case][]CheckedClaim{}
+	byCase := map[*cases.Case][]CheckedClaim{}
 	for _, r := range o.Results {
 		if r.Record != nil {
 			byCase[r.Case] = append(byCase[r.Case], checked(r))

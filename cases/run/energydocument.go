@@ -1,7 +1,9 @@
-package cases
+package run
 
 import (
 	"math"
+
+	"creaseproof/cases"
 
 	"creaseproof/cases/creases"
 )
@@ -20,9 +22,9 @@ type EnergyCase struct {
 }
 
 // Document is the outcome for the given cases, in their order.
-func (o *EnergyOutcome) Document(list []*Case) EnergyDocument {
+func (o *EnergyOutcome) Document(list []*cases.Case) EnergyDocument {
 	doc := EnergyDocument{Schema: Schema, Cases: []EnergyCase{}}
-	byCase := map[*Case][]creases.Result{}
+	byCase := map[*cases.Case][]creases.Result{}
 	for _, r := range o.Results {
 		for _, v := range r.Values {
 			for _, x := range []**float64{&v.Energy, &v.Error, &v.Area, &v.Slices, &v.SlicesError, &v.Claimed} {

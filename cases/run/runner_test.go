@@ -1,4 +1,4 @@
-package cases
+package run
 
 import (
 	"context"
@@ -10,6 +10,8 @@ import (
 	"testing"
 	"time"
 
+	"creaseproof/cases"
+
 	"github.com/stretchr/testify/assert"
 	"github.com/stretchr/testify/require"
 
@@ -19,13 +21,13 @@ import (
 )
 
 // many makes cases of claims that only their names tell apart.
-func many(t *testing.T, names ...string) []*Case {
+func many(t *testing.T, names ...string) []*cases.Case {
 	b := strings.Builder{}
 	b.WriteString(space)
 	for _, n := range names {
 		fmt.Fprintf(&b, "[[claim]]\nname = %q\nstates = \"u_x = u_x\"\n", n)
 	}
-	return []*Case{parsed(t, b.String())}
+	return []*cases.Case{parsed(t, b.String())}
 }
 
 func record(c *identity.Claim, v identity.Verdict) (*identity.Record, error) {
@@ -184,7 +186,7 @@ func TestNoClaims(t *testing.T) {
 // number of jobs.
 func TestJobsDoNotMatter(t *testing.T) {
 	one := func(jobs int) string {
-		list, failed := Load([]string{"bps", "false-claims", "layered-plane"}, nil)
+		list, failed := cases.Load([]string{"bps", "false-claims", "layered-plane"}, nil)
 		require.Empty(t, failed)
 		opt := Options{Options: identity.DefaultOptions()}
 		opt.Jobs = jobs
@@ -203,7 +205,7 @@ func TestJobsDoNotMatter(t *testing.T) {
 
 // A best constant is not a claim for every value of it.
 func TestBestConstant(t *testing.T) {
-	out := Check(t.Context(), []*Case{parsed(t, space+"[[claim]]\nname = 'b'\nstates = 'u_x u_y <= C (u_x^2 + u_y^2)'\nbest = 'C'\nexpect = 'C >= 1/2'\n")}, Options{Options: identity.DefaultOptions()})
+	out := Check(t.Context(), []*cases.Case{parsed(t, space+"[[claim]]\nname = 'b'\nstates = 'u_x u_y <= C (u_x^2 + u_y^2)'\nbest = 'C'\nexpect = 'C >= 1/2'\n")}, Options{Options: identity.DefaultOptions()})
 	assert.Equal(t, []string{"b proved"}, verdicts(out))
 	assert.Equal(t, "C >= 1/2", out.Results[0].Record.Solution)
 	assert.True(t, out.Results[0].Met())

@@ -1,9 +1,11 @@
-package cases
+package run
 
 import (
 	"context"
 	"fmt"
 	"time"
+
+	"creaseproof/cases"
 
 	"creaseproof/cases/casefile"
 	"creaseproof/cases/creases"
@@ -30,7 +32,7 @@ func (o *EnergyOptions) Selected(name string) bool { return selected(o.Only, nam
 // its parameters. An error is a mistake in the file with its place; values
 // found before it are kept.
 type EnergyResult struct {
-	Case    *Case
+	Case    *cases.Case
 	Surface *casefile.Surface
 	Values  []creases.Result
 	Err     error // of a formula or a key; or the first refusal that was not expected
@@ -79,17 +81,17 @@ func (o *EnergyOutcome) Met() bool {
 // Energy integrates over the surfaces of the cases, several at once. It ends
 // early as Check does: at an interruption with the values found by then, at
 // the timeout with values that are open.
-func Energy(ctx context.Context, list []*Case, opt EnergyOptions) *EnergyOutcome {
-	return energy(ctx, list, opt, func(ctx context.Context, c *Case, s *casefile.Surface) ([]creases.Result, error) {
+func Energy(ctx context.Context, list []*cases.Case, opt EnergyOptions) *EnergyOutcome {
+	return energy(ctx, list, opt, func(ctx context.Context, c *cases.Case, s *casefile.Surface) ([]creases.Result, error) {
 		return creases.New(c.Setting, c.File.Path).Evaluate(ctx, s, opt.Options)
 	})
 }
 
-type integrate func(context.Context, *Case, *casefile.Surface) ([]creases.Result, error)
+type integrate func(context.Context, *cases.Case, *casefile.Surface) ([]creases.Result, error)
 
-func energy(ctx context.Context, list []*Case, opt EnergyOptions, integrate integrate) *EnergyOutcome {
+func energy(ctx context.Context, list []*cases.Case, opt EnergyOptions, integrate integrate) *EnergyOutcome {
 	type todo struct {
-		c *Case
+		c *cases.Case
 		s *casefile.Surface
 	}
 	var surfaces []todo
@@ -137,7 +139,7 @@ func energy(ctx context.Context, list []*Case, opt EnergyOptions, integrate inte
 
 // surface integrates over one surface; nil where the context stopped it before
 // the first value.
-func surface(ctx context.Context, c *Case, s *casefile.Surface, integrate integrate) (r *EnergyResult) {
+func surface(ctx context.Context, c *cases.Case, s *casefile.Surface, integrate integrate) (r *EnergyResult) {
 	defer func() {
 		if p := recover(); p != nil {
 			r = &EnergyResult{Case: c, Surface: s, Failed: true, Values: []creases.Result{unfinished(s, internal(p))}}
@@ -147,7 +149,7 @@ func surface(ctx context.Context, c *Case, s *casefile.Surface, integrate integr
 		return nil
 	}
 	if combinations(s) > maxCombinations {
-		err := c.text.at(s.Values[0].Name.Pos, "make a surface for each part of them", "the values have more than %d combinations", maxCombinations)
+		err := c.Fault(s.Values[0].Name.Pos, "make a surface for each part of them", "the values have more than %d combinations", maxCombinations)
 		return &EnergyResult{Case: c, Surface: s, Err: err}
 	}
 	values, err := integrate(ctx, c, s)
@@ -182,7 +184,7 @@ func combinations(s *casefile.Surface) int {
 
 // refusal is an error at the place of a surface that has no energy because its
 // shape or its traces are wrong, unless the file expects that.
-func refusal(c *Case, s *casefile.Surface, values []creases.Result) error {
+func refusal(c *cases.Case, s *casefile.Surface, values []creases.Result) error {
 	for _, v := range values {
 		if v.Energy != nil || v.Met {
 			continue
@@ -191,7 +193,7 @@ func refusal(c *Case, s *casefile.Surface, values []creases.Result) error {
 		for _, p := range s.Values {
 			with += fmt.Sprintf(", %s = %s", p.Name.S, v.Values[p.Name.S])
 		}
-		return c.text.at(s.Pos, "", "%q%s has no energy: %s", clip(s.Name, 40), clip(with, 80), v.Reason)
+		return c.Fault(s.Pos, "", "%q%s has no energy: %s", cases.Clip(s.Name, 40), cases.Clip(with, 80), v.Reason)
 	}
 	return nil
 }
