@@ -56,7 +56,9 @@
 //     surface, with a relative tolerance, hence not a proof that the conditions
 //     hold on the surface. A refusal names a place at which they do not hold, to
 //     the tolerance. It is wider where positions are far from the origin
-//     compared with the extent of the surface, but at most 1e-7.
+//     compared with the extent of the surface, but at most 1e-7. Where u is
+//     known, its gradients at those places are compared with those at two small
+//     distances on their own sides, which shows a kink of u on the surface.
 //   - Evaluations: exact count of evaluations of the density.
 //
 // Results are deterministic and do not depend on the number of cores.

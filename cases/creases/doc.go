@@ -10,6 +10,8 @@
 //     outward-rounded enclosure shows not to vanish at a point of the surface
 //     refuses it there. What remains is checked numerically at every node
 //     (package quadrature), as are continuity of u and direction of the jump;
+//   - the parts of formulas without variables are evaluated to 200 bits and
+//     rounded once, so that the difference of two close constants costs nothing;
 //   - the density is the one given, or the profile cost of the model (package
 //     entropy, type Profile) where the energy is R²/(2 eps) + eps L²/2;
 //   - the integral is computed with an error estimate and compared with the
