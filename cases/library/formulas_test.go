@@ -70,7 +70,11 @@ func parseAll(t *testing.T, f *casefile.File) {
 		}
 	}
 	for _, k := range f.Claims {
-		s, err := scope.With(names(k.Solve)...)
+		asked := names(k.Solve)
+		if k.Best != nil {
+			asked = append(asked, k.Best.S)
+		}
+		s, err := scope.With(asked...)
 		require.NoError(t, err)
 		if k.At == "jump" {
 			s = s.AtJump()
