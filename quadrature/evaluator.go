@@ -284,6 +284,15 @@ func (e *evaluator) patrol(n int) error {
 	return nil
 }
 
+// local is a length on which the surface varies at the present place.
+func (e *evaluator) local() float64 {
+	l := e.whole
+	for j, t := range e.jac {
+		l = math.Min(l, norm(t)*(e.p.over[j].Hi-e.p.over[j].Lo))
+	}
+	return l
+}
+
 // smooth checks that the gradient of u at the present place is its limit from
 // the side that it is the trace on. At a kink on the surface itself, such as
 // that of |x| on x = 0, the value of the derivative means nothing. The gradient
@@ -291,7 +300,7 @@ func (e *evaluator) patrol(n int) error {
 // difference falls with the distance.
 func (e *evaluator) smooth(size float64) error {
 	const step, ratio = 0x1p-20, 0x1p-10
-	far := step * e.whole
+	far := step * e.local()
 	near := math.Max(ratio*far, 64*epsilon*e.reach)
 	if near > far/8 {
 		return nil // too far from the origin to tell

@@ -188,3 +188,22 @@ func TestKinksOnTheSurface(t *testing.T) {
 		}
 	}
 }
+
+// A surface that reaches over many orders of magnitude is smooth on the scale
+// of the place.
+func TestManyOrdersOfMagnitude(t *testing.T) {
+	c := paraboloid(2, 0.5, 3)
+	in := c.surface.(Patch)
+	p := Patch{Dim: 3, Params: []Range{{-18, 18}, {0, 2 * math.Pi}}, Map: func(s, x []float64, jac [][]float64) {
+		e := math.Exp(s[0])
+		in.Map([]float64{e, s[1]}, x, jac)
+		for k := range 3 {
+			jac[0][k] *= e
+		}
+	}}
+	r, err := Integrate(context.Background(), p, Traces{Plus: c.plus, Minus: c.minus, HasValue: true}, layeredDensity, Options{Well: layeredWell})
+	if err != nil {
+		t.Fatal(err)
+	}
+	honest(t, "paraboloid", r.Energy, r.Error, 2*math.Pi*4/3*36)
+}
