@@ -2,6 +2,7 @@ package quadrature
 
 import (
 	"context"
+	"errors"
 	"math"
 	"slices"
 
@@ -19,7 +20,6 @@ type evaluator struct {
 	reach float64 // largest distance of the surface from the origin
 	whole float64 // extent of the surface
 	shaky float64 // what rounding costs, in units in the last place
-	blur  float64 // relative error of a gradient by the rounding of its position
 
 	s, x, nu    []float64
 	jac         [][]float64
@@ -139,6 +139,9 @@ func (e *evaluator) at(s [2]float64, out *adaptive.Sample) error {
 		var size float64
 		var err error
 		if jump, size, err = e.checkTraces(); err != nil {
+			if e.unresolved(err) {
+				return nil
+			}
 			return err
 		}
 		if jump > 0 {
@@ -163,15 +166,17 @@ func (e *evaluator) at(s [2]float64, out *adaptive.Sample) error {
 // which it counts as discontinuous however large u itself is.
 const wide = 1e-7
 
-// most is the largest relative error of a gradient that is put down to the
-// rounding of positions.
-const most = 1e-7
-
-// settle takes over what is known of the shape of the piece.
-func (e *evaluator) settle(s *shape) {
-	far := s.shaky()
-	e.shaky = far + s.ends()
-	e.blur = math.Min(most, 8*epsilon*far)
+// blur is the relative error of a gradient that is put down to the rounding of
+// its position: at most 1e-7, but for points next to a tip, which carry no area
+// to speak of.
+func (e *evaluator) blur() float64 {
+	const most, tip = 1e-7, 1e-6
+	l := e.local()
+	b := 8 * epsilon * norm(e.x) / l
+	if l > tip*e.whole {
+		return math.Min(most, b)
+	}
+	return b
 }
 
 // checkTraces evaluates the traces and checks them. It returns the length of
@@ -188,6 +193,7 @@ func (e *evaluator) checkTraces() (jump, size float64, err error) {
 		}
 	}
 	tol := e.o.Tolerance
+	blur := e.blur()
 	if e.o.Well != nil {
 		for i, g := range [][]float64{e.plus, e.minus} {
 			what := [...]string{"plus", "minus"}[i]
@@ -195,7 +201,7 @@ func (e *evaluator) checkTraces() (jump, size float64, err error) {
 			if !finite(r) || !finite(scale) {
 				return 0, 0, e.fail(NotFinite, "residual of the "+what+" trace", r, scale)
 			}
-			if math.Abs(r) > math.Max(tol, e.blur)*scale {
+			if math.Abs(r) > math.Max(tol, blur)*scale {
 				return 0, 0, e.fail(OffWell, what, r, scale)
 			}
 		}
@@ -228,7 +234,7 @@ func (e *evaluator) checkTraces() (jump, size float64, err error) {
 	}
 	jump = norm(q[:])
 	off := norm(t[:])
-	if off > math.Max(tol, e.blur)*size || off > 1e-6*jump && off > math.Max(1e-12, e.blur)*size {
+	if off > math.Max(tol, blur)*size || off > 1e-6*jump && off > math.Max(1e-12, blur)*size {
 		return 0, 0, e.fail(NotNormal, "surface", off, size)
 	}
 	return jump, size, nil
@@ -284,9 +290,16 @@ func (e *evaluator) patrol(n int) error {
 	return nil
 }
 
+// unresolved reports whether a trace is not finite at a place that rounding
+// cannot tell from a point, such as the tip of a cone: there is no area there.
+func (e *evaluator) unresolved(err error) bool {
+	var p *PlaceError
+	return errors.As(err, &p) && p.Reason == NotFinite && e.local() <= 64*epsilon*norm(e.x)
+}
+
 // local is a length on which the surface varies at the present place.
 func (e *evaluator) local() float64 {
-	l := e.whole
+	l := math.Inf(1)
 	for j, t := range e.jac {
 		l = math.Min(l, norm(t)*(e.p.over[j].Hi-e.p.over[j].Lo))
 	}
@@ -300,7 +313,7 @@ func (e *evaluator) local() float64 {
 // difference falls with the distance.
 func (e *evaluator) smooth(size float64) error {
 	const step, ratio = 0x1p-20, 0x1p-10
-	far := step * e.local()
+	far := step * math.Min(e.whole, e.local())
 	near := math.Max(ratio*far, 64*epsilon*e.reach)
 	if near > far/8 {
 		return nil // too far from the origin to tell

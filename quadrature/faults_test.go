@@ -207,3 +207,27 @@ func TestManyOrdersOfMagnitude(t *testing.T) {
 	}
 	honest(t, "paraboloid", r.Energy, r.Error, 2*math.Pi*4/3*36)
 }
+
+// Far from the origin the positions beside the tip of a cone round to the tip,
+// where the traces have no gradient.
+func TestTipReachedByRounding(t *testing.T) {
+	at := [3]float64{3, -7, 1}
+	cone := func(x, g []float64) float64 { // rho + z/2 from the tip
+		u, v := x[0]-at[0], x[1]-at[1]
+		rho := math.Sqrt(u*u + v*v)
+		copy(g, []float64{u / rho, v / rho, 0.5})
+		return rho + (x[2]-at[2])/2
+	}
+	p := Patch{Dim: 3, Params: []Range{{0, 1}, {0, 2 * math.Pi}}, Map: func(s, x []float64, jac [][]float64) {
+		sin, cos := math.Sincos(s[1])
+		r, d := s[0]*s[0]*s[0], 3*s[0]*s[0]
+		x[0], x[1], x[2] = at[0]+r*cos/2, at[1]+r*sin/2, at[2]-r
+		jac[0][0], jac[0][1], jac[0][2] = d*cos/2, d*sin/2, -d
+		jac[1][0], jac[1][1], jac[1][2] = -r*sin/2, r*cos/2, 0
+	}}
+	r, err := Integrate(context.Background(), p, Traces{Plus: linear(0, 0, 0, 0), Minus: cone, HasValue: true}, layeredDensity, Options{Well: layeredWell})
+	if err != nil {
+		t.Fatal(err)
+	}
+	honest(t, "cone", r.Energy, r.Error, math.Pi/24)
+}

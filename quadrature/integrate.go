@@ -133,7 +133,7 @@ func Integrate(ctx context.Context, s Surface, tr Traces, d Density, o Options) 
 	var total sums
 	for i, p := range pieces {
 		e := newEvaluator(ctx, p, tr, d, o, work, reach)
-		e.settle(shapes[i])
+		e.shaky = shapes[i].shaky() + shapes[i].ends()
 		e.whole = whole
 		abs := total.tolerance(o, len(pieces))
 		r, err := run(e.at, shapes[i], o, abs, work, e.rowDone)

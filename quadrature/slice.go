@@ -62,7 +62,7 @@ func Slice(ctx context.Context, s Surface, tr Traces, g LineDensity, o Options) 
 			return SliceResult{}, fmt.Errorf("quadrature: %w", sh.degenerate)
 		}
 		e := &slicer{evaluator: newEvaluator(ctx, p, tr, nil, o, work, 0), g: g}
-		e.settle(sh)
+		e.shaky = sh.shaky() + sh.ends()
 		flat, err := e.direction(sh)
 		if err != nil {
 			return SliceResult{}, fmt.Errorf("quadrature: %w", err)
@@ -210,7 +210,11 @@ func (e *slicer) at(s [2]float64, out *adaptive.Sample) error {
 	}
 	g := e.g(e.x, e.plus, e.minus)
 	if !finite(g) {
-		return e.fail(NotFinite, "line density", g, 0)
+		err := e.fail(NotFinite, "line density", g, 0)
+		if e.unresolved(err) {
+			return nil
+		}
+		return err
 	}
 	out.Value[0] = g * element
 	out.Size[0] = math.Abs(out.Value[0])
