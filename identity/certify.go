@@ -21,6 +21,14 @@ func (d *decider) reduction(g *exact.Gap) *reduction {
 	return &reduction{d.Problem.Reduce(g), d}
 }
 
+// with is the same reduction with another target.
+func (r *reduction) with(target algebra.Poly) *reduction {
+	red := *r.Reduction
+	red.Target = target
+	red.Claim = red.Statement()
+	return &reduction{&red, r.d}
+}
+
 func (r *reduction) squares(list []gram.Square) []certificate.Square {
 	var out []certificate.Square
 	for _, s := range list {

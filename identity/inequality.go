@@ -23,6 +23,9 @@ func (d *decider) inequality() error {
 		return d.best()
 	}
 	if len(d.Wells) > 0 {
+		if ok, err := d.refuteOnWells(); err != nil || ok {
+			return err
+		}
 		if ok, err := d.proveOnWells(); err != nil || ok {
 			return err
 		}

@@ -62,6 +62,10 @@ func (d *decider) search(g *exact.Gap) error {
 }
 
 func (d *decider) supported(least float64) {
+	if d.Rec.Samples == 0 {
+		d.Open("no jet was met that satisfies the assumptions")
+		return
+	}
 	d.Rec.Verdict, d.Rec.Method, d.Rec.Seed = Supported, "sampling and adversarial search", d.opt.Seed
 	if !math.IsInf(least, 0) {
 		d.Rec.Margin = &least
@@ -126,8 +130,8 @@ func (t *task) compile() error {
 	build := func(c *compiler) (gap, size program.Ref) {
 		gap, size = c.poly(t.g.Poly), c.absSum(t.g.Poly)
 		for _, a := range t.d.Assumed {
-			if len(ring.Support(a.Value)) <= 1 {
-				continue // a sign or a bound, which the layout knows
+			if a.Bounds() {
+				continue // of one indeterminate, which the layout knows
 			}
 			switch a.Relation {
 			case ">", ">=":
@@ -166,6 +170,18 @@ func (t *task) compile() error {
 	}
 	gap, size = build(c)
 	m := c.b.Quo(gap, size)
+	// A barrier keeps the descents inside the assumptions; it is too small to
+	// hide a violation that can be seen at all.
+	for _, a := range t.d.Assumed {
+		if a.Bounds() || a.Relation == "=" {
+			continue
+		}
+		g := c.fraction(a.Value)
+		if a.Relation == "<" || a.Relation == "<=" {
+			g = c.b.Neg(g)
+		}
+		m = c.b.Sub(m, c.b.Mul(c.b.Const(barrier), c.b.Func(program.Log, g)))
+	}
 	idx := make([]int, n+len(t.pts.Angles))
 	for i := range idx {
 		idx[i] = i
@@ -218,19 +234,18 @@ func (t *task) bounds(v algebra.Var) (lo, hi float64) {
 	case jet.Negative, jet.NonPositive:
 		hi = 0
 	}
-	for _, b := range t.d.Claim.Box {
-		f, err := t.d.In.Scalar(b.Node)
-		if err != nil {
-			continue
-		}
-		if w, ok := exact.LoneVar(f); ok && w == v {
-			l, _ := b.Lo.Float64()
-			h, _ := b.Hi.Float64()
-			lo, hi = max(lo, l), min(hi, h)
-		}
+	r := t.d.Range(v)
+	if r.Lo != nil {
+		lo = max(lo, r.Lo.Float64())
+	}
+	if r.Hi != nil {
+		hi = min(hi, r.Hi.Float64())
 	}
 	return lo, hi
 }
+
+// barrier weighs the logarithms of the assumptions against the margin.
+const barrier = 1e-10
 
 const keepBest = 64
 
@@ -243,9 +258,12 @@ func (t *task) run() (float64, bool, error) {
 		opts.Progress = func(done, total int64) { d.opt.Progress(d.Claim.Name, done, total) }
 	}
 	res, err := sample.Run(d.Ctx, opts, t.layout, t.sampled, keepBest)
-	d.Rec.Samples += res.Drawn
+	d.Rec.Samples += res.Valid
 	if err != nil {
 		return 0, false, err
+	}
+	if res.Valid == 0 {
+		return math.Inf(1), false, nil
 	}
 	var starts [][]float64
 	for _, p := range res.Best {

@@ -207,14 +207,8 @@ func (c *checker) squares(list []Square, positive []sum) (sum, error) {
 // dense makes sure that the multiplier is positive on a dense part of the set
 // of the claim: everywhere, or by the rules that the package documents.
 func (c *checker) dense(claim *Claim, terms []Square, m sum, positive, zero []sum) error {
-	if len(terms) == 1 && constant(terms[0].Base) {
-		strict := true
-		for _, f := range terms[0].Factors {
-			strict = strict && claim.Positive[f].Strict
-		}
-		if strict {
-			return nil
-		}
+	if strictlyPositive(claim, terms) {
+		return nil
 	}
 	onCircle := map[int]bool{}
 	for k, h := range zero {
@@ -306,20 +300,21 @@ func (c *checker) bound(g sum) (v int, at *big.Rat, lower, ok bool) {
 	return vs[0], at, a.Sign() > 0, true
 }
 
+// strictlyPositive reports a sum with a term that is a positive constant times
+// strictly positive assumptions: it is positive everywhere.
+func strictlyPositive(claim *Claim, terms []Square) bool {
+	return slices.ContainsFunc(terms, func(t Square) bool {
+		return constant(t.Base) && !slices.ContainsFunc(t.Factors, func(f int) bool {
+			return f < 0 || f >= len(claim.Positive) || !claim.Positive[f].Strict
+		})
+	})
+}
+
 // UsesContinuity reports whether the proof rests on continuity where its
 // multiplier vanishes.
 func UsesContinuity(claim *Claim, cert *Certificate) bool {
 	if cert.Squaring != nil {
 		return cert.Squaring.Proof != nil && UsesContinuity(claim, cert.Squaring.Proof)
 	}
-	switch len(cert.Multiplier) {
-	case 0:
-		return false
-	case 1:
-		t := cert.Multiplier[0]
-		return !constant(t.Base) || slices.ContainsFunc(t.Factors, func(f int) bool {
-			return f < 0 || f >= len(claim.Positive) || !claim.Positive[f].Strict
-		})
-	}
-	return true
+	return len(cert.Multiplier) > 0 && !strictlyPositive(claim, cert.Multiplier)
 }

@@ -11,8 +11,8 @@
 // in which every weight w is a positive rational. Where all g_i >= 0 and all
 // h_k = 0 the right side is >= 0, and so is M; hence p >= 0 wherever M > 0.
 //
-// If M is a positive constant times a product of strictly positive g_i, that
-// is everywhere. Otherwise p >= 0 follows, by continuity, on the closure of
+// If some term of M is a positive constant times a product of strictly positive
+// g_i, that is everywhere. Otherwise p >= 0 follows, by continuity, on the closure of
 // the set where M does not vanish, and Check makes sure that this is the whole
 // set of the claim: it asks that
 //

@@ -144,24 +144,12 @@ func (p *Points) value(v algebra.Var, wide bool) algebra.Rat {
 	case jet.NonPositive:
 		x = x.Abs().Neg()
 	}
-	return p.boxed(v, x)
+	return p.bounded(v, x)
 }
 
-// boxed moves x into the box of v, if v has one.
-func (p *Points) boxed(v algebra.Var, x algebra.Rat) algebra.Rat {
-	for _, b := range p.d.Claim.Box {
-		f, err := p.d.In.Scalar(b.Node)
-		if err != nil {
-			continue
-		}
-		if w, ok := LoneVar(f); ok && w == v {
-			lo, hi := algebra.FromBig(b.Lo), algebra.FromBig(b.Hi)
-			if x.Cmp(lo) < 0 || x.Cmp(hi) > 0 {
-				return lo.Add(hi.Sub(lo).Mul(algebra.Frac64(p.rng.Int64N(33), 32)))
-			}
-		}
-	}
-	return x
+// bounded moves x into what the assumptions and the box allow of v.
+func (p *Points) bounded(v algebra.Var, x algebra.Rat) algebra.Rat {
+	return p.d.Range(v).into(x, algebra.Frac64(p.rng.Int64N(33), 32))
 }
 
 // Next draws a point that satisfies the assumptions and conditions. It

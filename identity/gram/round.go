@@ -3,6 +3,7 @@ package gram
 import (
 	"math"
 	"math/big"
+	"slices"
 
 	"creaseproof/entropy/algebra"
 
@@ -47,134 +48,145 @@ func roundTo(x float64, den int64) algebra.Rat {
 	return algebra.FromBig(new(big.Rat).SetFrac(b, big.NewInt(den)))
 }
 
-// projection is the orthogonal projection onto the solutions of the equations,
-// in the inner product of the entries.
+// projection moves entries onto the solutions of the equations: in reduced
+// echelon form each equation gives one entry by entries that are free. Pivots
+// are ±1 and ±2 where that is possible and stand in few equations, so that the
+// rationals stay short and the move is of the size of the residual.
 type projection struct {
-	rows  []sparse
+	rows  []map[[3]int]algebra.Rat // coefficients of the entries, both triangles together
 	right []algebra.Rat
-	gram  [][]algebra.Rat // E E'
+	pivot [][3]int
+	ok    bool // the equations are consistent
 }
 
+// eliminationWork bounds the operations on coefficients of one elimination.
+const eliminationWork = 30_000_000
+
 func newProjection(rows []sparse, right []algebra.Rat) *projection {
-	p := &projection{rows: rows, right: right, gram: make([][]algebra.Rat, len(rows))}
-	for i := range rows {
-		p.gram[i] = make([]algebra.Rat, len(rows))
-	}
-	touching := map[[3]int][]int{}
+	p := &projection{right: append([]algebra.Rat(nil), right...), ok: true}
+	users := map[[3]int]map[int]bool{}
 	for i, row := range rows {
-		for _, k := range sortedCells(row) {
-			touching[k] = append(touching[k], i)
+		m := make(map[[3]int]algebra.Rat, len(row))
+		for k, x := range row {
+			if k[1] != k[2] {
+				x = x.Add(x)
+			}
+			m[k] = x
+			if users[k] == nil {
+				users[k] = map[int]bool{}
+			}
+			users[k][i] = true
 		}
+		p.rows = append(p.rows, m)
 	}
-	for i, row := range rows {
-		for _, k := range sortedCells(row) {
-			for _, j := range touching[k] {
-				// coefficient of the entry in each row: twice off the diagonal
-				x := row[k].Mul(rows[j][k])
-				if k[1] != k[2] {
-					x = x.Mul(algebra.Int(4))
+	p.pivot = make([][3]int, len(rows))
+	done := make([]bool, len(rows))
+	work := 0
+	for range rows {
+		// The shortest row that is left.
+		best := -1
+		for i := range p.rows {
+			if !done[i] && (best < 0 || len(p.rows[i]) < len(p.rows[best])) {
+				best = i
+			}
+		}
+		done[best] = true
+		row := p.rows[best]
+		if len(row) == 0 {
+			if !p.right[best].IsZero() {
+				p.ok = false
+				return p
+			}
+			p.pivot[best] = [3]int{-1}
+			continue
+		}
+		at := p.choose(row, users)
+		p.pivot[best] = at
+		inv, _ := row[at].Inv()
+		for _, j := range sortedUsers(users[at]) {
+			if j == best {
+				continue
+			}
+			f := p.rows[j][at].Mul(inv)
+			for k, x := range row {
+				y := p.rows[j][k].Sub(f.Mul(x))
+				if y.IsZero() {
+					delete(p.rows[j], k)
+					delete(users[k], j)
+				} else {
+					p.rows[j][k] = y
+					users[k][j] = true
 				}
-				p.gram[i][j] = p.gram[i][j].Add(x)
+			}
+			p.right[j] = p.right[j].Sub(f.Mul(p.right[best]))
+			if work += len(row); work > eliminationWork {
+				p.ok = false
+				return p
 			}
 		}
 	}
 	return p
 }
 
+func sortedUsers(m map[int]bool) []int {
+	out := make([]int, 0, len(m))
+	for i := range m {
+		out = append(out, i)
+	}
+	slices.Sort(out)
+	return out
+}
+
+// choose takes the pivot of a row: small in size first, then in few rows, then
+// off the diagonal, which matters less for the definiteness.
+func (p *projection) choose(row map[[3]int]algebra.Rat, users map[[3]int]map[int]bool) [3]int {
+	cost := func(k [3]int) [3]int {
+		c := [3]int{row[k].BitLen(), len(users[k]), 1}
+		if k[1] != k[2] {
+			c[2] = 0
+		}
+		return c
+	}
+	var best [3]int
+	first := true
+	for k := range row {
+		x, y := cost(k), cost(best)
+		if c := slices.Compare(x[:], y[:]); first || c < 0 || c == 0 && slices.Compare(k[:], best[:]) < 0 {
+			best, first = k, false
+		}
+	}
+	return best
+}
+
 // apply moves the entries onto the solutions. It reports false where the
 // equations have none.
 func (p *projection) apply(cells []map[[2]int]algebra.Rat) bool {
-	res := make([]algebra.Rat, len(p.rows))
-	exact := true
-	for i, row := range p.rows {
-		s := p.right[i]
-		for k, x := range row {
-			y := cells[k[0]][[2]int{k[1], k[2]}]
-			if y.IsZero() {
-				continue
-			}
-			t := x.Mul(y)
-			if k[1] != k[2] {
-				t = t.Add(t)
-			}
-			s = s.Sub(t)
-		}
-		res[i] = s
-		exact = exact && s.IsZero()
-	}
-	if exact {
-		return true
-	}
-	lambda, ok := solveSymmetric(p.gram, res)
-	if !ok {
+	if !p.ok {
 		return false
 	}
 	for i, row := range p.rows {
-		if lambda[i].IsZero() {
+		at := p.pivot[i]
+		if at[0] < 0 {
 			continue
 		}
+		s := p.right[i]
 		for k, x := range row {
-			c := x.Mul(lambda[i])
-			if k[1] != k[2] {
-				c = c.Add(c)
+			if k == at {
+				continue
 			}
-			at := [2]int{k[1], k[2]}
-			if y := cells[k[0]][at].Add(c); y.IsZero() {
-				delete(cells[k[0]], at)
-			} else {
-				cells[k[0]][at] = y
+			if y, ok := cells[k[0]][[2]int{k[1], k[2]}]; ok {
+				s = s.Sub(x.Mul(y))
 			}
+		}
+		y, _ := s.Quo(row[at])
+		to := [2]int{at[1], at[2]}
+		if y.IsZero() {
+			delete(cells[at[0]], to)
+		} else {
+			cells[at[0]][to] = y
 		}
 	}
 	return true
-}
-
-// solveSymmetric solves a consistent symmetric system, after splitting it into
-// the connected parts that sparse equations fall into.
-func solveSymmetric(m [][]algebra.Rat, b []algebra.Rat) ([]algebra.Rat, bool) {
-	n := len(m)
-	part := make([]int, n)
-	for i := range part {
-		part[i] = -1
-	}
-	x := make([]algebra.Rat, n)
-	for start := range n {
-		if part[start] >= 0 {
-			continue
-		}
-		members := []int{start}
-		part[start] = start
-		for at := 0; at < len(members); at++ {
-			for j := range n {
-				if part[j] < 0 && !m[members[at]][j].IsZero() {
-					part[j] = start
-					members = append(members, j)
-				}
-			}
-		}
-		sub := make([][]algebra.Rat, len(members))
-		rhs := make([]algebra.Rat, len(members))
-		zero := true
-		for i, r := range members {
-			sub[i] = make([]algebra.Rat, len(members))
-			for k, c := range members {
-				sub[i][k] = m[r][c]
-			}
-			rhs[i] = b[r]
-			zero = zero && b[r].IsZero()
-		}
-		if zero {
-			continue
-		}
-		y, _, ok := algebra.SolveRat(sub, rhs)
-		if !ok {
-			return nil, false
-		}
-		for i, r := range members {
-			x[r] = y[i]
-		}
-	}
-	return x, true
 }
 
 // squares splits every block by an exact LDLᵀ. It reports false where a block

@@ -89,6 +89,9 @@ func (f *numeric) derivatives(x, g []float64, h *mat.SymDense) {
 	}
 }
 
+// zeroWork bounds the multiplications of all descents to zeros together.
+const zeroWork = 400_000_000
+
 // numericalZeros looks for zeros of the target at which the constraints hold,
 // by damped Newton steps from random starts with one variable and all positive
 // constants held. They only guide the facial reduction.
@@ -105,7 +108,10 @@ func (p *Problem) numericalZeros(ctx context.Context, vars []algebra.Var, starts
 			fixed[slices.Index(vars, v)] = true
 		}
 	}
-	rng := rand.New(rand.NewPCG(7, uint64(len(vars))))
+	n := len(vars)
+	cost := 40 * len(f.coefs) * n * n * n // of one descent, roughly
+	starts = min(starts, zeroWork/max(cost, 1))
+	rng := rand.New(rand.NewPCG(7, uint64(n)))
 	var out [][]float64
 	for s := range starts {
 		if ctx.Err() != nil {
