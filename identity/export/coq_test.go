@@ -1,12 +1,14 @@
 package export_test
 
 import (
+	"context"
 	"os"
 	"os/exec"
 	"path/filepath"
 	"strconv"
 	"strings"
 	"testing"
+	"time"
 
 	"github.com/stretchr/testify/require"
 
@@ -64,6 +66,8 @@ func coqc(t *testing.T, text string) (string, error) {
 	}
 	file := filepath.Join(t.TempDir(), "exported.v")
 	require.NoError(t, os.WriteFile(file, []byte(text), 0o644))
-	out, err := exec.Command(path, "-q", "-noglob", file).CombinedOutput()
+	ctx, cancel := context.WithTimeout(context.Background(), time.Minute)
+	defer cancel()
+	out, err := exec.CommandContext(ctx, path, "-q", "-noglob", file).CombinedOutput()
 	return string(out), err
 }

@@ -196,16 +196,23 @@ func (r *ring) invert(x fraction) (fraction, error) {
 // primitive is c and n with p = c·n, n with coprime integer coefficients of
 // which the first in the graded order is positive. p is not zero.
 func primitive(p poly) (c *big.Rat, n poly) {
-	n, d := integral(collect(p))
+	c, n = content(collect(p))
+	if n[0].coef.Sign() < 0 {
+		return c.Neg(c), scale(big.NewRat(-1, 1), n)
+	}
+	return c, n
+}
+
+// content is c > 0 and n with p = c·n, n with coprime integer coefficients and
+// its terms in the order of p. p is not zero.
+func content(p poly) (c *big.Rat, n poly) {
+	n, d := integral(p)
 	g := new(big.Int)
 	for _, t := range n {
 		g.GCD(nil, nil, g, new(big.Int).Abs(t.coef.Num()))
 	}
 	c = new(big.Rat).SetFrac(g, d)
-	if n[0].coef.Sign() < 0 {
-		c.Neg(c)
-	}
-	return c, scale(new(big.Rat).Inv(c), collect(p))
+	return c, scale(new(big.Rat).Inv(c), p)
 }
 
 func find(den []factor, key string) int {

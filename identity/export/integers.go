@@ -88,7 +88,9 @@ func whole(list []product) *big.Int {
 	return d
 }
 
-func (r *ring) clear(claim *certificate.Claim, cert *certificate.Certificate) (*cleared, error) {
+// rational reads a claim and its certificate without clearing: the identity is
+// multiplier · target.n/target.d = Σ squares + Σ cofactors · zero.n/zero.d.
+func (r *ring) rational(claim *certificate.Claim, cert *certificate.Certificate) (*cleared, error) {
 	if claim == nil || cert == nil {
 		return nil, errors.New("a claim and a certificate are needed")
 	}
@@ -121,6 +123,14 @@ func (r *ring) clear(claim *certificate.Claim, cert *certificate.Certificate) (*
 		return nil, fmt.Errorf("%d cofactors for %d equations", len(cert.Cofactors), len(claim.Zero))
 	}
 	if c.cofactors, err = r.readAll(cert.Cofactors, "cofactor"); err != nil {
+		return nil, err
+	}
+	return c, nil
+}
+
+func (r *ring) clear(claim *certificate.Claim, cert *certificate.Certificate) (*cleared, error) {
+	c, err := r.rational(claim, cert)
+	if err != nil {
 		return nil, err
 	}
 	factor := new(big.Rat).SetInt(new(big.Int).Mul(whole(c.multiplier), c.target.d))

@@ -124,6 +124,7 @@ func (t *texReader) word() string {
 		}
 	}
 	out := texWord(w)
+	var index []string
 	for t.i+1 < len(t.s) && t.s[t.i] == '_' {
 		t.i++
 		sub := ""
@@ -133,7 +134,10 @@ func (t *texReader) word() string {
 		} else {
 			sub = letters(t.letters())
 		}
-		out += "_{" + strings.TrimSpace(sub) + "}"
+		index = append(index, strings.TrimSpace(sub))
+	}
+	if index != nil {
+		out += "_{" + strings.Join(index, ",") + "}"
 	}
 	return out
 }

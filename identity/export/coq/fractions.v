@@ -32,7 +32,6 @@ Ltac nonzero :=
   repeat match goal with |- _ /\ _ => split end;
   first
     [ assumption
-    | lra
     | match goal with
       | H : _ <> 0 |- _ <> 0 => let E := fresh in intro E; apply H; lra
       end ].

@@ -1,6 +1,6 @@
 (* Signs *)
 
-Lemma square_nonneg : forall a : R, 0 <= a ^ 2.
+Lemma square_nonneg : forall a : R, 0 <= a^2.
 Proof. intro a. rewrite <- Rsqr_pow2. apply Rle_0_sqr. Qed.
 
 Lemma product_nonneg : forall a b : R, 0 <= a -> 0 <= b -> 0 <= a * b.
@@ -17,9 +17,6 @@ Proof. intros a b Ha Hb. lra. Qed.
 
 Lemma product_pos : forall a b : R, 0 < a -> 0 < b -> 0 < a * b.
 Proof. intros a b Ha Hb. apply Rmult_lt_0_compat; assumption. Qed.
-
-Lemma square_pos : forall a : R, 0 < a -> 0 < a ^ 2.
-Proof. intros a Ha. apply pow_lt. exact Ha. Qed.
 
 Lemma numerator_pos : forall n d : R, 0 < d -> 0 < n / d -> 0 < n.
 Proof.
