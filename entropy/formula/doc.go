@@ -37,8 +37,8 @@
 // # Refusals
 //
 // What has two readings is refused, and the message names both: 1/2 x, x^y^z,
-// x^1/2, u^2_x, sin x, sin^2(x), |a|, x 2, x(2), .5, and 2e-3 where e is a
-// declared name. So is a name that is not declared, with the names it may be
+// x^1/2, u^2_x, sin x, sin^2(x), |a|, x 2, x(2), .5, 2e-3 where e is a declared
+// name, and d_x(f) where d is an unknown or a named formula. So is a name that is not declared, with the names it may be
 // made of.
 //
 // A WORD in a subscript is split into coordinates and frame axes. NewScope

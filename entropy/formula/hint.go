@@ -66,6 +66,20 @@ func distance(a, b string) int {
 	return prev[len(b)]
 }
 
+// laplacian is the advice to write the Laplacian of a name in derivatives.
+func (s *Scope) laplacian(of string) string {
+	var terms []string
+	for _, x := range s.code {
+		if s.kinds[x] == Coordinate {
+			terms = append(terms, fmt.Sprintf("%s_%s%s", of, x, x))
+		}
+	}
+	if len(terms) == 0 {
+		return "write a Laplacian as a sum of second derivatives"
+	}
+	return fmt.Sprintf("write %q for the Laplacian", strings.Join(terms, " + "))
+}
+
 // unknownName is the message about a name that is not declared.
 func (s *Scope) unknownName(name string) (problem, advice string) {
 	problem = fmt.Sprintf("unknown name %q", clip(name))
@@ -74,6 +88,15 @@ func (s *Scope) unknownName(name string) (problem, advice string) {
 	}
 	if name == "ln" {
 		return problem, `write "log(x)"`
+	}
+	if of, ok := strings.CutPrefix(name, "Delta"); ok && s.kinds["Delta"] == Undeclared {
+		switch s.kinds[of] {
+		case Unknown, Let:
+			return problem, s.laplacian(of)
+		}
+		if of == "" {
+			return problem, s.laplacian("u")
+		}
 	}
 	words := append([]string{"pi"}, s.names...)
 	if parts := split(name, words); parts != nil {

@@ -248,6 +248,8 @@ func (l *lexer) strange(at int, r rune) {
 	switch {
 	case r == '$':
 		l.fail(at, "$ is no sign of the formula language", "leave the dollar signs out")
+	case r == ':' && l.rune() == '=':
+		l.fail(at, `":=" is no sign of the formula language`, `write "=" for an equation; a formula is named in [let]`)
 	case r == '÷', r == '∕', r == '⁄', r == ':':
 		l.fail(at, fmt.Sprintf("%q is no sign of the formula language", r), `write "/" for division`)
 	case r == '–', r == '—', r == '‐', r == '‑':
@@ -260,6 +262,16 @@ func (l *lexer) strange(at int, r rune) {
 		l.fail(at, "∇ is no sign of the formula language", `write "grad(f)" or "div(F)"`)
 	case r == '\'':
 		l.fail(at, "a prime is no sign of the formula language", `write "u_x" for a derivative of u, "d_x(f)" for that of a formula`)
+	case r == '∆': // the sign of the increment, not the Greek letter
+		l.fail(at, "∆ is no sign of the formula language", l.scope.laplacian("u"))
+	case r == '%':
+		l.fail(at, "% is no sign of the formula language", `write "/100" for per cent; a comment stands outside the formula, after "#"`)
+	case r == '#':
+		l.fail(at, "# is no sign of the formula language", "a comment stands outside the quotation marks of the formula")
+	case strings.ContainsRune("\"“”„«»‘’`", r):
+		l.fail(at, fmt.Sprintf("%q is no sign of the formula language", r), "leave the quotation mark out")
+	case r == '&':
+		l.fail(at, "& is no sign of the formula language", "write two claims")
 	case r == ';':
 		l.fail(at, `";" is no sign of the formula language`, `write "," between arguments`)
 	case unicode.IsLetter(r), unicode.IsMark(r), unicode.IsNumber(r):

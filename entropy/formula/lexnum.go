@@ -2,6 +2,7 @@ package formula
 
 import (
 	"fmt"
+	"math/big"
 	"strconv"
 	"strings"
 )
@@ -13,6 +14,9 @@ const maxDigits = 1000
 func (l *lexer) number(t *token) {
 	start, at := l.i, l.n
 	whole := l.run(isDigit)
+	if whole == "0" && l.based(at, start) {
+		return
+	}
 	fraction := ""
 	if l.rune() == '.' && l.i+1 < len(l.src.S) && isDigit(rune(l.src.S[l.i+1])) {
 		l.skip()
@@ -69,6 +73,25 @@ func (l *lexer) number(t *token) {
 	if exponent != "" {
 		t.text += "e" + exponent
 	}
+}
+
+// based refuses 0x1F, 0b101 and 0o17, of which 0 is read, unless what follows
+// the 0 is a declared name.
+func (l *lexer) based(at, start int) bool {
+	run := l.peekRun(isNameRune)
+	if len(run) < 2 || !strings.ContainsRune("xXbBoO", rune(run[0])) || l.declared(run) {
+		return false
+	}
+	v, ok := new(big.Int).SetString("0"+run, 0)
+	if !ok {
+		return false
+	}
+	advice := ""
+	if s := v.String(); len(s) < 40 {
+		advice = fmt.Sprintf("write %q", s)
+	}
+	l.fail(at, fmt.Sprintf("%q: numbers are decimal", clip(l.src.S[start:l.i]+run)), advice)
+	return true
 }
 
 // declared reports whether a run of letters is a declared name.

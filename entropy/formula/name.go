@@ -48,6 +48,11 @@ func (p *parser) name() Node {
 		if by == nil {
 			return nil
 		}
+		if u := p.peek(); id == "d" && u.kind == '(' {
+			sub := clip(strings.Join(by, ""))
+			return p.refuse(t, fmt.Sprintf("where d is %s, a parenthesis after d_%s has two readings", article(declared), sub),
+				fmt.Sprintf("write \"d_%s*(...)\" for the product; for the total derivative rename the %s d", sub, declared))
+		}
 		return &Deriv{place: p.place(t), Of: id, By: by}
 	}
 	if after.kind == '_' {

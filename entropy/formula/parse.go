@@ -260,7 +260,7 @@ func (p *parser) juxt() (x Node, n int) {
 			return nil, 0
 		}
 		if _, ok := y.(*Num); ok || number {
-			return p.refuseNumber(t, last, leadingNum(y)), 0
+			return p.refuseNumber(t, last, y), 0
 		}
 		factors = append(factors, y)
 	}
@@ -287,16 +287,24 @@ func leadingNum(n Node) *Num {
 	}
 }
 
-// refuseNumber refuses x 2, 2 3 and x(2).
-func (p *parser) refuseNumber(t token, last Node, num *Num) Node {
+// refuseNumber refuses x 2, 2 3, x(2) and x 10^2.
+func (p *parser) refuseNumber(t token, last, factor Node) Node {
+	num := leadingNum(factor)
 	if num == nil {
 		return p.refuse(t, "a number after a factor", `write "*" between them`)
 	}
-	l, r := clip(Text(last)), clip(Text(num))
-	product := Text(&Product{Factors: []Factor{{Star, last}, {Star, num}}})
-	other := l + "^" + r
-	if _, ok := last.(*Num); ok && t.kind == kNum {
-		other = l + r
+	product := Text(&Product{Factors: []Factor{{Star, last}, {Star, factor}}})
+	_, power := last.(*Power)
+	other := Text(last)
+	if power {
+		other = "(" + other + ")"
 	}
-	return p.refuse(t, fmt.Sprintf("the number %s after a factor has two readings", r), either(clip(product), other))
+	if _, ok := last.(*Num); ok && t.kind == kNum {
+		other += Text(factor)
+	} else if e, ok := factor.(*Power); ok {
+		other = "(" + other + "^" + Text(num) + ")^" + exponentText(e.Exp)
+	} else {
+		other += "^" + Text(num)
+	}
+	return p.refuse(t, fmt.Sprintf("the number %s after a factor has two readings", clip(Text(num))), either(clip(product), clip(other)))
 }

@@ -60,17 +60,28 @@ func (p *parser) primary() Node {
 	return n
 }
 
+// misplacedSubscript refuses a subscript, at its _, after something that takes
+// none.
 func (p *parser) misplacedSubscript(t token, n Node) Node {
+	sub := "x"
+	if u := p.peekAt(1); u.kind == kIdent {
+		sub = clip(u.text)
+	} else if v := p.peekAt(2); u.kind == '{' && v.kind == kIdent && p.peekAt(3).kind == '}' {
+		sub = clip(v.text)
+	}
+	derivative := fmt.Sprintf("d_%s(%s)", sub, clip(Text(n)))
 	switch x := n.(type) {
 	case *Deriv:
-		if u := p.peekAt(1); u.kind == kIdent {
-			return p.refuse(t, "a second subscript", fmt.Sprintf("write all of it in one, %q", clip(Text(x))+clip(u.text)))
-		}
-		return p.refuse(t, "a second subscript", fmt.Sprintf("write all of it in one, as in %q", clip(Text(x))+"x"))
+		return p.refuse(t, "a second subscript", fmt.Sprintf("write all of it in one, %q", clip(Text(x))+sub))
 	case *Component:
-		return p.refuse(t, "a component has no further subscript", fmt.Sprintf("write %q for its derivative", "d_x("+clip(Text(x))+")"))
+		return p.refuse(t, "a component has no further subscript", fmt.Sprintf("write %q for its derivative", derivative))
+	case *Call:
+		if x.Func != "grad" || len(x.Args) != 1 {
+			break
+		}
+		return p.refuse(t, "a subscript stands on a name only", fmt.Sprintf("write %q for that component of the gradient", fmt.Sprintf("d_%s(%s)", sub, clip(Text(x.Args[0])))))
 	}
-	return p.refuse(t, "a subscript stands on a name only", fmt.Sprintf("write %q for a derivative", "d_x("+clip(Text(n))+")"))
+	return p.refuse(t, "a subscript stands on a name only", fmt.Sprintf("write %q for a derivative", derivative))
 }
 
 func (p *parser) num(t token) Node {

@@ -59,6 +59,10 @@ func TestRefusals(t *testing.T) {
 		{`2(3)`, 2, []string{`"2*3"`, `"2^3"`}},
 		{`x (2)`, 3, []string{`"x*2"`, `"x^2"`}},
 		{`u_x^2 0.5`, 7, []string{`"u_x^2*0.5"`}},
+		{`(x-y)^2 10^2`, 9, []string{`"(x - y)^2*10^2"`, `"(((x - y)^2)^10)^2"`}},
+		{`x 10^-3`, 3, []string{`"x*10^(-3)"`, `"(x^10)^(-3)"`}},
+		{`2 10^3`, 3, []string{`"2*10^3"`, `"210^3"`}},
+		{`x^3 10`, 5, []string{`"x^3*10"`, `"(x^3)^10"`}},
 		{`.5`, 1, []string{`"0.5"`, `"*5"`}},
 		{`x + .5`, 5, []string{`"0.5"`, `"*5"`}},
 		{`u_\xi\eta`, 6, []string{`"_{xi eta}"`, `"_{xi} eta"`}},
@@ -75,6 +79,10 @@ func TestRefusals(t *testing.T) {
 		{`Simga`, 1, []string{`did you mean "Sigma"`}},
 		{`q`, 1, []string{`unknown name "q"`}},
 		{`ln(x)`, 1, []string{`"log(x)"`}},
+		{`Δu`, 1, []string{`"u_xx + u_yy + u_zz`}},
+		{`\Delta u`, 1, []string{`"u_xx + u_yy + u_zz`}},
+		{`DeltaR`, 1, []string{`"R_xx + R_yy + R_zz`}},
+		{`∆u`, 1, []string{`"u_xx + u_yy + u_zz`}},
 		{`\xix`, 1, []string{`\xi x`}},
 		{`\lamda`, 1, []string{`\lambda`}},
 		{`xi`, 1, []string{"frame axis"}},
@@ -91,6 +99,11 @@ func TestRefusals(t *testing.T) {
 		{`u_x2`, 3, []string{`"_x^2"`}},
 		{`u_x_y`, 4, []string{`"u_xy"`}},
 		{`(u v)_x`, 6, []string{`"d_x(u v)"`}},
+		{`d_x(u)_y`, 7, []string{`"d_y(d_x(u))"`}},
+		{`d_x(u)_{y}`, 7, []string{`"d_y(d_x(u))"`}},
+		{`grad(u)_z`, 8, []string{`"d_z(u)"`}},
+		{`div(Sigma)_z`, 11, []string{`"d_z(div(Sigma))"`}},
+		{`Sigma_x_y`, 8, []string{`"d_y(Sigma_x)"`}},
 		{`u_{}`, 4, []string{"empty"}},
 		{`u_{x,y}`, 5, []string{"u_{x y}"}},
 		{`u_`, 3, []string{"u_x"}},
@@ -130,6 +143,15 @@ func TestRefusals(t *testing.T) {
 		{`* x`, 1, []string{"no factor"}},
 		{`x.y`, 2, []string{"full stop"}},
 		{`x = y`, 3, []string{"claim"}},
+		{`x := y`, 3, []string{`":="`, `"="`, "[let]"}},
+		{`x : y`, 3, []string{`"/"`}},
+		{`x" + y`, 2, []string{"quotation mark"}},
+		{`“x”`, 1, []string{"quotation mark"}},
+		{`5% x`, 2, []string{`"/100"`}},
+		{`x # y`, 3, []string{"comment"}},
+		{`x & y`, 3, []string{"two claims"}},
+		{`x + 0x1F`, 5, []string{"decimal", `"31"`}},
+		{`0b101`, 1, []string{"decimal", `"5"`}},
 		{`x < y`, 3, []string{"<="}},
 		{`$x$`, 1, []string{"dollar"}},
 		{`x \\ y`, 3, []string{"two backslashes"}},
@@ -153,6 +175,38 @@ func TestRefusals(t *testing.T) {
 	}
 }
 
+// Where d is an unknown or a named formula, d_x(f) could be its derivative
+// times f.
+func TestNameOfTheTotalDerivative(t *testing.T) {
+	for _, c := range []ScopeConfig{
+		{Coordinates: []string{"x", "y"}, Unknowns: []string{"d"}},
+		{Coordinates: []string{"x", "y"}, Unknowns: []string{"u"}, Lets: []string{"d"}},
+	} {
+		s, err := NewScope(c)
+		require.NoError(t, err)
+		for _, f := range []string{`d_x(d_y)`, `d_x (d_y)`, `d_{x}\left(d_y\right)`, `d_x(x + 1)`} {
+			_, err := s.ParseExpr(source.Text{Line: 7, Col: 11, S: f})
+			refused(t, f, err, 1, "two readings", `"d_x*(...)"`, "rename")
+		}
+		for _, f := range []string{`d_x d_y`, `d_x*(x + 1)`, `(d_x) (x + 1)`, `d_x^2 (x + 1)`} {
+			n := parse(t, s, f)
+			for _, printed := range []string{Text(n), TeX(n)} {
+				require.True(t, Same(n, parse(t, s, printed)), "%s printed as %s", f, printed)
+			}
+		}
+	}
+	s, err := NewScope(ScopeConfig{Coordinates: []string{"x"}, Unknowns: []string{"u"}, Constants: []string{"d"}})
+	require.NoError(t, err)
+	parse(t, s, `d (u_x)`)
+}
+
+// What looks like a number in another base may be a product of declared names.
+func TestZeroBeforeNames(t *testing.T) {
+	s, err := NewScope(ScopeConfig{Coordinates: []string{"x", "x1"}, Constants: []string{"b"}})
+	require.NoError(t, err)
+	require.Equal(t, "0 x1 + 0 x + 0 b", Text(parse(t, s, `0x1 + 0x + 0b`)))
+}
+
 func TestRefusedStatements(t *testing.T) {
 	s := layered(t)
 	for _, c := range []struct {
@@ -166,6 +220,7 @@ func TestRefusedStatements(t *testing.T) {
 		{`x == y`, 3, []string{`"="`}},
 		{`x != y`, 3, []string{"refuted"}},
 		{`x ≠ y`, 3, []string{"refuted"}},
+		{`x := y`, 3, []string{`"="`}},
 		{`a <= b <= c`, 8, []string{"two claims"}},
 		{`a = b = c`, 7, []string{"two claims"}},
 		{`a = `, 5, []string{"too early"}},

@@ -114,7 +114,7 @@ func (w *texWriter) juxt(n Node) {
 		switch {
 		case i > 0 && leadingNum(f) != nil:
 			w.parens(f)
-		case i+1 < len(x.Factors) && isBareField(f):
+		case i+1 < len(x.Factors) && opens(f):
 			w.parens(f)
 		default:
 			w.factor(f)

@@ -84,7 +84,7 @@ func (w *textWriter) juxt(n Node) {
 		switch {
 		case i > 0 && leadingNum(f) != nil:
 			w.parens(f)
-		case i+1 < len(x.Factors) && isBareField(f):
+		case i+1 < len(x.Factors) && opens(f):
 			w.parens(f)
 		default:
 			w.factor(f)
@@ -92,11 +92,17 @@ func (w *textWriter) juxt(n Node) {
 	}
 }
 
-// isBareField reports whether a parenthesis after the factor would be read as
-// the angle of a field. Such a factor stands in parentheses unless it is last.
-func isBareField(n Node) bool {
-	f, ok := n.(*Field)
-	return ok && f.Angle == nil
+// opens reports whether a parenthesis after the factor would be read as the
+// angle of a field or refused as the argument of a total derivative. Such a
+// factor stands in parentheses unless it is last.
+func opens(n Node) bool {
+	switch x := n.(type) {
+	case *Field:
+		return x.Angle == nil
+	case *Deriv:
+		return x.Of == "d"
+	}
+	return false
 }
 
 // factor prints a node that others stand beside.
