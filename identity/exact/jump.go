@@ -3,6 +3,7 @@ package exact
 import (
 	"errors"
 	"fmt"
+	"slices"
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/enclosure"
@@ -174,10 +175,10 @@ func (d *Problem) jumps(at jet.Point, wide map[algebra.Var]enclosure.Interval) b
 		if err != nil {
 			return false
 		}
-		for _, v := range d.Ring.Support(q) {
+		if v, ok := LoneVar(q); ok && !d.onWell(i) {
 			_, known := at[v]
 			_, enclosed := wide[v]
-			if !known && !enclosed && d.Ring.Symbol(v).Kind == jet.Derivative {
+			if !known && !enclosed && d.Ring.Symbol(v).Side == jet.Difference {
 				return true
 			}
 		}
@@ -190,4 +191,15 @@ func (d *Problem) jumps(at jet.Point, wide map[algebra.Var]enclosure.Interval) b
 		}
 	}
 	return false
+}
+
+// onWell reports whether a well that is not solved holds the derivative by
+// coordinate i, so that it is not free.
+func (d *Problem) onWell(i int) bool {
+	return slices.ContainsFunc(d.Wells, func(w algebra.Poly) bool {
+		return slices.ContainsFunc(w.Vars(), func(v algebra.Var) bool {
+			s := d.Ring.Symbol(v)
+			return s.Kind == jet.Derivative && s.Index == jet.Index{}.Plus(i)
+		})
+	})
 }

@@ -84,10 +84,11 @@ func (d *Problem) Points(fs ...algebra.Fraction) *Points {
 	for v := range bare {
 		p.Free = append(p.Free, v)
 	}
-	// A mean goes with every difference, so that a witness has both traces.
+	// A mean goes with every difference, and both with the traces in a well, so
+	// that a witness has both traces.
 	for _, v := range slices.Clone(p.Free) {
 		s := d.Ring.Symbol(v)
-		if s.Kind != jet.Derivative || s.Side < jet.Mean {
+		if s.Kind != jet.Derivative || s.Side == jet.NoSide {
 			continue
 		}
 		for _, side := range []jet.Side{jet.Mean, jet.Difference} {

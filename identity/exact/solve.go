@@ -60,6 +60,9 @@ func (d *Problem) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 		d.Rec.Reason = "no value of " + strings.Join(d.Claim.Solve, ", ") + " makes the claim true: the linear system of the coefficients has no solution"
 		return nil, nil
 	}
+	if d.contradicted() {
+		return d.solveAtPoints(gaps, unknown)
+	}
 	free := d.undetermined(a, len(unknown))
 	var parts []string
 	sub := map[algebra.Var]algebra.Fraction{}
@@ -73,6 +76,10 @@ func (d *Problem) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 		sub[v] = x[i]
 	}
 	d.Rec.Solution = strings.Join(parts, ", ")
+	if slices.Contains(free, false) && d.pinned() && !d.determined(gaps, unknown, free) {
+		d.Open("%s makes the claim true, but equations and assumptions hold the jets where other values may do so too", d.Rec.Solution)
+		return nil, nil
+	}
 	if !slices.Contains(free, true) {
 		if ok, err := d.allowed(sub); err != nil || !ok {
 			d.forbidden()
@@ -80,23 +87,6 @@ func (d *Problem) solveFor(gaps []algebra.Fraction) ([]algebra.Fraction, error) 
 		}
 	}
 	return d.substitute(gaps, sub)
-}
-
-// pinned reports whether the jets and constants of the claim lie on a set on
-// which different monomials may agree: the zeros of equations, a well, an
-// assumption that is an equation, a box without width.
-func (d *Problem) pinned() bool {
-	for _, c := range d.Assumed {
-		if c.Relation == "=" {
-			return true
-		}
-	}
-	for _, b := range d.Claim.Box {
-		if b.Lo.Cmp(b.Hi) == 0 {
-			return true
-		}
-	}
-	return len(d.Ideal) > 0 || len(d.Wells) > 0
 }
 
 // forbidden refutes a claim whose only solution contradicts an assumption.
@@ -187,7 +177,7 @@ func (d *Problem) coefficients(gaps []algebra.Fraction, unknown []algebra.Var) (
 		}
 		groups := map[algebra.Monomial][]algebra.Term{}
 		var keys []algebra.Monomial
-		for m, c := range rest.Num().Terms() {
+		for m, c := range d.onAssumed(rest.Num(), unknown...).Terms() {
 			var varying, constant []algebra.Power
 			for _, pw := range m.Powers() {
 				if d.fixed(pw.Var) {
@@ -257,7 +247,7 @@ func (d *Problem) solveNonlinear(gaps []algebra.Fraction, rows []algebra.Poly, u
 			if err != nil {
 				return nil, err
 			}
-			all = all && rest.IsZero()
+			all = all && d.onAssumed(rest.Num()).IsZero()
 		}
 		if all {
 			if all, err = d.allowed(map[algebra.Var]algebra.Fraction{v: jet.Rational(x.Big())}); err != nil {
@@ -280,6 +270,10 @@ func (d *Problem) solveNonlinear(gaps []algebra.Fraction, rows []algebra.Poly, u
 		return nil, nil
 	}
 	d.Rec.Solution = strings.Join(good, " or ")
+	if d.pinned() {
+		d.Open("%s makes the claim true, but equations and assumptions hold the jets where other values may do so too", d.Rec.Solution)
+		return nil, nil
+	}
 	return kept, nil
 }
 

@@ -19,41 +19,9 @@ import (
 // numbers in the enclosures are tried as a claim of its own.
 func (d *Problem) solveAtPoints(gaps []algebra.Fraction, unknown []algebra.Var) ([]algebra.Fraction, error) {
 	outside := fmt.Errorf("%w: the linear system of the coefficients has no solution in normal form, but kernels or jets in it may depend on each other", jet.ErrOutside)
-	zero := map[algebra.Var]algebra.Fraction{}
-	for _, v := range unknown {
-		zero[v] = algebra.Fraction{}
-	}
-	var parts []algebra.Fraction // of each gap: the factors of the unknowns, and the rest with the sign changed
-	for _, g := range gaps {
-		for _, v := range unknown {
-			parts = append(parts, g.Deriv(v))
-		}
-		parts = append(parts, g.SubstMany(zero).Neg())
-	}
+	parts := linearParts(gaps, unknown)
 	n := len(unknown)
-	const prec = 256
-	pts := d.Points(parts...)
-	base := jet.Point(nil)
-	var wide [][]enclosure.Interval
-	for tries := 0; tries < 40 && len(wide) < 4*(n+1)*len(gaps); tries++ {
-		at, ok := pts.Next()
-		if !ok {
-			break
-		}
-		if base == nil {
-			base = at.Clone()
-		}
-		if !d.sameConstants(pts, at, base) {
-			continue
-		}
-		for k := 0; k < len(parts); k += n + 1 {
-			row := make([]enclosure.Interval, n+1)
-			for i := range row {
-				row[i] = d.Ring.Enclose(parts[k+i], at, prec)
-			}
-			wide = append(wide, row)
-		}
-	}
+	wide := d.equationsAtPoints(parts, n)
 	if err := d.Ctx.Err(); err != nil {
 		return nil, err
 	}
@@ -87,7 +55,7 @@ func (d *Problem) solveAtPoints(gaps []algebra.Fraction, unknown []algebra.Var) 
 		if err != nil {
 			return nil, err
 		}
-		one := rest.IsZero()
+		one := d.onAssumed(rest.Num()).IsZero()
 		if !one {
 			if one, err = d.oneRoot(g); err != nil {
 				return nil, err
@@ -103,6 +71,73 @@ func (d *Problem) solveAtPoints(gaps []algebra.Fraction, unknown []algebra.Var) 
 		return nil, err
 	}
 	return out, nil
+}
+
+// linearParts are, of each gap, the factors of the unknowns, and the rest with
+// the sign changed.
+func linearParts(gaps []algebra.Fraction, unknown []algebra.Var) []algebra.Fraction {
+	zero := map[algebra.Var]algebra.Fraction{}
+	for _, v := range unknown {
+		zero[v] = algebra.Fraction{}
+	}
+	var parts []algebra.Fraction
+	for _, g := range gaps {
+		for _, v := range unknown {
+			parts = append(parts, g.Deriv(v))
+		}
+		parts = append(parts, g.SubstMany(zero).Neg())
+	}
+	return parts
+}
+
+// equationsAtPoints encloses the linear equations for n unknowns at admissible
+// points that all have the same constants.
+func (d *Problem) equationsAtPoints(parts []algebra.Fraction, n int) [][]enclosure.Interval {
+	const prec = 256
+	pts := d.Points(parts...)
+	base := jet.Point(nil)
+	var wide [][]enclosure.Interval
+	for tries := 0; tries < 40 && len(wide) < 4*len(parts); tries++ {
+		at, ok := pts.Next()
+		if !ok {
+			break
+		}
+		if base == nil {
+			base = at.Clone()
+		}
+		if !d.sameConstants(pts, at, base) {
+			continue
+		}
+		for k := 0; k < len(parts); k += n + 1 {
+			row := make([]enclosure.Interval, n+1)
+			for i := range row {
+				row[i] = d.Ring.Enclose(parts[k+i], at, prec)
+			}
+			wide = append(wide, row)
+		}
+	}
+	return wide
+}
+
+// determined reports whether the equations at admissible points certainly
+// leave no choice for the unknowns that are not free, once the free ones are
+// given.
+func (d *Problem) determined(gaps []algebra.Fraction, unknown []algebra.Var, free []bool) bool {
+	given := map[algebra.Var]algebra.Fraction{}
+	var rest []algebra.Var
+	for i, v := range unknown {
+		if free[i] {
+			given[v] = algebra.Fraction{}
+		} else {
+			rest = append(rest, v)
+		}
+	}
+	fixed, err := d.substitute(gaps, given)
+	if err != nil {
+		return false
+	}
+	_, _, unique := eliminate(d.equationsAtPoints(linearParts(fixed, rest), len(rest)), len(rest))
+	return unique
 }
 
 // sameConstants gives the point the constants of base, and reports whether it
