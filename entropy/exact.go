@@ -30,7 +30,7 @@ func (s *Setting) NewExact(ctx context.Context) (*Interpreter[algebra.Fraction],
 		ring.ConstantVar(c)
 	}
 	if s.Frame != nil {
-		ring.ConstantVar(s.Frame.Angle)
+		ring.SplitAngle(ring.ConstantVar(s.Frame.Angle))
 	}
 	return in, ex, ex.AssumeSigns(in, s.Assume)
 }

@@ -52,6 +52,9 @@ func (a *supremum) Sup(angle string, x algebra.Fraction) (algebra.Fraction, erro
 		return x, err
 	}
 	k := 0
+	if len(h.Waves) > 0 && !h.Unit.IsOne() {
+		return x, fmt.Errorf("%w: the supremum over %s of a formula in a fraction of it, in floating point", jet.ErrOutside, angle)
+	}
 	if len(h.Waves) > 0 {
 		k = h.Waves[0].K
 	}

@@ -15,21 +15,25 @@ type Wave struct {
 }
 
 // Harmonics is a trigonometric polynomial Mean + Σ waves, in increasing k ≥ 1,
-// waves that vanish left out.
+// waves that vanish left out. Its angle is Unit times the named one.
 type Harmonics struct {
 	Mean  algebra.Fraction
 	Waves []Wave
+	Unit  algebra.Rat
 }
 
-// Harmonics writes f as a trigonometric polynomial in the named angle. It
-// fails where f depends on the angle in another way.
+// Harmonics writes f as a trigonometric polynomial in a rational multiple of
+// the named angle. It fails where f depends on the angle in another way.
 func (r *Ring) Harmonics(f algebra.Fraction, angle string) (Harmonics, error) {
-	var out Harmonics
+	out := Harmonics{Unit: algebra.Int(1)}
 	theta := r.ConstantVar(angle)
 	c, s := algebra.Var(-1), algebra.Var(-1)
 	for _, v := range r.cosines {
-		if w, ok := loneVar(r.symbols[v].Arg.Num()); ok && w == theta && len(r.symbols[v].Arg.DenFactors()) == 0 {
+		unit := r.symbols[v].Arg.Deriv(theta)
+		q, ok := unit.IsConst()
+		if ok && !q.IsZero() && r.symbols[v].Arg.Equal(Of(theta).Mul(unit)) && (c < 0 || !f.Has(c) && !f.Has(s)) {
 			c, s = v, r.symbols[v].Partner
+			out.Unit = q
 		}
 	}
 	outside := func() error {
@@ -188,12 +192,15 @@ func (r *Ring) NormRoot(f algebra.Fraction) (algebra.Fraction, error) {
 // Orientation is an indeterminate σ with σ² = 1: the sign of the unit normal
 // against the jump of the gradient.
 func (r *Ring) Orientation() (algebra.Fraction, error) {
-	g, err := r.rootKernel(algebra.Const(algebra.Int(1)), 2, "orientation")
+	n := len(r.symbols)
+	v, err := r.kernel(Symbol{Kind: Root, Name: "orientation", Arg: Whole(1), Degree: 2})
 	if err != nil {
-		return g, err
+		return algebra.Fraction{}, err
 	}
-	r.symbols[g.Vars()[0]].Sign = AnySign
-	return g, nil
+	if int(v) == n {
+		r.related = append(r.related, v)
+	}
+	return Of(v), nil
 }
 
 func clip(s string) string {

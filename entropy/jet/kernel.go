@@ -212,6 +212,13 @@ func (r *Ring) Log(f algebra.Fraction) (algebra.Fraction, error) {
 			return nil
 		}
 		if r.visiblyPositivePoly(p) {
+			for { // the logarithm of a square
+				t, ok := r.sqrtPoly(p)
+				if !ok || !r.visiblyPositivePoly(t) {
+					break
+				}
+				p, e = t, 2*e
+			}
 			return r.addLog(&out, algebra.FromPoly(p), e)
 		}
 		rest = rest.Mul(algebra.FromPoly(p).Pow(e))

@@ -4,10 +4,19 @@ import (
 	"creaseproof/entropy/algebra"
 )
 
-// Relation is the q and the polynomial a of v^q = a; q is 0 where v is free.
+// Relation is the q and the polynomial a of v^q = a; q is 0 where v is free. a
+// holds indeterminates older than v and, for the cosine of a fraction of π,
+// lower powers of v.
 func (r *Ring) Relation(v algebra.Var) (q int, a algebra.Poly) {
 	switch s := &r.symbols[v]; s.Kind {
+	case Cosine:
+		if s.Degree > 0 {
+			return s.Degree, s.Value
+		}
 	case Sine:
+		if s.Degree > 0 {
+			return s.Degree, s.Value
+		}
 		c := algebra.Variable(s.Partner)
 		return 2, algebra.Const(algebra.Int(1)).Sub(c.Mul(c))
 	case Root:
@@ -26,6 +35,10 @@ func (r *Ring) ReducePoly(p algebra.Poly) algebra.Poly {
 			continue
 		}
 		coeffs := p.Coeffs(v)
+		if a.Has(v) {
+			p = foldPowers(coeffs, v, q, a)
+			continue
+		}
 		powers := []algebra.Poly{algebra.Const(algebra.Int(1))} // of a
 		var out algebra.Poly
 		for k, c := range coeffs {
@@ -40,6 +53,27 @@ func (r *Ring) ReducePoly(p algebra.Poly) algebra.Poly {
 		p = out
 	}
 	return p
+}
+
+// foldPowers is Σ coeffs[k] v^k reduced by v^q = a, a of lower degree in v.
+func foldPowers(coeffs []algebra.Poly, v algebra.Var, q int, a algebra.Poly) algebra.Poly {
+	x, low := algebra.Variable(v), a.Coeffs(v)
+	var out algebra.Poly
+	power := algebra.Const(algebra.Int(1)) // v^k, reduced
+	for k, c := range coeffs {
+		if k > 0 {
+			co := power.Coeffs(v)
+			power = power.Mul(x)
+			if len(co) == q {
+				power = power.Sub(co[q-1].Mul(x.Pow(q)))
+				for i, b := range low {
+					power = power.Add(co[q-1].Mul(b).Mul(x.Pow(i)))
+				}
+			}
+		}
+		out = out.Add(c.Mul(power))
+	}
+	return out
 }
 
 // holdsRelated reports whether a kernel with a relation occurs in p.

@@ -99,7 +99,8 @@ type Symbol struct {
 	Index   Index            // Derivative
 	Side    Side             // Derivative
 	Arg     algebra.Fraction // what a kernel is applied to
-	Degree  int              // Root: the q of r^q = Arg
+	Degree  int              // Root: the q of r^q = Arg; Cosine, Sine: the q of v^q = Value, or 0
+	Value   algebra.Poly     // Cosine, Sine of a fraction of π: see Degree
 	Partner algebra.Var      // Cosine, Sine: the other of the pair
 	Sign    Sign             // what is known of its values
 }
@@ -168,6 +169,7 @@ type Ring struct {
 	related    []algebra.Var // kernels with a relation, oldest first
 	expBasis   []algebra.Var
 	angleBasis []algebra.Var // cosines of independent angles
+	turning    []algebra.Var // angles that are split off first
 	cosines    []algebra.Var // all cosines
 	angles     Angles
 	pi         algebra.Var
@@ -323,6 +325,19 @@ func (r *Ring) jetName(unknown int, j Index) string {
 // Assume records what is known of the sign of v. It must be called before
 // formulas that hold v are read.
 func (r *Ring) Assume(v algebra.Var, s Sign) { r.symbols[v].Sign = s }
+
+// Suppose is Assume for a sign that is no assumption: it joins the conditions.
+func (r *Ring) Suppose(v algebra.Var, s Sign) {
+	x, need := Of(v), NeedNonNegative
+	if s == Negative || s == NonPositive {
+		x = x.Neg()
+	}
+	if s == Positive || s == Negative {
+		need = NeedPositive
+	}
+	r.conditions = append(r.conditions, Condition{x, need})
+	r.Assume(v, s)
+}
 
 // Rational is the constant x.
 func Rational(x *big.Rat) algebra.Fraction {

@@ -90,6 +90,14 @@ func (r *Ring) absPoly(p algebra.Poly) (algebra.Fraction, error) {
 	case r.visiblyNonNegativePoly(rest.Neg()):
 		out = out.Mul(algebra.FromPoly(rest.Neg()))
 	default:
+		if _, ok := r.sqrtPoly(rest); ok {
+			out = out.Mul(algebra.FromPoly(rest))
+			break
+		}
+		if _, ok := r.sqrtPoly(rest.Neg()); ok {
+			out = out.Mul(algebra.FromPoly(rest.Neg()))
+			break
+		}
 		a, err := r.absKernel(rest)
 		if err != nil {
 			return a, err
@@ -102,10 +110,18 @@ func (r *Ring) absPoly(p algebra.Poly) (algebra.Fraction, error) {
 // absKernel is |p| as the root of p².
 func (r *Ring) absKernel(p algebra.Poly) (algebra.Fraction, error) {
 	sq := r.ReducePoly(p.Mul(p))
+	if c, ok := sq.IsConst(); ok && c.Sign() > 0 { // as for an orientation
+		return r.rootRat(c, 2)
+	}
 	return r.rootKernel(sq, 2, "abs("+r.FormatPoly(p)+")")
 }
 
+// rootKernel is the non-negative q-th root of p as a kernel. The root of 1 is
+// no kernel: the one that looks like it is the orientation, which has two signs.
 func (r *Ring) rootKernel(p algebra.Poly, q int, name string) (algebra.Fraction, error) {
+	if c, ok := p.IsConst(); ok && c.IsOne() {
+		return Whole(1), nil
+	}
 	n := len(r.symbols)
 	sign := NonNegative
 	if r.visiblyPositivePoly(p) {

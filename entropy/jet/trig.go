@@ -40,6 +40,11 @@ const maxTurns = 1000
 // with angles are read.
 func (r *Ring) SetAngles(a Angles) { r.angles = a }
 
+// SplitAngle makes every argument of a cosine or sine fall into a rational
+// multiple of v and a rest, in whatever order they are read. It must be called
+// before formulas with angles are read.
+func (r *Ring) SplitAngle(v algebra.Var) { r.turning = append(r.turning, v) }
+
 func (r *Ring) finer(k int, d int64, f algebra.Fraction) error {
 	need := Angles{slices.Clone(r.angles.Divisors), r.angles.Turn}
 	for len(need.Divisors) <= k {
@@ -77,45 +82,77 @@ func (r *Ring) CosSin(f algebra.Fraction) (cos, sin algebra.Fraction, err error)
 		}
 	}
 	z, err := r.rationalAngle(turn)
-	if err != nil || f.IsZero() {
+	if err != nil {
 		return z.c, z.s, err
 	}
-	x, ok := combination(f, r.args(r.angleBasis))
-	if !ok {
-		// f is independent of the basis, so it joins it.
-		k := len(r.angleBasis)
-		d := int64(1)
-		if k < len(r.angles.Divisors) {
-			d = r.angles.Divisors[k]
+	for _, v := range r.turning {
+		q, ok := f.Deriv(v).IsConst()
+		if !ok || q.IsZero() {
+			continue
 		}
-		x = append(make([]algebra.Rat, k), algebra.Int(d))
-		c, err := r.newAngle(f.Scale(algebra.Frac64(1, d)))
-		if err != nil {
+		part := Of(v).Scale(q)
+		if _, ok := combination(part, r.args(r.angleBasis)); !ok {
+			if _, err = r.joinAngle(Of(v)); err != nil {
+				return z.c, z.s, err
+			}
+		}
+		if z, err = r.turnBy(z, part); err != nil {
 			return z.c, z.s, err
 		}
-		r.angleBasis = append(r.angleBasis, c)
+		f = f.Sub(part)
+	}
+	if !f.IsZero() {
+		z, err = r.turnBy(z, f)
+	}
+	return z.c, z.s, err
+}
+
+// turnBy turns z by f, an angle without a rational multiple of π.
+func (r *Ring) turnBy(z circle, f algebra.Fraction) (circle, error) {
+	x, ok := combination(f, r.args(r.angleBasis))
+	if !ok {
+		k := len(r.angleBasis)
+		d, err := r.joinAngle(f)
+		if err != nil {
+			return z, err
+		}
+		x = append(make([]algebra.Rat, k), algebra.Int(d))
 	}
 	for i, q := range x {
 		if q.IsZero() {
 			continue
 		}
 		if den := q.Big().Denom(); !q.IsInt() && den.IsInt64() && den.Int64() <= maxTurns {
-			return z.c, z.s, r.finer(i, den.Int64(), f)
+			return z, r.finer(i, den.Int64(), f)
 		}
 		n, okInt := q.Int64()
 		if !q.IsInt() || !okInt || n > maxTurns || n < -maxTurns {
-			return z.c, z.s, fmt.Errorf("%w: cos or sin of %s, which is %s times another angle in use", ErrOutside, r.Format(f), q)
+			return z, fmt.Errorf("%w: cos or sin of %s, which is %s times another angle in use", ErrOutside, r.Format(f), q)
 		}
 		v := r.angleBasis[i]
 		w, err := r.turnPow(circle{Of(v), Of(r.symbols[v].Partner)}, int(n))
 		if err != nil {
-			return z.c, z.s, err
+			return z, err
 		}
 		if z, err = r.turnMul(z, w); err != nil {
-			return z.c, z.s, err
+			return z, err
 		}
 	}
-	return z.c, z.s, nil
+	return z, nil
+}
+
+// joinAngle adds f, which is independent of the basis, to it: f/d, d returned.
+func (r *Ring) joinAngle(f algebra.Fraction) (int64, error) {
+	d := int64(1)
+	if k := len(r.angleBasis); k < len(r.angles.Divisors) {
+		d = r.angles.Divisors[k]
+	}
+	c, err := r.newAngle(f.Scale(algebra.Frac64(1, d)))
+	if err != nil {
+		return d, err
+	}
+	r.angleBasis = append(r.angleBasis, c)
+	return d, nil
 }
 
 // newAngle finds or makes the pair of kernels cos f, sin f.
@@ -240,7 +277,11 @@ func (r *Ring) rationalAngle(q algebra.Rat) (circle, error) {
 	if err != nil {
 		return circle{}, err
 	}
+	r.relateTurn(v, unit)
 	z, err := r.turnPow(circle{Of(v), Of(r.symbols[v].Partner)}, int(m))
+	if err == nil && m == 1 {
+		z.s, err = r.Reduce(z.s)
+	}
 	if reflect {
 		z.c = z.c.Neg()
 	}

@@ -68,12 +68,34 @@ func (c Constraint) holds(r *jet.Ring, at jet.Point) bool {
 // claim that cannot be decided within the limits gives a record with the
 // verdict Open.
 func Decide(ctx context.Context, c *claim.Claim, seed uint64, inequality func(*Problem) error) (*claim.Record, error) {
+	d, err := look(ctx, c, seed, nil, inequality)
+	if err != nil {
+		return nil, err
+	}
+	if d.Ring == nil || d.Rec.Verdict != claim.Open {
+		return d.Rec, nil
+	}
+	// What the sides need to be defined may be what was missing.
+	if signs := d.suppositions(); len(signs) > 0 {
+		again, err := look(ctx, c, seed, signs, inequality)
+		switch {
+		case ctx.Err() != nil:
+			return nil, ctx.Err()
+		case err == nil && again.Rec.Verdict != claim.Open:
+			return again.Rec, nil
+		}
+	}
+	return d.Rec, nil
+}
+
+// look decides a claim once, with signs known beyond those assumed.
+func look(ctx context.Context, c *claim.Claim, seed uint64, signs []supposition, inequality func(*Problem) error) (*Problem, error) {
 	var d *Problem
 	var err error
 	var angles jet.Angles
 	for range 8 { // until the basis of angles is fine enough
 		d = &Problem{Ctx: ctx, Claim: c, Seed: seed, Rec: &claim.Record{Claim: c.Name}}
-		err = d.run(angles, inequality)
+		err = d.run(angles, signs, inequality)
 		var finer *jet.FinerAngles
 		if !errors.As(err, &finer) {
 			break
@@ -90,14 +112,9 @@ func Decide(ctx context.Context, c *claim.Claim, seed uint64, inequality func(*P
 		return nil, err
 	}
 	if d.Ring != nil && d.Rec.Verdict != claim.Open {
-		for _, c := range d.Ring.Conditions() {
-			if d.Ex.NoJump(c) || d.ofParameters(c.Value) {
-				continue
-			}
-			d.Rec.Assumptions = append(d.Rec.Assumptions, d.Ring.Format(c.Value)+" "+c.Need.String())
-		}
+		d.rest()
 	}
-	return d.Rec, nil
+	return d, nil
 }
 
 // ofParameters reports a condition on the parameters of a parametrised well,
@@ -117,7 +134,7 @@ func (d *Problem) Proved(method string) {
 	d.Rec.Verdict, d.Rec.Method = claim.Proved, method
 }
 
-func (d *Problem) run(angles jet.Angles, inequality func(*Problem) error) error {
+func (d *Problem) run(angles jet.Angles, signs []supposition, inequality func(*Problem) error) error {
 	var err error
 	if d.In, d.Ex, err = d.Claim.Setting.NewExact(d.Ctx); err != nil {
 		return err
@@ -131,6 +148,9 @@ func (d *Problem) run(angles jet.Angles, inequality func(*Problem) error) error 
 		d.Ring.ConstantVar(s)
 	}
 	if err := d.assumeSigns(); err != nil {
+		return err
+	}
+	if err := d.suppose(signs); err != nil {
 		return err
 	}
 	if err := d.rewrite(); err != nil {

@@ -156,12 +156,13 @@ func (d *Problem) solveReduced(a [][]algebra.Fraction, b []algebra.Fraction) ([]
 	r := 0
 	for c := range n {
 		pivot[c] = -1
-		for i := r; i < len(m); i++ {
-			if !m[i][c].IsZero() {
-				m[r], m[i] = m[i], m[r]
-				pivot[c] = r
-				break
-			}
+		i, err := d.pivot(m[r:], c)
+		if err != nil {
+			return nil, false, err
+		}
+		if i >= 0 {
+			m[r], m[r+i] = m[r+i], m[r]
+			pivot[c] = r
 		}
 		if pivot[c] < 0 {
 			continue
@@ -183,7 +184,11 @@ func (d *Problem) solveReduced(a [][]algebra.Fraction, b []algebra.Fraction) ([]
 		r++
 	}
 	for i := r; i < len(m); i++ {
-		if !m[i][n].IsZero() {
+		switch rest := m[i][n]; {
+		case rest.IsZero():
+		case d.number(rest) && !d.everywhere(jet.Condition{Value: rest, Need: jet.NeedNonZero}):
+			return nil, false, fmt.Errorf("%w: whether %s is zero is not certain", jet.ErrOutside, Short(d.Ring.Format(rest)))
+		default:
 			return nil, false, nil
 		}
 	}
@@ -211,4 +216,28 @@ func (d *Problem) solveReduced(a [][]algebra.Fraction, b []algebra.Fraction) ([]
 		}
 	}
 	return x, true, nil
+}
+
+// pivot is the first row whose entry in column c is not zero, -1 where there
+// is none: a number that certainly is not, where there is one. A number that
+// is not told from zero is no pivot, and no zero either.
+func (d *Problem) pivot(rows [][]algebra.Fraction, c int) (int, error) {
+	best, unsure := -1, -1
+	for i, row := range rows {
+		switch {
+		case row[c].IsZero():
+		case !d.number(row[c]):
+			if best < 0 {
+				best = i
+			}
+		case d.everywhere(jet.Condition{Value: row[c], Need: jet.NeedNonZero}):
+			return i, nil
+		default:
+			unsure = i
+		}
+	}
+	if best < 0 && unsure >= 0 {
+		return -1, fmt.Errorf("%w: whether %s is zero is not certain", jet.ErrOutside, Short(d.Ring.Format(rows[unsure][c])))
+	}
+	return best, nil
 }
