@@ -53,6 +53,9 @@ func Parse(name string, data []byte) (*Case, error) {
 	return c, nil
 }
 
+// Source is the text of the case file.
+func (c *Case) Source() []byte { return c.text.data }
+
 // Fault is an error at a place of the case.
 func (c *Case) Fault(pos source.Pos, advice, format string, args ...any) error {
 	return c.text.at(pos, advice, format, args...)

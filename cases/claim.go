@@ -79,6 +79,10 @@ func (b *builder) equation(scope *formula.Scope, t source.Text) formula.Node {
 	if len(found) == 0 {
 		return b.expr(scope, t)
 	}
+	if found[0].relation == "==" {
+		b.fault(t.Pos(found[0].runes(t)), `write "="`, "%q is no relation of an equation", "==")
+		return nil
+	}
 	if found[0].relation != "=" {
 		b.fault(t.Pos(found[0].runes(t)), "write a formula, which is taken as zero, or an equation; an inequality belongs to assume", "modulo holds an inequality")
 		return nil

@@ -42,12 +42,11 @@ func (b *builder) expectation(f *casefile.Claim) Expectation {
 		return e
 	}
 	for _, part := range strings.Split(f.Expect.S, ",") {
-		name, value, ok := strings.Cut(part, "=")
-		name = spaceless(name)
+		name, value := solved(part)
 		folded, err := formula.FoldName(name)
 		switch {
-		case !ok || err != nil || spaceless(value) == "":
-			b.fault(position(*f.Expect), `write a verdict, or a solution such as "c = 4/3" or "a = 1, b = 2"`, "%q is no verdict and no solution", Clip(f.Expect.S, 60))
+		case err != nil || value == "":
+			b.fault(position(*f.Expect), `write a verdict, or a solution such as "c = 4/3", "a = 1, b = 2" or "c free"`, "%q is no verdict and no solution", Clip(f.Expect.S, 60))
 			return e
 		case !slices.Contains(asked, folded):
 			b.fault(position(*f.Expect), "name it in solve or best", "%q is expected to be found, and is not asked for", Clip(name, 60))
@@ -88,14 +87,28 @@ func sameSolution(a, b string) bool {
 	return len(x) > 0 && slices.Equal(x, y)
 }
 
+// free is the value of a constant that a solution leaves free. No value that
+// is written has a space in it.
+const free = " free"
+
+// solved reads one part of a solution, "c = 4/3" or "c free": the name as it is
+// written and its value without white space, "" where there is none.
+func solved(part string) (name, value string) {
+	if name, ok := strings.CutSuffix(strings.TrimSpace(part), free); ok && !strings.Contains(part, "=") {
+		return spaceless(name), free
+	}
+	name, value, _ = strings.Cut(spaceless(part), "=")
+	return name, value
+}
+
 func parts(s string) []string {
 	var list []string
 	for _, p := range strings.Split(s, ",") {
-		name, value, ok := strings.Cut(spaceless(p), "=")
+		name, value := solved(p)
 		if folded, err := formula.FoldName(name); err == nil {
 			name = folded
 		}
-		if ok && len(value) < 1000 && !strings.ContainsAny(value, "eE") {
+		if len(value) < 1000 && !strings.ContainsAny(value, "eE") {
 			if r, isRat := new(big.Rat).SetString(value); isRat {
 				value = r.RatString()
 			}

@@ -25,6 +25,13 @@ func TestSameSolution(t *testing.T) {
 		{"c = eps + 1", "c = eps + 1", true},
 		{"c = 1/0", "c = 1/0", true},
 		{"c = 4/3", "", false},
+		{"c free", "c free", true},
+		{"κ  free", "kappa free", true},
+		{"c free, b = 2", "b = 4/2, c free", true},
+		{"c free", "b free", false},
+		{"c free", "c = 0", false},
+		{"c free", "c = free", false},
+		{"c free", "", false},
 		{"c = 1", "c = 1 or c = 2", false},
 	} {
 		assert.Equal(t, c.same, sameSolution(c.a, c.b), "%q and %q", c.a, c.b)

@@ -18,7 +18,7 @@ import (
 const MaxFile = 8 << 20
 
 // Load reads the cases that the arguments name, in their order. An argument is
-// a file; a folder, for all files *.toml in it in alphabetical order, without
+// a regular file; a folder, for all files *.toml in it in alphabetical order, without
 // its sub-folders; the name of a built-in case; or "-" for stdin. No argument
 // at all means every built-in case. What can be read is returned beside the
 // errors of what cannot, one for each bad argument or file.
@@ -75,7 +75,16 @@ func BuiltIn(name string) (*Case, error) {
 	return Parse(name, data)
 }
 
+// open reads a file. Only a regular one is opened: to wait for a pipe that
+// nobody writes to would never end.
 func open(path string) (*Case, error) {
+	info, err := os.Stat(path)
+	if err != nil {
+		return nil, whole(path, reason(err), "")
+	}
+	if !info.Mode().IsRegular() {
+		return nil, whole(path, "this is no regular file", `write "-" for standard input`)
+	}
 	f, err := os.Open(path)
 	if err != nil {
 		return nil, whole(path, reason(err), "")

@@ -6,6 +6,7 @@ import (
 	"os"
 	"path/filepath"
 	"strings"
+	"syscall"
 	"testing"
 
 	"github.com/stretchr/testify/assert"
@@ -83,3 +84,19 @@ func TestLoadUnreadable(t *testing.T) {
 type endless struct{}
 
 func (endless) Read(p []byte) (int, error) { return len(p), nil }
+
+// A named pipe that nobody writes to must not be waited for, neither alone nor
+// in a folder.
+func TestLoadNoPipe(t *testing.T) {
+	dir := t.TempDir()
+	pipe := filepath.Join(dir, "pipe.toml")
+	if err := syscall.Mkfifo(pipe, 0o600); err != nil {
+		t.Skip(err)
+	}
+	for _, arg := range []string{pipe, dir, os.DevNull} {
+		list, failed := Load([]string{arg}, nil)
+		assert.Empty(t, list)
+		require.Len(t, failed, 1)
+		assert.ErrorContains(t, failed[0], "no regular file")
+	}
+}

@@ -9,7 +9,7 @@ import (
 
 // cut is a relation found in a text.
 type cut struct {
-	relation   string // > >= < <= =
+	relation   string // > >= < <= = != ==
 	start, end int    // byte offsets
 	spelled    string
 }
@@ -18,6 +18,7 @@ type cut struct {
 var texRelations = map[string]string{
 	"ge": ">=", "geq": ">=", "geqslant": ">=", "gt": ">",
 	"le": "<=", "leq": "<=", "leqslant": "<=", "lt": "<",
+	"ne": "!=", "neq": "!=",
 }
 
 // cuts lists the relations in a text from left to right.
@@ -26,9 +27,11 @@ func cuts(s string) []cut {
 	for i := 0; i < len(s); {
 		relation, n := "", 1
 		switch s[i] {
-		case '<', '>', '=':
-			relation = s[i : i+1]
-			if i+1 < len(s) && s[i+1] == '=' && s[i] != '=' {
+		case '<', '>', '=', '!':
+			if s[i] != '!' {
+				relation = s[i : i+1]
+			}
+			if i+1 < len(s) && s[i+1] == '=' {
 				relation, n = s[i:i+2], 2
 			}
 		case '\\':
@@ -43,6 +46,8 @@ func cuts(s string) []cut {
 				relation = ">="
 			} else if r == '≤' || r == '⩽' {
 				relation = "<="
+			} else if r == '≠' {
+				relation = "!="
 			}
 		}
 		if relation != "" {

@@ -187,6 +187,14 @@ func (b *builder) assumptions(scope *formula.Scope, texts []source.Text) []entro
 			continue
 		}
 		l, r := found[0].split(t)
+		switch found[0].relation {
+		case "!=":
+			b.fault(t.Pos(found[0].runes(t)), `make a claim for each side, one with ">" and one with "<"`, "an assumption that two formulas differ cannot be made")
+			continue
+		case "==":
+			b.fault(t.Pos(found[0].runes(t)), `write "=" for an equation`, "%q is no relation of an assumption", "==")
+			continue
+		}
 		left, right := b.expr(scope, l), b.expr(scope, r)
 		if left != nil && right != nil {
 			list = append(list, entropy.Assumption{Left: left, Right: right, Relation: found[0].relation, Text: t.S})

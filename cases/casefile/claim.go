@@ -82,10 +82,16 @@ func (d *decoder) claim(v *value) Claim {
 	if len(c.Solve) > 0 && c.Best != nil {
 		d.add(v.get("best").off, "a claim has solve or best, not both", "solve is for an equation, best for an inequality")
 	}
-	if c.Expect != nil && strings.Contains(c.Expect.S, "=") && v.get("solve") == nil && v.get("best") == nil {
+	if c.Expect != nil && isSolution(c.Expect.S) && v.get("solve") == nil && v.get("best") == nil {
 		d.add(v.get("expect").off, fmt.Sprintf("%s expects a solution, and nothing is solved for", quote(c.Expect.S)), `add solve = ["c"] or best = "c", or expect a verdict`)
 	}
 	return c
+}
+
+// isSolution reports whether a text is meant to say what constants are, and not
+// to be a verdict.
+func isSolution(s string) bool {
+	return strings.Contains(s, "=") || strings.HasSuffix(s, " free")
 }
 
 // expect reads a verdict or, in a claim, a solution.
@@ -94,14 +100,14 @@ func (d *decoder) expect(v *value, solution bool) *source.Text {
 	if v.kind != stringKind || s == "" && control(v.text) >= 0 {
 		return nil
 	}
-	ok := solution && strings.Contains(s, "=")
+	ok := solution && isSolution(s)
 	for _, w := range verdicts {
 		ok = ok || s == w
 	}
 	if !ok {
 		advice := "write one of " + strings.Join(verdicts, ", ")
 		if solution {
-			advice += `, or a solution such as "c = 4/3"`
+			advice += `, or a solution such as "c = 4/3" or "c free"`
 		}
 		if n := nearest(s, verdicts); n != "" {
 			advice = fmt.Sprintf("did you mean %q? %s", n, advice)

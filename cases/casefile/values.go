@@ -208,7 +208,7 @@ func (d *decoder) formula(v *value, what string) (source.Text, bool) {
 			return source.Text{}, false
 		}
 		if strings.TrimSpace(v.text) == "" {
-			d.add(v.off, fmt.Sprintf("the formula %s is empty", quote(what)), `write 0 if it is zero`)
+			d.add(v.off, fmt.Sprintf("the formula %s is empty", quote(what)), whatInstead(what))
 			return source.Text{}, false
 		}
 		return d.text(v.text, v.off), true
@@ -224,6 +224,17 @@ func (d *decoder) formula(v *value, what string) (source.Text, bool) {
 	}
 	d.wrong(v, what, "a formula in quotes or a number", fmt.Sprintf("%s = '...'", short(what)))
 	return source.Text{}, false
+}
+
+// whatInstead is what to write for a formula that is empty.
+func whatInstead(what string) string {
+	switch what {
+	case "states":
+		return `write a claim such as "div(Sigma) = R L"`
+	case "assume":
+		return `write a condition such as "eps > 0", or leave it out`
+	}
+	return "write 0 if it is zero"
 }
 
 func (d *decoder) text(s string, off int) source.Text {

@@ -1,11 +1,13 @@
 package run
 
 import (
+	"errors"
+	"fmt"
 	"math"
 	"slices"
 
 	"creaseproof/cases"
-
+	"creaseproof/entropy/source"
 	"creaseproof/identity"
 )
 
@@ -64,15 +66,13 @@ type CheckedCircle struct {
 	Sin string `json:"sin"`
 }
 
-// Document is the outcome for the given cases, in their order. Claims that
-// mean nothing are left out: they have no verdict.
+// Document is the outcome for the given cases, in their order. A claim that
+// means nothing is open, for the reason that the error gives.
 func (o *Outcome) Document(list []*cases.Case) CheckDocument {
 	doc := CheckDocument{Schema: Schema, Cases: []CheckedCase{}}
 	byCase := map[*cases.Case][]CheckedClaim{}
 	for _, r := range o.Results {
-		if r.Record != nil {
-			byCase[r.Case] = append(byCase[r.Case], checked(r))
-		}
+		byCase[r.Case] = append(byCase[r.Case], checked(r))
 	}
 	for _, c := range list {
 		claims := byCase[c]
@@ -84,8 +84,20 @@ func (o *Outcome) Document(list []*cases.Case) CheckDocument {
 	return doc
 }
 
+// problem is what is wrong, without an excerpt of the file.
+func problem(err error) string {
+	var placed *source.Error
+	if !errors.As(err, &placed) {
+		return fmt.Sprint(err)
+	}
+	return fmt.Sprintf("line %d, column %d: %s", placed.Line, placed.Col, cases.Clip(placed.Problem, 400))
+}
+
 func checked(r *Result) CheckedClaim {
 	rec := r.Record
+	if rec == nil {
+		rec = &identity.Record{Verdict: identity.Open, Reason: "without meaning: " + problem(r.Err)}
+	}
 	c := CheckedClaim{
 		Claim: r.Claim.Name, Verdict: rec.Verdict, Expected: r.Claim.Expected.Verdict, Met: r.Met(),
 		Method: rec.Method, Seconds: r.Elapsed.Seconds(),

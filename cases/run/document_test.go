@@ -56,7 +56,11 @@ states = "1/(u - u) = 1"
 	require.Len(t, doc.Cases, 1)
 	assert.Equal(t, "-", doc.Cases[0].Case)
 	claims := doc.Cases[0].Claims
-	require.Len(t, claims, 3, "a claim that means nothing has no verdict")
+	require.Len(t, claims, 4)
+	assert.Equal(t, map[string]any{
+		"claim": "nothing", "verdict": "open", "expected": "proved", "met": false, "seconds": 0.25,
+		"reason": "without meaning: line 19, column 14: division by zero: u - u vanishes identically",
+	}, claims[3])
 
 	assert.Equal(t, map[string]any{
 		"claim": "true", "verdict": "proved", "expected": "proved", "met": true, "seconds": 0.25, "method": out.Results[0].Record.Method,

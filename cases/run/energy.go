@@ -3,6 +3,7 @@ package run
 import (
 	"context"
 	"fmt"
+	"slices"
 	"time"
 
 	"creaseproof/cases"
@@ -49,6 +50,12 @@ func (r *EnergyResult) Met() bool {
 		}
 	}
 	return r.Err == nil && !r.Failed
+}
+
+// Unread reports whether the surface, or one of its values, means nothing: there
+// is an error, and no value that shows it.
+func (r *EnergyResult) Unread() bool {
+	return r.Err != nil && !slices.ContainsFunc(r.Values, func(v creases.Result) bool { return !v.Met })
 }
 
 // EnergyOutcome is what came of all surfaces, in the order of the cases and of

@@ -21,7 +21,9 @@ type EnergyCase struct {
 	Surfaces []creases.Result `json:"surfaces"`
 }
 
-// Document is the outcome for the given cases, in their order.
+// Document is the outcome for the given cases, in their order. A surface that
+// means nothing is open, for the reason that the error gives, after the values
+// found before.
 func (o *EnergyOutcome) Document(list []*cases.Case) EnergyDocument {
 	doc := EnergyDocument{Schema: Schema, Cases: []EnergyCase{}}
 	byCase := map[*cases.Case][]creases.Result{}
@@ -33,6 +35,9 @@ func (o *EnergyOutcome) Document(list []*cases.Case) EnergyDocument {
 				}
 			}
 			byCase[r.Case] = append(byCase[r.Case], v)
+		}
+		if r.Unread() {
+			byCase[r.Case] = append(byCase[r.Case], unfinished(r.Surface, "without meaning: "+problem(r.Err)))
 		}
 	}
 	for _, c := range list {

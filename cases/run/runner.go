@@ -7,7 +7,7 @@ import (
 	"time"
 
 	"creaseproof/cases"
-
+	"creaseproof/entropy/source"
 	"creaseproof/identity"
 )
 
@@ -105,7 +105,19 @@ func attempt(ctx context.Context, c *cases.Case, claim *cases.Claim, opt identit
 	case stopped(ctx, err):
 		return nil
 	}
-	return &Result{Case: c, Claim: claim, Err: c.Place(err, claim.Pos)}
+	return &Result{Case: c, Claim: claim, Err: met(c.Place(err, claim.Pos), claim)}
+}
+
+// met adds the name of the claim to an error that stands on another line, such
+// as in a named formula.
+func met(err error, claim *cases.Claim) error {
+	var placed *source.Error
+	if !errors.As(err, &placed) || placed.Line == claim.Pos.Line {
+		return err
+	}
+	e := *placed
+	e.Problem = fmt.Sprintf("%s (in the claim %q)", cases.Clip(e.Problem, 300), cases.Clip(claim.Name, 60))
+	return &e
 }
 
 // stopped reports whether an error says only that the context ended.

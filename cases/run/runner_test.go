@@ -210,3 +210,27 @@ func TestBestConstant(t *testing.T) {
 	assert.Equal(t, "C >= 1/2", out.Results[0].Record.Solution)
 	assert.True(t, out.Results[0].Met())
 }
+
+// A mistake in a named formula is shown there, and says which claim meets it.
+func TestMistakeInsideALet(t *testing.T) {
+	c := parsed(t, space+`[let]
+B = "1/(u_x - u_x)"
+[model]
+residual = "u_x^2 + u_y^2 + u_z^2 - 1"
+[[claim]]
+name = "at the jump"
+at = "jump"
+states = "[B] = 0"
+[[claim]]
+name = "not there"
+states = "1/(u_y - u_y) = 0"
+`)
+	out := Check(t.Context(), []*cases.Case{c}, Options{Options: identity.DefaultOptions()})
+	require.Len(t, out.Results, 2)
+	var e *source.Error
+	require.ErrorAs(t, out.Results[0].Err, &e)
+	assert.Equal(t, 7, e.Line)
+	assert.Contains(t, e.Error(), `(in the claim "at the jump")`)
+	require.ErrorAs(t, out.Results[1].Err, &e)
+	assert.NotContains(t, e.Error(), "in the claim", "the line itself says so")
+}

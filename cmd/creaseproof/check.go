@@ -3,7 +3,6 @@ package main
 import (
 	"context"
 	"encoding/json"
-	"errors"
 	"fmt"
 	"io"
 	"time"
@@ -35,29 +34,22 @@ or - for standard input; without one, every built-in case is taken.`,
   creaseproof check mine.toml --samples 5000000 --seed 7 --timeout 60`,
 		ValidArgsFunction: completeCase,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			end, err := c.begin()
-			if err != nil {
-				return err
-			}
-			defer end()
-			if opt.Samples < 1 {
-				return errors.New("--samples: write the number of random jets to draw, at least 1")
-			}
+			defer c.begin()()
 			opt.Only, opt.Timeout, opt.Jobs = c.only, time.Duration(c.timeout), c.jobs
 			say := &complaints{w: s.err}
 			list, bad, err := load(cmd.Context(), args, s.in, say)
 			if err != nil {
 				return err
 			}
-			if list = selected(list, &opt); len(list) == 0 && len(opt.Only) > 0 && !bad {
+			if list = selected(list, &opt); len(list) == 0 && len(opt.Only) > 0 && bad == 0 {
 				return fmt.Errorf("no claim has a name that contains %q", opt.Only)
 			}
 			return check(cmd.Context(), list, opt, s, say, request{c.json, bad, len(args) == 0})
 		},
 	}
 	c.flags(cmd, "claims")
-	cmd.Flags().Uint64Var(&opt.Seed, "seed", opt.Seed, "`number` that the random samples and searches start from")
-	cmd.Flags().Int64Var(&opt.Samples, "samples", opt.Samples, "random jets to draw for an inequality that is not decided exactly")
+	cmd.Flags().Var(&whole[uint64]{&opt.Seed, 0}, "seed", "`number` that the random samples and searches start from")
+	cmd.Flags().Var(&whole[int64]{&opt.Samples, 1}, "samples", "random jets to draw for an inequality that is not decided exactly")
 	return cmd
 }
 
@@ -86,7 +78,7 @@ func completeCase(*cobra.Command, []string, string) ([]string, cobra.ShellCompDi
 // request is how a command was called and what came of reading its cases.
 type request struct {
 	json bool
-	bad  bool // some case could not be read
+	bad  int  // cases that could not be read
 	all  bool // the built-in cases, since none was named
 }
 
@@ -114,9 +106,9 @@ func check(ctx context.Context, list []*cases.Case, opt run.Options, s streams, 
 		if !q.all {
 			text.without(list)
 		}
-		text.summary(out, total(list, &opt))
+		text.summary(out, total(list, &opt), q.bad)
 	}
-	return finish(s, out.Interrupted, q.bad || out.Faulty(), out.Met())
+	return finish(s, out.Interrupted, q.bad > 0 || out.Faulty(), out.Met())
 }
 
 func total(list []*cases.Case, opt *run.Options) int {

@@ -151,7 +151,7 @@ func (t *checkText) without(list []*cases.Case) {
 }
 
 // summary writes the last line.
-func (t *checkText) summary(out *run.Outcome, total int) {
+func (t *checkText) summary(out *run.Outcome, total, unread int) {
 	if total == 0 {
 		return
 	}
@@ -174,5 +174,5 @@ func (t *checkText) summary(out *run.Outcome, total int) {
 	if n := total - len(out.Results); n > 0 {
 		parts = append(parts, fmt.Sprintf("%d not reached", n))
 	}
-	t.last(count(total, "claim", "claims"), parts, tally{met, decided - met, decided < total})
+	t.last(count(total, "claim", "claims"), parts, tally{met, decided - met, unread, decided < total})
 }

@@ -31,11 +31,7 @@ or - for standard input; without one, every built-in case is taken.`,
   creaseproof energy`,
 		ValidArgsFunction: completeCase,
 		RunE: func(cmd *cobra.Command, args []string) error {
-			end, err := c.begin()
-			if err != nil {
-				return err
-			}
-			defer end()
+			defer c.begin()()
 			say := &complaints{w: s.err}
 			list, bad, err := load(cmd.Context(), args, s.in, say)
 			if err != nil {
@@ -48,7 +44,7 @@ or - for standard input; without one, every built-in case is taken.`,
 					kept = append(kept, k)
 				}
 			}
-			if len(kept) == 0 && len(c.only) > 0 && !bad {
+			if len(kept) == 0 && len(c.only) > 0 && bad == 0 {
 				return fmt.Errorf("no surface has a name that contains %q", c.only)
 			}
 			return energy(cmd.Context(), kept, opt, s, say, request{json: c.json, bad: bad})
@@ -100,9 +96,9 @@ func energy(ctx context.Context, list []*cases.Case, opt run.EnergyOptions, s st
 				fmt.Fprintln(s.out, "  no surfaces")
 			}
 		}
-		text.summary(out, total)
+		text.summary(out, total, q.bad)
 	}
-	return finish(s, out.Interrupted, q.bad || out.Faulty(), out.Met())
+	return finish(s, out.Interrupted, q.bad > 0 || out.Faulty(), out.Met())
 }
 
 // finish is the exit status of a command that ran.

@@ -131,7 +131,7 @@ func values(s *casefile.Surface, v *creases.Result) string {
 }
 
 // summary writes the last line.
-func (t *energyText) summary(out *run.EnergyOutcome, surfaces int) {
+func (t *energyText) summary(out *run.EnergyOutcome, surfaces, unread int) {
 	if surfaces == 0 {
 		return
 	}
@@ -145,7 +145,7 @@ func (t *energyText) summary(out *run.EnergyOutcome, surfaces int) {
 				met++
 			}
 		}
-		if r.Err != nil && len(r.Values) == 0 {
+		if r.Unread() {
 			faulty++
 		}
 	}
@@ -164,5 +164,5 @@ func (t *energyText) summary(out *run.EnergyOutcome, surfaces int) {
 	if n := surfaces - len(out.Results); n > 0 {
 		parts = append(parts, fmt.Sprintf("%s not reached", count(n, "surface", "surfaces")))
 	}
-	t.last(fmt.Sprintf("%s of %s", count(total, "energy", "energies"), count(surfaces, "surface", "surfaces")), parts, tally{met, total - met, faulty > 0 || out.Interrupted})
+	t.last(fmt.Sprintf("%s of %s", count(total, "energy", "energies"), count(surfaces, "surface", "surfaces")), parts, tally{met, total - met, unread, faulty > 0 || out.Interrupted})
 }

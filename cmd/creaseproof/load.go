@@ -10,9 +10,10 @@ import (
 	"creaseproof/entropy/source"
 )
 
-// load reads the cases and says what is wrong with those that cannot be read.
+// load reads the cases and says what is wrong with those that cannot be read,
+// of which it returns the number.
 // It gives up waiting for a slow file or standard input when ctx ends.
-func load(ctx context.Context, args []string, in io.Reader, say *complaints) (list []*cases.Case, bad bool, err error) {
+func load(ctx context.Context, args []string, in io.Reader, say *complaints) (list []*cases.Case, bad int, err error) {
 	type loaded struct {
 		list   []*cases.Case
 		failed []error
@@ -27,9 +28,9 @@ func load(ctx context.Context, args []string, in io.Reader, say *complaints) (li
 		for _, e := range l.failed {
 			say.add(e)
 		}
-		return l.list, len(l.failed) > 0, nil
+		return l.list, len(l.failed), nil
 	case <-ctx.Done():
-		return nil, false, status(exitInterrupted)
+		return nil, 0, status(exitInterrupted)
 	}
 }
 

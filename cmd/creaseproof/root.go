@@ -81,20 +81,46 @@ func (c *common) flags(cmd *cobra.Command, what string) {
 	f.BoolVar(&c.json, "json", false, "print one JSON document")
 	f.StringArrayVar(&c.only, "only", nil, "only the "+what+" whose `name` is or contains this; may be repeated")
 	f.Var(&c.timeout, "timeout", "stop after so many `seconds` (or 90s, 5m); what is not decided is open")
-	f.IntVar(&c.jobs, "jobs", 0, "`cores` to use, 0 for all; no result depends on it")
+	f.Var(&whole[int]{&c.jobs, 0}, "jobs", "`cores` to use, 0 for all; no result depends on it")
 }
 
-// begin refuses values that mean nothing, and limits the cores until end is
-// called.
-func (c *common) begin() (end func(), err error) {
-	if c.jobs < 0 {
-		return nil, fmt.Errorf("--jobs %d: write the number of cores to use, or 0 for all", c.jobs)
-	}
+// begin limits the cores until end is called.
+func (c *common) begin() (end func()) {
 	if all := runtime.GOMAXPROCS(0); c.jobs > 0 && c.jobs < all {
 		runtime.GOMAXPROCS(c.jobs)
-		return func() { runtime.GOMAXPROCS(all) }, nil
+		return func() { runtime.GOMAXPROCS(all) }
 	}
-	return func() {}, nil
+	return func() {}
+}
+
+// whole is the value of a flag that is a whole number.
+type whole[T int | int64 | uint64] struct {
+	value *T
+	least T
+}
+
+func (w *whole[T]) String() string {
+	if w.value == nil { // the zero value, which the flag package looks at
+		return "0"
+	}
+	return fmt.Sprint(*w.value)
+}
+
+// Type is the kind of value, for the help.
+func (w *whole[T]) Type() string { return "number" }
+
+// Set reads a value.
+func (w *whole[T]) Set(text string) error {
+	n, err := strconv.ParseUint(text, 10, 64)
+	switch v := T(n); {
+	case errors.Is(err, strconv.ErrRange), err == nil && (v < 0 || uint64(v) != n):
+		return errors.New("the number is too large")
+	case err != nil || v < w.least:
+		return fmt.Errorf("write a whole number, at least %d", w.least)
+	default:
+		*w.value = v
+	}
+	return nil
 }
 
 // seconds is a time written as a number of seconds or as 90s or 5m.

@@ -62,13 +62,17 @@ func TestExitStatus(t *testing.T) {
 		"mistake":         {space + mistake + yes, []string{"check", "-"}, 2, []string{"ok   proved     yes", "NOT  -          zero  without meaning", "2 claims: 1 proved, 1 without meaning, the others as expected"}, "-:16:14: division by zero"},
 		"bad file":        {"colour = 1\n", []string{"check", "-"}, 2, nil, "colour"},
 		"no such file":    {"", []string{"check", "no-such.toml"}, 2, nil, "no-such.toml: there is no such file"},
-		"one of two":      {space + yes, []string{"check", "no-such.toml", "-"}, 2, []string{"ok   proved     yes"}, "no-such.toml"},
+		"one of two":      {space + yes, []string{"check", "no-such.toml", "-"}, 2, []string{"ok   proved     yes", "1 claim: 1 proved, 1 case not read, the others as expected"}, "no-such.toml"},
 		"unknown flag":    {"", []string{"check", "--colour"}, 2, nil, "unknown flag: --colour"},
 		"unknown command": {"", []string{"chekc", "--json"}, 2, nil, `unknown command "chekc"`},
 		"no command":      {"", nil, 0, []string{"Usage:"}, ""},
 		"bad timeout":     {"", []string{"check", "--timeout", "-3"}, 2, nil, "positive number of seconds"},
-		"bad jobs":        {"", []string{"check", "--jobs", "-3"}, 2, nil, "--jobs -3"},
-		"bad samples":     {"", []string{"check", "--samples", "0"}, 2, nil, "--samples"},
+		"bad jobs":        {"", []string{"check", "--jobs", "-3"}, 2, nil, `"-3" for "--jobs" flag: write a whole number, at least 0`},
+		"bad seed":        {"", []string{"check", "--seed", "-1"}, 2, nil, `"-1" for "--seed" flag: write a whole number, at least 0`},
+		"seed of words":   {"", []string{"check", "--seed", "1.5"}, 2, nil, "write a whole number"},
+		"huge seed":       {"", []string{"check", "--seed", "99999999999999999999"}, 2, nil, "too large"},
+		"huge samples":    {"", []string{"check", "--samples", "9999999999999999999"}, 2, nil, "too large"},
+		"bad samples":     {"", []string{"check", "--samples", "0"}, 2, nil, `"--samples" flag: write a whole number, at least 1`},
 		"nothing of that": {space + yes, []string{"check", "-", "--only", "young"}, 2, nil, "no claim has a name"},
 		"only":            {space + yes + no, []string{"check", "-", "--only", "ye"}, 0, []string{"1 claim"}, ""},
 		"no claims":       {space, []string{"check", "-"}, 0, []string{"no claims"}, ""},
@@ -81,6 +85,8 @@ func TestExitStatus(t *testing.T) {
 		"degenerate":           {space + strings.NewReplacer("\"1\", \"1\"", "\"2\", \"0\"", "\"0\", \"1\"]", "\"3\", \"0\"]").Replace(plane), []string{"energy", "-"}, 2, []string{"NOT  open"}, "has no energy"},
 		"not a number":         {space + strings.Replace(plane, "-x + z/2", "sqrt(x - 1)", 1), []string{"energy", "-"}, 2, []string{"NOT  open"}, "has no energy"},
 		"mistake in a surface": {space + strings.Replace(plane, "-x + z/2", "-x + foo", 1), []string{"energy", "-"}, 2, []string{"NOT  -          plane  not read", "0 energies of 1 surface: 1 surface not read"}, `-:17:15: unknown name "foo"`},
+		"mistake in a value":   {space + plane + "values = { k = [\"1\", \"1/(1 - 1)\"] }\n", []string{"energy", "-"}, 2, []string{"ok   supported  plane", "1 energy of 1 surface: 1 supported, 1 surface not read, the others as expected"}, "division by zero"},
+		"another is not read":  {space + plane, []string{"energy", "no-such.toml", "-"}, 2, []string{"1 case not read, the others as expected"}, "no-such.toml"},
 		"no surfaces":          {space + yes, []string{"energy", "-"}, 0, []string{"no surfaces"}, ""},
 		"no such surface":      {space + plane, []string{"energy", "-", "--only", "front"}, 2, nil, "no surface has a name"},
 
@@ -115,20 +121,26 @@ func TestCheckDocument(t *testing.T) {
 		Cases  []struct {
 			Case   string
 			Claims []struct {
-				Claim, Verdict, Expected string
-				Met                      bool
-				Witness                  *struct{ Jet map[string]string }
+				Claim, Verdict, Expected, Reason string
+				Met                              bool
+				Witness                          *struct{ Jet map[string]string }
 			}
 		}
 	}
 	require.NoError(t, json.Unmarshal([]byte(out), &doc))
 	assert.Equal(t, 1, doc.Schema)
 	require.Len(t, doc.Cases, 1)
-	require.Len(t, doc.Cases[0].Claims, 2)
+	require.Len(t, doc.Cases[0].Claims, 3)
 	assert.Equal(t, "no", doc.Cases[0].Claims[0].Claim)
 	assert.NotNil(t, doc.Cases[0].Claims[0].Witness)
 	assert.False(t, doc.Cases[0].Claims[0].Met)
 	assert.True(t, doc.Cases[0].Claims[1].Met)
+	assert.Equal(t, "open", doc.Cases[0].Claims[2].Verdict, "without meaning")
+	assert.False(t, doc.Cases[0].Claims[2].Met)
+	assert.Contains(t, doc.Cases[0].Claims[2].Reason, "without meaning: line ")
+
+	_, out, _ = call(t, space+strings.Replace(plane, "-x + z/2", "-x + foo", 1), "energy", "-", "--json")
+	assert.Contains(t, out, `"reason": "without meaning: line 17, column 15: unknown name \"foo\""`)
 }
 
 func TestEnergyDocument(t *testing.T) {

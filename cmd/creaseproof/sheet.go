@@ -75,16 +75,20 @@ func (s *sheet) lines(paint func(string) string, text string) {
 // tally is how the results of a run came out.
 type tally struct {
 	met, unmet int
+	unread     int  // cases
 	missing    bool // there is something without a result
 }
 
 // last writes the last line: what there was, how it came out, and whether the
 // expectations are met.
 func (s *sheet) last(what string, parts []string, n tally) {
+	if n.unread > 0 {
+		parts = append(parts, s.style.alarm(fmt.Sprintf("%s not read", count(n.unread, "case", "cases"))))
+	}
 	switch {
 	case n.unmet > 0:
 		parts = append(parts, s.style.alarm(fmt.Sprintf("%d not as expected", n.unmet)))
-	case n.missing && n.met > 0:
+	case (n.missing || n.unread > 0) && n.met > 0:
 		parts = append(parts, "the others as expected")
 	case n.met > 0:
 		parts = append(parts, "all as expected")
