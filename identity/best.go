@@ -9,6 +9,7 @@ import (
 	"creaseproof/entropy"
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
+	"creaseproof/identity/claim"
 	"creaseproof/identity/exact"
 	"creaseproof/identity/gram"
 	"creaseproof/identity/squares"
@@ -33,6 +34,10 @@ func (d *decider) best() error {
 		d.Open("the inequality is not affine in %s: its best values are not searched for", d.Claim.Best)
 		return nil
 	}
+	if slices.ContainsFunc(g.Value.DenFactors(), func(f algebra.Factor) bool { return f.Base.Has(v) }) {
+		d.Open("%s stands in a denominator: its best values are not searched for", d.Claim.Best)
+		return nil
+	}
 	if len(d.Wells) > 0 || len(d.Ideal) > 0 {
 		d.Open("best values on a well that determines no derivative are not searched for")
 		return nil
@@ -52,14 +57,7 @@ type bestSearch struct {
 	slope, rest algebra.Poly // poly = rest + v slope
 }
 
-// at is the gap with the constant put in.
-func (b *bestSearch) at(x algebra.Rat) *exact.Gap {
-	put := map[algebra.Var]algebra.Fraction{b.v: jet.Rational(x.Big())}
-	g := *b.g
-	g.Value, g.Left, g.Right = g.Value.SubstMany(put), g.Left.SubstMany(put), g.Right.SubstMany(put)
-	g.Poly = b.rest.Add(b.slope.Scale(x))
-	return &g
-}
+func (b *bestSearch) at(x algebra.Rat) *exact.Gap { return b.g.At(b.v, x) }
 
 // proves looks for a certificate at a value; the record then holds it.
 func (b *bestSearch) proves(g *exact.Gap) (bool, error) {
@@ -74,12 +72,14 @@ func (b *bestSearch) proves(g *exact.Gap) (bool, error) {
 func (b *bestSearch) run() error {
 	d := b.d
 	var ends []End
+	var free []claim.Unbounded
 	for _, upper := range []bool{false, true} {
 		unbounded, err := b.proves(b.recession(upper))
 		if err != nil {
 			return err
 		}
 		if unbounded {
+			free = append(free, claim.Unbounded{Upper: upper, Reduced: d.Rec.Reduced, Certificate: d.Rec.Certificate})
 			continue
 		}
 		e, ok, err := b.end(upper)
@@ -95,7 +95,7 @@ func (b *bestSearch) run() error {
 		ends = append(ends, *e)
 	}
 	d.clearProof()
-	d.Rec.Ends = ends
+	d.Rec.Ends, d.Rec.Unbounded = ends, free
 	d.Rec.Method = "certificates at the ends, jets beyond them"
 	d.Rec.Verdict = Proved
 	for _, e := range ends {
@@ -104,33 +104,13 @@ func (b *bestSearch) run() error {
 			d.Rec.Reason = "an end is bracketed, not exact"
 		}
 	}
-	d.Rec.Solution = solutionText(d.Claim.Best, ends)
+	d.Rec.Solution = claim.SolutionText(d.Claim.Best, ends)
 	return nil
 }
 
 // clearProof forgets what proofs along the way have left in the record.
 func (d *decider) clearProof() {
 	d.Rec.Certificate, d.Rec.Reduced, d.Rec.Equality, d.Rec.Details, d.Rec.Reason = nil, nil, nil, nil, ""
-}
-
-func solutionText(name string, ends []End) string {
-	text := func(e End) string {
-		if e.Outer == "" {
-			return e.Value
-		}
-		return "(between " + e.Value + " and " + e.Outer + ")"
-	}
-	switch {
-	case len(ends) == 0:
-		return name + " arbitrary"
-	case len(ends) == 2 && ends[0].Value == ends[1].Value && ends[0].Outer == "" && ends[1].Outer == "":
-		return name + " = " + ends[0].Value
-	case len(ends) == 2:
-		return text(ends[0]) + " <= " + name + " <= " + text(ends[1])
-	case ends[0].Upper:
-		return name + " <= " + text(ends[0])
-	}
-	return name + " >= " + text(ends[0])
 }
 
 // recession is the inequality that says that there is no end on a side: the

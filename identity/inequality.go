@@ -29,9 +29,11 @@ func (d *decider) inequality() error {
 		if ok, err := d.proveOnWells(); err != nil || ok {
 			return err
 		}
-		if _, err := d.Parametrise(); err != nil {
+		ok, err := d.Parametrise()
+		if err != nil {
 			return err
 		}
+		d.Rec.Parameters = ok
 	}
 	g, err := d.Gap()
 	if err != nil {

@@ -86,17 +86,8 @@ func (d *decider) cheapCounterexample(g *exact.Gap, pts *exact.Points) (jet.Poin
 
 // withNull tries to prove gap + Σ x_k N_k >= 0, and on success records N.
 func (d *decider) withNull(g *exact.Gap, list []exact.NullLagrangian, x []algebra.Rat) (bool, error) {
-	h := &exact.Gap{Left: g.Left, Right: g.Right, Value: g.Value}
-	var n algebra.Fraction
-	potential := make([]algebra.Fraction, len(d.Ring.Coordinates))
-	for k, l := range list {
-		n = n.Add(l.Value.Scale(x[k]))
-		for i := range potential {
-			potential[i] = potential[i].Add(l.Potential[i].Scale(x[k]))
-		}
-	}
-	h.Value = h.Value.Add(n)
-	if err := d.Clear(h); err != nil {
+	h, potential, err := d.AddNull(g, list, x)
+	if err != nil {
 		return false, err
 	}
 	if h.Value.IsZero() {
@@ -114,20 +105,10 @@ func (d *decider) withNull(g *exact.Gap, list []exact.NullLagrangian, x []algebr
 	if len(list) == 0 {
 		return true, nil
 	}
-	// N is the divergence of its potential: exactly, or it is not used.
-	rest := n.Neg()
-	for i, p := range potential {
-		t, err := d.Ring.Total(p, i)
-		if err != nil {
-			return false, err
-		}
-		rest = rest.Add(t)
-	}
-	rest, err := d.Ring.Reduce(rest)
-	if err != nil || !rest.IsZero() {
-		return false, err
-	}
 	d.Rec.Solution = "N = " + d.formatNull(list, x)
+	for _, c := range x {
+		d.Rec.Null = append(d.Rec.Null, c.String())
+	}
 	var parts []string
 	for i, p := range potential {
 		parts = append(parts, d.Ring.Coordinates[i]+": "+d.Ring.Format(p))

@@ -105,7 +105,9 @@ func (d *decider) proveOnWells() (bool, error) {
 	if err := d.RemoveAngle(g); err != nil {
 		return false, err
 	}
-	return d.prove(g, nil)
+	ok, err := d.prove(g, nil)
+	d.Rec.OnWells = ok
+	return ok, err
 }
 
 // sumOfSquares is one search, its result checked; no certificate and no error

@@ -76,10 +76,15 @@ type Record struct {
 	Assumptions []string
 	Details     []string // such as the terms of a sum of squares
 
-	Ends        []End     // of the set of best values
-	Equality    *Equality // when an inequality proved by a certificate is an equation
-	Reduced     *certificate.Claim
-	Certificate *certificate.Certificate
+	Null         []string // coefficients of the null Lagrangians that were added
+	Coefficients []string // of the generators of a span
+	OnWells      bool     // the certificate is in the traces, with the wells as equations
+	Parameters   bool     // the certificate is in parameters of the well
+	Ends         []End    // of the set of best values
+	Unbounded    []Unbounded
+	Equality     *Equality // when an inequality proved by a certificate is an equation
+	Reduced      *certificate.Claim
+	Certificate  *certificate.Certificate
 }
 
 // Equality says when equality holds in a certified inequality.
@@ -114,4 +119,33 @@ type End struct {
 	Beyond      *Witness
 	Reduced     *certificate.Claim
 	Certificate *certificate.Certificate
+}
+
+// Unbounded says that the set of best values has no end on a side: the slope of
+// the gap in the constant, or its negative, is non-negative.
+type Unbounded struct {
+	Upper       bool
+	Reduced     *certificate.Claim
+	Certificate *certificate.Certificate
+}
+
+// SolutionText writes the set of best values of a constant.
+func SolutionText(name string, ends []End) string {
+	text := func(e End) string {
+		if e.Outer == "" {
+			return e.Value
+		}
+		return "(between " + e.Value + " and " + e.Outer + ")"
+	}
+	switch {
+	case len(ends) == 0:
+		return name + " arbitrary"
+	case len(ends) == 2 && ends[0].Value == ends[1].Value && ends[0].Outer == "" && ends[1].Outer == "":
+		return name + " = " + ends[0].Value
+	case len(ends) == 2:
+		return text(ends[0]) + " <= " + name + " <= " + text(ends[1])
+	case ends[0].Upper:
+		return name + " <= " + text(ends[0])
+	}
+	return name + " >= " + text(ends[0])
 }

@@ -37,6 +37,15 @@ func (d *Problem) Gap() (*Gap, error) {
 	return g, d.Clear(g)
 }
 
+// At is the gap with a value put in for a constant in which it is affine.
+func (g *Gap) At(v algebra.Var, x algebra.Rat) *Gap {
+	put := map[algebra.Var]algebra.Fraction{v: jet.Rational(x.Big())}
+	h := *g
+	h.Value, h.Left, h.Right = g.Value.SubstMany(put), g.Left.SubstMany(put), g.Right.SubstMany(put)
+	h.Poly = g.Poly.EvalPartial(map[algebra.Var]algebra.Rat{v: x})
+	return &h
+}
+
 // Clear fills in the polynomial of a gap.
 func (d *Problem) Clear(g *Gap) error {
 	g.Poly = g.Value.Num()

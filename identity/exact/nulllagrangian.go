@@ -1,6 +1,7 @@
 package exact
 
 import (
+	"fmt"
 	"slices"
 
 	"creaseproof/entropy/algebra"
@@ -14,6 +15,39 @@ type NullLagrangian struct {
 	Potential []algebra.Fraction
 	Minor     algebra.Fraction
 	Coef      algebra.Fraction
+}
+
+// AddNull is the gap with Σ x_k N_k added, and the potential of that sum, which
+// is checked: the divergence of the potential is the sum, exactly.
+func (d *Problem) AddNull(g *Gap, list []NullLagrangian, x []algebra.Rat) (*Gap, []algebra.Fraction, error) {
+	if len(list) != len(x) {
+		return nil, nil, fmt.Errorf("%d coefficients for %d null Lagrangians", len(x), len(list))
+	}
+	h := &Gap{Left: g.Left, Right: g.Right, Value: g.Value}
+	potential := make([]algebra.Fraction, len(d.Ring.Coordinates))
+	var rest algebra.Fraction
+	for k, l := range list {
+		n := l.Value.Scale(x[k])
+		h.Value, rest = h.Value.Add(n), rest.Sub(n)
+		for i := range potential {
+			potential[i] = potential[i].Add(l.Potential[i].Scale(x[k]))
+		}
+	}
+	for i, p := range potential {
+		t, err := d.Ring.Total(p, i)
+		if err != nil {
+			return nil, nil, err
+		}
+		rest = rest.Add(t)
+	}
+	rest, err := d.Ring.Reduce(rest)
+	if err != nil {
+		return nil, nil, err
+	}
+	if !rest.IsZero() {
+		return nil, nil, fmt.Errorf("%w: a null Lagrangian that is not the divergence of its potential", jet.ErrOutside)
+	}
+	return h, potential, d.Clear(h)
 }
 
 // maxNull bounds the null Lagrangians that are combined.

@@ -89,6 +89,7 @@ func (d *Problem) span() error {
 	var parts []string
 	for k := range x {
 		parts = append(parts, coefficient(d.Ring.FormatHarmonic(x[k]))+names[k])
+		d.Rec.Coefficients = append(d.Rec.Coefficients, d.Ring.FormatHarmonic(x[k]))
 	}
 	d.Rec.Solution = formula.Text(st.Field) + " = " + strings.Join(parts, " + ")
 	d.Proved("linear algebra on the coefficients, exact")
