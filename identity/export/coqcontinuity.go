@@ -37,10 +37,13 @@ func (p *proof) byContinuity(name string) error {
 	d.intros(p.scope, p.given)
 	p.numerators()
 	p.denominator()
+	if len(p.target.n) > chunk {
+		d.printf("%s\n", wrap("  ", fmt.Sprintf("apply (nonneg_equal _ (%s)); [ring |].", at.chunked(p.target.n))))
+	}
 	h := p.scope.names.name("H")
 	d.printf("  pose proof (by_continuity\n%s\n%s) as %s.\n",
 		wrap("    ", fmt.Sprintf("(fun %s => %s)", t, along.sum(p.multiplier))),
-		wrap("    ", fmt.Sprintf("(fun %s => %s)", t, moving.poly(p.target.n))), h)
+		wrap("    ", fmt.Sprintf("(fun %s => %s)", t, moving.chunked(p.target.n))), h)
 	d.printf("  cbv beta in %s. rewrite ?line_start, ?line_end in %s. apply %s.\n", h, h, h)
 	d.printf("  - polynomial_in_t.\n  - polynomial_in_t.\n")
 	sign := "Rgt_not_eq"
@@ -72,7 +75,7 @@ func (p *proof) productLemma(name string) string {
 	}
 	p.signs.known, p.zeros = p.given[:len(p.positive)], p.given[len(p.positive):]
 	m := "(" + p.signs.sum(p.multiplier) + ")"
-	d.statement("Lemma", lemma, p.scope, premises, fmt.Sprintf("0 <= %s /\\ 0 <= %s * (%s)", m, m, at.poly(p.target.n)))
+	d.statement("Lemma", lemma, p.scope, premises, fmt.Sprintf("0 <= %s /\\ 0 <= %s * (%s)", m, m, at.chunked(p.target.n)))
 	d.intros(p.scope, p.given)
 	d.printf("  split.\n  {\n")
 	p.signs.nonneg(d, "    ", "    ", p.multiplier)

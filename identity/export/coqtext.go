@@ -3,6 +3,7 @@ package export
 import (
 	"fmt"
 	"math/big"
+	"slices"
 	"strings"
 )
 
@@ -44,6 +45,22 @@ func (at places) monomial(c *big.Rat, exps []int) string {
 		}
 	}
 	return strings.Join(parts, " * ")
+}
+
+// chunk is the length of sums up to which proofs by recursion on their terms
+// are fast: their cost is quadratic.
+const chunk = 16
+
+// chunked prints p as a sum of short sums.
+func (at places) chunked(p poly) string {
+	if len(p) <= chunk {
+		return at.poly(p)
+	}
+	var parts []string
+	for c := range slices.Chunk(p, chunk) {
+		parts = append(parts, "("+at.poly(c)+")")
+	}
+	return strings.Join(parts, " + ")
 }
 
 // factor prints p so that it can stand in a product or under a power.

@@ -12,6 +12,10 @@ import (
 var reserved = words(`as at cofix do else end exists exists2 fix for forall fun if IF in let match mod
 	return then using where with by is of proof qed admit Prop Set Type SProp
 	R Z N Q nat positive list bool option unit pow Rplus Rmult Rminus Ropp Rinv Rdiv Rle Rlt Rge Rgt IZR INR
+	Theorem Lemma Fact Remark Corollary Proposition Definition Example Let Fixpoint CoFixpoint Inductive CoInductive
+	Record Structure Class Instance Section Module Import Export Include End Variable Variables Context Proof Qed
+	Defined Goal Require From Open Close Scope Notation Infix Ltac Tactic Print Check Search Compute Eval Set Unset
+	Show Time Fail Canonical Coercion Existing Existential Local Global Polymorphic Monomorphic Private Program
 	True False and or not eq ex le lt nil cons`)
 
 // unfinished are words that leave a proof open or assume something; they stand

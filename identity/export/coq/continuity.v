@@ -94,14 +94,20 @@ Lemma line_end : forall a b, line a b 1 = b.
 Proof. intros a b. unfold line. ring. Qed.
 
 Ltac polynomial_in_t :=
-  repeat first
-    [ apply polynomial_constant
-    | apply polynomial_line
-    | apply polynomial_sum
-    | apply polynomial_difference
-    | apply polynomial_product
-    | apply polynomial_opposite
-    | apply polynomial_power ].
+  lazymatch goal with
+  | |- polynomial (fun t => @?f t + @?g t) =>
+    apply (polynomial_sum f g); cbv beta; polynomial_in_t
+  | |- polynomial (fun t => @?f t - @?g t) =>
+    apply (polynomial_difference f g); cbv beta; polynomial_in_t
+  | |- polynomial (fun t => - @?f t) =>
+    apply (polynomial_opposite f); cbv beta; polynomial_in_t
+  | |- polynomial (fun t => @?f t * @?g t) =>
+    apply (polynomial_product f g); cbv beta; polynomial_in_t
+  | |- polynomial (fun t => @?f t ^ ?n) =>
+    apply (polynomial_power f n); cbv beta; polynomial_in_t
+  | |- polynomial (fun t => line ?a ?b t) => apply polynomial_line
+  | _ => apply polynomial_constant
+  end.
 
 (* near P: P holds for all small positive t *)
 Definition near (P : R -> Prop) : Prop :=
@@ -214,3 +220,6 @@ Proof.
   intros u v t Ht Hu Hv.
   apply sum_nonneg; apply product_nonneg; lra.
 Qed.
+
+Lemma nonneg_equal : forall v w : R, v = w -> 0 <= w -> 0 <= v.
+Proof. intros v w E H. rewrite E. exact H. Qed.
