@@ -26,7 +26,18 @@ func TestWitnessesJump(t *testing.T) {
 		{"(u_x^2 - 1)^2 + u_y^2", "[u_x] = 2", []identity.Verdict{identity.Refuted}},
 		{"u_x^2 + (u_y^2 - 1)^2 (u_y - 3)^2", "[u_y]^2 >= 4", []identity.Verdict{identity.Proved, identity.Open, identity.Supported}},
 		{"u_x^2 + (u_y^2 - 1)^2 (u_y - 3)^2", "abs([u_y]) >= 2", []identity.Verdict{identity.Proved, identity.Open, identity.Supported}},
-		{"u_x^2 + (u_y^2 - 1)^2 (u_y - 3)^2", "[u_y]^2 <= 4", []identity.Verdict{identity.Refuted, identity.Open, identity.Supported}},
+		{"u_x^2 + (u_y^2 - 1)^2 (u_y - 3)^2", "[u_y]^2 <= 4", []identity.Verdict{identity.Refuted}},
+		{"(u_x^2 - 1)^2 + (u_y^2 - 1)^2", "[u_x]^2 + [u_y]^2 >= 5", []identity.Verdict{identity.Refuted}},
+		{"(u_x^2 - 1)^2 + (u_y^2 - 1)^2", "[u_x] = 0", []identity.Verdict{identity.Refuted}},
+		{"(u_x^2 - 1)^2 + (u_y^2 - 1)^2", "[u_x]^2 + [u_y]^2 >= 4", []identity.Verdict{identity.Proved, identity.Open, identity.Supported}},
+		{"u_x^4 + u_y^4 - 1", "[u_x]^2 + [u_y]^2 <= 4", []identity.Verdict{identity.Refuted}},
+		{"u_x^4 + u_y^4 - 1", "[u_x]^2 + [u_y]^2 <= 6", []identity.Verdict{identity.Proved, identity.Open, identity.Supported}},
+		{"u_x^4 + u_y^4 - 3", "[u_x]^2 + [u_y]^2 <= 4", []identity.Verdict{identity.Refuted}},
+		{"(u_x^2 + u_y^2 - 1)^2", "[u_x^2] + [u_y^2] = 0", []identity.Verdict{identity.Proved}},
+		{"(u_x^2 + u_y^2 - 1)^2", "[u_x^2] = 0", []identity.Verdict{identity.Refuted}},
+		{"(u_x^2 + u_y^2 - 1)^2", "[u_x]^2 + [u_y]^2 <= 3", []identity.Verdict{identity.Refuted}},
+		{"(u_x^2 + u_y^2 - 1)^2", "[u_x]^2 + [u_y]^2 <= 4", []identity.Verdict{identity.Proved, identity.Supported}},
+		{"(u_y - u_x^2)^2", "[u_y] = 2 {u_x} [u_x]", []identity.Verdict{identity.Proved}},
 		{"u_x^2 - 1", "[u_x] = 1", []identity.Verdict{identity.Refuted}}, // u_y may jump alone
 	} {
 		rec, err := decided(t, state(t, wellOf(c.residual, nil), c.states, atJump))
@@ -91,4 +102,29 @@ func TestSolveChecksItsConditionsAgainstTheAssumptions(t *testing.T) {
 	rec, err := decided(t, state(t, plane, "a u_x = b u_x", assuming(t, "a = b")))
 	require.NoError(t, err)
 	assert.Equal(t, proved, rec.Verdict)
+}
+
+// Zeros of the equations that are not rational, and what follows from them
+// linearly.
+func TestAlgebraicWitnesses(t *testing.T) {
+	for _, c := range []struct {
+		states, modulo string
+		want           []identity.Verdict
+	}{
+		{"u_x^2 + u_y^2 <= 1", "u_x^4 + u_y^4 - 1", []identity.Verdict{identity.Refuted}},
+		{"u_x^2 + u_y^2 >= 1", "u_x^4 + u_y^4 - 1", []identity.Verdict{identity.Proved, identity.Supported, identity.Open}},
+		{"u_x^2 + u_y^2 <= 2", "u_x^4 + u_y^4 - 1", []identity.Verdict{identity.Proved, identity.Supported, identity.Open}},
+		{"u_x^3 u_xx + u_y^3 u_yy = 0", "u_x^4 + u_y^4 - 1", []identity.Verdict{identity.Refuted}},
+		{"u_x^3 u_xx + u_y^3 u_yy <= 0", "u_x^4 + u_y^4 - 1", []identity.Verdict{identity.Refuted}},
+		{"u_x^3 u_xx + u_y^3 u_xy <= 0", "u_x^4 + u_y^4 - 1", []identity.Verdict{identity.Proved}},
+		{"u_x^3 u_xx + u_y^3 u_xy = 0", "u_x^4 + u_y^4 - 3", []identity.Verdict{identity.Proved}},
+		{"u_x u_xxx <= 0", "u_x^4 + u_y^4 - 3", []identity.Verdict{identity.Refuted}},
+	} {
+		rec, err := decided(t, state(t, plane, c.states, modulo(t, c.modulo)))
+		require.NoError(t, err)
+		assert.Contains(t, c.want, rec.Verdict, "%s modulo %s: %+v", c.states, c.modulo, rec)
+	}
+	rec, err := decided(t, state(t, plane, "u_x^2 + u_y^2 <= 1", modulo(t, "u_x^4 + u_y^4 - 1"), assuming(t, "u_x > 1")))
+	require.NoError(t, err)
+	assert.NotEqual(t, identity.Refuted, rec.Verdict, "no jets: %+v", rec)
 }

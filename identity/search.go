@@ -89,7 +89,7 @@ func (d *decider) constant(g *exact.Gap, pts *exact.Points) error {
 }
 
 // searchOnVariety samples exact rational points of a well or of equations
-// that are not solved for a derivative.
+// that are not solved for a derivative, then real algebraic ones.
 func (d *decider) searchOnVariety(g *exact.Gap, pts *exact.Points) error {
 	tries := min(d.opt.Samples, 4000)
 	for range tries {
@@ -102,6 +102,12 @@ func (d *decider) searchOnVariety(g *exact.Gap, pts *exact.Points) error {
 			d.Refuted("exact arithmetic at a rational point of the well", at, g.Left, g.Right)
 			return nil
 		}
+	}
+	if err := d.Ctx.Err(); err != nil {
+		return err
+	}
+	if d.RefuteIsolated(g) {
+		return nil
 	}
 	if err := d.Ctx.Err(); err != nil {
 		return err

@@ -20,6 +20,8 @@ type Points struct {
 	Fixed  jet.Point     // values that are not drawn
 	rng    *rand.Rand
 	drawn  int
+
+	lattice []latticeZeros // of whole generators, found so far
 }
 
 // Points looks at what the values depend on. An angle that occurs only in its

@@ -1,6 +1,7 @@
 package exact
 
 import (
+	"maps"
 	"slices"
 
 	"creaseproof/entropy/algebra"
@@ -12,17 +13,7 @@ import (
 // quadratic. Values already used by an earlier polynomial stay. It reports
 // false where no rational solution shows.
 func (p *Points) OnVariety(at jet.Point, gens []algebra.Poly) bool {
-	order := func(g algebra.Poly) int {
-		n := 0
-		for _, v := range g.Vars() {
-			if s := p.d.Ring.Symbol(v); s.Kind == jet.Derivative {
-				n = max(n, s.Index.Order())
-			}
-		}
-		return n
-	}
-	gens = slices.Clone(gens)
-	slices.SortStableFunc(gens, func(a, b algebra.Poly) int { return order(a) - order(b) })
+	gens = p.byOrder(gens)
 	used := map[algebra.Var]bool{}
 	for _, g := range gens {
 		if p.quadric(at, g, used) {
@@ -38,6 +29,22 @@ func (p *Points) OnVariety(at jet.Point, gens []algebra.Poly) bool {
 		}
 	}
 	return true
+}
+
+// byOrder sorts polynomials by the order of the derivatives in them.
+func (p *Points) byOrder(gens []algebra.Poly) []algebra.Poly {
+	order := func(g algebra.Poly) int {
+		n := 0
+		for _, v := range g.Vars() {
+			if s := p.d.Ring.Symbol(v); s.Kind == jet.Derivative {
+				n = max(n, s.Index.Order())
+			}
+		}
+		return n
+	}
+	gens = slices.Clone(gens)
+	slices.SortStableFunc(gens, func(a, b algebra.Poly) int { return order(a) - order(b) })
+	return gens
 }
 
 // solveOne changes one unused indeterminate so that g vanishes.
@@ -73,7 +80,69 @@ func (p *Points) solveOne(at jet.Point, g algebra.Poly, used map[algebra.Var]boo
 			return true
 		}
 	}
-	return false
+	return p.atLattice(at, g, jets)
+}
+
+// atLattice moves the given jets of a point to a zero of g with small entries.
+func (p *Points) atLattice(at jet.Point, g algebra.Poly, jets []algebra.Var) bool {
+	if len(jets) == 0 || len(jets) > 3 {
+		return false
+	}
+	values := map[algebra.Var]algebra.Rat{}
+	for _, v := range g.Vars() {
+		if slices.Contains(jets, v) {
+			continue
+		}
+		x, ok := at[v]
+		if !ok {
+			return false
+		}
+		values[v] = x
+	}
+	jets = slices.Sorted(slices.Values(jets))
+	whole := len(values) == 0
+	var zeros []map[algebra.Var]algebra.Rat
+	k := slices.IndexFunc(p.lattice, func(l latticeZeros) bool { return whole && l.of.Equal(g) })
+	if k >= 0 {
+		zeros = p.lattice[k].zeros
+	} else {
+		zeros = allLatticeZeros(g.EvalPartial(values), jets)
+		if whole {
+			p.lattice = append(p.lattice, latticeZeros{g, zeros})
+		}
+	}
+	if len(zeros) == 0 {
+		return false
+	}
+	maps.Copy(at, zeros[p.rng.IntN(len(zeros))])
+	return true
+}
+
+// latticeZeros are the zeros of a polynomial with small entries.
+type latticeZeros struct {
+	of    algebra.Poly
+	zeros []map[algebra.Var]algebra.Rat
+}
+
+// allLatticeZeros lists the zeros of h with entries among a few small numbers.
+func allLatticeZeros(h algebra.Poly, jets []algebra.Var) []map[algebra.Var]algebra.Rat {
+	grid := []algebra.Rat{{}, algebra.Int(1), algebra.Int(-1), algebra.Int(2), algebra.Int(-2), algebra.Int(3), algebra.Int(-3), algebra.Frac64(1, 2), algebra.Frac64(-1, 2)}
+	n := 1
+	for range jets {
+		n *= len(grid)
+	}
+	var out []map[algebra.Var]algebra.Rat
+	for k := range n {
+		at := map[algebra.Var]algebra.Rat{}
+		for _, v := range jets {
+			at[v] = grid[k%len(grid)]
+			k /= len(grid)
+		}
+		if x, ok := h.Eval(func(v algebra.Var) algebra.Rat { return at[v] }); ok && x.IsZero() {
+			out = append(out, at)
+		}
+	}
+	return out
 }
 
 // rationalRoot is a rational zero of a polynomial of degree 1 or 2 in v alone.
