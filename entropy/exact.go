@@ -99,17 +99,23 @@ func (ex *Exact) Jet(unknown int, j jet.Index, side jet.Side) (algebra.Fraction,
 }
 
 // NoJump reports whether a condition says only that there is a jump at all:
-// that a multiple of |q| is not zero.
+// that a multiple of |q| or |q|² is not zero.
 func (ex *Exact) NoJump(c jet.Condition) bool {
 	if c.Need != jet.NeedNonZero || ex.size.IsZero() {
 		return false
 	}
-	k, ok := c.Value.Quo(ex.size)
-	if !ok {
+	square, err := ex.Ring.Mul(ex.size, ex.size)
+	if err != nil {
 		return false
 	}
-	_, ok = k.IsConst()
-	return ok
+	for _, x := range []algebra.Fraction{ex.size, square} {
+		if k, ok := c.Value.Quo(x); ok {
+			if _, ok = k.IsConst(); ok {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // ResetNormal forgets the normal, after the traces have come to mean something

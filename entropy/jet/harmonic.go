@@ -183,8 +183,8 @@ func (r *Ring) depends(f algebra.Fraction, v algebra.Var) bool {
 // NormRoot is the root of a value that is known to be a sum of squares: no
 // condition is recorded.
 func (r *Ring) NormRoot(f algebra.Fraction) (algebra.Fraction, error) {
-	n := len(r.conditions)
-	g, err := r.Root(f, 2)
+	n := len(r.conditions) // f is defined already
+	g, err := r.root(f, 2, true)
 	r.conditions = r.conditions[:n]
 	return g, err
 }

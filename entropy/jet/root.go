@@ -142,6 +142,11 @@ func (r *Ring) rootKernel(p algebra.Poly, q int, name string) (algebra.Fraction,
 // factors known to be positive get roots of their own, as do the primes of
 // the rational content, so that √a·√b = √(ab) holds literally for these.
 func (r *Ring) Root(f algebra.Fraction, q int) (algebra.Fraction, error) {
+	return r.root(f, q, false)
+}
+
+// root is Root; sure says that f >= 0 for all values of its indeterminates.
+func (r *Ring) root(f algebra.Fraction, q int, sure bool) (algebra.Fraction, error) {
 	if q < 1 {
 		return f, fmt.Errorf("%w: a root of degree %d", ErrOutside, q)
 	}
@@ -154,7 +159,9 @@ func (r *Ring) Root(f algebra.Fraction, q int) (algebra.Fraction, error) {
 	if c, ok := f.IsConst(); ok && c.Sign() < 0 {
 		return f, fmt.Errorf("a root of the negative number %s", c)
 	}
-	r.require(f, NeedNonNegative)
+	if !sure {
+		r.require(f, NeedNonNegative)
+	}
 	num := f.Num()
 	out := Whole(1)
 	for _, d := range f.DenFactors() {
@@ -184,14 +191,14 @@ func (r *Ring) Root(f algebra.Fraction, q int) (algebra.Fraction, error) {
 			return out, err
 		}
 	}
-	g, err := r.rootPoly(r.ReducePoly(num), q)
+	g, err := r.rootPoly(r.ReducePoly(num), q, sure)
 	if err != nil {
 		return g, err
 	}
 	return r.Mul(out, g)
 }
 
-func (r *Ring) rootPoly(p algebra.Poly, q int) (algebra.Fraction, error) {
+func (r *Ring) rootPoly(p algebra.Poly, q int, sure bool) (algebra.Fraction, error) {
 	if err := p.Err(); err != nil {
 		return algebra.Fraction{}, err
 	}
@@ -238,8 +245,12 @@ func (r *Ring) rootPoly(p algebra.Poly, q int) (algebra.Fraction, error) {
 			return r.Mul(out, a)
 		}
 	}
-	if squares { // where they vanish the rest may be negative
-		r.require(algebra.FromPoly(rest), NeedNonNegative)
+	if squares && !sure && !r.visiblyNonNegativePoly(rest) {
+		// Where they vanish the rest may be negative: they stay.
+		if out, err = r.rootRat(c, q); err != nil {
+			return out, err
+		}
+		rest = prim
 	}
 	g, err := r.rootKernel(rest, q, rootName(r.FormatPoly(rest), q))
 	if err != nil {
