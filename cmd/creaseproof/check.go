@@ -3,6 +3,7 @@ package main
 import (
 	"context"
 	"encoding/json"
+	"errors"
 	"fmt"
 	"io"
 	"time"
@@ -11,12 +12,14 @@ import (
 	"creaseproof/cases/library"
 	"creaseproof/cases/run"
 	"creaseproof/identity"
+	"creaseproof/identity/gram"
 
 	"github.com/spf13/cobra"
 )
 
 func newCheck(s streams) *cobra.Command {
 	var c common
+	var evidence string
 	opt := run.Options{Options: identity.DefaultOptions()}
 	cmd := &cobra.Command{
 		Use:   "check [CASE...]",
@@ -31,6 +34,7 @@ A CASE is a file, a folder (all files *.toml in it), the name of a built-in case
 or - for standard input; without one, every built-in case is taken.`,
 		Example: `  creaseproof check mine.toml
   creaseproof check layered-rotated --only "Young bound" --json
+  creaseproof check mine.toml --evidence proofs
   creaseproof check mine.toml --samples 5000000 --seed 7 --timeout 60`,
 		ValidArgsFunction: completeCase,
 		RunE: func(cmd *cobra.Command, args []string) error {
@@ -44,10 +48,12 @@ or - for standard input; without one, every built-in case is taken.`,
 			if list = selected(list, &opt); len(list) == 0 && len(opt.Only) > 0 && bad == 0 {
 				return fmt.Errorf("no claim has a name that contains %q", opt.Only)
 			}
-			return check(cmd.Context(), list, opt, s, say, request{c.json, bad, len(args) == 0})
+			return check(cmd.Context(), list, opt, s, say, request{c.json, bad, len(args) == 0, evidence})
 		},
 	}
 	c.flags(cmd, "claims")
+	cmd.Flags().StringVar(&evidence, "evidence", "", "write what each verdict rests on into the `folder`: for audit, as TeX, and for Coq")
+	cmd.Flags().Var(&effort{&opt.Effort}, "effort", "how long proofs are searched for: `low, normal or high`; more effort only decides more")
 	cmd.Flags().Var(&whole[uint64]{&opt.Seed, 0}, "seed", "`number` that the random samples and searches start from")
 	cmd.Flags().Var(&whole[int64]{&opt.Samples, 1}, "samples", "random jets to draw for an inequality that is not decided exactly")
 	return cmd
@@ -80,6 +86,8 @@ type request struct {
 	json bool
 	bad  int  // cases that could not be read
 	all  bool // the built-in cases, since none was named
+
+	evidence string // folder; empty for none
 }
 
 func check(ctx context.Context, list []*cases.Case, opt run.Options, s streams, say *complaints, q request) error {
@@ -108,6 +116,13 @@ func check(ctx context.Context, list []*cases.Case, opt run.Options, s streams, 
 		}
 		text.summary(out, total(list, &opt), q.bad)
 	}
+	if q.evidence != "" {
+		n, err := run.WriteEvidence(context.WithoutCancel(ctx), q.evidence, out, opt.Seed)
+		if err != nil {
+			return err
+		}
+		fmt.Fprintf(s.err, "evidence for %d verdicts in %s\n", n, q.evidence)
+	}
 	return finish(s, out.Interrupted, q.bad > 0 || out.Faulty(), out.Met())
 }
 
@@ -128,4 +143,24 @@ func writeJSON(w io.Writer, doc any) error {
 	e.SetEscapeHTML(false)
 	e.SetIndent("", "  ")
 	return e.Encode(doc)
+}
+
+// effort is the flag of that name.
+type effort struct{ value *string }
+
+func (e *effort) String() string {
+	if e.value == nil {
+		return ""
+	}
+	return *e.value
+}
+
+func (e *effort) Type() string { return "effort" }
+
+func (e *effort) Set(s string) error {
+	if _, ok := gram.Efforts(s); !ok {
+		return errors.New("write low, normal or high")
+	}
+	*e.value = s
+	return nil
 }

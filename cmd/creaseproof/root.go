@@ -24,7 +24,7 @@ type status int
 
 func (s status) Error() string { return "exit status " + strconv.Itoa(int(s)) }
 
-// run runs one command and returns its exit status.
+// execute runs one command and returns its exit status.
 func execute(ctx context.Context, args []string, s streams) int {
 	root := newRoot(s)
 	root.SetArgs(args)
@@ -64,7 +64,7 @@ Exit status: 0 every expectation met, 1 not so, 2 the input or the call is wrong
 		SilenceUsage:  true,
 		Run:           func(cmd *cobra.Command, _ []string) { _ = cmd.Help() },
 	}
-	root.AddCommand(newCheck(s), newEnergy(s), newCases(s))
+	root.AddCommand(newCheck(s), newEnergy(s), newAudit(s), newCases(s))
 	return root
 }
 

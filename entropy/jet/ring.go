@@ -292,7 +292,7 @@ func (r *Ring) JetVar(unknown int, j Index, side Side) (algebra.Var, error) {
 	if len(r.symbols) >= MaxSymbols {
 		return 0, fmt.Errorf("%w: more than %d indeterminates", algebra.ErrLimit, MaxSymbols)
 	}
-	name := r.jetName(unknown, j)
+	name := r.JetName(unknown, j)
 	switch side {
 	case PlusSide:
 		name += "(+)"
@@ -308,7 +308,8 @@ func (r *Ring) JetVar(unknown int, j Index, side Side) (algebra.Var, error) {
 	return v, nil
 }
 
-func (r *Ring) jetName(unknown int, j Index) string {
+// JetName is the printed name of a derivative.
+func (r *Ring) JetName(unknown int, j Index) string {
 	if j.Order() == 0 {
 		return r.Unknowns[unknown]
 	}

@@ -37,7 +37,10 @@ func (d *Problem) Replay(w *claim.Witness, p *Points) (jet.Point, error) {
 		at[v], used = x, used+1
 	}
 	if used != len(w.Jet) {
-		return nil, fmt.Errorf("the witness names jets that do not occur in the claim")
+		// Derivatives of the equations may hold jets that were not met yet.
+		if err := d.replayOthers(w, at); err != nil {
+			return nil, err
+		}
 	}
 	used = 0
 	for v := range algebra.Var(d.Ring.Len()) {
@@ -86,6 +89,52 @@ func (d *Problem) Replay(w *claim.Witness, p *Points) (jet.Point, error) {
 		}
 	}
 	return at, nil
+}
+
+// replayOthers makes the jets that a witness names and the ring does not hold.
+func (d *Problem) replayOthers(w *claim.Witness, at jet.Point) error {
+	known := map[string]bool{}
+	for v := range at {
+		known[d.Ring.Name(v)] = true
+	}
+	names := map[string]bool{}
+	for n := range w.Jet {
+		names[n] = !known[n]
+	}
+	var visit func(u int, j jet.Index, from int) error
+	visit = func(u int, j jet.Index, from int) error {
+		if n := d.Ring.JetName(u, j); names[n] {
+			v, err := d.Ring.JetVar(u, j, jet.NoSide)
+			if err != nil {
+				return err
+			}
+			x, err := rational(w.Jet[n])
+			if err != nil {
+				return err
+			}
+			at[v], names[n] = x, false
+		}
+		if j.Order() == jet.MaxOrder {
+			return nil
+		}
+		for i := from; i < len(d.Ring.Coordinates); i++ {
+			if err := visit(u, j.Plus(i), i); err != nil {
+				return err
+			}
+		}
+		return nil
+	}
+	for u := range d.Ring.Unknowns {
+		if err := visit(u, jet.Index{}, 0); err != nil {
+			return err
+		}
+	}
+	for n, missing := range names {
+		if missing {
+			return fmt.Errorf("the witness names %s, which does not occur in the claim", n)
+		}
+	}
+	return nil
 }
 
 func rational(s string) (algebra.Rat, error) {
