@@ -66,7 +66,7 @@ func coqc(t *testing.T, text string) (string, error) {
 	}
 	file := filepath.Join(t.TempDir(), "exported.v")
 	require.NoError(t, os.WriteFile(file, []byte(text), 0o644))
-	ctx, cancel := context.WithTimeout(context.Background(), time.Minute)
+	ctx, cancel := context.WithTimeout(context.Background(), 5*time.Minute)
 	defer cancel()
 	out, err := exec.CommandContext(ctx, path, "-q", "-noglob", file).CombinedOutput()
 	return string(out), err

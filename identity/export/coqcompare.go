@@ -142,7 +142,7 @@ func (sc *scope) vanishing(x fraction, zero []premise, names []string) (vanishin
 		parts = append(parts, sc.at.factor(c)+" * "+sc.at.factor(hs[k]))
 		proofs = append(proofs, "apply zero_product; exact "+names[k])
 	}
-	over := []string{e.String()}
+	over := []string{coqInteger(e)}
 	for _, f := range x.den {
 		over = append(over, fmt.Sprintf("%s^%d", sc.at.factor(f.p), f.power))
 	}

@@ -100,7 +100,7 @@ func (p *proof) numerator(i int, g premise, says, lemma string) {
 		return
 	}
 	p.doc.printf("%s\n%s\n", wrap("  ", fmt.Sprintf("assert (%s : %s).", p.integer[i], says)),
-		wrap("  ", fmt.Sprintf("{ apply (%s %s %s); [lra | exact %s]. }", lemma, p.scope.at.factor(g.n), g.d, p.given[i])))
+		wrap("  ", fmt.Sprintf("{ apply (%s %s %s); [lra | exact %s]. }", lemma, p.scope.at.factor(g.n), coqInteger(g.d), p.given[i])))
 }
 
 func isOne(d *big.Int) bool { return d.IsInt64() && d.Int64() == 1 }
@@ -131,7 +131,7 @@ func (p *proof) direct(name string) {
 func (p *proof) identity(indent string) {
 	d := p.doc
 	z, zero := p.combination()
-	d.printf("%sapply (from_identity %s _\n%s\n%s).\n", indent, p.clear,
+	d.printf("%sapply (from_identity %s _\n%s\n%s).\n", indent, coqInteger(p.clear),
 		wrap(indent+"  ", "("+p.signs.sum(p.squares)+")"), wrap(indent+"  ", "("+z+")"))
 	d.printf("%s- lra.\n", indent)
 	p.signs.nonneg(d, indent+"- ", indent+"  ", p.squares)

@@ -76,17 +76,26 @@ func (at places) over(n poly, d *big.Int) string {
 	if d.IsInt64() && d.Int64() == 1 {
 		return at.poly(n)
 	}
-	return at.factor(n) + " / " + d.String()
+	return at.factor(n) + " / " + coqInteger(d)
 }
 
 func coqNumber(c *big.Rat) string {
 	switch {
 	case !c.IsInt():
-		return fmt.Sprintf("(%s / %s)", c.Num(), c.Denom())
+		return fmt.Sprintf("(%s / %s)", coqInteger(c.Num()), coqInteger(c.Denom()))
 	case c.Sign() < 0:
-		return "(" + c.Num().String() + ")"
+		return "(" + coqInteger(c.Num()) + ")"
 	}
-	return c.Num().String()
+	return coqInteger(c.Num())
+}
+
+// coqInteger prints long numbers in hexadecimal: Coq takes seconds to read
+// hundreds of decimal digits, and no time for as many hexadecimal ones.
+func coqInteger(n *big.Int) string {
+	if n.BitLen() <= 128 {
+		return n.String()
+	}
+	return fmt.Sprintf("%#x", n)
 }
 
 // Levels of binding, from the loosest.

@@ -99,7 +99,7 @@ func (s *Inequality) tex(o TeXOptions) ([]string, error) {
 				return nil, err
 			}
 		}
-		left = strings.Join(w.summands(Sum{s.Right, Negation{s.Left}}), " ")
+		left = strings.Join(append(w.summands(s.Right), "- "+w.tree(s.Left, levelProduct)), " ")
 	}
 	isTarget := left == ""
 	if isTarget {

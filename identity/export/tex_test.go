@@ -59,7 +59,7 @@ e - 2\varepsilon K - \operatorname{div}\Sigma &= \frac{1}{2 \varepsilon} \bigl(R
 	got, err = export.TeX(layered(), export.TeXOptions{Names: map[string]string{"R": `\mathcal{R}`, "u_xieta": "b"}})
 	require.NoError(t, err)
 	assert.Contains(t, got, `&= \frac{1}{2 \varepsilon} \bigl(\mathcal{R} - \varepsilon u_{\xi \xi} + \varepsilon u_{\eta \eta}\bigr)^{2} + 2 \varepsilon b^{2}`)
-	assert.Contains(t, got, `\Bigl(\frac{\mathcal{R}^{2}}{2 \varepsilon} + \frac{\varepsilon \bigl(u_{\xi \xi} + u_{\eta \eta}\bigr)^{2}}{2}`)
+	assert.Contains(t, got, `\frac{\mathcal{R}^{2}}{2 \varepsilon} + \frac{\varepsilon \bigl(u_{\xi \xi} + u_{\eta \eta}\bigr)^{2}}{2}`)
 }
 
 func TestTeXOfMultipliersAndEquations(t *testing.T) {
