@@ -56,35 +56,41 @@ func (d *Problem) entropy() error {
 	}
 	half := algebra.Frac64(1, 2)
 	divides := true
+	var entries [][2]int
 	for i := range n {
 		for k := i; k < n; k++ {
-			second, err := d.Ring.Jet(0, jet.Index{}.Plus(i).Plus(k), jet.NoSide)
-			if err != nil {
-				return err
-			}
-			if second.IsZero() {
-				continue // by a restriction: the entry multiplies nothing
-			}
-			sym, err := d.Ring.Reduce(part[i][k].Add(part[k][i]).Scale(half))
-			if err != nil {
-				return err
-			}
-			a, ok, err := d.Divide(sym, r)
-			if err != nil {
-				return err
-			}
-			if ok && !a.IsZero() {
-				d.Rec.Details = append(d.Rec.Details, fmt.Sprintf("sym(D %s)_%s%s = R A with A = %s, R A = %s", d.Claim.Statement.Field.ID,
-					d.Ring.Coordinates[i], d.Ring.Coordinates[k], d.Ring.FormatHarmonic(a), d.Ring.FormatHarmonic(sym)))
-			}
-			if ok {
-				continue
-			}
-			divides = false
-			if done, err := d.vanishesOnWell(sym, r); err != nil || done {
-				return err
-			}
+			entries = append(entries, [2]int{i, k})
 		}
+	}
+	done, err := d.components(len(entries), func(e int) (bool, error) {
+		i, k := entries[e][0], entries[e][1]
+		second, err := d.Ring.Jet(0, jet.Index{}.Plus(i).Plus(k), jet.NoSide)
+		if err != nil {
+			return true, err
+		}
+		if second.IsZero() {
+			return false, nil // by a restriction: the entry multiplies nothing
+		}
+		sym, err := d.Ring.Reduce(part[i][k].Add(part[k][i]).Scale(half))
+		if err != nil {
+			return true, err
+		}
+		a, ok, err := d.Divide(sym, r)
+		if err != nil {
+			return true, err
+		}
+		if ok && !a.IsZero() {
+			d.Rec.Details = append(d.Rec.Details, fmt.Sprintf("sym(D %s)_%s%s = R A with A = %s, R A = %s", d.Claim.Statement.Field.ID,
+				d.Ring.Coordinates[i], d.Ring.Coordinates[k], d.Ring.FormatHarmonic(a), d.Ring.FormatHarmonic(sym)))
+		}
+		if ok {
+			return false, nil
+		}
+		divides = false
+		return d.vanishesOnWell(sym, r)
+	})
+	if err != nil || done {
+		return err
 	}
 	if divides {
 		d.Proved("exact division: sym(D " + d.Claim.Statement.Field.ID + ") = R A")

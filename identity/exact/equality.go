@@ -44,14 +44,11 @@ func (d *Problem) equality() error {
 			return err
 		}
 	}
-	for i, g := range gaps {
-		done, err := d.vanishes(g, left[i], right[i])
-		if err != nil || done {
-			return err
-		}
+	done, err := d.components(len(gaps), func(i int) (bool, error) { return d.vanishes(gaps[i], left[i], right[i]) })
+	if err == nil && !done {
+		d.Proved(method)
 	}
-	d.Proved(method)
-	return nil
+	return err
 }
 
 // vanishes decides whether g = left - right is zero. It reports true where
@@ -251,36 +248,9 @@ func (d *Problem) divergence(gaps []algebra.Fraction) error {
 			return err
 		}
 	}
-	for a, e := range euler {
-		if e.IsZero() {
-			continue
-		}
-		if err := d.Ring.Err(e); err != nil {
-			return err
-		}
-		if d.held() {
-			// u_x^2 = D_z(z u_x^2) where u_xz vanishes.
-			d.Open("the Euler expression is not zero, but with derivatives that are held constant that does not exclude a divergence")
-			return nil
-		}
-		d.Rec.Remainder = Short(fmt.Sprintf("euler(left - right, %s) = %s", d.Ring.Unknowns[a], d.Ring.Format(e)))
-		pts := d.Points(e)
-		for range witnessTries {
-			at, ok := pts.Next()
-			if !ok {
-				break
-			}
-			if s, ok := d.Ring.Sign(e, at); ok && s != 0 {
-				d.Refuted("Euler operator", at, e, algebra.Fraction{})
-				d.Rec.Reason = "the Euler expression of left minus right is not zero at the witness; left is its value there"
-				return nil
-			}
-		}
-		if err := d.Ctx.Err(); err != nil {
-			return err
-		}
-		d.Open("the Euler expression is not zero in normal form, but no rational point was found at which it certainly differs from zero")
-		return nil
+	done, err := d.components(len(euler), func(a int) (bool, error) { return d.eulerVanishes(euler[a], a) })
+	if err != nil || done {
+		return err
 	}
 	if k, ok := d.rough(gaps[0]); ok {
 		d.Open("the Euler expression is zero, but %s is not smooth where what is under the root vanishes, and there a divergence is not excluded or shown", d.Ring.Name(k))
@@ -291,6 +261,40 @@ func (d *Problem) divergence(gaps []algebra.Fraction) error {
 		d.Rec.Assumptions = append(d.Rec.Assumptions, "a divergence where the denominators do not vanish")
 	}
 	return nil
+}
+
+// eulerVanishes decides whether the Euler expression e by an unknown is zero.
+// It reports true where it is not, or where that is not decided.
+func (d *Problem) eulerVanishes(e algebra.Fraction, unknown int) (bool, error) {
+	if e.IsZero() {
+		return false, nil
+	}
+	if err := d.Ring.Err(e); err != nil {
+		return true, err
+	}
+	if d.held() {
+		// u_x^2 = D_z(z u_x^2) where u_xz vanishes.
+		d.Open("the Euler expression is not zero, but with derivatives that are held constant that does not exclude a divergence")
+		return true, nil
+	}
+	d.Rec.Remainder = Short(fmt.Sprintf("euler(left - right, %s) = %s", d.Ring.Unknowns[unknown], d.Ring.Format(e)))
+	pts := d.Points(e)
+	for range witnessTries {
+		at, ok := pts.Next()
+		if !ok {
+			break
+		}
+		if s, ok := d.Ring.Sign(e, at); ok && s != 0 {
+			d.Refuted("Euler operator", at, e, algebra.Fraction{})
+			d.Rec.Reason = "the Euler expression of left minus right is not zero at the witness; left is its value there"
+			return true, nil
+		}
+	}
+	if err := d.Ctx.Err(); err != nil {
+		return true, err
+	}
+	d.Open("the Euler expression is not zero in normal form, but no rational point was found at which it certainly differs from zero")
+	return true, nil
 }
 
 // Short keeps a printed formula within what a record should hold.

@@ -8,6 +8,7 @@ import (
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/enclosure"
 	"creaseproof/entropy/jet"
+	"creaseproof/identity/claim"
 )
 
 // isolated is the precision of the enclosures of algebraic points.
@@ -51,12 +52,8 @@ func (d *Problem) isolate(pts *Points, left, right algebra.Fraction, fails func(
 		if !ok || !pts.admissibleIsolated(at, roots) || !fails(at, roots) {
 			continue
 		}
-		d.Refuted("exact division, and a real zero isolated by a change of sign", at, left, right)
-		for v, r := range roots {
-			if s := d.Ring.Symbol(v); s.Side == jet.NoSide {
-				lo, hi := r.Text(20)
-				d.Rec.Witness.Jet[s.Name] = "[" + lo + ", " + hi + "]"
-			}
+		if d.Claim.Jump {
+			at = d.filled(at, roots)
 		}
 		show := func(f algebra.Fraction) string {
 			if x, ok := d.Ring.Exact(f, at); ok {
@@ -65,9 +62,13 @@ func (d *Problem) isolate(pts *Points, left, right algebra.Fraction, fails func(
 			lo, hi := d.Ring.EncloseAt(f, at, roots, 256).Text(20)
 			return "[" + lo + ", " + hi + "]"
 		}
-		d.Rec.Witness.Left, d.Rec.Witness.Right = show(left), show(right)
-		if d.Claim.Jump {
-			d.showTraces(d.Rec.Witness, show)
+		d.Rec.Verdict, d.Rec.Method = claim.Refuted, "exact division, and a real zero isolated by a change of sign"
+		d.showPoint(at, show(left), show(right), show)
+		for v, r := range roots {
+			if s := d.Ring.Symbol(v); s.Side == jet.NoSide {
+				lo, hi := r.Text(20)
+				d.Rec.Witness.Jet[s.Name] = "[" + lo + ", " + hi + "]"
+			}
 		}
 		return true
 	}

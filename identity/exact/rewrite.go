@@ -35,6 +35,9 @@ func (d *Problem) rewrite() error {
 		}
 		eqs = append(eqs, &solved{r.Unknown, r.Index, v, nil})
 	}
+	if err := d.contradictory(eqs); err != nil {
+		return err
+	}
 	if d.Claim.Jump {
 		if len(d.Claim.Modulo) > 0 {
 			return &entropy.Error{At: d.Claim.Modulo[0].At(), Err: errors.New("a claim at a jump is already on the well on both sides"), Advice: "take modulo away"}
@@ -55,6 +58,9 @@ func (d *Problem) rewrite() error {
 		if f.IsZero() {
 			continue
 		}
+		if c, ok := f.IsConst(); ok {
+			return &entropy.Error{At: m.At(), Err: fmt.Errorf("the equation is %s = 0 on what is restricted before it: the claim is about no jets", c)}
+		}
 		p := radical(f.Num())
 		all = append(all, p)
 		if s, ok := d.solve(algebra.FromPoly(p), eqs); ok {
@@ -72,6 +78,38 @@ func (d *Problem) rewrite() error {
 	}
 	d.solved = eqs[min(fixed, len(eqs)):]
 	return d.compatible(eqs)
+}
+
+// contradictory refuses restrictions that contradict each other or what is
+// given.
+func (d *Problem) contradictory(restricted []*solved) error {
+	for i, e := range restricted {
+		at := d.Claim.Restrict[i].Value.At()
+		name := d.Ring.Unknowns[e.unknown]
+		for _, f := range restricted {
+			if f.unknown == e.unknown && f.index != e.index && e.index.Covers(f.index) && !e.Value.IsZero() {
+				return &entropy.Error{At: at, Err: fmt.Errorf("restrictions that contradict each other: a derivative of a derivative of %s that is constant is zero, not %s", name, d.Ring.Format(e.Value))}
+			}
+		}
+		body, ok := d.Claim.Given[e.unknown]
+		if !ok || d.Claim.Jump {
+			continue
+		}
+		u, err := d.In.Scalar(body)
+		if err != nil {
+			return err
+		}
+		x, err := d.Ring.TotalIndex(u, e.index)
+		if err != nil {
+			return err
+		}
+		if diff, err := d.Ring.Sub(x, e.Value); err != nil {
+			return err
+		} else if !diff.IsZero() {
+			return &entropy.Error{At: at, Err: fmt.Errorf("a restriction to %s, but with the given %s this derivative is %s", d.Ring.Format(e.Value), name, d.Ring.Format(x)), Advice: "take the restriction away"}
+		}
+	}
+	return nil
 }
 
 // rewriter replaces u_J by what the equation for some u_K, J covering K, makes

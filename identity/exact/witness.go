@@ -4,6 +4,7 @@ import (
 	"maps"
 
 	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/enclosure"
 	"creaseproof/entropy/jet"
 	"creaseproof/identity/claim"
 )
@@ -17,23 +18,19 @@ func (d *Problem) Refuted(method string, at jet.Point, left, right algebra.Fract
 
 // ShowWitness writes a point into the record, with both sides there.
 func (d *Problem) ShowWitness(at jet.Point, left, right algebra.Fraction) {
-	w := &claim.Witness{Jet: map[string]string{}, Left: d.Ring.Show(left, at), Right: d.Ring.Show(right, at)}
-	shown := map[algebra.Var]bool{} // what the sides depend on
-	for _, v := range d.Ring.Support(left, right) {
-		shown[v] = true
+	if d.Claim.Jump {
+		at = d.filled(at, nil)
 	}
-	for _, v := range d.Ring.Kernels(left, right) {
-		shown[v] = true
-	}
-	for _, g := range d.Ideal { // and what makes it a jet on the equations
-		for _, v := range d.Ring.Support(algebra.FromPoly(g)) {
-			shown[v] = true
-		}
-	}
+	d.showPoint(at, d.Ring.Show(left, at), d.Ring.Show(right, at), func(f algebra.Fraction) string { return d.Ring.Show(f, at) })
+}
+
+// showPoint writes a point, the values of both sides, and what show makes of
+// the traces.
+func (d *Problem) showPoint(at jet.Point, left, right string, show func(algebra.Fraction) string) {
+	w := &claim.Witness{Jet: map[string]string{}, Left: left, Right: right}
 	for v, x := range at {
 		s := d.Ring.Symbol(v)
 		switch {
-		case !shown[v] && (s.Kind != jet.Cosine || !shown[s.Partner]):
 		case s.Kind == jet.Cosine:
 			if w.Angle == nil {
 				w.Angle = map[string]claim.CosSin{}
@@ -45,10 +42,41 @@ func (d *Problem) ShowWitness(at jet.Point, left, right algebra.Fraction) {
 		}
 	}
 	if d.Claim.Jump {
-		d.showTraces(w, func(f algebra.Fraction) string { return d.Ring.Show(f, at) })
+		d.showTraces(w, show)
 	}
 	d.showDetermined(w, at)
 	d.Rec.Witness = w
+}
+
+// filled completes a point at a jump by what its traces and normal depend on
+// beside it. The claim does not depend on that, so any values do that make the
+// gradient jump: components that are free jump by one.
+func (d *Problem) filled(at jet.Point, roots map[algebra.Var]enclosure.Interval) jet.Point {
+	var all []algebra.Fraction
+	for i := range d.Ring.Coordinates {
+		for _, side := range []jet.Side{jet.PlusSide, jet.MinusSide} {
+			if f, err := d.Ring.Jet(0, jet.Index{}.Plus(i), side); err == nil {
+				all = append(all, f)
+			}
+		}
+		if nu, err := d.Ex.Normal(i); err == nil {
+			all = append(all, nu)
+		}
+	}
+	out := at.Clone()
+	for _, v := range append(d.Ring.Support(all...), d.Ring.Kernels(all...)...) {
+		_, known := at[v]
+		_, enclosed := roots[v]
+		s := d.Ring.Symbol(v)
+		switch {
+		case known || enclosed:
+		case s.Kind == jet.Coordinate, s.Kind == jet.Derivative && s.Side != jet.Difference:
+			out[v] = algebra.Rat{}
+		case s.Kind == jet.Constant, s.Kind == jet.Derivative:
+			out[v] = algebra.Int(1)
+		}
+	}
+	return out
 }
 
 // showDetermined writes the derivatives that the equations determine. Jets in
