@@ -53,8 +53,8 @@
 //     feature narrower than the distance of the first nodes can be missed
 //     altogether, and then the estimate is wrong.
 //   - Checks: made at every node used and at some 256 places spread over the
-//     surface, with a relative tolerance, hence not a proof that the conditions
-//     hold on the surface. A refusal names a place at which they do not hold, to
+//     surface, with a relative tolerance (that of continuity is tied to
+//     rounding), hence not a proof that the conditions hold on the surface. A refusal names a place at which they do not hold, to
 //     the tolerance. It is wider where positions are far from the origin
 //     compared with the extent of the surface, but at most 1e-7. Where u is
 //     known, its gradients at those places are compared with those at two small

@@ -3,6 +3,7 @@ package quadrature
 import (
 	"errors"
 	"fmt"
+	"math"
 	"strings"
 )
 
@@ -101,6 +102,10 @@ func (e *PlaceError) Error() string {
 	case NotSmooth:
 		fmt.Fprintf(&b, "the %s trace has a kink on the surface itself%s: its gradient jumps by %.6g", e.What, place, e.Residual)
 	case NotFinite:
+		if math.IsNaN(e.Residual) {
+			fmt.Fprintf(&b, "the %s is not a real number%s", e.What, place)
+			break
+		}
 		fmt.Fprintf(&b, "the %s is not finite%s", e.What, place)
 	case Degenerate:
 		fmt.Fprintf(&b, "the surface is degenerate, its area element is zero on a whole region%s", place)

@@ -184,12 +184,20 @@ func (e *evaluator) blur() float64 {
 func (e *evaluator) checkTraces() (jump, size float64, err error) {
 	up := e.tr.Plus(e.x, e.plus)
 	um := e.tr.Minus(e.x, e.minus)
+	if e.tr.HasValue {
+		if !finite(up) {
+			return 0, 0, e.fail(NotFinite, "plus trace", up, 0)
+		}
+		if !finite(um) {
+			return 0, 0, e.fail(NotFinite, "minus trace", um, 0)
+		}
+	}
 	for k := range e.plus {
 		if !finite(e.plus[k]) {
-			return 0, 0, e.fail(NotFinite, "plus trace", e.plus[k], 0)
+			return 0, 0, e.fail(NotFinite, "gradient of the plus trace", e.plus[k], 0)
 		}
 		if !finite(e.minus[k]) {
-			return 0, 0, e.fail(NotFinite, "minus trace", e.minus[k], 0)
+			return 0, 0, e.fail(NotFinite, "gradient of the minus trace", e.minus[k], 0)
 		}
 	}
 	tol := e.o.Tolerance
@@ -208,18 +216,12 @@ func (e *evaluator) checkTraces() (jump, size float64, err error) {
 	}
 	size = norm(e.plus) + norm(e.minus)
 	if e.tr.HasValue {
-		if !finite(up) {
-			return 0, 0, e.fail(NotFinite, "value of the plus trace", up, 0)
-		}
-		if !finite(um) {
-			return 0, 0, e.fail(NotFinite, "value of the minus trace", um, 0)
-		}
-		scale := math.Abs(up) + math.Abs(um) + size*e.reach
+		scale := math.Abs(up) + math.Abs(um) + size*(e.reach+e.slip())
 		if e.tr.Scale != nil {
 			scale += math.Abs(e.tr.Scale(e.x))
 		}
 		gap := math.Abs(up - um)
-		if gap > tol*scale || gap > wide*size*e.whole && gap > 64*epsilon*scale {
+		if gap > e.o.Continuity*scale || gap > wide*size*e.whole && gap > 64*epsilon*scale {
 			return 0, 0, e.fail(Discontinuous, "surface", up-um, scale)
 		}
 	}
@@ -238,6 +240,16 @@ func (e *evaluator) checkTraces() (jump, size float64, err error) {
 		return 0, 0, e.fail(NotNormal, "surface", off, size)
 	}
 	return jump, size, nil
+}
+
+// slip is how far the position moves where a parameter is changed by all of
+// itself: times the precision, what the rounding of the parameters costs.
+func (e *evaluator) slip() float64 {
+	var sum float64
+	for j, t := range e.jac {
+		sum += norm(t) * math.Abs(e.s[j])
+	}
+	return sum
 }
 
 // rowDone is called when the row of nodes at s, or the whole curve, is

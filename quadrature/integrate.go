@@ -39,8 +39,12 @@ type Options struct {
 	// Well returns the residual whose zero set is the well, and the sum of the
 	// absolute values of its terms. Nil: not checked.
 	Well func(grad []float64) (residual, scale float64)
-	// Tolerance is the relative tolerance of the checks, 1e-9 if zero.
+	// Tolerance is the relative tolerance of the checks of the well and of the
+	// direction of the jump, 1e-9 if zero.
 	Tolerance float64
+	// Continuity is the relative tolerance of the check that u is continuous,
+	// 1024 units in the last place if zero.
+	Continuity float64
 	// DensityError is the relative error of the values of the density beside
 	// rounding, 0 for closed forms. It is counted in the error estimates.
 	DensityError float64
@@ -56,12 +60,15 @@ func (o Options) withDefaults() Options {
 	if o.Tolerance == 0 {
 		o.Tolerance = 1e-9
 	}
+	if o.Continuity == 0 {
+		o.Continuity = 1024 * epsilon
+	}
 	return o
 }
 
 func (o Options) check() error {
 	switch {
-	case !(o.Rel >= 0) || !(o.Abs >= 0) || !(o.Tolerance >= 0) || !(o.DensityError >= 0):
+	case !(o.Rel >= 0) || !(o.Abs >= 0) || !(o.Tolerance >= 0) || !(o.Continuity >= 0) || !(o.DensityError >= 0):
 		return fmt.Errorf("quadrature: tolerances must not be negative or NaN")
 	case o.MaxEvaluations < 0:
 		return fmt.Errorf("quadrature: a negative number of evaluations")

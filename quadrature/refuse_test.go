@@ -36,8 +36,8 @@ func TestRefusals(t *testing.T) {
 		{"discontinuous, small", wallTriangle, linear(0, 1e-6, 0, 0.5e-12), linear(1e-12, -1e-6, 0, 0.5e-12), Discontinuous, ""},
 		{"not normal", Polygon{[][]float64{{0, 0, 0}, {1, 1, 0}, {0, 0, 1}}}, func(x, g []float64) float64 { copy(g, []float64{1, 0, 0.5}); return x[2] / 2 },
 			func(x, g []float64) float64 { copy(g, []float64{-1, 0, 0.5}); return x[2] / 2 }, NotNormal, "not normal"},
-		{"NaN", wallTriangle, nanGradient, good[1], NotFinite, "plus trace is not finite"},
-		{"NaN value", wallTriangle, func(x, g []float64) float64 { good[0](x, g); return math.NaN() }, good[1], NotFinite, "value of the plus trace"},
+		{"NaN", wallTriangle, nanGradient, good[1], NotFinite, "gradient of the plus trace is not a real number"},
+		{"NaN value", wallTriangle, func(x, g []float64) float64 { good[0](x, g); return math.NaN() }, good[1], NotFinite, "the plus trace is not a real number"},
 		{"all on a line", Patch{Dim: 3, Params: []Range{{0, 1}, {0, 1}}, Map: func(s, x []float64, jac [][]float64) {
 			for k := range 3 {
 				x[k], jac[0][k], jac[1][k] = s[0]+2*s[1], 1, 2

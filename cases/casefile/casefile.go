@@ -135,7 +135,7 @@ type Surface struct {
 	Box      []Interval
 
 	Energy *source.Text
-	Within *big.Rat // relative; positive
+	Within *big.Rat // relative; positive, at most 1/1000
 	Expect *source.Text
 }
 

@@ -39,6 +39,7 @@ func TestMistakes(t *testing.T) {
 		{"empty statement", head + "[[claim]]\nname = 'c'\nstates = ''\n", 6, 11, []string{`"states" is empty`, `write a claim such as "div(Sigma) = R L"`}},
 		{"empty assumption", head + "[[claim]]\nname = 'c'\nstates = '1 = 1'\nassume = ['']\n", 7, 12, []string{`"assume" is empty`, `write a condition such as "eps > 0"`}},
 		{"free without solve", head + "[[claim]]\nname = 'c'\nstates = '1 = 1'\nexpect = 'c free'\n", 7, 11, []string{`expects a solution, and nothing is solved for`}},
+		{"rough within", head + "[[surface]]\nname='s'\ndensity='1'\npolygon=[['0','0'],['1','0']]\nwithin = 0.002\n", 8, 10, []string{`"within" is at most 1e-3`}},
 		{"surface without name", head + "[[surface]]\nplus='1'\nminus='2'\npolygon=[['0','0'],['1','0']]\n", 4, 3, []string{`has no "name"`}},
 		{"claim named twice", head + "[[claim]]\nname='c'\nstates='1 = 1'\n[[claim]]\nname='c'\nstates='1 = 1'\n", 8, 7, []string{`the claim "c" is already on line 5`}},
 		{"surface named twice", head + strings.Repeat("[[surface]]\nname='s'\ndensity='1'\npolygon=[['0','0'],['1','0']]\n", 2), 9, 7, []string{`the surface "s" is already on line 5`}},

@@ -2,10 +2,14 @@ package casefile
 
 import (
 	"fmt"
+	"math/big"
 	"strings"
 
 	"creaseproof/entropy/source"
 )
+
+// mostWithin is the largest relative error that a surface may allow.
+var mostWithin = big.NewRat(1, 1000)
 
 func (d *decoder) surfaces(v *value) {
 	seen := map[string]source.Pos{}
@@ -45,6 +49,10 @@ func (d *decoder) surface(v *value) Surface {
 			r, ok := d.rational(e.value, "within")
 			if ok && r.Sign() <= 0 {
 				d.add(e.value.off, `"within" must be positive`, "write the relative error allowed: within = 1e-10")
+				ok = false
+			}
+			if ok && r.Cmp(mostWithin) > 0 {
+				d.add(e.value.off, `"within" is at most 1e-3`, "write the relative error allowed: within = 1e-10; a rougher number supports no claim")
 				ok = false
 			}
 			if ok {

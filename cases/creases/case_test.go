@@ -113,6 +113,28 @@ minus = "-x + z/2 + 1"
 		{"slightly discontinuous", layeredHead, `plus = "x + z/2"
 minus = "-x + z/2 + 1/1000000"
 ` + wall, []string{"u is discontinuous", "jumps by -1e-06"}},
+		{"discontinuous by less than a gradient's rounding", eikonalHead, `plus = "-x"
+minus = "x + 10^(-14)"
+polygon = [["0", "0"], ["0", "1"]]
+`, []string{"u is discontinuous", "by an enclosure"}},
+		{"discontinuous far from zero", eikonalHead, `plus = "-x + 10^6"
+minus = "x + 10^6 + 10^(-12)"
+polygon = [["0", "0"], ["0", "1"]]
+`, []string{"u is discontinuous", "by an enclosure"}},
+		{"discontinuous away from the samples", layeredHead, `plus = "x + z/2 + (abs(y - 9/10) + y - 9/10)^2/10^9"
+minus = "-x + z/2"
+density = "1"
+` + strings.Replace(wall, `"1", "1"`, `"1", "1"`, 1), []string{"u is discontinuous"}},
+		{"a trace that is nowhere real", eikonalHead, `plus = "sqrt(-1 - x^2)"
+minus = "x"
+density = "1"
+polygon = [["0", "0"], ["0", "1"]]
+`, []string{"the plus trace is not a real number"}},
+		{"a trace that is not real with a real gradient", eikonalHead, `plus = "log(-1 - x^2)"
+minus = "x"
+density = "1"
+polygon = [["0", "0"], ["0", "1"]]
+`, []string{"the plus trace is not a real number"}},
 		{"not normal", layeredHead, `plus_gradient = ["1", "0", "1/2"]
 minus_gradient = ["-1", "0", "1/2"]
 polygon = [["0", "0", "0"], ["1", "1", "0"], ["0", "0", "1"]]
@@ -123,17 +145,17 @@ polygon = [["0", "0", "0"], ["1/100000", "1", "0"], ["0", "0", "1"]]
 `, []string{"not normal to the surface"}},
 		{"a trace that is no number", layeredHead, `plus = "sqrt(x - 1) + z/2"
 minus = "0"
-` + wall, []string{"not finite", "at (x, y, z) = (0, "}},
+` + wall, []string{"the plus trace is not a real number", "at (x, y, z) = (0, "}},
 		{"a gradient that is no number", eikonalHead, `plus_gradient = ["0", "log(t - 1/2)/log(t - 1/2)"]
 minus_gradient = ["0", "-1"]
 patch = { map = ["t", "0"], over = { t = ["0", "1"] } }
-`, []string{"plus trace is not finite", "(t) = ("}},
+`, []string{"the gradient of the plus trace is not a real number", "(t) = ("}},
 		{"a map that is no number", layeredHead, `density = "1"
 patch = { map = ["sqrt(t)", "a", "t"], over = { t = ["-1", "1"], a = ["0", "1"] } }
 `, []string{"position or tangent of the surface is not finite"}},
 		{"a density that is no number", layeredHead, `density = "sqrt(nu_x)"
 patch = { map = ["cos(a)", "sin(a)", "t"], over = { t = ["0", "1"], a = ["0", "2 pi"] } }
-`, []string{"density is not finite", "(t, a) = ("}},
+`, []string{"density is not a real number", "(t, a) = ("}},
 		{"a degenerate patch", layeredHead, `density = "1"
 patch = { map = ["t", "t", "t"], over = { t = ["0", "1"], a = ["0", "1"] } }
 `, []string{"degenerate", "at (x, y, z) = "}},
@@ -149,6 +171,12 @@ patch = { map = ["t", "a", "0"], over = { t = ["1", "0"], a = ["0", "1"] } }
 		{"a value against an assumption", layeredHead, `density = "1"
 values = { eps = "sqrt(2) - 3/2" }
 ` + wall, []string{`"eps > 0"`, "eps = sqrt(2) - 3/2"}},
+		{"a value that cannot be told from zero", layeredHead, `density = "1"
+values = { eps = "sqrt(3 + 2 sqrt(2)) - 1 - sqrt(2)" }
+` + wall, []string{`"eps > 0"`, "cannot be decided"}},
+		{"a place against an assumption", strings.Replace(eikonalHead, "[let]", "assume = [\"y > 0\"]\n[let]", 1), `density = "1"
+polygon = [["0", "1"], ["0", "-8"]]
+`, []string{`"y > 0"`, "does not hold at (x, y) = (0, "}},
 	} {
 		rs, err := run(t, test.head+test.surface)
 		require.NoError(t, err, test.name)
@@ -274,7 +302,20 @@ minus = "-x + z/2"
 		{strings.Replace(eikonalHead, "(1 -", "(c -", 1), `plus = "y"
 minus = "-y"
 polygon = [["0", "0"], ["1", "0"]]
-`, 0, "the constant c has no value"},
+`, 0, `the residual of the model has the constant c, which has no value here
+    s
+    ^
+    give it one: values = { c = "1" }`},
+		{eikonalHead, `plus = "c y"
+minus = "-y"
+polygon = [["0", "0"], ["1", "0"]]
+`, 1, `give it one: values = { c = "1" }`},
+		{strings.Replace(eikonalHead, "[model]", "A = \"2 c\"\n[model]", 1), `density = "1"
+patch = { map = ["t", "0"], over = { t = ["0", "A"] } }
+`, 2, `give it one: values = { c = "1" }`},
+		{strings.Replace(eikonalHead, "[model]", "A = \"2 c\"\n[model]", 1), `density = "A"
+patch = { map = ["t", "0"], over = { t = ["0", "1"] } }
+`, 1, `give it one: values = { c = "1" }`},
 	} {
 		text := test.head + test.surface
 		c, err := cases.Parse("case.toml", []byte(text))

@@ -122,7 +122,7 @@ func (c *combination) enclose(f formulaText) (enclosure.Interval, error) {
 	for _, v := range c.exact.Ring.Support(x) {
 		switch y := c.exact.Ring.Symbol(v); y.Kind {
 		case jet.Constant:
-			return enclosure.Interval{}, fault(f.text, fmt.Sprintf(`give it one: values = { %s = "1" }`, y.Name), "the constant %s has no value", y.Name)
+			return enclosure.Interval{}, fault(f.text, giveValue(y.Name), "the constant %s has no value", y.Name)
 		case jet.Coordinate, jet.Derivative:
 			return enclosure.Interval{}, fault(f.text, "write a number", "%s has no value here", y.Name)
 		}
@@ -217,6 +217,13 @@ func (c *combination) evaluate() (Result, error) {
 	if onWell {
 		options.Well = nil
 	}
+	reason, continuous := c.torn()
+	if reason != "" {
+		return r.refuse(reason), nil
+	}
+	if continuous {
+		options.Continuity = settled
+	}
 	q, err := c.integrate(surface, tr, density, options)
 	if c.ctx.Err() != nil {
 		return r, c.ctx.Err()
@@ -256,6 +263,10 @@ func (r *Result) add(reason string) {
 	}
 	r.Reason += reason
 }
+
+// settled is the relative tolerance of the numerical check of what holds by
+// exact arithmetic.
+const settled = 1e-9
 
 // rounding is the relative error of the claimed value after rounding, with a
 // margin.

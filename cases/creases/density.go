@@ -173,6 +173,9 @@ func (c *combination) explain(err error) string {
 	case quadrature.NotSmooth:
 		return fmt.Sprintf("the %s trace has a kink on the surface itself%s: give it as u is on that side, without abs", p.What, at)
 	case quadrature.NotFinite:
+		if math.IsNaN(p.Residual) {
+			return fmt.Sprintf("the %s is not a real number%s", p.What, at)
+		}
 		return fmt.Sprintf("the %s is not finite%s", p.What, at)
 	case quadrature.Degenerate:
 		return fmt.Sprintf("the surface is degenerate: its area element is zero on a whole region%s", at)

@@ -4,11 +4,17 @@
 // a graph) and what the traces are on its two sides: u itself, its gradients,
 // or nothing but a density. For every combination of the listed values
 //
+//   - the assumptions of the case are decided for the values by exact
+//     arithmetic or an enclosure, and refuse the surface where they do not hold
+//     or cannot be decided; those about coordinates are enclosed at a few points
+//     of the surface;
 //   - the traces are compiled together with their gradients, and for u in
 //     closed form the residual is brought to exact normal form: a residual
 //     that is exactly zero settles that the trace is on the well, one that an
 //     outward-rounded enclosure shows not to vanish at a point of the surface
-//     refuses it there. What remains is checked numerically at every node
+//     refuses it there. So does a jump of u, however small. On a patch or a
+//     graph u is continuous where the jump vanishes identically once the
+//     formulas of the positions are put for the coordinates. What remains is checked numerically at every node
 //     (package quadrature), as are continuity of u and direction of the jump;
 //   - the parts of formulas without variables are evaluated to 200 bits and
 //     rounded once, so that the difference of two close constants costs nothing;

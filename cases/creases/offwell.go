@@ -2,8 +2,10 @@ package creases
 
 import (
 	"fmt"
+	"maps"
 	"math"
 	"math/big"
+	"slices"
 	"strconv"
 
 	"creaseproof/entropy/algebra"
@@ -54,6 +56,66 @@ func (c *combination) offWell() (reason string, onWell bool, err error) {
 		}
 	}
 	return "", zeros == 2, nil
+}
+
+// torn encloses the jump of u, where both traces are formulas, at a few points
+// of the surface; the reason names one at which it is certainly not zero. If
+// none is found the numerical check at every node remains; continuous says that
+// the jump is identically zero on the surface, by exact arithmetic.
+func (c *combination) torn() (reason string, continuous bool) {
+	if !c.s.isU {
+		return "", false
+	}
+	plus, err := c.in.Scalar(c.s.plus[0].node)
+	if err != nil {
+		return "", false
+	}
+	minus, err := c.in.Scalar(c.s.minus[0].node)
+	if err != nil {
+		return "", false
+	}
+	jump := plus.Sub(minus)
+	if c.exact.Ring.Err(jump) != nil {
+		return "", false
+	}
+	for _, p := range c.samples() {
+		x := c.exact.Ring.EncloseAt(jump, nil, p.wide, precision)
+		if s, ok := x.Sign(); ok && s != 0 {
+			v, _ := x.Lo().Float64()
+			return fmt.Sprintf("u is discontinuous across the surface%s%s: it jumps by %.6g, by an enclosure", c.place(p.point, p.params), c.where(), v), false
+		}
+	}
+	return "", c.sewn()
+}
+
+// sewn reports whether the jump of u vanishes identically on a patch or a graph
+// by exact arithmetic, the formulas of its positions put for the coordinates.
+func (c *combination) sewn() bool {
+	h := &c.s.shape
+	set := *c.set
+	set.Lets = maps.Clone(c.set.Lets)
+	switch {
+	case h.maps != nil:
+		set.Coordinates = nil
+		set.Constants = append(slices.Clone(set.Constants), c.s.params...)
+		for i, x := range c.set.Coordinates {
+			set.Lets[x] = h.maps[i].node
+		}
+	case h.height != nil:
+		n := len(c.set.Coordinates)
+		up := n*(n-1)/2 - sum(h.spanned)
+		set.Coordinates = slices.Delete(slices.Clone(set.Coordinates), up, up+1)
+		set.Lets[c.set.Coordinates[up]] = h.height.node
+	default:
+		return false // of a polygon the enclosures show enough
+	}
+	set.Frame = nil
+	in, exact, err := set.NewExact(c.ctx)
+	if err != nil {
+		return false
+	}
+	jump, err := in.Scalar(formula.NewSum(formula.Term{X: c.s.plus[0].node}, formula.Term{Neg: true, X: c.s.minus[0].node}))
+	return err == nil && exact.Ring.Err(jump) == nil && jump.IsZero()
 }
 
 // samplePoint is a point of the surface known by enclosures.

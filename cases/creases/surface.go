@@ -71,7 +71,7 @@ const mostCombinations = 100000
 // carries its place (*source.Error).
 func (e *Evaluator) Read(src *casefile.Surface) (*Surface, error) {
 	s := &Surface{Name: src.Name, ev: e, src: src, place: header(e.file, src)}
-	for _, step := range []func() error{s.declare, s.readTraces, s.readShape, s.readRest} {
+	for _, step := range []func() error{s.declare, s.readTraces, s.readShape, s.readRest, s.valued} {
 		if err := step(); err != nil {
 			return nil, err
 		}

@@ -15,12 +15,6 @@ constants = ["eps"]
 assume = ["eps > 0"]
 `
 
-const frame = `[frame]
-plane = ["x", "y"]
-axes = ["xi", "eta"]
-angle = "theta"
-`
-
 func parsed(t *testing.T, text string) *cases.Case {
 	t.Helper()
 	c, err := cases.Parse("case.toml", []byte(text))
