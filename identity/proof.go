@@ -3,6 +3,7 @@ package identity
 import (
 	"errors"
 	"fmt"
+	"slices"
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
@@ -17,21 +18,16 @@ import (
 // continuity is preferred. It reports whether the claim is proved.
 func (d *decider) prove(g *exact.Gap, done []squares.Term) (bool, error) {
 	r := d.reduction(g)
-	type found struct {
-		method string
-		proof  *gram.Proof
-		cert   *certificate.Certificate
-	}
-	var second *found
+	var second *gram.Proof // by completed squares, where its multiplier may vanish
 	if len(done) > 0 {
 		if p, ok := r.fromSquares(done); ok {
-			if cert, err := r.certify(p); err == nil {
-				if !certificate.UsesContinuity(r.Claim, cert) {
+			if r.strict(p.Multiplier) {
+				if cert, err := r.certify(p); err == nil {
 					d.certified("completing squares", g, r, p, cert)
 					return true, nil
 				}
-				second = &found{"completing squares", p, cert}
 			}
+			second = p
 		}
 	}
 	if len(d.Ideal) > 0 || len(d.Wells) > len(g.Wells) {
@@ -52,8 +48,10 @@ func (d *decider) prove(g *exact.Gap, done []squares.Term) (bool, error) {
 		d.certified("sum of squares", g, r, p, cert)
 		return true, nil
 	case second != nil:
-		d.certified(second.method, g, r, second.proof, second.cert)
-		return true, nil
+		if cert, err := r.certify(second); err == nil {
+			d.certified("completing squares", g, r, second, cert)
+			return true, nil
+		}
 	}
 	cert, steps, err := d.squareRoots(r, effort, 3)
 	if err != nil || cert == nil {
@@ -83,6 +81,14 @@ func (d *decider) refuteOnWells() (bool, error) {
 		}
 	}
 	return false, d.Ctx.Err()
+}
+
+// strict reports a multiplier that is 1, or visibly positive everywhere.
+func (r *reduction) strict(m []gram.Square) bool {
+	return len(m) == 0 || slices.ContainsFunc(m, func(s gram.Square) bool {
+		_, constant := s.Base.IsConst()
+		return constant && !slices.ContainsFunc(s.Factors, func(f int) bool { return !r.Positive[f].Strict })
+	})
 }
 
 // proveOnWells searches for a certificate in the traces themselves, with the

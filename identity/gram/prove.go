@@ -16,13 +16,27 @@ import (
 func Prove(ctx context.Context, p *Problem, e Effort) (*Proof, *Picture, error) {
 	pic := &Picture{}
 	vars := p.allVars()
-	zeros := p.numericalZeros(ctx, vars, 6*len(vars)+30)
-	try := func(a *ansatz, ok bool) *Proof {
+	var zeros [][]float64
+	looked := false
+	try := func(multiplier []Square, others bool, extra int) *Proof {
+		a, ok := p.build(e, multiplier, others, extra)
 		if !ok || ctx.Err() != nil {
 			return nil
 		}
 		pic.Tried++
-		return a.prove(ctx, e, zeros, pic)
+		proof, feasible := a.prove(ctx, e, nil, pic)
+		if proof != nil || !feasible || ctx.Err() != nil {
+			return proof
+		}
+		// The kernel at the centre was not enough: start from numerical zeros.
+		if !looked {
+			zeros, looked = p.numericalZeros(ctx, vars, 3*len(vars)+24), true
+		}
+		if a, ok = p.build(e, multiplier, others, extra); !ok || len(zeros) == 0 {
+			return nil
+		}
+		proof, _ = a.prove(ctx, e, zeros, pic)
+		return proof
 	}
 	constrained := slices.ContainsFunc(p.Positive, func(c Constraint) bool {
 		v := c.Poly.Vars()
@@ -34,19 +48,19 @@ func Prove(ctx context.Context, p *Problem, e Effort) (*Proof, *Picture, error) 
 			onlySigns = false
 		}
 	}
-	if proof := try(p.build(e, nil, false, 0)); proof != nil {
+	if proof := try(nil, false, 0); proof != nil {
 		return proof, pic, nil
 	}
 	if constrained && !onlySigns {
 		for extra := 0; extra <= e.Degree; extra += 2 {
-			if proof := try(p.build(e, nil, true, extra)); proof != nil {
+			if proof := try(nil, true, extra); proof != nil {
 				return proof, pic, nil
 			}
 		}
 	}
 	for half := 1; half <= e.Multiplier; half++ {
 		for _, m := range p.multipliers(vars, half) {
-			if proof := try(p.build(e, m, !onlySigns, 0)); proof != nil {
+			if proof := try(m, !onlySigns, 0); proof != nil {
 				return proof, pic, nil
 			}
 		}
@@ -96,8 +110,9 @@ func (p *Problem) multipliers(vars []algebra.Var, half int) [][]Square {
 
 const maxFaces = 8 // rounds of facial reduction
 
-// prove is facial reduction, rounding and the final check of one ansatz.
-func (a *ansatz) prove(ctx context.Context, e Effort, zeros [][]float64, pic *Picture) *Proof {
+// prove is facial reduction, rounding and the final check of one ansatz. It
+// reports whether the program had a numerical solution at all.
+func (a *ansatz) prove(ctx context.Context, e Effort, zeros [][]float64, pic *Picture) (proof *Proof, feasible bool) {
 	for _, z := range a.p.Zeros {
 		for _, b := range a.blocks {
 			b.atZero(z)
@@ -108,16 +123,17 @@ func (a *ansatz) prove(ctx context.Context, e Effort, zeros [][]float64, pic *Pi
 	for range maxFaces {
 		a.dropEmpty(eq)
 		if len(a.blocks) == 0 {
-			return nil
+			return nil, feasible
 		}
 		rows, right, ok := a.onFaces(eq)
 		if !ok {
-			return nil
+			return nil, feasible
 		}
 		sol, err := semidefinite.Solve(ctx, a.program(rows, right), semidefinite.Options{Mode: semidefinite.AnalyticCentre, MaxIterations: e.Iterations})
 		if err != nil || sol.Status == semidefinite.PrimalInfeasible {
-			return nil
+			return nil, feasible
 		}
+		feasible = true
 		kernels, inside, least := a.numericalKernels(sol.X)
 		pic.Least = least
 		if sol.Status == semidefinite.Optimal || sol.Status == semidefinite.NearOptimal {
@@ -125,11 +141,11 @@ func (a *ansatz) prove(ctx context.Context, e Effort, zeros [][]float64, pic *Pi
 		}
 		if mult, squares, ok := a.round(sol.X, rows, right); ok {
 			if proof := a.finish(mult, squares); proof != nil {
-				return proof
+				return proof, true
 			}
 		}
 		if inside {
-			return nil
+			return nil, true
 		}
 		progress := false
 		pic.Kernel = 0
@@ -146,10 +162,10 @@ func (a *ansatz) prove(ctx context.Context, e Effort, zeros [][]float64, pic *Pi
 			a.blocks[n].restrict(span)
 		}
 		if !progress {
-			return nil
+			return nil, true
 		}
 	}
-	return nil
+	return nil, true
 }
 
 // recogniseKernel tries from sharp to loose tolerances.
