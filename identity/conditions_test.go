@@ -147,3 +147,36 @@ func TestSignsFromDefinedness(t *testing.T) {
 		}
 	}
 }
+
+// A claim about no jet at all is neither proved nor refuted.
+func TestConditionsAgainstAssumptions(t *testing.T) {
+	half := restricting(t, 0, byX, "1/2")
+	for _, c := range []struct {
+		states string
+		assume []string
+		edit   func(*identity.Claim)
+		want   identity.Verdict
+	}{
+		{"u_x/(a-b) - u_x/(a-b) = 0", []string{"a = b"}, nil, identity.Open},
+		{"u_x/(a-b) - u_x/(a-b) = 0", []string{"a = 2 b"}, nil, identity.Proved},
+		{"u_x/(a-b) - u_x/(a-b) = 0", []string{"a^2 = 2 a b - b^2"}, nil, identity.Open},
+		{"u_x/(a-b) - u_x/(a-b) = 0", []string{"a + u_x = 0", "u_x = -b"}, nil, identity.Open},
+		{"u_x/a = u_x/a", []string{"a = 0"}, nil, identity.Open},
+		{"log(a) = log(a)", []string{"a < 0"}, nil, identity.Open},
+		{"1/(u_x-u_y)^2 >= 0", []string{"u_x = u_y"}, nil, identity.Open},
+		{"1/(u_x-u_y)^2 >= 0", []string{"u_x >= u_y"}, nil, identity.Proved},
+		{"u_x >= 1", []string{"u_x > 3/4"}, half, identity.Open},
+		{"u_x >= 1", []string{"u_x > 1/4"}, half, identity.Refuted},
+		{"u_x >= 1/4", []string{"u_x > 3/4"}, half, identity.Open},
+	} {
+		cl := state(t, planarAngles, c.states)
+		if c.edit != nil {
+			c.edit(cl)
+		}
+		for _, a := range c.assume {
+			cl.Assume = append(cl.Assume, assumption(t, cl.Setting, a))
+		}
+		rec := decide(t, cl)
+		assert.Equal(t, c.want, rec.Verdict, "%s, %v: %+v", c.states, c.assume, rec)
+	}
+}

@@ -15,8 +15,21 @@ const conditionTries = 120
 // certainly hold: a normal form that is not zero may be zero as a number, and
 // then something was divided by zero. Any other condition has to hold
 // certainly somewhere, or the claim says nothing; it is listed as an
-// assumption.
+// assumption, unless the assumptions of the claim exclude it.
 func (d *Problem) rest() {
+	var equations []algebra.Poly
+	for _, c := range d.Assumed {
+		if d.number(c.Value) && !c.holds(d.Ring, nil) {
+			d.unfounded("what is assumed is not certain to hold anywhere: " + d.Ring.Format(c.Value) + " " + c.Relation + " 0")
+			return
+		}
+		if c.Relation == "=" && !c.Value.IsZero() {
+			equations = append(equations, c.Value.Num())
+		}
+	}
+	if len(equations) > 0 {
+		equations = d.completed(equations)
+	}
 	for _, c := range d.Ring.Conditions() {
 		if d.ofParameters(c.Value) {
 			continue
@@ -32,6 +45,10 @@ func (d *Problem) rest() {
 		if d.Ex.NoJump(c) {
 			continue
 		}
+		if d.excluded(c, equations) {
+			d.unfounded("the claim rests on " + text + ", which the assumptions exclude")
+			return
+		}
 		if d.Rec.Verdict == claim.Proved && !d.somewhere(c) {
 			d.unfounded("the claim rests on " + text + ", and no point was found at which that certainly holds")
 			return
@@ -44,6 +61,26 @@ func (d *Problem) rest() {
 func (d *Problem) unfounded(reason string) {
 	d.Rec = &claim.Record{Claim: d.Rec.Claim, Remainder: d.Rec.Remainder}
 	d.Open("%s", Short(reason))
+}
+
+// excluded reports whether the value of a condition that it is not zero, or a
+// power of it, is in the ideal of the equations that are assumed.
+func (d *Problem) excluded(c jet.Condition, equations []algebra.Poly) bool {
+	if len(equations) == 0 || c.Need == jet.NeedNonNegative {
+		return false
+	}
+	p := c.Value.Num()
+	for range 3 {
+		_, p = p.DivMod(equations, algebra.GradedLex)
+		if p = d.Ring.ReducePoly(p); p.IsZero() && p.Err() == nil {
+			return true
+		}
+		if p.Err() != nil || p.Len() > 40 {
+			return false
+		}
+		p = p.Mul(p)
+	}
+	return false
 }
 
 // number reports whether a value depends on no coordinate, constant or jet.
