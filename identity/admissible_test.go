@@ -1,6 +1,7 @@
 package identity_test
 
 import (
+	"math/big"
 	"testing"
 
 	"creaseproof/entropy/jet"
@@ -14,6 +15,12 @@ var (
 	byX  = jet.Index{1}
 	byXY = jet.Index{1, 1}
 )
+
+func boxed(t testing.TB, name string, lo, hi int64) edit {
+	return func(c *identity.Claim) {
+		c.Box = append(c.Box, identity.Bound{Node: expr(t, c.Setting, name), Lo: big.NewRat(lo, 1), Hi: big.NewRat(hi, 1)})
+	}
+}
 
 // A witness at a jump has two different traces. All traces below differ, or
 // make the claim true.
@@ -54,7 +61,20 @@ func TestNothingRefutesAClaimAboutNoJets(t *testing.T) {
 			assert.Equal(t, identity.Open, rec.Verdict, "%s: %+v", states, rec)
 		}
 	}
-	rec, err := decided(t, state(t, plane, "u_x >= 1", restricting(t, 0, byX, "1/2"), assuming(t, "u_x > 1/4")))
+	bare := plane
+	bare.assume = nil
+	for _, e := range []edit{assuming(t, "u_x > 3/4"), boxed(t, "u_x", 1, 2)} {
+		for _, states := range []string{"u_x >= 1", "u_x = 1", "u_x <= 1/4"} {
+			rec, err := decided(t, state(t, bare, states, restricting(t, 0, byX, "1/2"), e))
+			if err == nil {
+				assert.Equal(t, identity.Open, rec.Verdict, "%s: %+v", states, rec)
+			}
+		}
+	}
+	rec, err := decided(t, state(t, bare, "u_x >= 1", restricting(t, 0, byX, "1/2"), assuming(t, "u_x > 1/4")))
+	require.NoError(t, err)
+	assert.Equal(t, identity.Refuted, rec.Verdict)
+	rec, err = decided(t, state(t, plane, "u_x >= 1", restricting(t, 0, byX, "1/2"), assuming(t, "u_x > 1/4")))
 	require.NoError(t, err)
 	assert.Equal(t, identity.Refuted, rec.Verdict)
 	rec, err = decided(t, state(t, plane, "c + u_x = 0", solving("c"), assuming(t, "u_x >= 0", "u_x <= 0")))

@@ -80,6 +80,8 @@ func (d *decider) constant(g *exact.Gap, pts *exact.Points) error {
 	switch {
 	case !ok:
 		d.Open("the two sides are constants too close to tell apart at %d bits", 640)
+	case s < 0 && !pts.Admissible(at):
+		d.Open("the claim fails, but its assumptions are about numbers and do not certainly hold")
 	case s < 0:
 		d.Refuted("disjoint enclosures of constants", at, g.Left, g.Right)
 	default:
