@@ -180,3 +180,19 @@ func TestConditionsAgainstAssumptions(t *testing.T) {
 		assert.Equal(t, c.want, rec.Verdict, "%s, %v: %+v", c.states, c.assume, rec)
 	}
 }
+
+// Exponentials of numbers are powers of one.
+func TestExponentialsOfNumbers(t *testing.T) {
+	for states, want := range map[string]identity.Verdict{
+		"exp(1000000) >= exp(999999)":    identity.Proved,
+		"exp(1000000) <= exp(999999)":    identity.Refuted,
+		"exp(3/2) exp(-1/2) = exp(1)":    identity.Proved,
+		"exp(3) + exp(2) >= 27":          identity.Proved,
+		"exp(3) + exp(2) >= 28":          identity.Refuted,
+		"exp(u_x + 2) = exp(u_x) exp(2)": identity.Proved,
+		"log(exp(-7) exp(5)) = -2":       identity.Proved,
+	} {
+		rec := decide(t, state(t, planarAngles, states))
+		assert.Equal(t, want, rec.Verdict, "%s: %+v", states, rec)
+	}
+}

@@ -139,6 +139,17 @@ func (r *Ring) Exp(f algebra.Fraction) (algebra.Fraction, error) {
 		return out, nil
 	}
 	x, ok := combination(f, r.args(r.expBasis))
+	if n, d, isNumber := smallFraction(f); !ok && isNumber && n != 1 {
+		// exp(n/d) as a power of exp(1/d), which other numbers are powers of too.
+		e, err := r.Exp(Rational(algebra.Frac64(1, d).Big()))
+		if err != nil {
+			return out, err
+		}
+		if e, err = r.PowInt(e, int(n)); err != nil {
+			return e, err
+		}
+		return r.Mul(out, e)
+	}
 	if !ok {
 		e, err := r.kernel(Symbol{Kind: Exponential, Name: "exp(" + r.Format(f) + ")", Arg: f, Sign: Positive})
 		if err != nil {
@@ -160,6 +171,21 @@ func (r *Ring) Exp(f algebra.Fraction) (algebra.Fraction, error) {
 		}
 	}
 	return out, nil
+}
+
+// smallFraction is the n and d of a number n/d that is small enough for a
+// power.
+func smallFraction(f algebra.Fraction) (n, d int64, ok bool) {
+	c, ok := f.IsConst()
+	if !ok {
+		return 0, 0, false
+	}
+	b := c.Big()
+	if !b.Num().IsInt64() || !b.Denom().IsInt64() {
+		return 0, 0, false
+	}
+	n, d = b.Num().Int64(), b.Denom().Int64()
+	return n, d, n <= 1<<20 && n >= -(1<<20) && d <= 64
 }
 
 // Log is log f for f > 0; the condition is recorded where it does not show.
