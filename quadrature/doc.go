@@ -49,9 +49,14 @@
 //     are the estimates of package adaptive, of both directions, plus a floor
 //     for rounding: a few units in the last place of the sum of the absolute
 //     contributions, more where positions are far from the origin compared
-//     with the extent of the surface or where p+ and p- nearly cancel. A
-//     feature narrower than the distance of the first nodes can be missed
-//     altogether, and then the estimate is wrong.
+//     with the extent of the surface or where p+ and p- nearly cancel. Where the
+//     density at some 256 places spread over the surface is beyond the densities
+//     at the nodes, by more than a quarter of what these vary by, the integral is
+//     begun again with panels of an eighth and, if need be, a 64th of the range.
+//     What can still be missed altogether, so that the estimate is wrong: a ridge
+//     narrower than about 1/256 of a parameter's range, a peak in both directions
+//     on less than about 1/256 of the area, and one that stays within the values
+//     met elsewhere.
 //   - Checks: made at every node used and at some 256 places spread over the
 //     surface, with a relative tolerance (that of continuity is tied to
 //     rounding), hence not a proof that the conditions hold on the surface. A refusal names a place at which they do not hold, to
@@ -59,7 +64,8 @@
 //     compared with the extent of the surface, but at most 1e-7. Where u is
 //     known, its gradients at those places are compared with those at two small
 //     distances on their own sides, which shows a kink of u on the surface.
-//   - Evaluations: exact count of evaluations of the density.
+//   - Evaluations: exact count of evaluations of the density at nodes, to which
+//     those at the further places do not belong.
 //
 // Results are deterministic and do not depend on the number of cores.
 package quadrature

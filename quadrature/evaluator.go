@@ -26,6 +26,7 @@ type evaluator struct {
 	plus, minus []float64
 	area        float64 // area element
 
+	met   span      // of the densities at the nodes
 	zeros int       // nodes of this row without area
 	rows  []float64 // rows with three or more such nodes
 	bad   *PlaceError
@@ -148,18 +149,29 @@ func (e *evaluator) at(s [2]float64, out *adaptive.Sample) error {
 			condition += size / jump
 		}
 	}
-	d := e.d(e.x, e.plus, e.minus, e.nu)
-	if jump == 0 && math.IsNaN(d) {
-		d = 0 // no jump, no energy
+	d, err := e.density(jump)
+	if err != nil {
+		return err
 	}
-	if !finite(d) {
-		return e.fail(NotFinite, "density", d, 0)
-	}
+	e.met.add(d)
 	out.Value[0], out.Value[1] = d*e.area, e.area
 	out.Size[0], out.Size[1] = math.Abs(d)*e.area, e.area
 	out.Noise[0] = (2*epsilon*(1+condition) + e.o.DensityError) * out.Size[0]
 	out.Noise[1] = 2 * epsilon * (1 + e.shaky) * e.area
 	return nil
+}
+
+// density is the density at the present place, where the gradient jumps by so
+// much.
+func (e *evaluator) density(jump float64) (float64, error) {
+	d := e.d(e.x, e.plus, e.minus, e.nu)
+	if jump == 0 && math.IsNaN(d) {
+		d = 0 // no jump, no energy
+	}
+	if !finite(d) {
+		return 0, e.fail(NotFinite, "density", d, 0)
+	}
+	return d, nil
 }
 
 // wide is the jump of u, relative to what u varies by over the surface, above
@@ -265,39 +277,6 @@ func (e *evaluator) rowDone(s float64) error {
 	e.rows = append(e.rows, s)
 	if e.p.n == 1 || len(e.rows) >= 3 {
 		return e.bad
-	}
-	return nil
-}
-
-// patrol checks the traces, and that they are smooth, at n places spread evenly
-// over the piece (the multiples of powers of the generalised golden section,
-// Roberts 2018): where the integrand is smooth the nodes are so few that a fault
-// on a small part of the surface lies between them. The density is not
-// evaluated.
-func (e *evaluator) patrol(n int) error {
-	step := [2]float64{golden}
-	if e.p.n == 2 {
-		step = [2]float64{0.7548776662466927, 0.5698402909980532}
-	}
-	for i := range n {
-		var s [2]float64
-		for j := range e.p.n {
-			_, f := math.Modf(0.5 + float64(i+1)*step[j])
-			s[j] = e.p.over[j].at(f)
-		}
-		if err := e.place(s); err != nil {
-			return err
-		}
-		if e.area == 0 {
-			continue
-		}
-		_, size, err := e.checkTraces()
-		if err == nil && e.tr.HasValue {
-			err = e.smooth(size)
-		}
-		if err != nil {
-			return err
-		}
 	}
 	return nil
 }

@@ -82,14 +82,15 @@ type Result struct {
 	Energy, Error float64
 	// Area is the area (in the plane the length), AreaError its error.
 	Area, AreaError float64
-	// Evaluations counts the evaluations of the density.
+	// Evaluations counts the evaluations of the density at nodes. Beside them it
+	// is looked at in some 256 places; see the checks of Integrate.
 	Evaluations int
 }
 
 // Integrate integrates a density over a surface.
 //
-// At every node used, and where there are traces at further places spread over
-// the surface, it checks that positions, tangents, traces and density are
+// At every node used, and at some 256 further places spread over the surface, it
+// checks that positions, tangents, traces and density are
 // finite, that both traces lie on the well, that u is continuous across the
 // surface (if the values are known) and that the jump of the gradient is
 // parallel to the normal, each relative to the sum of the absolute terms. If
@@ -143,25 +144,41 @@ func Integrate(ctx context.Context, s Surface, tr Traces, d Density, o Options) 
 		e.shaky = shapes[i].shaky() + shapes[i].ends()
 		e.whole = whole
 		abs := total.tolerance(o, len(pieces))
-		r, err := run(e.at, shapes[i], o, abs, work, e.rowDone)
+		r, err := e.integrate(shapes[i], abs, max(fewest, patrols/len(pieces)))
 		if err != nil {
 			return Result{Evaluations: work.Used}, fmt.Errorf("quadrature: %w", err)
-		}
-		if tr.Plus != nil {
-			if err := e.patrol(max(fewest, patrols/len(pieces))); err != nil {
-				return Result{Evaluations: work.Used}, fmt.Errorf("quadrature: %w", err)
-			}
 		}
 		total.add(r)
 	}
 	return total.finish(o, work)
 }
 
-// patrols is the number of places at which the traces are checked beside the
-// nodes, and fewest the least on a piece.
+// integrate integrates over the piece and then looks at n further places. Where
+// the density is beyond what the nodes met, the nodes have missed something, and
+// the integral is begun again with many panels; what still is beyond counts as
+// an error on its share of the area.
+func (e *evaluator) integrate(sh *shape, abs [adaptive.Width]float64, n int) (adaptive.Result, error) {
+	for {
+		r, err := run(e.at, sh, e.o, abs, e.work, e.rowDone)
+		if err != nil {
+			return r, err
+		}
+		beyond, err := e.patrol(n)
+		if err != nil || beyond == 0 {
+			return r, err
+		}
+		if sh.panels >= manyPanels || e.work.Spent() {
+			r.Error[0] += beyond * math.Abs(r.Value[1]) / float64(n)
+			return r, nil
+		}
+		sh.panels = max(8*sh.panels, firstPanels)
+	}
+}
+
+// The numbers of panels that an integral is begun with which missed something.
 const (
-	patrols = 256
-	fewest  = 16
+	firstPanels = 8
+	manyPanels  = 64
 )
 
 // sums adds up the pieces.
@@ -221,7 +238,7 @@ func run(f func(s [2]float64, out *adaptive.Sample) error, sh *shape, o Options,
 		t := adaptive.Task{
 			F:  func(s float64, out *adaptive.Sample) error { return f([2]float64{s, 0}, out) },
 			Lo: p.over[0].Lo, Hi: p.over[0].Hi, Rel: o.Rel / 2, Abs: abs,
-			Periodic: sh.periodic[0], Phase: golden / 2, Probe: true, MinPeriod: 16, Work: work,
+			Periodic: sh.periodic[0] && sh.panels == 0, Phase: golden / 2, Probe: true, MinPeriod: 16, MinPanels: sh.panels, Work: work,
 		}
 		r, err := t.Run()
 		if err == nil {
@@ -258,6 +275,11 @@ func run(f func(s [2]float64, out *adaptive.Sample) error, sh *shape, o Options,
 			in.Periodic = false
 			in.MinPanels = int(min(512, 2*math.Ceil(math.Sqrt(t.Fineness()))))
 		}
+		if sh.panels > 0 {
+			in.Mesh = nil
+			in.Periodic = false
+			in.MinPanels = max(in.MinPanels, sh.panels)
+		}
 		r, err := in.Run()
 		if err != nil {
 			return err
@@ -272,7 +294,7 @@ func run(f func(s [2]float64, out *adaptive.Sample) error, sh *shape, o Options,
 	}
 	t = adaptive.Task{
 		F: row, Lo: p.over[outer].Lo, Hi: p.over[outer].Hi, Rel: o.Rel / 2, Abs: abs,
-		Periodic: sh.periodic[outer], Phase: golden / 2, Probe: true, Work: work,
+		Periodic: sh.periodic[outer] && sh.panels == 0, Phase: golden / 2, Probe: true, MinPanels: sh.panels, Work: work,
 	}
 	return t.Run()
 }

@@ -11,6 +11,7 @@ type shape struct {
 	*piece
 	periodic  [2]bool
 	outer     int // direction of the outer integral
+	panels    int // to begin with in each direction; 0: no more than needed
 	low, high [3]float64
 	// degenerate is set if the area element is zero wherever it was looked at.
 	degenerate *PlaceError

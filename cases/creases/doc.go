@@ -14,8 +14,9 @@
 //     outward-rounded enclosure shows not to vanish at a point of the surface
 //     refuses it there. So does a jump of u, however small. On a patch or a
 //     graph u is continuous where the jump vanishes identically once the
-//     formulas of the positions are put for the coordinates. What remains is checked numerically at every node
-//     (package quadrature), as are continuity of u and direction of the jump;
+//     formulas of the positions are put for the coordinates. What remains is
+//     checked numerically at every node and at some further places (package
+//     quadrature), as are continuity of u and direction of the jump;
 //   - the parts of formulas without variables are evaluated to 200 bits and
 //     rounded once, so that the difference of two close constants costs nothing;
 //   - the density is the one given, or the profile cost of the model (package
