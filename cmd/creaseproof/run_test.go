@@ -57,7 +57,7 @@ func TestExitStatus(t *testing.T) {
 		err   string
 	}{
 		"met":             {space + yes, []string{"check", "-"}, 0, []string{"ok   proved     yes", "1 claim: 1 proved, all as expected"}, ""},
-		"expected false":  {space + no + "expect = \"refuted\"\n", []string{"check", "-"}, 0, []string{"ok   refuted    no", "at u_x = ", "left side", "remainder u_x"}, ""},
+		"expected false":  {space + no + "expect = \"refuted\"\n", []string{"check", "-"}, 0, []string{"ok   refuted    no", "u_x = ", "left side", "remainder u_x"}, ""},
 		"not met":         {space + yes + no, []string{"check", "-"}, 1, []string{"NOT  refuted    no", "expected proved", "2 claims: 1 proved, 1 refuted, 1 not as expected"}, ""},
 		"mistake":         {space + mistake + yes, []string{"check", "-"}, 2, []string{"ok   proved     yes", "NOT  -          zero  without meaning", "2 claims: 1 proved, 1 without meaning, the others as expected"}, "-:16:14: division by zero"},
 		"bad file":        {"colour = 1\n", []string{"check", "-"}, 2, nil, "colour"},
