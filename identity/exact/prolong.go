@@ -34,39 +34,6 @@ func radical(p algebra.Poly) algebra.Poly {
 	return out
 }
 
-// compatible looks whether solved equations for derivatives of one unknown
-// agree on the derivatives that they determine twice. Where they do not, the
-// claim is still decided on all consequences found, but no point refutes it.
-func (d *Problem) compatible(eqs []*solved) error {
-	for i, e := range eqs {
-		for _, f := range eqs[:i] {
-			if e.unknown != f.unknown {
-				continue
-			}
-			var top jet.Index
-			for k := range top {
-				top[k] = max(e.index[k], f.index[k])
-			}
-			a, err := d.Ring.TotalIndex(e.Value, top.Minus(e.index))
-			if err != nil {
-				return err
-			}
-			b, err := d.Ring.TotalIndex(f.Value, top.Minus(f.index))
-			if err != nil {
-				return err
-			}
-			diff, err := d.Ring.Sub(a, b)
-			if err != nil {
-				return err
-			}
-			if !diff.IsZero() {
-				d.hidden = true
-			}
-		}
-	}
-	return nil
-}
-
 // extends reports whether a jet on the zeros of the equations certainly
 // extends to all orders. With σ_k the symbol of equation k at the jet, the
 // row of ∂f_k/∂u^a_J ξ^J over the unknowns a, J of the highest order in f_k,

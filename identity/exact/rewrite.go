@@ -3,7 +3,6 @@ package exact
 import (
 	"errors"
 	"fmt"
-	"slices"
 
 	"creaseproof/entropy"
 	"creaseproof/entropy/algebra"
@@ -44,13 +43,14 @@ func (d *Problem) rewrite() error {
 		}
 		return d.atJump(eqs)
 	}
-	fixed := len(eqs)
+	restricted := eqs
+	if len(eqs) > 0 {
+		d.Ring.SetRewriter(d.rewriter(eqs))
+		d.In.Reset()
+	}
 	var all []algebra.Poly
+	var queue []*equation
 	for _, m := range d.Claim.Modulo {
-		if len(eqs) > 0 {
-			d.Ring.SetRewriter(d.rewriter(eqs))
-			d.In.Reset()
-		}
 		f, err := d.In.Scalar(m)
 		if err != nil {
 			return err
@@ -59,25 +59,25 @@ func (d *Problem) rewrite() error {
 			continue
 		}
 		if c, ok := f.IsConst(); ok {
-			return &entropy.Error{At: m.At(), Err: fmt.Errorf("the equation is %s = 0 on what is restricted before it: the claim is about no jets", c)}
+			return &entropy.Error{At: m.At(), Err: fmt.Errorf("the equation is %s = 0 on the jets that are looked at: there are none", c)}
 		}
-		p := radical(f.Num())
-		all = append(all, p)
-		if s, ok := d.solve(algebra.FromPoly(p), eqs); ok {
-			eqs = append(eqs, s)
-		} else {
-			d.Ideal = append(d.Ideal, p)
-		}
+		all = append(all, radical(f.Num()))
+		queue = append(queue, &equation{node: m})
 	}
-	if len(d.Ideal) > 0 { // equations that are not solved: keep all as an ideal
-		d.Ideal, d.equations, eqs = all, all, eqs[:fixed]
+	eqs, ok, err := d.solveAll(queue, restricted)
+	if err != nil || d.Rec.Verdict != "" {
+		return err
 	}
+	if !ok { // some equation is not solved: keep all as an ideal
+		d.Ideal, d.equations, eqs, d.hidden = all, all, restricted, false
+	}
+	d.Ring.SetRewriter(nil)
 	if len(eqs) > 0 {
 		d.Ring.SetRewriter(d.rewriter(eqs))
-		d.In.Reset()
 	}
-	d.solved = eqs[min(fixed, len(eqs)):]
-	return d.compatible(eqs)
+	d.In.Reset()
+	d.solved = eqs[len(restricted):]
+	return nil
 }
 
 // contradictory refuses restrictions that contradict each other or what is
@@ -148,75 +148,4 @@ func (d *Problem) rewriter(eqs []*solved) jet.Rewriter {
 		}
 		return algebra.Fraction{}, false, nil
 	}
-}
-
-// solve finds a derivative that f = 0 determines: f is linear in it with a
-// factor that is visibly not zero, and holds no derivative of it. Equations
-// already solved must not hold derivatives of it, nor it of theirs. Among the
-// candidates the one of lowest order is taken, the last coordinate first.
-func (d *Problem) solve(f algebra.Fraction, eqs []*solved) (*solved, bool) {
-	num := f.Num()
-	inKernels := map[algebra.Var]bool{}
-	for _, k := range d.Ring.Kernels(algebra.FromPoly(num)) {
-		for _, v := range d.Ring.Support(d.Ring.Symbol(k).Arg) {
-			inKernels[v] = true
-		}
-	}
-	var jets []algebra.Var
-	for _, v := range d.Ring.Support(algebra.FromPoly(num)) {
-		if d.Ring.Symbol(v).Kind == jet.Derivative {
-			jets = append(jets, v)
-		}
-	}
-	rank := func(v algebra.Var) [jet.MaxCoordinates + 1]int {
-		s := d.Ring.Symbol(v)
-		var k [jet.MaxCoordinates + 1]int
-		k[0] = s.Index.Order()
-		for i := range s.Index {
-			k[i+1] = int(s.Index[i])
-		}
-		return k
-	}
-	slices.SortStableFunc(jets, func(a, b algebra.Var) int {
-		x, y := rank(a), rank(b)
-		return slices.Compare(x[:], y[:])
-	})
-next:
-	for _, v := range jets {
-		s := d.Ring.Symbol(v)
-		if s.Index.Order() == 0 || num.Degree(v) != 1 || inKernels[v] {
-			continue
-		}
-		co := num.Coeffs(v)
-		lead := algebra.FromPoly(co[1])
-		if !d.Ring.VisiblyPositive(lead) && !d.Ring.VisiblyPositive(lead.Neg()) {
-			continue
-		}
-		for _, w := range jets {
-			if t := d.Ring.Symbol(w); w != v && t.Place == s.Place && t.Index.Covers(s.Index) {
-				continue next
-			}
-		}
-		value, err := d.Ring.Quo(algebra.FromPoly(co[0]).Neg(), lead)
-		if err != nil {
-			continue
-		}
-		for _, e := range eqs {
-			if e.unknown == s.Place && (e.index.Covers(s.Index) || s.Index.Covers(e.index)) {
-				continue next
-			}
-			for _, w := range d.Ring.Support(e.Value) {
-				if t := d.Ring.Symbol(w); t.Kind == jet.Derivative && t.Place == s.Place && t.Index.Covers(s.Index) {
-					continue next
-				}
-			}
-			for _, w := range d.Ring.Support(value) {
-				if t := d.Ring.Symbol(w); t.Kind == jet.Derivative && t.Place == e.unknown && t.Index.Covers(e.index) {
-					continue next
-				}
-			}
-		}
-		return &solved{s.Place, s.Index, value, nil}, true
-	}
-	return nil, false
 }
