@@ -133,6 +133,12 @@ func TestSignsFromDefinedness(t *testing.T) {
 		{"(u_x^3)^(1/3) = u_x", identity.Proved, []string{"u_x >= 0"}},
 		{"log(u_x a) = log(u_x) + log(a)", identity.Proved, []string{"u_x > 0", "a > 0"}},
 		{"log(u_x a) = log(u_x) - log(a)", identity.Refuted, nil},
+		{"log(x y) = log(-x) + log(-y)", identity.Proved, []string{"-x > 0", "-y > 0"}},
+		{"log(x/y) = log(-x) - log(-y)", identity.Proved, []string{"-x > 0", "-y > 0"}},
+		{"log(x y) = log(-x) - log(-y)", identity.Refuted, nil},
+		{"log(x^2) = 2 log(-x)", identity.Proved, []string{"-x > 0"}},
+		{"abs(cos(pi/5) - 1) = 1 - cos(pi/5)", identity.Proved, nil},
+		{"abs(sqrt(2) - 3/2) = sqrt(2) - 3/2", identity.Refuted, nil},
 		{"log(cosh(u_x)^2) = 2 log(cosh(u_x))", identity.Proved, nil},
 		{"abs(u_x/(1/(u_y+a)^2)) = abs(u_x) (u_y+a)^2", identity.Proved, nil},
 		// u_x = 0 leaves the sign of u_y open.

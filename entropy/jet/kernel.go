@@ -228,6 +228,13 @@ func (r *Ring) Log(f algebra.Fraction) (algebra.Fraction, error) {
 					if err := r.addLog(&out, Of(pw.Var), e*pw.Exp); err != nil {
 						return err
 					}
+				case s.Sign == Negative:
+					if err := r.addLog(&out, Of(pw.Var).Neg(), e*pw.Exp); err != nil {
+						return err
+					}
+					if e*pw.Exp%2 != 0 {
+						rest = rest.Neg()
+					}
 				default:
 					rest = rest.Mul(Of(pw.Var).Pow(e * pw.Exp))
 				}

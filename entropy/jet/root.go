@@ -60,6 +60,9 @@ func (r *Ring) absPoly(p algebra.Poly) (algebra.Fraction, error) {
 	case r.visiblyNonNegativePoly(p.Neg()):
 		return algebra.FromPoly(p.Neg()), nil
 	}
+	if s, ok := r.numberSign(p); ok {
+		return algebra.FromPoly(p.Scale(algebra.Int(int64(s)))), nil
+	}
 	c, q := p.Primitive()
 	out := Rational(c.Abs().Big())
 	// Split the monomial content: |a b| = |a| |b|.

@@ -103,6 +103,24 @@ func (r *Ring) shiftedSquare(p algebra.Poly) bool {
 	return true
 }
 
+// numberSign is the sign of a number that is certainly not zero; false for all
+// that depends on indeterminates or on the orientation.
+func (r *Ring) numberSign(p algebra.Poly) (int, bool) {
+	f := algebra.FromPoly(p)
+	for _, v := range r.Support(f) {
+		if r.symbols[v].Kind != Pi {
+			return 0, false
+		}
+	}
+	for _, v := range r.Kernels(f) {
+		if s := &r.symbols[v]; s.Kind == Root && s.Sign == AnySign {
+			return 0, false
+		}
+	}
+	s, ok := r.Sign(f, nil)
+	return s, ok && s != 0
+}
+
 func (r *Ring) visiblyPositivePoly(p algebra.Poly) bool {
 	if p.Err() != nil || p.IsZero() {
 		return false
