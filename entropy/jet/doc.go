@@ -7,7 +7,8 @@
 // exp, log and erf of other such rational functions. A kernel carries
 //
 //   - a relation, where it is algebraic over what came before it:
-//     s² = 1 - c² for a sine, r^q = a for a root. Values are kept reduced by
+//     s² = 1 - c² for a sine, r^q = a for a root, the minimal polynomial for
+//     cos(π/n) up to n = 60, σ² = 1 for an orientation. Values are kept reduced by
 //     the relations, so that cos² + sin² = 1 and sqrt(a)² = a hold literally;
 //   - a derivation rule: D cos a = -sin a · Da, D r = r Da/(q a),
 //     D exp a = exp a · Da, D log a = Da/a, D erf a = 2/√π · exp(-a²) · Da.
