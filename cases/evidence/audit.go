@@ -93,6 +93,9 @@ func (a *audit) inequality(d *exact.Problem) error {
 	if errors.Is(a.err, context.Canceled) || errors.Is(a.err, context.DeadlineExceeded) {
 		return a.err
 	}
+	if a.err != nil {
+		d.Open("%v", a.err) // there may be a second look, with the signs that the sides need
+	}
 	return nil
 }
 
