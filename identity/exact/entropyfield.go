@@ -128,7 +128,7 @@ func (d *Problem) Divide(sym, r algebra.Fraction) (algebra.Fraction, bool, error
 // vanishesOnWell decides whether a value that R does not divide still vanishes
 // on the real zeros of R. It reports true where the claim is settled.
 func (d *Problem) vanishesOnWell(sym, r algebra.Fraction) (bool, error) {
-	rad := radical(r.Num()) // has the same zeros
+	rad := d.zeroSet(r.Num()) // has the same zeros
 	num := algebra.FromPoly(rad)
 	if d.Ring.VisiblyPositive(num) || d.Ring.VisiblyPositive(num.Neg()) {
 		return false, nil // no real zeros at all

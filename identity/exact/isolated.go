@@ -87,7 +87,7 @@ func (p *Points) drawIsolated(gens []algebra.Poly) (jet.Point, map[algebra.Var]e
 		at[v] = p.value(v, p.rng.IntN(2) == 0)
 	}
 	for _, g := range gens { // traces are drawn themselves
-		for _, v := range g.Vars() {
+		for _, v := range p.d.Ring.Support(algebra.FromPoly(g)) {
 			if _, ok := at[v]; !ok && p.d.Ring.Symbol(v).Kind <= jet.Derivative {
 				at[v] = p.value(v, false)
 			}
@@ -108,7 +108,7 @@ func (p *Points) drawIsolated(gens []algebra.Poly) (jet.Point, map[algebra.Var]e
 		if !p.isolateOne(g, at, roots, used) {
 			return nil, nil, false
 		}
-		for _, v := range g.Vars() {
+		for _, v := range p.d.Ring.Support(algebra.FromPoly(g)) {
 			used[v] = true
 		}
 	}
@@ -122,10 +122,16 @@ func (p *Points) isolateOne(g algebra.Poly, at jet.Point, roots map[algebra.Var]
 		return true
 	}
 	vars := g.Vars()
+	inside := map[algebra.Var]bool{} // what roots and functions in g hold
+	for _, k := range p.d.Ring.Kernels(algebra.FromPoly(g)) {
+		for _, v := range p.d.Ring.Support(p.d.Ring.Symbol(k).Arg) {
+			inside[v] = true
+		}
+	}
 	p.rng.Shuffle(len(vars), func(i, k int) { vars[i], vars[k] = vars[k], vars[i] })
 	rational := !slices.ContainsFunc(vars, func(v algebra.Var) bool { _, ok := at[v]; return !ok })
 	for _, v := range vars {
-		if p.d.Ring.Symbol(v).Kind != jet.Derivative || used[v] {
+		if p.d.Ring.Symbol(v).Kind != jet.Derivative || used[v] || inside[v] {
 			continue
 		}
 		if g.Degree(v) == 1 {

@@ -51,7 +51,7 @@ func (d *Problem) atJump(restricted []*solved) error {
 			return nil
 		}
 	}
-	r = algebra.FromPoly(radical(r.Num())) // has the same zeros
+	r = algebra.FromPoly(d.zeroSet(r.Num())) // has the same zeros
 	well, isSolved := d.solve(r, nil)
 	if !isSolved && len(d.Ring.Kernels(r)) > 0 {
 		d.Open("the residual is not polynomial in the gradient")

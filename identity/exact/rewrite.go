@@ -61,7 +61,7 @@ func (d *Problem) rewrite() error {
 		if c, ok := f.IsConst(); ok {
 			return &entropy.Error{At: m.At(), Err: fmt.Errorf("the equation is %s = 0 on the jets that are looked at: there are none", c)}
 		}
-		all = append(all, radical(f.Num()))
+		all = append(all, d.zeroSet(f.Num()))
 		queue = append(queue, &equation{node: m})
 	}
 	eqs, ok, err := d.solveAll(queue, restricted)

@@ -105,7 +105,7 @@ func (d *Problem) rewritten(q *equation, eqs []*solved) (algebra.Poly, bool, err
 		if f, err = d.In.Scalar(q.node); err != nil {
 			return q.poly, false, err
 		}
-		return radical(f.Num()), true, nil
+		return d.zeroSet(f.Num()), true, nil
 	}
 	put := map[algebra.Var]algebra.Fraction{}
 	for _, v := range d.Ring.Support(f) {
@@ -129,7 +129,7 @@ func (d *Problem) rewritten(q *equation, eqs []*solved) (algebra.Poly, bool, err
 		}
 	}
 	f, err := d.Ring.Reduce(f.SubstMany(put))
-	return radical(f.Num()), err == nil, err
+	return d.zeroSet(f.Num()), err == nil, err
 }
 
 // integrabilityConditions are the differences of what solved equations make of
