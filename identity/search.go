@@ -278,7 +278,7 @@ func (t *task) run() (float64, bool, error) {
 		starts = append(starts, t.coordinates(p.Values))
 	}
 	least := res.MinMargin
-	found, err := t.attack(starts)
+	found, err := t.attack(append(t.suggested(), starts...))
 	d.Rec.Searches += found.Starts
 	least = min(least, found.BestMargin)
 	if err != nil && !errors.Is(err, context.Canceled) && !errors.Is(err, context.DeadlineExceeded) {
@@ -306,6 +306,30 @@ func (t *task) run() (float64, bool, error) {
 		}
 	}
 	return least, false, nil
+}
+
+// suggested are the points that the search for a certificate has met.
+func (t *task) suggested() [][]float64 {
+	if t.d.picture == nil {
+		return nil
+	}
+	var out [][]float64
+	for _, p := range t.d.picture.Points {
+		x := make([]float64, len(t.pts.Free)+len(t.pts.Angles))
+		for i, v := range t.pts.Free {
+			x[i] = 1 // what the target does not hold
+			if y, ok := p[v]; ok {
+				x[i] = y
+			}
+		}
+		for i, c := range t.pts.Angles {
+			if cos, ok := p[c]; ok && 1+cos > 1e-9 {
+				x[len(t.pts.Free)+i] = p[t.d.Ring.Symbol(c).Partner] / (1 + cos)
+			}
+		}
+		out = append(out, x)
+	}
+	return out
 }
 
 // coordinates are the free coordinates of a sampled point.

@@ -75,8 +75,8 @@ type Picture struct {
 	Feasible bool    // a numerical solution existed for one of them
 	Kernel   int     // dimension of the numerical kernel that stayed irrational
 	Least    float64 // least eigenvalue at the last numerical solution
-	// Points are numerical points where the target is least in proportion, and
-	// directions from the dual solution: candidates for a refutation.
+	// Points are where the dual solution, or a vector of the kernel, looks like
+	// the monomials at one point: where a counterexample would be.
 	Points []map[algebra.Var]float64
 }
 

@@ -130,11 +130,20 @@ func (a *ansatz) prove(ctx context.Context, e Effort, zeros [][]float64, pic *Pi
 			return nil, feasible
 		}
 		sol, err := semidefinite.Solve(ctx, a.program(rows, right), semidefinite.Options{Mode: semidefinite.AnalyticCentre, MaxIterations: e.Iterations})
-		if err != nil || sol.Status == semidefinite.PrimalInfeasible {
+		if err != nil {
+			return nil, feasible
+		}
+		if sol.Status == semidefinite.PrimalInfeasible {
+			for n, s := range sol.S { // the moments of what separates the target from the cone
+				a.suggest(pic, n, s, true)
+			}
 			return nil, feasible
 		}
 		feasible = true
 		kernels, inside, least := a.numericalKernels(sol.X)
+		for n, x := range sol.X {
+			a.suggest(pic, n, x, false)
+		}
 		pic.Least = least
 		if sol.Status == semidefinite.Optimal || sol.Status == semidefinite.NearOptimal {
 			pic.Feasible = true
