@@ -21,7 +21,8 @@ type Points struct {
 	rng    *rand.Rand
 	drawn  int
 
-	lattice []latticeZeros // of whole generators, found so far
+	lattice     []latticeZeros // of whole generators, found so far
+	latticeWork int
 }
 
 // Points looks at what the values depend on. An angle that occurs only in its

@@ -106,6 +106,9 @@ func (p *Points) atLattice(at jet.Point, g algebra.Poly, jets []algebra.Var) boo
 	if k >= 0 {
 		zeros = p.lattice[k].zeros
 	} else {
+		if p.latticeWork += latticeSize(len(jets)) * g.Len(); p.latticeWork > maxLatticeWork {
+			return false
+		}
 		zeros = allLatticeZeros(g.EvalPartial(values), jets)
 		if whole {
 			p.lattice = append(p.lattice, latticeZeros{g, zeros})
@@ -118,6 +121,21 @@ func (p *Points) atLattice(at jet.Point, g algebra.Poly, jets []algebra.Var) boo
 	return true
 }
 
+// maxLatticeWork bounds the terms that are evaluated in search of zeros with
+// small entries.
+const maxLatticeWork = 200_000
+
+var lattice = []algebra.Rat{{}, algebra.Int(1), algebra.Int(-1), algebra.Int(2), algebra.Int(-2), algebra.Int(3), algebra.Int(-3), algebra.Frac64(1, 2), algebra.Frac64(-1, 2)}
+
+// latticeSize is the number of points with n entries.
+func latticeSize(n int) int {
+	out := 1
+	for range n {
+		out *= len(lattice)
+	}
+	return out
+}
+
 // latticeZeros are the zeros of a polynomial with small entries.
 type latticeZeros struct {
 	of    algebra.Poly
@@ -126,17 +144,12 @@ type latticeZeros struct {
 
 // allLatticeZeros lists the zeros of h with entries among a few small numbers.
 func allLatticeZeros(h algebra.Poly, jets []algebra.Var) []map[algebra.Var]algebra.Rat {
-	grid := []algebra.Rat{{}, algebra.Int(1), algebra.Int(-1), algebra.Int(2), algebra.Int(-2), algebra.Int(3), algebra.Int(-3), algebra.Frac64(1, 2), algebra.Frac64(-1, 2)}
-	n := 1
-	for range jets {
-		n *= len(grid)
-	}
 	var out []map[algebra.Var]algebra.Rat
-	for k := range n {
+	for k := range latticeSize(len(jets)) {
 		at := map[algebra.Var]algebra.Rat{}
 		for _, v := range jets {
-			at[v] = grid[k%len(grid)]
-			k /= len(grid)
+			at[v] = lattice[k%len(lattice)]
+			k /= len(lattice)
 		}
 		if x, ok := h.Eval(func(v algebra.Var) algebra.Rat { return at[v] }); ok && x.IsZero() {
 			out = append(out, at)
