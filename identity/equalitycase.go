@@ -151,11 +151,11 @@ func without(p, q algebra.Poly) algebra.Poly {
 func (r *reduction) condition(q algebra.Poly) string {
 	res := r.d.Claim.Setting.Model.Residual
 	if res == nil || r.d.Claim.Jump {
-		return r.Format(q) + " = 0"
+		return r.vanish(q)
 	}
 	f, err := r.d.In.Scalar(res)
 	if err != nil {
-		return r.Format(q) + " = 0"
+		return r.vanish(q)
 	}
 	for _, v := range f.Num().Vars() {
 		if f.Num().Degree(v) != 1 || q.Degree(v) != 1 {
@@ -180,6 +180,18 @@ func (r *reduction) condition(q algebra.Poly) string {
 			continue
 		}
 		return name + " = " + r.formatFraction(value)
+	}
+	return r.vanish(q)
+}
+
+// vanish prints q = 0, without factors that are strictly positive.
+func (r *reduction) vanish(q algebra.Poly) string {
+	for _, pw := range q.MonomialContent().Powers() {
+		if i, _ := r.SignOf(pw.Var); i >= 0 && r.Positive[i].Strict {
+			if p, ok := q.DivExact(algebra.Variable(pw.Var).Pow(pw.Exp)); ok {
+				q = p
+			}
+		}
 	}
 	return r.Format(q) + " = 0"
 }

@@ -41,12 +41,20 @@ type CheckedClaim struct {
 	Searches int      `json:"searches,omitempty"` // descents made
 	Seed     *uint64  `json:"seed,omitempty"`     // of the samples and descents
 
-	Witness     *CheckedWitness `json:"witness,omitempty"`
-	Remainder   string          `json:"remainder,omitempty"`
-	Solution    string          `json:"solution,omitempty"`
-	Reason      string          `json:"reason,omitempty"`
-	Assumptions []string        `json:"assumptions,omitempty"` // conditions that the verdict rests on
-	Details     []string        `json:"details,omitempty"`
+	Witness     *CheckedWitness  `json:"witness,omitempty"`
+	Remainder   string           `json:"remainder,omitempty"`
+	Solution    string           `json:"solution,omitempty"`
+	Reason      string           `json:"reason,omitempty"`
+	Assumptions []string         `json:"assumptions,omitempty"` // conditions that the verdict rests on
+	Details     []string         `json:"details,omitempty"`
+	Equality    *CheckedEquality `json:"equality,omitempty"` // of a certified inequality
+}
+
+// CheckedEquality says when the two sides of a certified inequality are equal.
+type CheckedEquality struct {
+	Conditions []string          `json:"conditions"`
+	Consistent string            `json:"consistent"` // with the assumptions: yes, no or unknown
+	Jet        map[string]string `json:"jet,omitempty"`
 }
 
 // CheckedWitness is a point at which a claim fails.
@@ -104,6 +112,9 @@ func checked(r *Result) CheckedClaim {
 		Samples: rec.Samples, Searches: rec.Searches,
 		Remainder: rec.Remainder, Solution: rec.Solution, Reason: rec.Reason,
 		Assumptions: slices.Clone(rec.Assumptions), Details: slices.Clone(rec.Details),
+	}
+	if e := rec.Equality; e != nil {
+		c.Equality = &CheckedEquality{Conditions: e.Conditions, Consistent: e.Consistent, Jet: e.Jet}
 	}
 	if m := rec.Margin; m != nil && !math.IsNaN(*m) && !math.IsInf(*m, 0) {
 		c.Margin = m

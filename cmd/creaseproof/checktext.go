@@ -78,6 +78,16 @@ func (t *checkText) result(r *run.Result) {
 	if len(rec.Assumptions) > 0 {
 		t.note("provided that", clip(strings.Join(rec.Assumptions, ", "), mostFormula))
 	}
+	if e := rec.Equality; e != nil && len(e.Conditions) > 0 {
+		what := strings.Join(e.Conditions, ", ")
+		switch {
+		case e.Consistent == "no":
+			what = "never"
+		case len(e.Jet) > 0:
+			what += "; for instance at " + assignments(e.Jet)
+		}
+		t.note("equality", what)
+	}
 	if !r.Met() {
 		want := string(r.Claim.Expected.Verdict)
 		if r.Claim.Expected.Solution != "" {
@@ -106,8 +116,8 @@ func (t *checkText) counts(rec *identity.Record) {
 // witness writes the point at which a claim fails.
 func (t *checkText) witness(w *identity.Witness) {
 	var parts []string
-	for _, k := range byLength(w.Jet) {
-		parts = append(parts, k+" = "+w.Jet[k])
+	if len(w.Jet) > 0 {
+		parts = append(parts, assignments(w.Jet))
 	}
 	for _, k := range byLength(w.Angle) {
 		parts = append(parts, fmt.Sprintf("(cos, sin)(%s) = (%s, %s)", k, w.Angle[k].Cos, w.Angle[k].Sin))
@@ -119,11 +129,7 @@ func (t *checkText) witness(w *identity.Witness) {
 		if len(side.values) == 0 {
 			continue
 		}
-		var list []string
-		for _, k := range byLength(side.values) {
-			list = append(list, k+" = "+side.values[k])
-		}
-		parts = append(parts, side.name+" ("+strings.Join(list, ", ")+")")
+		parts = append(parts, side.name+" ("+assignments(side.values)+")")
 	}
 	if len(parts) > 0 {
 		t.note("at", strings.Join(parts, ", "))
@@ -131,6 +137,15 @@ func (t *checkText) witness(w *identity.Witness) {
 	if w.Left != "" || w.Right != "" {
 		t.note("", "left side "+w.Left+", right side "+w.Right)
 	}
+}
+
+// assignments are names with their values.
+func assignments(m map[string]string) string {
+	var list []string
+	for _, k := range byLength(m) {
+		list = append(list, k+" = "+m[k])
+	}
+	return strings.Join(list, ", ")
 }
 
 // byLength are the keys of a map, short ones first.
