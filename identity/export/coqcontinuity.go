@@ -33,7 +33,7 @@ func (p *proof) byContinuity(name string) error {
 	}
 	along := &signs{at: moving, positive: p.positive}
 
-	d.statement("Theorem", name, p.scope, p.premises, "0 <= "+at.over(p.target.n, p.target.d))
+	d.statement(p.kind, name, p.scope, p.premises, "0 <= "+at.over(p.target.n, p.target.d))
 	d.intros(p.scope, p.given)
 	p.numerators()
 	p.denominator()

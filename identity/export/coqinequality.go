@@ -14,6 +14,7 @@ type proof struct {
 	doc   *document
 	scope *scope
 	name  string
+	kind  string // Theorem or Lemma
 	signs *signs
 	zeros []string // names of the premises n = 0
 	// premises of the theorem, and the names under which it introduces them
@@ -33,7 +34,7 @@ func (s *Inequality) coq(d *document) error {
 	if err != nil {
 		return err
 	}
-	p := &proof{doc: d, scope: sc, name: name}
+	p := &proof{doc: d, scope: sc, name: name, kind: "Theorem"}
 	if p.cleared, err = sc.ring.clear(s.Claim, s.Certificate); err != nil {
 		return err
 	}
@@ -42,16 +43,22 @@ func (s *Inequality) coq(d *document) error {
 	if s.Left != nil {
 		goal = d.names.name(name + "_gap")
 	}
-	continuity := p.multiplier != nil && surelyPositive(p.multiplier, p.positive) < 0
-	if continuity {
-		err = p.byContinuity(goal)
-	} else {
-		p.direct(goal)
-	}
-	if err != nil || s.Left == nil {
+	if err := p.prove(goal); err != nil || s.Left == nil {
 		return err
 	}
 	return p.compare(s, goal)
+}
+
+// prove writes the theorem 0 <= target in the way that its certificate asks for.
+func (p *proof) prove(name string) error {
+	switch {
+	case p.squaring != nil:
+		return p.bySquaring(name)
+	case p.multiplier != nil && surelyPositive(p.multiplier, p.positive) < 0:
+		return p.byContinuity(name)
+	}
+	p.direct(name)
+	return nil
 }
 
 // state prepares the premises of the theorem and the names of what follows.
@@ -115,7 +122,7 @@ func (p *proof) denominator() {
 // direct writes the theorem where the multiplier is 1 or positive.
 func (p *proof) direct(name string) {
 	d := p.doc
-	d.statement("Theorem", name, p.scope, p.premises, "0 <= "+p.scope.at.over(p.target.n, p.target.d))
+	d.statement(p.kind, name, p.scope, p.premises, "0 <= "+p.scope.at.over(p.target.n, p.target.d))
 	d.intros(p.scope, p.given)
 	p.numerators()
 	p.denominator()

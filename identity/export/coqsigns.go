@@ -2,6 +2,7 @@ package export
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 )
 
@@ -67,19 +68,19 @@ func (s *signs) prove(t product, strict bool) string {
 }
 
 // nonneg writes the proof of 0 <= sum; lead stands before it, and indent
-// before later lines.
+// before later lines. Sums are split where they are printed, from the end, and
+// not by a search: numbers are sums as well once they are unfolded, and so are
+// assumptions that stand alone.
 func (s *signs) nonneg(d *document, lead, indent string, list []product) {
-	switch len(list) {
-	case 0:
+	if len(list) == 0 {
 		d.printf("%sapply Rle_refl.\n", lead)
-	case 1:
-		d.printf("%s%s.\n", lead, s.prove(list[0], false))
-	default:
-		d.printf("%srepeat apply sum_nonneg.\n", lead)
-		for _, t := range list {
-			d.printf("%s* %s.\n", indent, s.prove(t, false))
-		}
+		return
 	}
+	for _, t := range slices.Backward(list[1:]) {
+		d.printf("%sapply sum_nonneg; [| %s].\n", lead, s.prove(t, false))
+		lead = indent
+	}
+	d.printf("%s%s.\n", lead, s.prove(list[0], false))
 }
 
 // pos is a tactic for 0 < sum whose term k is strictly positive.

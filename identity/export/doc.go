@@ -35,6 +35,10 @@
 // equations or in other assumptions are kept fixed; where M(y) then depends on
 // them, the export fails with ErrUnsupported.
 //
+// A squaring, x - y >= 0 from x >= 0 and x² - y² >= 0, becomes a lemma on the
+// squares, proved by the certificate inside, and a theorem that rests on it. Roots
+// are variables r with r² = a and r >= 0 as premises.
+//
 // # What is rigorous
 //
 // The writer verifies nothing that Coq verifies: a wrong certificate gives a

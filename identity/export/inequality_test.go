@@ -51,26 +51,47 @@ func mutants(t *testing.T, s *export.Inequality) []*export.Inequality {
 		return x.Add(x, by).RatString()
 	}
 	slight, one := big.NewRat(1, 1_000_000_000), big.NewRat(1, 1)
-	for i := range s.Certificate.Squares {
-		change(func(_ *certificate.Claim, c *certificate.Certificate) {
-			c.Squares[i].Weight = shift(c.Squares[i].Weight, slight)
-		})
-		change(func(_ *certificate.Claim, c *certificate.Certificate) {
-			c.Squares = append(c.Squares[:i], c.Squares[i+1:]...)
-		})
-		change(func(_ *certificate.Claim, c *certificate.Certificate) {
-			c.Squares[i].Base[0].C = shift(c.Squares[i].Base[0].C, one)
-		})
-		if len(s.Certificate.Squares[i].Factors) > 0 {
+	weights := func(list func(c *certificate.Certificate) []certificate.Square) {
+		for i := range list(s.Certificate) {
 			change(func(_ *certificate.Claim, c *certificate.Certificate) {
-				c.Squares[i].Factors = c.Squares[i].Factors[1:]
+				list(c)[i].Weight = shift(list(c)[i].Weight, slight)
 			})
 		}
 	}
-	for i := range s.Certificate.Multiplier {
+	weights(func(c *certificate.Certificate) []certificate.Square { return c.Multiplier })
+	inside := func(c *certificate.Certificate) *certificate.Certificate { return c }
+	for in := s.Certificate; in.Squaring != nil; in = in.Squaring.Proof {
+		here := inside
+		weights(func(c *certificate.Certificate) []certificate.Square { return here(c).Squaring.Left })
 		change(func(_ *certificate.Claim, c *certificate.Certificate) {
-			c.Multiplier[i].Weight = shift(c.Multiplier[i].Weight, slight)
+			q := here(c).Squaring
+			q.Right[0].C = shift(q.Right[0].C, slight)
 		})
+		change(func(_ *certificate.Claim, c *certificate.Certificate) {
+			q := here(c).Squaring
+			q.Left[0].Weight = "-" + q.Left[0].Weight
+		})
+		change(func(_ *certificate.Claim, c *certificate.Certificate) {
+			q := here(c).Squaring
+			q.Cofactors[0] = append(q.Cofactors[0], poly("a^3")...)
+		})
+		inside = func(c *certificate.Certificate) *certificate.Certificate { return here(c).Squaring.Proof }
+	}
+	weights(func(c *certificate.Certificate) []certificate.Square { return inside(c).Squares })
+	for i, t := range inside(s.Certificate).Squares {
+		change(func(_ *certificate.Claim, c *certificate.Certificate) {
+			c = inside(c)
+			c.Squares = append(c.Squares[:i], c.Squares[i+1:]...)
+		})
+		change(func(_ *certificate.Claim, c *certificate.Certificate) {
+			base := inside(c).Squares[i].Base
+			base[0].C = shift(base[0].C, one)
+		})
+		if len(t.Factors) > 0 {
+			change(func(_ *certificate.Claim, c *certificate.Certificate) {
+				inside(c).Squares[i].Factors = t.Factors[1:]
+			})
+		}
 	}
 	for i := range s.Claim.Target {
 		change(func(c *certificate.Claim, _ *certificate.Certificate) {
@@ -107,7 +128,41 @@ func TestCoqRejectsWrongCertificates(t *testing.T) {
 			require.Contains(t, out, "Error", "%s, mutant %d", s.Name, i)
 		}
 	}
-	require.Greater(t, tried, 15)
+	require.Greater(t, tried, 25)
+}
+
+// A false claim whose squares compare: -2 r is not nonnegative, so that nothing
+// follows from (2 r)² >= r² for it.
+func TestSquaringNeedsASign(t *testing.T) {
+	s := withSquaring()
+	s.Left, s.Right = nil, nil
+	s.Claim = &certificate.Claim{Variables: []string{"r"}, Positive: []certificate.Constraint{{Poly: poly("r")}}, Target: poly("- 3 r")}
+	s.Certificate = &certificate.Certificate{Squaring: &certificate.Squaring{
+		Left: []certificate.Square{square("-2", "1", 0)}, Right: poly("r"),
+		Proof: &certificate.Certificate{Squares: []certificate.Square{square("3", "r")}},
+	}}
+	require.Error(t, certificate.Check(s.Claim, s.Certificate))
+	text, err := export.Coq("", s)
+	require.NoError(t, err)
+	_, err = coqc(t, text)
+	require.Error(t, err)
+}
+
+func TestSquaringsAreBounded(t *testing.T) {
+	s := withSquaring()
+	for range 20 {
+		s.Certificate = &certificate.Certificate{Squaring: &certificate.Squaring{Proof: s.Certificate, Cofactors: []certificate.Polynomial{nil}}}
+	}
+	_, err := export.Coq("", s)
+	require.ErrorIs(t, err, export.ErrUnsupported)
+	s.Certificate = &certificate.Certificate{Squaring: &certificate.Squaring{Cofactors: []certificate.Polynomial{nil}}}
+	for _, f := range []func() (string, error){
+		func() (string, error) { return export.Coq("", s) },
+		func() (string, error) { return export.TeX(s, export.TeXOptions{}) },
+	} {
+		_, err = f()
+		require.Error(t, err)
+	}
 }
 
 // False claims whose certificates satisfy the identity: what is wrong is a

@@ -28,7 +28,8 @@ type premise struct {
 //	clear · multiplier · target.n = Σ squares + Σ zero[k].factor · zero[k].n,
 //
 // where all weights are integers. In products, factors stand for the integer
-// polynomials of the premises.
+// polynomials of the premises. With a squaring the right side is
+// left - right + Σ zero[k].factor · zero[k].n instead.
 type cleared struct {
 	positive   []premise
 	zero       []premise
@@ -37,6 +38,7 @@ type cleared struct {
 	multiplier []product // nil where it is 1
 	squares    []product
 	clear      *big.Int
+	squaring   *squaring // in place of multiplier and squares
 }
 
 func (r *ring) premise(p certificate.Polynomial, strict bool) (premise, error) {
@@ -113,25 +115,38 @@ func (r *ring) rational(claim *certificate.Claim, cert *certificate.Certificate)
 	if c.target, err = r.premise(claim.Target, false); err != nil {
 		return nil, fmt.Errorf("target: %w", err)
 	}
+	if cert.Squaring != nil {
+		if len(cert.Multiplier)+len(cert.Squares)+len(cert.Cofactors) > 0 {
+			return nil, errors.New("a squaring and squares at once")
+		}
+		return c, r.readSquaring(c, claim, cert.Squaring)
+	}
 	if c.squares, err = r.products(cert.Squares, c.positive); err != nil {
 		return nil, fmt.Errorf("squares: %w", err)
 	}
 	if c.multiplier, err = r.products(cert.Multiplier, c.positive); err != nil {
 		return nil, fmt.Errorf("multiplier: %w", err)
 	}
-	if len(cert.Cofactors) != len(claim.Zero) {
-		return nil, fmt.Errorf("%d cofactors for %d equations", len(cert.Cofactors), len(claim.Zero))
+	return c, r.readCofactors(c, cert.Cofactors)
+}
+
+func (r *ring) readCofactors(c *cleared, cofactors []certificate.Polynomial) error {
+	if len(cofactors) != len(c.zero) {
+		return fmt.Errorf("%d cofactors for %d equations", len(cofactors), len(c.zero))
 	}
-	if c.cofactors, err = r.readAll(cert.Cofactors, "cofactor"); err != nil {
-		return nil, err
-	}
-	return c, nil
+	var err error
+	c.cofactors, err = r.readAll(cofactors, "cofactor")
+	return err
 }
 
 func (r *ring) clear(claim *certificate.Claim, cert *certificate.Certificate) (*cleared, error) {
 	c, err := r.rational(claim, cert)
 	if err != nil {
 		return nil, err
+	}
+	if c.squaring != nil {
+		c.clearSquaring()
+		return c, nil
 	}
 	factor := new(big.Rat).SetInt(new(big.Int).Mul(whole(c.multiplier), c.target.d))
 	for i := range c.squares {

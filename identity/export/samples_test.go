@@ -148,7 +148,74 @@ func withRoot() *export.Inequality {
 	}
 }
 
+// withSquaring is a + b <= 3/2 r where r² = a² + b², r >= 0: the squares differ by
+// (a - b)² + a²/4 + b²/4. Numbers stand in every place.
+func withSquaring() *export.Inequality {
+	return &export.Inequality{
+		Name: "squaring",
+		Claim: &certificate.Claim{
+			Variables: []string{"a", "b", "r"},
+			Positive:  []certificate.Constraint{{Poly: poly("1/3 r")}},
+			Zero:      []certificate.Polynomial{poly("1/5 r^2 - 1/5 a^2 - 1/5 b^2")},
+			Target:    poly("3/2 r - a - b"),
+		},
+		Certificate: &certificate.Certificate{Squaring: &certificate.Squaring{
+			Left: []certificate.Square{square("9/2", "1", 0)}, Right: poly("a + b"), Cofactors: []certificate.Polynomial{nil},
+			Proof: &certificate.Certificate{
+				Squares:   []certificate.Square{square("1", "a - b"), square("1/4", "a"), square("1/4", "b")},
+				Cofactors: []certificate.Polynomial{poly("45/4")},
+			},
+		}},
+		Left:  export.Sum{export.Variable("a"), export.Variable("b")},
+		Right: export.Quotient{Num: export.Product{export.Number("3"), export.Variable("r")}, Den: export.Number("2")},
+	}
+}
+
+// triangle is t <= r + s for r² = a² + b², s² = c² + d², t² = (a + c)² + (b + d)²:
+// squaring once leaves a c + b d <= r s, and twice (a d - b c)² >= 0.
+func triangle() *export.Inequality {
+	return &export.Inequality{
+		Name: "triangle inequality",
+		Claim: &certificate.Claim{
+			Variables: []string{"a", "b", "c", "d", "r", "s", "t"},
+			Positive:  []certificate.Constraint{{Poly: poly("r")}, {Poly: poly("s")}},
+			Zero: []certificate.Polynomial{
+				poly("r^2 - a^2 - b^2"), poly("s^2 - c^2 - d^2"), poly("t^2 - a^2 - 2 a c - c^2 - b^2 - 2 b d - d^2"),
+			},
+			Target: poly("r + s - t"),
+		},
+		Certificate: &certificate.Certificate{Squaring: &certificate.Squaring{
+			Left: []certificate.Square{square("1", "1", 0), square("1", "1", 1)}, Right: poly("t"),
+			Cofactors: []certificate.Polynomial{nil, nil, nil},
+			Proof: &certificate.Certificate{Squaring: &certificate.Squaring{
+				Left: []certificate.Square{square("2", "1", 0, 1)}, Right: poly("2 a c + 2 b d"),
+				Cofactors: []certificate.Polynomial{poly("1"), poly("1"), poly("- 1")},
+				Proof: &certificate.Certificate{
+					Squares:   []certificate.Square{square("4", "a d - b c")},
+					Cofactors: []certificate.Polynomial{poly("4 s^2"), poly("4 a^2 + 4 b^2"), nil},
+				},
+			}},
+		}},
+	}
+}
+
+// apart has as assumptions and weights what Coq unfolds to sums: the number 2, and
+// a sum that stands alone.
+func apart() *export.Inequality {
+	return &export.Inequality{
+		Name: "numbers and sums as terms",
+		Claim: &certificate.Claim{
+			Variables: []string{"x", "y"},
+			Positive:  []certificate.Constraint{{Poly: poly("x + y")}},
+			Target:    poly("x^2 + x + y + 4"),
+		},
+		Certificate: &certificate.Certificate{
+			Squares: []certificate.Square{square("1", "x"), square("1", "1", 0), square("2", "1"), square("2", "1")},
+		},
+	}
+}
+
 // inequalities are certificates made by hand.
 func inequalities() []*export.Inequality {
-	return []*export.Inequality{layered(), motzkin(), motzkinSquared(), onBox(), onEdge(), onCircle(), withRoot()}
+	return []*export.Inequality{layered(), motzkin(), motzkinSquared(), onBox(), onEdge(), onCircle(), withRoot(), withSquaring(), triangle(), apart()}
 }

@@ -25,7 +25,9 @@ type TeXOptions struct {
 //	gap = Σ weight · square,
 //
 // with multiplier and equations where there are any; where the scale and the
-// multiplier are one term, the identity is divided by them. For an Identity it
+// multiplier are one term, the identity is divided by them. A squaring takes two
+// rows, gap = x - y with x visibly nonnegative and x² - y² = Σ weight · square.
+// For an Identity it
 // shows its equations.
 func TeX(s Statement, o TeXOptions) (string, error) {
 	var rows []string
@@ -109,6 +111,9 @@ func (s *Inequality) tex(o TeXOptions) ([]string, error) {
 	if c.multiplier != nil {
 		scales = append(scales, c.multiplier)
 	}
+	if c.squaring != nil {
+		return w.squaring(o, left, scales, c)
+	}
 	divisor := w.unit()
 	var before []string
 	for _, list := range scales {
@@ -127,6 +132,15 @@ func (s *Inequality) tex(o TeXOptions) ([]string, error) {
 		x.times(divisor, -1)
 		pieces = append(pieces, w.terms(x, len(pieces) == 0)...)
 	}
+	pieces = w.equations(pieces, divisor, c)
+	if len(pieces) == 0 {
+		pieces = []string{"0"}
+	}
+	return o.layout(left, pieces), nil
+}
+
+// equations adds cofactor · equation, over a divisor, to the pieces of a sum.
+func (w *typesetter) equations(pieces []string, divisor *part, c *cleared) []string {
 	for k, t := range c.cofactors {
 		if len(t) == 0 {
 			continue
@@ -140,13 +154,39 @@ func (s *Inequality) tex(o TeXOptions) ([]string, error) {
 		} else {
 			x.c.Mul(x.c, one)
 		}
-		x.others = append(x.others, group{r.over(c.zero[k]), 1})
+		x.others = append(x.others, group{w.ring.over(c.zero[k]), 1})
 		pieces = append(pieces, w.terms(x, len(pieces) == 0)...)
 	}
-	if len(pieces) == 0 {
-		pieces = []string{"0"}
+	return pieces
+}
+
+// squaring shows the gap as x - y, and x² - y² by the certificate inside.
+func (w *typesetter) squaring(o TeXOptions, left string, scales [][]product, c *cleared) ([]string, error) {
+	var before []string
+	for _, list := range scales {
+		before = append(before, w.parenthesised(w.sum(list, c.positive)))
 	}
-	return o.layout(left, pieces), nil
+	if len(before) > 0 {
+		left = strings.Join(before, " ") + " " + w.parenthesised([]string{left})
+	}
+	pieces := w.sum(c.squaring.left, c.positive)
+	x := brackets(strings.Join(pieces, " "))
+	for _, t := range c.squaring.right {
+		y := w.unit()
+		y.c.Neg(t.coef)
+		y.monomial(t.exps, 1)
+		pieces = append(pieces, w.terms(y, len(pieces) == 0)...)
+	}
+	pieces = w.equations(pieces, w.unit(), c)
+	rows := o.layout(left, pieces)
+	gap := x + "^{2}"
+	if len(c.squaring.right) > 0 {
+		gap += " - " + brackets(w.poly(c.squaring.right, false)) + "^{2}"
+	}
+	o.Gap = gap
+	s := &Inequality{Claim: c.squaring.next, Certificate: c.squaring.proof}
+	inner, err := s.tex(o)
+	return append(rows, inner...), err
 }
 
 // over is n/d.

@@ -113,10 +113,27 @@ func TestTeXIsBalanced(t *testing.T) {
 			if q, ok := s.(*export.Identity); ok {
 				equations = len(q.Equalities)
 			}
+			if q, ok := s.(*export.Inequality); ok {
+				for in := q.Certificate; in.Squaring != nil; in = in.Squaring.Proof {
+					equations++
+				}
+			}
 			rows := strings.Count(got, "\\\\\n") + 1
 			assert.Equal(t, equations, rows-strings.Count(got, `\notag`), got)
 			assert.Equal(t, equations, strings.Count(got, "&="), got)
 			assert.NotContains(t, got, "  ")
 		}
 	}
+}
+
+func TestTeXOfASquaring(t *testing.T) {
+	s := withSquaring()
+	s.Left, s.Right = nil, nil
+	got, err := export.TeX(s, export.TeXOptions{})
+	require.NoError(t, err)
+	assert.Equal(t, `\begin{align}
+\tfrac{3}{2} r - a - b &= \tfrac{3}{2} r - a - b \\
+\bigl(\tfrac{3}{2} r\bigr)^{2} - \bigl(a + b\bigr)^{2} &= \bigl(a - b\bigr)^{2} + \tfrac{1}{4} a^{2} + \tfrac{1}{4} b^{2} + \tfrac{45}{4} \bigl(\tfrac{1}{5} r^{2} - \tfrac{1}{5} a^{2} - \tfrac{1}{5} b^{2}\bigr)
+\end{align}
+`, got)
 }

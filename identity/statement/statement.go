@@ -22,9 +22,6 @@ func Of(ctx context.Context, c *claim.Claim, r *claim.Record) (export.Statement,
 	if r.Verdict != claim.Proved {
 		return nil, fmt.Errorf("%w: the claim is not proved", export.ErrUnsupported)
 	}
-	if r.Certificate != nil && r.Certificate.Squaring != nil {
-		return nil, fmt.Errorf("%w: certificates by squaring", export.ErrUnsupported)
-	}
 	if r.Certificate != nil && r.Reduced != nil {
 		return &export.Inequality{Name: c.Name, Comment: text(c), Claim: r.Reduced, Certificate: r.Certificate}, nil
 	}

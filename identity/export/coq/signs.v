@@ -74,3 +74,17 @@ Proof.
   intros l r p s z d Hs Hp Hz E. apply (from_gap l r p s Hs Hp).
   rewrite E, Hz. unfold Rdiv. ring.
 Qed.
+
+Lemma from_squares : forall x y : R, 0 <= x -> y * y <= x * x -> y <= x.
+Proof.
+  intros x y Hx H. apply Rsqr_incr_0_var; [unfold Rsqr; exact H | exact Hx].
+Qed.
+
+Lemma by_squaring : forall d v x y z k g : R,
+  0 < d -> 0 <= x -> z = 0 -> d * v = x - y + z ->
+  0 < k -> 0 <= g -> x * x - y * y = k * g -> 0 <= v.
+Proof.
+  intros d v x y z k g Hd Hx Hz E Hk Hg S. apply (divide_out d); [exact Hd |].
+  rewrite E, Hz. pose proof (product_nonneg k g (Rlt_le _ _ Hk) Hg) as H.
+  rewrite <- S in H. pose proof (from_squares x y Hx) as L. lra.
+Qed.
