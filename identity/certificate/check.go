@@ -51,23 +51,23 @@ type Squaring struct {
 const maxDepth = 8
 
 // Check verifies a certificate of a claim. A nil error means that the claim is
-// proved; any other says what is wrong.
-func Check(claim *Claim, cert *Certificate) error { return check(claim, cert, maxDepth) }
-
-func check(claim *Claim, cert *Certificate, depth int) error {
+// proved; any other says what is wrong, or that the work is more than is allowed.
+func Check(claim *Claim, cert *Certificate) error {
+	if claim == nil || cert == nil {
+		return errors.New("no claim, or no certificate")
+	}
 	c, err := newChecker(claim.Variables)
 	if err != nil {
 		return err
 	}
-	positive := make([]sum, len(claim.Positive))
+	p := &problem{checker: c, claim: claim, positive: make([]sum, len(claim.Positive)), zero: make([]sum, len(claim.Zero))}
 	for i, g := range claim.Positive {
-		if positive[i], err = c.read(g.Poly); err != nil {
+		if p.positive[i], err = c.read(g.Poly); err != nil {
 			return fmt.Errorf("assumption %d: %w", i, err)
 		}
 	}
-	zero := make([]sum, len(claim.Zero))
 	for i, h := range claim.Zero {
-		if zero[i], err = c.read(h); err != nil {
+		if p.zero[i], err = c.read(h); err != nil {
 			return fmt.Errorf("equation %d: %w", i, err)
 		}
 	}
@@ -75,153 +75,176 @@ func check(claim *Claim, cert *Certificate, depth int) error {
 	if err != nil {
 		return fmt.Errorf("target: %w", err)
 	}
+	return p.check(target, cert, maxDepth)
+}
+
+// problem is a claim that was read.
+type problem struct {
+	*checker
+	claim          *Claim
+	positive, zero []sum
+}
+
+// check verifies that a certificate proves target >= 0 on the set of the claim.
+func (p *problem) check(target sum, cert *Certificate, depth int) error {
 	if cert.Squaring != nil {
 		if len(cert.Multiplier)+len(cert.Squares)+len(cert.Cofactors) > 0 {
 			return errors.New("a squaring and squares at once")
 		}
-		return c.squaring(claim, cert.Squaring, target, positive, zero, depth)
+		return p.squaring(target, cert.Squaring, depth)
 	}
-
-	multiplier := sum{key(make([]int, c.n)): big.NewRat(1, 1)}
+	left := target
 	if len(cert.Multiplier) > 0 {
-		if multiplier, err = c.squares(cert.Multiplier, positive); err != nil {
+		m, err := p.squares(cert.Multiplier)
+		if err != nil {
 			return fmt.Errorf("multiplier: %w", err)
 		}
-		if err := c.dense(claim, cert.Multiplier, multiplier, positive, zero); err != nil {
+		if err := p.dense(cert.Multiplier, m); err != nil {
 			return fmt.Errorf("multiplier: %w", err)
 		}
+		if left, err = p.mul(m, target); err != nil {
+			return err
+		}
 	}
-	left, err := c.mul(multiplier, target)
-	if err != nil {
-		return err
-	}
-	right, err := c.squares(cert.Squares, positive)
+	right, err := p.squares(cert.Squares)
 	if err != nil {
 		return fmt.Errorf("squares: %w", err)
 	}
-	if err := c.addCofactors(right, cert.Cofactors, zero); err != nil {
+	if err := p.addCofactors(right, cert.Cofactors); err != nil {
 		return err
 	}
-	left.add(big.NewRat(-1, 1), right)
-	if len(left) != 0 {
-		return fmt.Errorf("the identity does not hold: %d terms are left over", len(left))
+	if err := p.add(right, -1, left); err != nil {
+		return err
+	}
+	if len(right) != 0 {
+		return fmt.Errorf("the identity does not hold: %d terms are left over", len(right))
 	}
 	return nil
 }
 
 // addCofactors adds Σ t_k h_k.
-func (c *checker) addCofactors(to sum, cofactors []Polynomial, zero []sum) error {
-	if len(cofactors) != len(zero) {
-		return fmt.Errorf("%d cofactors for %d equations", len(cofactors), len(zero))
+func (p *problem) addCofactors(to sum, cofactors []Polynomial) error {
+	if len(cofactors) != len(p.zero) {
+		return fmt.Errorf("%d cofactors for %d equations", len(cofactors), len(p.zero))
 	}
 	for k, t := range cofactors {
-		q, err := c.read(t)
+		q, err := p.read(t)
 		if err != nil {
 			return fmt.Errorf("cofactor %d: %w", k, err)
 		}
-		prod, err := c.mul(q, zero[k])
+		prod, err := p.mul(q, p.zero[k])
 		if err != nil {
 			return err
 		}
-		to.add(big.NewRat(1, 1), prod)
+		if err := p.add(to, 1, prod); err != nil {
+			return err
+		}
 	}
 	return nil
 }
 
 // squaring checks that the target is x - y, and the proof of x² - y² >= 0:
 // with x >= 0 then x = |x| >= |y| >= y.
-func (c *checker) squaring(claim *Claim, s *Squaring, target sum, positive, zero []sum, depth int) error {
+func (p *problem) squaring(target sum, s *Squaring, depth int) error {
 	if depth == 0 || s.Proof == nil {
 		return errors.New("a squaring without a proof, or too many inside each other")
 	}
-	x, err := c.squares(s.Left, positive)
+	x, err := p.squares(s.Left)
 	if err != nil {
 		return fmt.Errorf("left: %w", err)
 	}
-	y, err := c.read(s.Right)
+	y, err := p.read(s.Right)
 	if err != nil {
 		return fmt.Errorf("right: %w", err)
 	}
-	diff := sum{}
-	diff.add(big.NewRat(1, 1), x)
-	diff.add(big.NewRat(-1, 1), y)
-	if err := c.addCofactors(diff, s.Cofactors, zero); err != nil {
-		return err
-	}
-	diff.add(big.NewRat(-1, 1), target)
-	if len(diff) != 0 {
-		return fmt.Errorf("the target is not the difference of the two sides: %d terms are left over", len(diff))
-	}
-	next, err := c.mul(x, x)
+	next, err := p.mul(x, x)
 	if err != nil {
 		return err
 	}
-	ysq, err := c.mul(y, y)
+	ysq, err := p.mul(y, y)
 	if err != nil {
 		return err
 	}
-	next.add(big.NewRat(-1, 1), ysq)
-	squared := *claim
-	squared.Target = c.write(next)
-	if err := check(&squared, s.Proof, depth-1); err != nil {
+	if err := p.add(next, -1, ysq); err != nil {
+		return err
+	}
+	// From here x is what is left of x - y + Σ cofactors · zero - target.
+	if err := p.add(x, -1, y); err != nil {
+		return err
+	}
+	if err := p.addCofactors(x, s.Cofactors); err != nil {
+		return err
+	}
+	if err := p.add(x, -1, target); err != nil {
+		return err
+	}
+	if len(x) != 0 {
+		return fmt.Errorf("the target is not the difference of the two sides: %d terms are left over", len(x))
+	}
+	if err := p.check(next, s.Proof, depth-1); err != nil {
 		return fmt.Errorf("after squaring: %w", err)
 	}
 	return nil
 }
 
 // squares expands Σ w · Π g · q².
-func (c *checker) squares(list []Square, positive []sum) (sum, error) {
+func (p *problem) squares(list []Square) (sum, error) {
 	total := sum{}
 	for i, s := range list {
+		if err := p.spend(4 * len(s.Weight)); err != nil {
+			return nil, err
+		}
 		w, err := number(s.Weight)
 		if err != nil {
 			return nil, fmt.Errorf("term %d: %w", i, err)
 		}
 		if w.Sign() <= 0 {
-			return nil, fmt.Errorf("term %d: the weight %s is not positive", i, s.Weight)
+			return nil, fmt.Errorf("term %d: the weight is not positive", i)
 		}
-		q, err := c.read(s.Base)
+		q, err := p.read(s.Base)
 		if err != nil {
 			return nil, fmt.Errorf("term %d: %w", i, err)
 		}
 		if len(q) == 0 {
 			return nil, fmt.Errorf("term %d: the square of zero", i)
 		}
-		term, err := c.mul(q, q)
+		term, err := p.mul(q, q)
 		if err != nil {
 			return nil, err
 		}
 		for _, f := range s.Factors {
-			if f < 0 || f >= len(positive) {
+			if f < 0 || f >= len(p.positive) {
 				return nil, fmt.Errorf("term %d: there is no assumption %d", i, f)
 			}
-			if term, err = c.mul(term, positive[f]); err != nil {
+			if term, err = p.mul(term, p.positive[f]); err != nil {
 				return nil, err
 			}
 		}
-		total.add(w, term)
+		if err := p.addScaled(total, w, term); err != nil {
+			return nil, err
+		}
 	}
 	return total, nil
 }
 
-// dense makes sure that the multiplier is positive on a dense part of the set
+// dense makes sure that the multiplier m is positive on a dense part of the set
 // of the claim: everywhere, or by the rules that the package documents.
-func (c *checker) dense(claim *Claim, terms []Square, m sum, positive, zero []sum) error {
-	if strictlyPositive(claim, terms) {
+func (p *problem) dense(terms []Square, m sum) error {
+	if strictlyPositive(p.claim, terms) {
 		return nil
 	}
 	onCircle := map[int]bool{}
-	for k, h := range zero {
-		cos, sin, ok := c.circle(h)
+	for k, h := range p.zero {
+		cos, sin, ok := p.circle(h)
 		if !ok {
 			return fmt.Errorf("it may vanish, and equation %d is no circle", k)
 		}
 		if onCircle[cos] || onCircle[sin] {
-			return fmt.Errorf("two circles share a variable")
+			return errors.New("it may vanish, and two circles share a variable")
 		}
 		onCircle[cos], onCircle[sin] = true, true
 		var err error
-		if m, err = c.onCircle(m, cos, sin); err != nil {
+		if m, err = p.onCircle(m, cos, sin); err != nil {
 			return err
 		}
 	}
@@ -229,11 +252,11 @@ func (c *checker) dense(claim *Claim, terms []Square, m sum, positive, zero []su
 		return errors.New("it is zero")
 	}
 	lower, upper := map[int]*big.Rat{}, map[int]*big.Rat{}
-	for i, g := range positive {
-		if claim.Positive[i].Strict {
+	for i, g := range p.positive {
+		if p.claim.Positive[i].Strict {
 			continue
 		}
-		v, bound, isLower, ok := c.bound(g)
+		v, bound, isLower, ok := p.bound(g)
 		if !ok || onCircle[v] {
 			return fmt.Errorf("it may vanish, and assumption %d is no bound of one variable", i)
 		}
@@ -246,7 +269,7 @@ func (c *checker) dense(claim *Claim, terms []Square, m sum, positive, zero []su
 	}
 	for v, lo := range lower {
 		if hi := upper[v]; hi != nil && lo.Cmp(hi) >= 0 {
-			return fmt.Errorf("it may vanish, and the bounds of %s leave no interval", claim.Variables[v])
+			return fmt.Errorf("it may vanish, and the bounds of %s leave no interval", p.names[v])
 		}
 	}
 	return nil
@@ -261,16 +284,11 @@ func (c *checker) circle(h sum) (cos, sin int, ok bool) {
 	if len(vs) != 2 || len(h) != 3 {
 		return 0, 0, false
 	}
-	one := big.NewRat(1, 1)
-	for _, v := range vs {
-		e := make([]int, c.n)
-		e[v] = 2
-		if x := h[key(e)]; x == nil || x.Cmp(one) != 0 {
-			return 0, 0, false
-		}
+	is := func(v, e int, value int64) bool {
+		x := h[c.monomial(v, e)]
+		return x != nil && x.Cmp(big.NewRat(value, 1)) == 0
 	}
-	x := h[key(make([]int, c.n))]
-	return vs[0], vs[1], x != nil && x.Cmp(big.NewRat(-1, 1)) == 0
+	return vs[0], vs[1], is(vs[0], 2, 1) && is(vs[1], 2, 1) && is(0, 0, -1)
 }
 
 // bound reads g as a·v + b with a ≠ 0: v >= -b/a where a > 0, v <= -b/a else.
@@ -279,21 +297,12 @@ func (c *checker) bound(g sum) (v int, at *big.Rat, lower, ok bool) {
 	if len(vs) != 1 {
 		return 0, nil, false, false
 	}
-	e := make([]int, c.n)
-	constKey := key(e)
-	e[vs[0]] = 1
-	a := g[key(e)]
-	rest := len(g)
-	if a != nil {
-		rest--
-	}
-	b := g[constKey]
+	a, b := g[c.monomial(vs[0], 1)], g[c.monomial(0, 0)]
+	terms := 2
 	if b == nil {
-		b = new(big.Rat)
-	} else {
-		rest--
+		b, terms = new(big.Rat), 1
 	}
-	if a == nil || rest != 0 {
+	if a == nil || len(g) != terms {
 		return 0, nil, false, false
 	}
 	at = new(big.Rat).Quo(new(big.Rat).Neg(b), a)
@@ -310,11 +319,11 @@ func strictlyPositive(claim *Claim, terms []Square) bool {
 	})
 }
 
-// UsesContinuity reports whether the proof rests on continuity where its
-// multiplier vanishes.
+// UsesContinuity reports whether the proof, which Check accepts, rests on
+// continuity where its multiplier vanishes.
 func UsesContinuity(claim *Claim, cert *Certificate) bool {
-	if cert.Squaring != nil {
-		return cert.Squaring.Proof != nil && UsesContinuity(claim, cert.Squaring.Proof)
+	for cert.Squaring != nil && cert.Squaring.Proof != nil {
+		cert = cert.Squaring.Proof
 	}
 	return len(cert.Multiplier) > 0 && !strictlyPositive(claim, cert.Multiplier)
 }

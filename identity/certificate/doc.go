@@ -27,4 +27,8 @@
 //
 // A certificate may also be a squaring: x >= y follows from x² >= y² where x is
 // a sum Σ w · g_a g_b … · q², which is how roots are removed.
+//
+// Numbers are written in decimal digits without leading zeros, as "-3/2", and
+// each monomial of a polynomial stands once. The work is bounded: what takes
+// more than some seconds, or some hundred megabytes, is refused.
 package certificate
