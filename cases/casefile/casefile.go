@@ -130,9 +130,12 @@ type Surface struct {
 	Graph    *Graph
 	Level    *source.Text
 	Branches []source.Text
-	Combine  string // "max" or "min", with Branches
-	Mesh     string // path of a file
+	Combine  *source.Text // "max", "min" or a nested expression, with Branches
+	Mesh     string       // path of a file
+	// The domain of Level and Branches: one of
 	Box      []Interval
+	Ball     *Ball
+	Cylinder *Cylinder
 
 	Energy *source.Text
 	Within *big.Rat // relative; positive, at most 1/1000
@@ -169,4 +172,21 @@ type Graph struct {
 type Disc struct {
 	Center [2]source.Text
 	Radius source.Text
+}
+
+// Ball is a ball, in the plane a disc: as many coordinates as the space has.
+type Ball struct {
+	Pos    source.Pos
+	Center []source.Text
+	Radius source.Text
+}
+
+// Cylinder is a round cylinder along a coordinate. Center gives the other two
+// coordinates, in their order.
+type Cylinder struct {
+	Pos     source.Pos
+	Center  []source.Text
+	Radius  source.Text
+	Axis    *Name // the last coordinate where it is nil
+	Heights []source.Text
 }

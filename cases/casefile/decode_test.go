@@ -85,6 +85,16 @@ branches = ["x", "y"]
 combine = "max"
 box = { x = ["-1", "1"], y = [0, 1] }
 [[surface]]
+name = "in a ball"
+branches = ["x", "y"]
+combine = "max(1, 2)"
+ball = { center = ["0", "1"], radius = 2 }
+[[surface]]
+name = "in a cylinder"
+density = "1"
+level = "x"
+cylinder = { center = ["0", "1"], radius = "2", axis = "x", heights = [0, "1"] }
+[[surface]]
 name = "mesh"
 density = "1"
 mesh = "front.off"
@@ -140,7 +150,7 @@ func TestDecode(t *testing.T) {
 	assert.Equal(t, "u_x > 0", c.Assume[0].S)
 	assert.Equal(t, []string{"3", "3/2", "3/2"}, []string{c.Integrability[0].P.RatString(), c.Integrability[1].P.RatString(), c.Integrability[2].P.RatString()})
 
-	require.Len(t, f.Surfaces, 8)
+	require.Len(t, f.Surfaces, 10)
 	s := f.Surfaces[0]
 	assert.Equal(t, "k", s.Values[0].Name.S)
 	assert.Equal(t, []string{"1/2", "0.7", "16"}, []string{s.Values[0].List[0].S, s.Values[0].List[1].S, s.Values[0].List[2].S})
@@ -157,8 +167,13 @@ func TestDecode(t *testing.T) {
 	assert.Equal(t, "1", f.Surfaces[4].Graph.Disc.Center[1].S)
 	assert.Equal(t, "x", f.Surfaces[5].Level.S)
 	assert.Len(t, f.Surfaces[6].Branches, 2)
-	assert.Equal(t, "max", f.Surfaces[6].Combine)
-	assert.Equal(t, "front.off", f.Surfaces[7].Mesh)
+	assert.Equal(t, "max", f.Surfaces[6].Combine.S)
+	assert.Equal(t, "max(1, 2)", f.Surfaces[7].Combine.S)
+	assert.Equal(t, "1", f.Surfaces[7].Ball.Center[1].S)
+	assert.Equal(t, "2", f.Surfaces[7].Ball.Radius.S)
+	assert.Equal(t, "x", f.Surfaces[8].Cylinder.Axis.S)
+	assert.Equal(t, "1", f.Surfaces[8].Cylinder.Heights[1].S)
+	assert.Equal(t, "front.off", f.Surfaces[9].Mesh)
 }
 
 // The order of over orients a patch, so it must be that of the file.

@@ -39,11 +39,13 @@ func (d *decoder) surface(v *value) Surface {
 		{"graph", func(e *entry) { s.Graph = d.graph(e.value) }},
 		{"level", func(e *entry) { s.Level = d.optional(e.value, "level") }},
 		{"branches", func(e *entry) {
-			s.Branches = d.vector(e.value, "branches", 2, 100, `branches = ["1 - x", "1 + x"]`)
+			s.Branches = d.vector(e.value, "branches", 2, mostBranches, `branches = ["1 - x", "1 + x"]`)
 		}},
-		{"combine", func(e *entry) { s.Combine = d.word(e.value, "combine", "max", "min") }},
+		{"combine", func(e *entry) { s.Combine = d.combine(e.value) }},
 		{"mesh", func(e *entry) { s.Mesh = d.line(e.value, "mesh") }},
 		{"box", func(e *entry) { s.Box = d.intervals(e.value, "box", isName, `box = { x = ["-1", "1"] }`) }},
+		{"ball", func(e *entry) { s.Ball = d.ball(e.value) }},
+		{"cylinder", func(e *entry) { s.Cylinder = d.cylinder(e.value) }},
 		{"energy", func(e *entry) { s.Energy = d.optional(e.value, "energy") }},
 		{"within", func(e *entry) {
 			r, ok := d.rational(e.value, "within")
@@ -87,10 +89,18 @@ func (d *decoder) complete(v *value, s *Surface) {
 	case 1:
 		switch shapes[0] {
 		case "level":
-			d.need(v, what, "box", `box = { x = ["-1", "1"], y = ["-1", "1"], z = ["0", "1"] }`)
+			d.domain(v, what)
 		case "branches":
-			d.need(v, what, "box", `box = { x = ["-1", "1"], y = ["-1", "1"], z = ["0", "1"] }`)
+			d.domain(v, what)
 			d.need(v, what, "combine", `combine = "max" or combine = "min"`)
+			for _, k := range []string{"plus", "plus_gradient", "minus", "minus_gradient"} {
+				if e := v.get(k); e != nil {
+					d.add(e.off, fmt.Sprintf("%s has branches and %q", what, k), "remove the traces: they are the branches")
+					break
+				}
+			}
+		case "polygon", "patch", "graph":
+			d.bounded(v, what, shapes[0])
 		}
 	default:
 		d.add(v.get(shapes[1]).off, fmt.Sprintf("%s has more than one shape: %s", what, strings.Join(shapes, ", ")), "make a [[surface]] for each")
