@@ -1,0 +1,167 @@
+package branches
+
+import (
+	"context"
+	"math"
+	"slices"
+)
+
+// A Range is an interval that contains the values of a function on a box. One
+// with Lo > Hi, or NaN, contains none that are known: it is taken as the line.
+type Range struct{ Lo, Hi float64 }
+
+func (r Range) line() bool { return !(r.Lo <= r.Hi) }
+
+// Pair is a pair of branches that may have a sheet in a box.
+type Pair struct {
+	First, Second int // numbers of the branches, from 0, in increasing order
+	// Box contains every sheet of the pair.
+	Box [][2]float64
+	// Known are relations of the other branches to the pair that hold on all of
+	// its sheets.
+	Known []Relation
+}
+
+// PairOptions limit the search of Pairs.
+type PairOptions struct {
+	// MaxBoxes is the number of boxes looked at, 4096 if zero.
+	MaxBoxes int
+	// Finest is the width of boxes, relative to the whole, that are not cut
+	// any more, 1/64 if zero.
+	Finest float64
+}
+
+// Pairs finds the pairs of branches that may have a sheet in a box, in the
+// order of their numbers. Ranges encloses the values of the branches on a box;
+// it must not keep the slices. A pair that is left out has no sheet, and no
+// sheet leaves the Box of its pair, if the enclosures hold: boxes are cut while
+// there are more than two branches that the tree may equal on them.
+func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(box [][2]float64, out []Range), o PairOptions) ([]Pair, error) {
+	if o.MaxBoxes == 0 {
+		o.MaxBoxes = 4096
+	}
+	if o.Finest == 0 {
+		o.Finest = 1.0 / 64
+	}
+	found := map[[2]int]*gathering{}
+	values := make([]Range, n)
+	queue := [][][2]float64{box}
+	var live []int
+	for boxes := 1; len(queue) > 0; {
+		if err := ctx.Err(); err != nil {
+			return nil, err
+		}
+		b := queue[0]
+		queue = queue[1:]
+		ranges(b, values)
+		for k, r := range values {
+			if r.line() {
+				values[k] = Range{math.Inf(-1), math.Inf(1)}
+			}
+		}
+		whole := t.enclose(values)
+		live = live[:0]
+		for k, r := range values {
+			if r.Hi >= whole.Lo && r.Lo <= whole.Hi {
+				live = append(live, k)
+			}
+		}
+		if len(live) < 2 {
+			continue
+		}
+		k := widest(b, box)
+		if boxes+2 <= o.MaxBoxes && (b[k][1]-b[k][0] > o.Finest*(box[k][1]-box[k][0])) && (len(live) > 2 || boxes < o.MaxBoxes/8) {
+			mid := b[k][0] + (b[k][1]-b[k][0])/2
+			left, right := slices.Clone(b), slices.Clone(b)
+			left[k][1], right[k][0] = mid, mid
+			queue = append(queue, left, right)
+			boxes += 2
+			continue
+		}
+		for x, i := range live {
+			for _, j := range live[x+1:] {
+				v := Range{max(values[i].Lo, values[j].Lo, whole.Lo), min(values[i].Hi, values[j].Hi, whole.Hi)}
+				if v.line() {
+					continue
+				}
+				g := found[[2]int{i, j}]
+				if g == nil {
+					g = &gathering{box: slices.Clone(b), seen: make([]Relation, n)}
+					found[[2]int{i, j}] = g
+				}
+				g.add(b, v, values)
+			}
+		}
+	}
+	var out []Pair
+	for key, g := range found {
+		for k, r := range g.seen {
+			if r == Below|Above {
+				g.seen[k] = Open
+			}
+		}
+		out = append(out, Pair{First: key[0], Second: key[1], Box: g.box, Known: g.seen})
+	}
+	slices.SortFunc(out, func(a, b Pair) int {
+		if a.First != b.First {
+			return a.First - b.First
+		}
+		return a.Second - b.Second
+	})
+	return out, nil
+}
+
+// widest is the direction in which a box is widest, relative to the whole.
+func widest(b, box [][2]float64) int {
+	k := 0
+	for i := range b {
+		if (b[i][1]-b[i][0])*(box[k][1]-box[k][0]) > (b[k][1]-b[k][0])*(box[i][1]-box[i][0]) {
+			k = i
+		}
+	}
+	return k
+}
+
+// gathering is what is known of a pair: its boxes so far, and how the others
+// were seen, Below|Above for more than one way.
+type gathering struct {
+	box  [][2]float64
+	seen []Relation
+}
+
+func (g *gathering) add(b [][2]float64, v Range, values []Range) {
+	for i := range b {
+		g.box[i][0] = min(g.box[i][0], b[i][0])
+		g.box[i][1] = max(g.box[i][1], b[i][1])
+	}
+	for k, r := range values {
+		switch {
+		case r.Hi < v.Lo:
+			g.seen[k] |= Below
+		case r.Lo > v.Hi:
+			g.seen[k] |= Above
+		default:
+			g.seen[k] |= Below | Above
+		}
+	}
+}
+
+// enclose is the range of the tree.
+func (t *Tree) enclose(values []Range) Range {
+	if t.Op == Leaf {
+		return values[t.Branch]
+	}
+	var out Range
+	for i, a := range t.Args {
+		r := a.enclose(values)
+		switch {
+		case i == 0:
+			out = r
+		case t.Op == Max:
+			out = Range{max(out.Lo, r.Lo), max(out.Hi, r.Hi)}
+		default:
+			out = Range{min(out.Lo, r.Lo), min(out.Hi, r.Hi)}
+		}
+	}
+	return out
+}
