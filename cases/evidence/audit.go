@@ -38,6 +38,9 @@ func Audit(ctx context.Context, data []byte) (*File, error) {
 		return f, fmt.Errorf("the case has no claim %q", f.Claim)
 	}
 	cl := c.Claims[i]
+	if err := f.fits(cl); err != nil {
+		return f, err
+	}
 	a := &audit{file: f}
 	rec, err := exact.Decide(ctx, cl.Claim, f.Seed, a.inequality)
 	switch {
@@ -52,6 +55,41 @@ func Audit(ctx context.Context, data []byte) (*File, error) {
 		return f, sameRecord(f, rec)
 	}
 	return f, nil
+}
+
+// fits makes sure that the file is of the kind that its claim has, and holds no
+// parts of another kind, which nothing would verify.
+func (f *File) fits(cl *cases.Claim) error {
+	switch f.Kind {
+	case Certificate, Witness:
+		if !inequality(cl) || cl.Best != "" {
+			return fmt.Errorf("evidence of the kind %q is for inequalities", f.Kind)
+		}
+	case Best:
+		if !inequality(cl) || cl.Best == "" || cl.Divergence {
+			return errors.New("the claim does not ask for the best value of a constant")
+		}
+	case Exact:
+		if cl.Best != "" {
+			return errors.New("the claim asks for the best value of a constant, and the file holds none")
+		}
+	default:
+		return fmt.Errorf("evidence of an unknown kind %.40q", f.Kind)
+	}
+	for what, foreign := range map[string]bool{
+		"a certificate":        f.Kind != Certificate && (f.Problem != nil || f.Certificate != nil || f.Equality != nil),
+		"a null Lagrangian":    len(f.Null) > 0 && (!cl.Divergence || !inequality(cl) || f.Kind == Witness),
+		"ends":                 f.Kind != Best && len(f.Ends)+len(f.Unbounded) > 0,
+		"a witness":            f.Witness != nil && (f.Kind == Best || f.Kind == Certificate),
+		"a remainder":          f.Remainder != "" && f.Kind != Exact,
+		"a solution":           f.Solution != "" && (f.Kind == Witness || inequality(cl) && f.Kind != Best && !cl.Divergence),
+		"an unknown condition": f.Equality != nil && !slices.Contains([]string{"yes", "no", "unknown"}, f.Equality.Consistent),
+	} {
+		if foreign {
+			return fmt.Errorf("the file holds %s beside evidence of the kind %q", what, f.Kind)
+		}
+	}
+	return nil
 }
 
 // sameRecord compares what an exact computation gives with what is recorded.
@@ -129,6 +167,9 @@ func (a *audit) gap(d *exact.Problem) (*exact.Gap, error) {
 		if !d.Claim.Divergence {
 			return nil, errors.New("a null Lagrangian in a claim that is not up to a divergence")
 		}
+		if len(d.Claim.Given) > 0 || d.Claim.Jump || len(d.Claim.Modulo) > 0 {
+			return nil, errors.New("a null Lagrangian in a claim that is not about all smooth u")
+		}
 		list, err := d.Minors(g)
 		if err != nil {
 			return nil, err
@@ -159,6 +200,9 @@ func (a *audit) certificate(d *exact.Problem) error {
 }
 
 func checkCertificate(d *exact.Problem, g *exact.Gap, problem *certificate.Claim, cert *certificate.Certificate) error {
+	if problem == nil || cert == nil {
+		return errors.New("no certificate is recorded")
+	}
 	if !sameClaim(d.Reduce(g).Claim, problem) {
 		return errors.New("the inequality in the file is not the one that the claim reduces to")
 	}
@@ -201,6 +245,9 @@ func canonical(c *certificate.Claim) []string {
 }
 
 func (a *audit) witness(d *exact.Problem) error {
+	if d.Claim.Divergence {
+		return errors.New("a point does not refute a claim up to a divergence")
+	}
 	g, err := d.Gap()
 	if err != nil {
 		return err
@@ -252,6 +299,9 @@ func (a *audit) best(d *exact.Problem) error {
 	if g.Poly.Degree(v) != 1 || inDenominator {
 		return errors.New("the inequality is not affine in " + d.Claim.Best)
 	}
+	if len(a.file.Ends) == 0 {
+		return errors.New("no value is recorded at which the inequality holds")
+	}
 	sides := map[bool]bool{}
 	for _, e := range a.file.Ends {
 		if sides[e.Upper] || e.Outer != "" {
@@ -299,9 +349,6 @@ func auditEnd(d *exact.Problem, g *exact.Gap, v algebra.Var, e claim.End) error 
 	}
 	at := g.At(v, x)
 	if !at.Poly.IsZero() {
-		if e.Reduced == nil || e.Certificate == nil {
-			return errors.New("no certificate is recorded")
-		}
 		if err := checkCertificate(d, at, e.Reduced, e.Certificate); err != nil {
 			return err
 		}

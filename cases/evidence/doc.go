@@ -13,6 +13,9 @@
 //   - for anything else, whose evidence is the exact computation itself,
 //     computes it once more and compares.
 //
+// What describes a proof in words is not verified: the method and the details
+// of an inequality, and when equality holds in it.
+//
 // None of the search for proofs and counterexamples is used, nor linked.
 //
 // A digest guards a file against accidental change; no verdict rests on it.

@@ -55,7 +55,7 @@ type File struct {
 }
 
 // maxSize bounds a file that is read.
-const maxSize = 64 << 20
+const maxSize = 16 << 20
 
 // ErrNone says that a verdict has no evidence to verify: it is not decided, or
 // nothing was recorded.
@@ -113,11 +113,14 @@ func (f *File) Encode() ([]byte, error) {
 	return b.Bytes(), nil
 }
 
-// Decode reads a file. Unknown keys, anything after the document, another
-// schema and a digest that does not fit are errors.
+// Decode reads a file. Unknown keys, a key twice, anything after the document,
+// another schema and a digest that does not fit are errors.
 func Decode(data []byte) (*File, error) {
 	if len(data) > maxSize {
 		return nil, fmt.Errorf("the file has more than %d MiB", maxSize>>20)
+	}
+	if err := strict(data); err != nil {
+		return nil, fmt.Errorf("this is no evidence: %w", err)
 	}
 	dec := json.NewDecoder(bytes.NewReader(data))
 	dec.DisallowUnknownFields()
