@@ -37,6 +37,9 @@ func (p *proof) compare(s *Inequality, goal string) error {
 			return err
 		}
 	}
+	if err := p.denominators(s, factors); err != nil {
+		return err
+	}
 	z, err := p.difference(s, over)
 	if err != nil {
 		return err
@@ -81,6 +84,76 @@ func (p *proof) compare(s *Inequality, goal string) error {
 		d.printf("  - %s.\n  - exact %s.\n  - %s.\n", scaleProof, h, z.proof)
 	}
 	d.printf("  - field; nonzero.\nQed.\n")
+	return nil
+}
+
+// denominators makes sure that no denominator of the sides vanishes: each is a
+// product of what is positive by an assumption or as a factor of the scale.
+func (p *proof) denominators(s *Inequality, factors [][]product) error {
+	r := p.scope.ring
+	known := map[string]bool{}
+	add := func(n poly) {
+		if len(n) == 0 {
+			return
+		}
+		_, n = primitive(n)
+		known[polyKey(n)] = true
+		if len(n) == 1 {
+			for v, e := range n[0].exps {
+				if e > 0 {
+					known[polyKey(r.variable(v))] = true
+				}
+			}
+		}
+	}
+	for _, g := range p.positive {
+		if g.strict {
+			add(g.n)
+		}
+	}
+	for _, f := range factors {
+		sum, err := r.expand(f, p.positive)
+		if err != nil {
+			return err
+		}
+		add(sum)
+	}
+	var check func(e Expr) error
+	check = func(e Expr) error {
+		switch e := e.(type) {
+		case Product:
+			for _, f := range e {
+				if err := check(f); err != nil {
+					return err
+				}
+			}
+			return nil
+		case Power:
+			return check(e.Base)
+		case Negation:
+			return check(e.X)
+		case Quotient:
+			return check(e.Num)
+		}
+		x, err := r.evaluate(e)
+		if err != nil {
+			return err
+		}
+		if c, ok := isConstant(x.num); ok && c.Sign() != 0 {
+			return nil
+		}
+		if len(x.num) > 0 {
+			if _, n := primitive(x.num); known[polyKey(n)] {
+				return nil
+			}
+		}
+		return fmt.Errorf("%w: a denominator of the sides is not visibly positive", ErrUnsupported)
+	}
+	for _, e := range slices.Concat(Denominators(s.Left), Denominators(s.Right)) {
+		if err := check(e); err != nil {
+			return err
+		}
+	}
 	return nil
 }
 

@@ -4,8 +4,8 @@
 //
 // # What a Coq file says
 //
-// A Statement is an Inequality with its certificate, or an Identity. Each
-// becomes one theorem over the real numbers. An inequality reads
+// A Statement is an Inequality with its certificate, an Identity, or one of the
+// two that follow. Each becomes one theorem over the real numbers. An inequality reads
 //
 //	forall x y eps : R,  0 < eps -> g(x, y) = 0 -> 0 <= target
 //
@@ -13,6 +13,9 @@
 // caller gives both sides as trees, `left <= right` in place of `0 <= target`.
 // An identity reads `left = right` under its relations and under the premise
 // that its denominators do not vanish; several equations form one conjunction.
+// For the best values of a constant a Group holds an Inequality for each end and
+// a Beyond, which says that the sides compare the other way at a point for all
+// values beyond the end.
 // Trees are printed as they are given, not normalised, so that the theorem can
 // be compared with the claim by eye.
 //

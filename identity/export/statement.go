@@ -1,16 +1,19 @@
 package export
 
 import (
+	"errors"
 	"fmt"
 	"strings"
 
 	"creaseproof/identity/certificate"
 )
 
-// Statement is an *Inequality or an *Identity.
+// Statement is an *Inequality, an *Identity, a *Beyond or a *Group.
 type Statement interface {
 	// coq appends the theorem and the lemmas of its own.
 	coq(d *document) error
+	// tex is rows of an align block.
+	tex(o TeXOptions) ([]string, error)
 	// title and remark name the statement for a reader.
 	title() (name, remark string)
 }
@@ -53,8 +56,48 @@ type Equality struct {
 	Left, Right Expr
 }
 
+// Group is several statements that answer one claim.
+type Group struct {
+	Name       string
+	Comment    string
+	Statements []Statement
+}
+
 func (s *Inequality) title() (string, string) { return s.Name, s.Comment }
 func (s *Identity) title() (string, string)   { return s.Name, s.Comment }
+func (s *Group) title() (string, string)      { return s.Name, s.Comment }
+
+func (s *Group) coq(d *document) error {
+	if len(s.Statements) == 0 {
+		return errors.New("a group of no statements")
+	}
+	d.printf("\n(* %s *)\n", comment(s.Name))
+	if s.Comment != "" {
+		d.printf("(* %s *)\n", comment(s.Comment))
+	}
+	for _, x := range s.Statements {
+		if err := x.coq(d); err != nil {
+			name, _ := x.title()
+			return fmt.Errorf("%s: %w", name, err)
+		}
+	}
+	return nil
+}
+
+func (s *Group) tex(o TeXOptions) ([]string, error) {
+	if len(s.Statements) == 0 {
+		return nil, errors.New("a group of no statements")
+	}
+	var rows []string
+	for _, x := range s.Statements {
+		more, err := x.tex(o)
+		if err != nil {
+			return nil, err
+		}
+		rows = append(rows, more...)
+	}
+	return rows, nil
+}
 
 // document is a file of Coq while it is written.
 type document struct {

@@ -30,16 +30,7 @@ type TeXOptions struct {
 // For an Identity it
 // shows its equations.
 func TeX(s Statement, o TeXOptions) (string, error) {
-	var rows []string
-	var err error
-	switch s := s.(type) {
-	case *Inequality:
-		rows, err = s.tex(o)
-	case *Identity:
-		rows, err = s.tex(o)
-	default:
-		err = fmt.Errorf("%w: a statement of type %T", ErrUnsupported, s)
-	}
+	rows, err := s.tex(o)
 	if err != nil {
 		return "", err
 	}
@@ -101,7 +92,7 @@ func (s *Inequality) tex(o TeXOptions) ([]string, error) {
 				return nil, err
 			}
 		}
-		left = strings.Join(append(w.summands(s.Right), "- "+w.tree(s.Left, levelProduct)), " ")
+		left = w.difference(s.Right, s.Left)
 	}
 	isTarget := left == ""
 	if isTarget {

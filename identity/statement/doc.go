@@ -4,7 +4,14 @@
 //
 // An identity becomes its two sides; an equation up to a divergence becomes its
 // Euler expression, which has to vanish; a span becomes one equation for each
-// component; an inequality becomes its reduced form with its certificate.
+// component; an inequality becomes left <= right with the certificate of its
+// reduced form, or the reduced form where the sides cannot be written in its
+// variables: on wells with their parameters, up to a divergence, and where
+// a denominator is not visibly positive. Where the frame angle was removed, the
+// sides are those at angle 0, in the derivatives along the axes. For the best
+// values of a constant there is one inequality for each end, one statement that
+// the inequality fails beyond it where the jet that shows it is rational, and the
+// sign of the slope on a side without an end.
 //
 // Kernels (roots, cosine and sine of an angle, exponentials) become variables;
 // what holds between them is stated beside the equations, and their total

@@ -22,8 +22,11 @@ func Of(ctx context.Context, c *claim.Claim, r *claim.Record) (export.Statement,
 	if r.Verdict != claim.Proved {
 		return nil, fmt.Errorf("%w: the claim is not proved", export.ErrUnsupported)
 	}
-	if r.Certificate != nil && r.Reduced != nil {
-		return &export.Inequality{Name: c.Name, Comment: text(c), Claim: r.Reduced, Certificate: r.Certificate}, nil
+	switch {
+	case r.Certificate != nil && r.Reduced != nil:
+		return certified(ctx, c, r)
+	case c.Best != "" && len(r.Ends)+len(r.Unbounded) > 0:
+		return best(ctx, c, r)
 	}
 	if c.Jump || len(c.Modulo) > 0 || len(c.Restrict) > 0 || len(c.Solve) > 0 || c.Best != "" {
 		return nil, fmt.Errorf("%w: claims at jumps, on equations, with restrictions or with constants to find", export.ErrUnsupported)

@@ -3,6 +3,7 @@ package statement
 import (
 	"fmt"
 	"math/big"
+	"strings"
 
 	"creaseproof/entropy"
 	"creaseproof/entropy/algebra"
@@ -19,8 +20,10 @@ type pair struct {
 // trees is the arithmetic that builds trees beside exact values.
 type trees struct {
 	*entropy.Exact
-	vars map[string]algebra.Var
-	size int
+	vars  map[string]algebra.Var
+	frame *entropy.Frame              // where derivatives are named along its axes
+	put   map[algebra.Var]export.Expr // numbers for indeterminates
+	size  int
 }
 
 // maxSize bounds the nodes of all trees together.
@@ -77,9 +80,47 @@ func neg(a export.Expr) export.Expr {
 	return export.Negation{X: a}
 }
 
+// name is the name of an indeterminate: at frame angle 0, derivatives along the
+// coordinates of the frame's plane are those along its axes, and are named so.
+func (t *trees) name(v algebra.Var) string {
+	name := t.Ring.Name(v)
+	s := t.Ring.Symbol(v)
+	if t.frame == nil || s.Kind != jet.Derivative || s.Index.Order() == 0 {
+		return name
+	}
+	before, after := t.Ring.Unknowns[s.Place]+"_", ""
+	switch s.Side {
+	case jet.Mean:
+		before, after = "{"+before, "}"
+	case jet.Difference:
+		before, after = "["+before, "]"
+	case jet.PlusSide:
+		after = "(+)"
+	case jet.MinusSide:
+		after = "(-)"
+	}
+	var along strings.Builder
+	for i, k := range s.Index {
+		if k == 0 {
+			continue
+		}
+		axis := t.Ring.Coordinates[i]
+		for j, p := range t.frame.Plane {
+			if i == p {
+				axis = t.frame.Axes[j]
+			}
+		}
+		along.WriteString(strings.Repeat(axis, int(k)))
+	}
+	return before + along.String() + after
+}
+
 // variable is an indeterminate of the ring as a tree.
 func (t *trees) variable(v algebra.Var) export.Expr {
-	name := t.Ring.Name(v)
+	if x, ok := t.put[v]; ok {
+		return x
+	}
+	name := t.name(v)
 	t.vars[name] = v
 	return export.Variable(name)
 }
@@ -110,7 +151,7 @@ func (t *trees) writtenPoly(p algebra.Poly) export.Expr {
 		}
 		for _, pw := range m.Powers() {
 			y := t.variable(pw.Var)
-			if pw.Exp > 1 {
+			if pw.Exp > 1 && !isNumber(y, "0") && !isNumber(y, "1") {
 				y = export.Power{Base: y, Exp: pw.Exp}
 			}
 			x = t.product(x, y)

@@ -88,3 +88,17 @@ Proof.
   rewrite E, Hz. pose proof (product_nonneg k g (Rlt_le _ _ Hk) Hg) as H.
   rewrite <- S in H. pose proof (from_squares x y Hx) as L. lra.
 Qed.
+
+Lemma fails_above : forall l r k b x : R,
+  0 < k -> b < x -> r - l = k * (b - x) -> r < l.
+Proof.
+  intros l r k b x Hk Hx E.
+  assert (H : 0 < k * (x - b)) by (apply product_pos; lra). lra.
+Qed.
+
+Lemma fails_below : forall l r k b x : R,
+  0 < k -> x < b -> r - l = k * (x - b) -> r < l.
+Proof.
+  intros l r k b x Hk Hx E.
+  assert (H : 0 < k * (b - x)) by (apply product_pos; lra). lra.
+Qed.
