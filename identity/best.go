@@ -2,6 +2,7 @@ package identity
 
 import (
 	"errors"
+	"maps"
 	"math"
 	"math/big"
 	"slices"
@@ -178,6 +179,19 @@ func (b *bestSearch) beyond(g *exact.Gap, upper bool) (jet.Point, bool) {
 			return at, true
 		}
 	}
+	for _, z := range append(b.lattice(g), b.rationalZeros(g)...) {
+		at := pts.Draw()
+		if at == nil {
+			continue
+		}
+		maps.Copy(at, z)
+		if !d.Consistent(pts, at) || !pts.Admissible(at) {
+			continue
+		}
+		if x, ok := d.Ring.Exact(g.Value, at); ok && x.IsZero() && good(at) {
+			return at, true
+		}
+	}
 	for range 200 {
 		at := pts.Draw()
 		if at == nil || !pts.OnVariety(at, list) {
@@ -191,6 +205,59 @@ func (b *bestSearch) beyond(g *exact.Gap, upper bool) (jet.Point, bool) {
 		}
 	}
 	return nil, false
+}
+
+// lattice are jets with entries 0 and 1, of gaps with few derivatives.
+func (b *bestSearch) lattice(g *exact.Gap) []jet.Point {
+	var vars []algebra.Var
+	for _, v := range g.Poly.Vars() {
+		if b.d.Ring.Symbol(v).Kind == jet.Derivative {
+			vars = append(vars, v)
+		}
+	}
+	if len(vars) > 9 {
+		return nil
+	}
+	var out []jet.Point
+	for k := range 1 << len(vars) {
+		p := jet.Point{}
+		for i, v := range vars {
+			p[v] = algebra.Int(int64(k >> i & 1))
+		}
+		out = append(out, p)
+	}
+	return out
+}
+
+// rationalZeros are numerical zeros of a gap, scaled so that their largest
+// derivative is ±1, and recognised as rational.
+func (b *bestSearch) rationalZeros(g *exact.Gap) []jet.Point {
+	d := b.d
+	var out []jet.Point
+next:
+	for _, z := range gram.Zeros(d.Ctx, d.reduction(g).problemFor(g.Poly)) {
+		scale := 0.0
+		for v, x := range z {
+			if d.Ring.Symbol(v).Kind == jet.Derivative {
+				scale = max(scale, math.Abs(x))
+			}
+		}
+		for _, by := range []float64{1, scale} {
+			p := jet.Point{}
+			for v, x := range z {
+				if d.Ring.Symbol(v).Kind == jet.Derivative && by > 0 {
+					x /= by
+				}
+				r := gram.Recognise(x)
+				if len(r) == 0 {
+					continue next
+				}
+				p[v] = r[len(r)-1]
+			}
+			out = append(out, p)
+		}
+	}
+	return out
 }
 
 // guesses are candidates for the end: recognised from the semidefinite program
@@ -211,7 +278,7 @@ func (b *bestSearch) guesses(upper bool) []algebra.Rat {
 }
 
 // bisections bounds the values tried by bracket.
-const bisections = 40
+const bisections = 24
 
 // bracket finds a value at which the inequality is proved and one beyond at
 // which it is refuted, as near to each other as the budget allows; the

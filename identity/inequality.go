@@ -22,14 +22,14 @@ func (d *decider) inequality() error {
 	if d.Claim.Best != "" {
 		return d.best()
 	}
-	if len(d.Wells) > 0 {
+	if len(d.Wells) > 0 || len(d.Ideal) > 0 {
 		if ok, err := d.refuteOnWells(); err != nil || ok {
 			return err
 		}
 		if ok, err := d.proveOnWells(); err != nil || ok {
 			return err
 		}
-		ok, err := d.Parametrise()
+		ok, err := d.parametrise()
 		if err != nil {
 			return err
 		}
@@ -67,6 +67,19 @@ func (d *decider) inequality() error {
 		return err
 	}
 	return d.search(g)
+}
+
+// parametrise replaces the wells, or the zeros of one equation, by a rational
+// parametrisation where there is one.
+func (d *decider) parametrise() (bool, error) {
+	if len(d.Wells) > 0 {
+		return d.Parametrise()
+	}
+	g, err := d.Gap()
+	if err != nil {
+		return false, err
+	}
+	return d.ParametriseZeros(g)
 }
 
 // squareVars orders the indeterminates in which squares are completed:

@@ -30,7 +30,7 @@ func (d *decider) prove(g *exact.Gap, done []squares.Term) (bool, error) {
 			second = p
 		}
 	}
-	if len(d.Ideal) > 0 || len(d.Wells) > len(g.Wells) {
+	if (len(d.Ideal) > 0 || len(d.Wells) > 0) && len(g.Wells) == 0 {
 		return false, nil // equations that are not part of the reduction
 	}
 	effort, ok := gram.Efforts(d.opt.Effort)
@@ -94,24 +94,11 @@ func (r *reduction) strict(m []gram.Square) bool {
 // proveOnWells searches for a certificate in the traces themselves, with the
 // wells on both sides as equations.
 func (d *decider) proveOnWells() (bool, error) {
-	g, err := d.Gap()
-	if err != nil {
+	g, ok, err := d.GapOnWells()
+	if err != nil || !ok {
 		return false, err
 	}
-	for _, w := range d.Wells {
-		rel, ok := exact.Monic(w)
-		if !ok {
-			return false, nil
-		}
-		g.Wells = append(g.Wells, rel)
-	}
-	if g.Poly, err = d.InTraces(g.Poly); err != nil {
-		return false, err
-	}
-	if err := d.RemoveAngle(g); err != nil {
-		return false, err
-	}
-	ok, err := d.prove(g, nil)
+	ok, err = d.prove(g, nil)
 	d.Rec.OnWells = ok
 	return ok, err
 }
@@ -148,11 +135,24 @@ func (d *decider) squareRoots(r *reduction, effort gram.Effort, depth int) (*cer
 	if depth == 0 || !root {
 		return nil, nil, nil
 	}
+	for _, rootsOnly := range []bool{false, true} {
+		cert, steps, err := d.squareOnce(r, effort, depth, rootsOnly)
+		if err != nil || cert != nil {
+			return cert, steps, err
+		}
+	}
+	return nil, nil, nil
+}
+
+// squareOnce squares x >= y, where x holds the terms that are visibly
+// non-negative: all of them, or only those with a root.
+func (d *decider) squareOnce(r *reduction, effort gram.Effort, depth int, rootsOnly bool) (*certificate.Certificate, []string, error) {
 	one := algebra.Const(algebra.Int(1))
 	var x, y algebra.Poly
 	for m, c := range r.Target.Terms() {
 		t := algebra.FromTerms([]algebra.Term{{Mono: m, Coef: c}})
-		if d.Ring.VisiblyNonNegative(algebra.FromPoly(t)) {
+		holdsRoot := slices.ContainsFunc(t.Vars(), func(v algebra.Var) bool { return d.Ring.Symbol(v).Kind == jet.Root })
+		if d.Ring.VisiblyNonNegative(algebra.FromPoly(t)) && (holdsRoot || !rootsOnly) {
 			x = x.Add(t)
 		} else {
 			y = y.Sub(t)

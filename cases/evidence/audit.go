@@ -140,27 +140,35 @@ func (a *audit) inequality(d *exact.Problem) error {
 // gap is the gap that the certificate is about.
 func (a *audit) gap(d *exact.Problem) (*exact.Gap, error) {
 	f := a.file
-	if f.Parameters && !f.OnWells {
-		if ok, err := d.Parametrise(); err != nil || !ok {
-			return nil, fmt.Errorf("the well has no rational parametrisation: %w", err)
+	if f.OnWells {
+		g, ok, err := d.GapOnWells()
+		if err == nil && !ok {
+			err = errors.New("the wells are not relations for derivatives of their own")
 		}
+		return g, err
 	}
 	g, err := d.Gap()
 	if err != nil {
 		return nil, err
 	}
-	if f.OnWells {
-		for _, w := range d.Wells {
-			rel, ok := exact.Monic(w)
-			if !ok {
-				return nil, errors.New("the well is not monic in any derivative")
-			}
-			g.Wells = append(g.Wells, rel)
+	if f.Parameters {
+		var ok bool
+		if len(d.Wells) > 0 {
+			ok, err = d.Parametrise()
+		} else {
+			ok, err = d.ParametriseZeros(g)
 		}
-		if g.Poly, err = d.InTraces(g.Poly); err != nil {
+		if err == nil && !ok {
+			err = errors.New("the well has no rational parametrisation")
+		}
+		if err != nil {
 			return nil, err
 		}
-	} else if len(d.Wells) > 0 || len(d.Ideal) > 0 {
+		if g, err = d.Gap(); err != nil {
+			return nil, err
+		}
+	}
+	if len(d.Wells) > 0 || len(d.Ideal) > 0 {
 		return nil, errors.New("a certificate beside equations that are not solved")
 	}
 	if len(f.Null) > 0 {

@@ -28,10 +28,11 @@ type Problem struct {
 	Wells   []algebra.Poly // at a jump: the well on each side, where it is not solved
 	Ideal   []algebra.Poly // modulo: generators that are not solved
 
-	jumpRewriter jet.Rewriter   // what atJump installed
-	equations    []algebra.Poly // modulo: the ideal before it was differentiated
-	solved       []*solved      // modulo: equations that determine a derivative
-	basis        []algebra.Poly // of the ideal of that many generators, completed
+	jumpRewriter jet.Rewriter                   // what atJump installed
+	equations    []algebra.Poly                 // modulo: the ideal before it was differentiated
+	parameters   map[jet.Index]algebra.Fraction // derivatives on a parametrised well
+	solved       []*solved                      // modulo: equations that determine a derivative
+	basis        []algebra.Poly                 // of the ideal of that many generators, completed
 	basisOf      int
 	// hidden says that the equations may have consequences that were not
 	// found, so that a point is no refutation.

@@ -37,6 +37,35 @@ func (d *Problem) Gap() (*Gap, error) {
 	return g, d.Clear(g)
 }
 
+// GapOnWells is the gap with the wells on both sides of a jump, or the equations
+// that are not solved, as relations: in the traces, at a jump. It reports false
+// where one of them is monic in no derivative of its own.
+func (d *Problem) GapOnWells() (*Gap, bool, error) {
+	g, err := d.Gap()
+	if err != nil {
+		return nil, false, err
+	}
+	gens := d.Wells
+	if len(gens) == 0 {
+		gens = d.equations
+	}
+	taken := map[algebra.Var]bool{}
+	for _, w := range gens {
+		rel, ok := Monic(w)
+		if !ok || taken[rel.Var] {
+			return nil, false, nil
+		}
+		taken[rel.Var] = true
+		g.Wells = append(g.Wells, rel)
+	}
+	if len(d.Wells) > 0 {
+		if g.Poly, err = d.InTraces(g.Poly); err != nil {
+			return nil, false, err
+		}
+	}
+	return g, len(gens) > 0, d.RemoveAngle(g)
+}
+
 // At is the gap with a value put in for a constant in which it is affine.
 func (g *Gap) At(v algebra.Var, x algebra.Rat) *Gap {
 	put := map[algebra.Var]algebra.Fraction{v: jet.Rational(x.Big())}

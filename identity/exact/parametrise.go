@@ -37,6 +37,33 @@ func (d *Problem) Parametrise() (bool, error) {
 	return true, nil
 }
 
+// ParametriseZeros does the same for an inequality about first derivatives on
+// the zeros of one equation.
+func (d *Problem) ParametriseZeros(g *Gap) (bool, error) {
+	if len(d.equations) != 1 || len(d.Ring.Unknowns) != 1 || len(d.solved) > 0 {
+		return false, nil
+	}
+	for _, v := range d.Ring.Support(g.Value, g.Left, g.Right, algebra.FromPoly(d.equations[0])) {
+		if s := d.Ring.Symbol(v); s.Kind == jet.Derivative && s.Index.Order() != 1 {
+			return false, nil
+		}
+	}
+	m, ok, err := d.parametriseOne(d.equations[0], jet.NoSide)
+	if err != nil || !ok {
+		return false, err
+	}
+	d.Ring.SetRewriter(func(_ int, j jet.Index, side jet.Side) (algebra.Fraction, bool, error) {
+		x, ok := m[j]
+		if !ok && j.Order() > 1 {
+			return x, false, fmt.Errorf("%w: a second derivative on a parametrised well", jet.ErrOutside)
+		}
+		return x, ok && side == jet.NoSide, nil
+	})
+	d.Ideal, d.equations, d.parameters = nil, nil, m
+	d.In.Reset()
+	return true, nil
+}
+
 func (d *Problem) parametriseOne(g algebra.Poly, side jet.Side) (map[jet.Index]algebra.Fraction, bool, error) {
 	if g.TotalDegree() != 2 {
 		return nil, false, nil

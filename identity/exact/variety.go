@@ -231,6 +231,9 @@ func (p *Points) quadric(at jet.Point, g algebra.Poly, used map[algebra.Var]bool
 			a = a.Add(c.Mul(dir[v]).Mul(dir[w]).Mul(algebra.Frac64(1, 2)))
 		}
 	}
+	if b.IsZero() {
+		return false // a singular point, or a line that touches
+	}
 	t, ok := b.Neg().Quo(a)
 	if !ok {
 		return false

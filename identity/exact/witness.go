@@ -41,6 +41,9 @@ func (d *Problem) showPoint(at jet.Point, left, right string, show func(algebra.
 			w.Jet[s.Name] = x.String()
 		}
 	}
+	for j, f := range d.parameters {
+		w.Jet[d.Ring.JetName(0, j)] = d.Ring.Show(f, at)
+	}
 	if d.Claim.Jump {
 		d.showTraces(w, show)
 	}

@@ -93,6 +93,9 @@ func (p *Problem) multipliers(vars []algebra.Var, half int) [][]Square {
 	one := algebra.Int(1)
 	homogeneous := len(gradings(support(p.Target, vars), len(vars))) > 0
 	var out [][]Square
+	if half == 1 {
+		out = p.positiveMultipliers()
+	}
 	for _, s := range sets {
 		var sum []Square
 		for _, v := range s {
@@ -104,6 +107,27 @@ func (p *Problem) multipliers(vars []algebra.Var, half int) [][]Square {
 		} else {
 			out = append(out, withOne, sum)
 		}
+	}
+	return out
+}
+
+// positiveMultipliers are single strict constraints that share a variable with
+// the target, and the sum of the variables that are assumed positive.
+func (p *Problem) positiveMultipliers() [][]Square {
+	one := algebra.Int(1)
+	unit := algebra.Const(one)
+	var sum []Square
+	var out [][]Square
+	for i, g := range p.Positive {
+		switch _, ok := p.sign(i); {
+		case ok:
+			sum = append(sum, Square{Weight: one, Factors: []int{i}, Base: unit})
+		case g.Strict && p.relevant(i):
+			out = append(out, []Square{{Weight: one, Factors: []int{i}, Base: unit}})
+		}
+	}
+	if len(sum) > 1 {
+		out = append(out, sum)
 	}
 	return out
 }

@@ -92,6 +92,22 @@ func (f *numeric) derivatives(x, g []float64, h *mat.SymDense) {
 // zeroWork bounds the multiplications of all descents to zeros together.
 const zeroWork = 400_000_000
 
+// Zeros are numerical zeros of the target at which the constraints hold, as
+// guesses of exact ones: for each, values of the variables near which exact
+// zeros may be.
+func Zeros(ctx context.Context, p *Problem) []map[algebra.Var]float64 {
+	vars := p.allVars()
+	var out []map[algebra.Var]float64
+	for _, z := range p.numericalZeros(ctx, vars, 4*len(vars)+20) {
+		m := map[algebra.Var]float64{}
+		for i, v := range vars {
+			m[v] = z[i]
+		}
+		out = append(out, m)
+	}
+	return out
+}
+
 // numericalZeros looks for zeros of the target at which the constraints hold,
 // by damped Newton steps from random starts with one variable and all positive
 // constants held. They only guide the facial reduction.
