@@ -6,8 +6,9 @@
 // Euler expression, which has to vanish; a span becomes one equation for each
 // component; an inequality becomes left <= right with the certificate of its
 // reduced form, or the reduced form where the sides cannot be written in its
-// variables: on wells with their parameters, up to a divergence, and where
-// a denominator is not visibly positive. Where the frame angle was removed, the
+// variables: on wells that determine no derivative, up to a divergence, and where
+// a denominator that is no monomial has no visible sign. A denominator that may
+// vanish is assumed not to. Where the frame angle was removed, the
 // sides are those at angle 0, in the derivatives along the axes. For the best
 // values of a constant there is one inequality for each end, one statement that
 // the inequality fails beyond it where the jet that shows it is rational, and the

@@ -112,7 +112,7 @@ func withSides(s *export.Inequality, d *exact.Problem, g *exact.Gap, red *exact.
 	if out.Left, out.Right, err = sides(d.Claim, t); err != nil {
 		return nil, err
 	}
-	w := &widened{d: d, red: red, claim: *s.Claim, name: t.name}
+	w := &widened{d: d, red: red, claim: *s.Claim, name: t.name, added: map[algebra.Var]int{}}
 	w.claim.Variables, w.claim.Positive = slices.Clone(s.Claim.Variables), slices.Clone(s.Claim.Positive)
 	for name := range t.vars {
 		if occurs(name, out.Left) || occurs(name, out.Right) {
@@ -159,7 +159,7 @@ type widened struct {
 	claim   certificate.Claim
 	name    func(v algebra.Var) string
 	factors [][]certificate.Square
-	added   []algebra.Var // whose signs stand behind those of the reduction
+	added   map[algebra.Var]int // the places of further signs
 }
 
 func (w *widened) variable(name string) {
@@ -169,24 +169,62 @@ func (w *widened) variable(name string) {
 }
 
 // scale is the product of the denominators of the gap, each a sum of squares:
-// what the target is divided by in the gap. It reports whether they are.
+// what the target is divided by in the gap. Where one may vanish, that it does not
+// becomes a premise, for the sides have no value there. It reports false where
+// a denominator has no visible sign and is no monomial.
 func (w *widened) scale(g *exact.Gap) bool {
 	for _, f := range g.Value.DenFactors() {
 		base := f.Base
+		visible := w.d.Ring.VisiblyNonNegative(algebra.FromPoly(base))
+		negative := w.d.Ring.VisiblyNonNegative(algebra.FromPoly(base.Neg()))
 		if g.Turned != nil {
 			base = base.EvalPartial(map[algebra.Var]algebra.Rat{g.Turned.Cos: algebra.Int(1), g.Turned.Sin: {}})
 		}
+		if !visible && negative {
+			base = base.Neg()
+		}
 		list, ok := w.squares(base)
-		if !ok {
-			if list, ok = w.squares(base.Neg()); !ok {
+		exp := f.Exp
+		if !ok && !visible && !negative {
+			if base.Len() != 1 {
 				return false
 			}
+			base, exp = base.Mul(base), (exp+1)/2
 		}
-		for range f.Exp {
+		if !ok || !w.strict(list) {
+			list = []certificate.Square{{Weight: "1", Factors: []int{w.premise(base)}, Base: certificate.Polynomial{{C: "1"}}}}
+		}
+		for range exp {
 			w.factors = append(w.factors, list)
 		}
 	}
 	return true
+}
+
+// strict reports a sum of squares with a term that is surely positive.
+func (w *widened) strict(list []certificate.Square) bool {
+	return slices.ContainsFunc(list, func(s certificate.Square) bool {
+		return len(s.Base[0].M) == 0 && !slices.ContainsFunc(s.Factors, func(i int) bool { return !w.claim.Positive[i].Strict })
+	})
+}
+
+// premise adds p > 0 to the assumptions, and returns its place.
+func (w *widened) premise(p algebra.Poly) int {
+	q := certificate.Polynomial{}
+	for m, c := range p.Terms() {
+		t := certificate.Term{C: c.String()}
+		for _, pw := range m.Powers() {
+			if t.M == nil {
+				t.M = map[string]int{}
+			}
+			name := w.name(pw.Var)
+			w.variable(name)
+			t.M[name] = pw.Exp
+		}
+		q = append(q, t)
+	}
+	w.claim.Positive = append(w.claim.Positive, certificate.Constraint{Poly: q, Strict: true})
+	return len(w.claim.Positive) - 1
 }
 
 // squares writes p as a sum of monomials that are visibly not negative.
@@ -241,16 +279,16 @@ func (w *widened) sign(v algebra.Var, name string) (int, bool) {
 	default:
 		return -1, false
 	}
-	if i := slices.Index(w.added, v); i >= 0 {
-		return len(w.red.Positive) + i, negative
+	if i, ok := w.added[v]; ok {
+		return i, negative
 	}
 	c := "1"
 	if negative {
 		c = "-1"
 	}
-	w.added = append(w.added, v)
+	w.added[v] = len(w.claim.Positive)
 	w.claim.Positive = append(w.claim.Positive, certificate.Constraint{
 		Poly: certificate.Polynomial{{C: c, M: map[string]int{name: 1}}}, Strict: strict,
 	})
-	return len(w.red.Positive) + len(w.added) - 1, negative
+	return w.added[v], negative
 }

@@ -89,11 +89,29 @@ func TestInequalitiesAreStatedAsTheyStand(t *testing.T) {
 	}
 }
 
+// A denominator that may vanish is a premise.
+func TestDenominatorsThatMayVanish(t *testing.T) {
+	for text, want := range map[string][]string{
+		`states = "u_x^2/u_y^2 >= -1"`:                    {"0 < u_y^2 ->", "- 1 <= u_x^2 / u_y^2"},
+		`states = "1/(u_x^2 + u_y^2) >= -u_x^2"`:          {"0 < u_x^2 + u_y^2 ->"},
+		`states = "u_x^4/u_y^3 <= u_x^4/u_y^3 + 1/u_y^2"`: {"0 < u_y^2 ->"},
+	} {
+		s, err := of(t, claimOf(text), "claim")
+		require.NoError(t, err)
+		got := accepted(t, s)
+		require.NotNil(t, s.(*export.Inequality).Left, text)
+		for _, w := range want {
+			assert.Contains(t, got, w, text)
+		}
+	}
+}
+
 // The sign of a denominator that the statement divides by must show.
 func TestSidesThatCannotBeWritten(t *testing.T) {
 	for _, text := range []string{
-		`states = "u_x^2/u_y^2 >= -1"`,
 		`states = "-u_x^2 <= u_x u_y/u_y"`,
+		`states = "u_x^2/u_y <= u_x^2/u_y + u_xx^2"`,
+		`states = "u_x^2/(u_x + u_y)^2 >= -1"`,
 	} {
 		s, err := of(t, head+"[[claim]]\nname = \"claim\"\nexpect = \"proved\"\n"+text+"\nassume = [\"u_x >= 0\"]\n", "claim")
 		require.NoError(t, err)
