@@ -96,6 +96,11 @@ func (b *bestSearch) run() error {
 		ends = append(ends, *e)
 	}
 	d.clearProof()
+	if len(ends) == 0 {
+		d.Rec.Method = ""
+		d.Open("the inequality does not change with %s on the set of the assumptions", d.Claim.Best)
+		return nil
+	}
 	d.Rec.Ends, d.Rec.Unbounded = ends, free
 	d.Rec.Method = "certificates at the ends, jets beyond them"
 	d.Rec.Verdict = Proved
@@ -153,6 +158,7 @@ func (b *bestSearch) exactEnd(x algebra.Rat, upper bool) (*End, bool, error) {
 	if !ok {
 		return nil, false, nil
 	}
+	delete(at, b.v) // the jet serves for all values beyond
 	d.ShowWitness(at, g.Left, g.Right)
 	e.Beyond = d.Rec.Witness
 	d.Rec.Witness = nil
