@@ -4,15 +4,17 @@
 //
 // An identity becomes its two sides; an equation up to a divergence becomes its
 // Euler expression, which has to vanish; a span becomes one equation for each
-// component; an inequality becomes left <= right with the certificate of its
-// reduced form, or the reduced form where the sides cannot be written in its
-// variables: on wells that determine no derivative, up to a divergence, and where
-// a denominator that is no monomial has no visible sign. A denominator that may
-// vanish is assumed not to. Where the frame angle was removed, the
-// sides are those at angle 0, in the derivatives along the axes. For the best
-// values of a constant there is one inequality for each end, one statement that
-// the inequality fails beyond it where the jet that shows it is rational, and the
-// sign of the slope on a side without an end.
+// component; an inequality becomes left <= right, with the certificate of its
+// reduced form. Where the sides cannot be written in its variables it is the
+// reduced form, 0 <= target: up to a divergence, on wells that determine no
+// derivative, with most roots at a jump, and where a denominator that is no
+// monomial has no visible sign. A denominator that may vanish is assumed not to.
+// Where the frame angle was removed, the sides are those at angle 0, in the
+// derivatives along the axes.
+//
+// For the best values of a constant there is one inequality for each end, one
+// statement that the inequality fails beyond it where the jet that shows it is
+// rational, and the sign of the slope on a side without an end.
 //
 // Kernels (roots, cosine and sine of an angle, exponentials) become variables;
 // what holds between them is stated beside the equations, and their total

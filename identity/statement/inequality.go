@@ -112,7 +112,7 @@ func withSides(s *export.Inequality, d *exact.Problem, g *exact.Gap, red *exact.
 	if out.Left, out.Right, err = sides(d.Claim, t); err != nil {
 		return nil, err
 	}
-	w := &widened{d: d, red: red, claim: *s.Claim, name: t.name, added: map[algebra.Var]int{}}
+	w := &widened{d: d, red: red, claim: *s.Claim, name: t.name, added: map[algebra.Var]int{}, rooted: map[algebra.Var]bool{}}
 	w.claim.Variables, w.claim.Positive = slices.Clone(s.Claim.Variables), slices.Clone(s.Claim.Positive)
 	for name := range t.vars {
 		if occurs(name, out.Left) || occurs(name, out.Right) {
@@ -122,6 +122,9 @@ func withSides(s *export.Inequality, d *exact.Problem, g *exact.Gap, red *exact.
 	slices.Sort(w.claim.Variables[len(s.Claim.Variables):])
 	if !w.scale(g) {
 		return nil, nil
+	}
+	for _, e := range append(export.Denominators(out.Left), export.Denominators(out.Right)...) {
+		w.roots(e, t.vars)
 	}
 	out.Claim, out.Scale = &w.claim, w.factors
 	if _, err := export.Coq("", &out); err != nil {
@@ -160,6 +163,7 @@ type widened struct {
 	name    func(v algebra.Var) string
 	factors [][]certificate.Square
 	added   map[algebra.Var]int // the places of further signs
+	rooted  map[algebra.Var]bool
 }
 
 func (w *widened) variable(name string) {
@@ -199,6 +203,24 @@ func (w *widened) scale(g *exact.Gap) bool {
 		}
 	}
 	return true
+}
+
+// roots makes it a premise that a root in a denominator does not vanish.
+func (w *widened) roots(e export.Expr, vars map[string]algebra.Var) {
+	switch e := e.(type) {
+	case export.Product:
+		for _, x := range e {
+			w.roots(x, vars)
+		}
+	case export.Power:
+		w.roots(e.Base, vars)
+	case export.Variable:
+		v, ok := vars[string(e)]
+		if ok && w.d.Ring.Symbol(v).Kind == jet.Root && w.d.Ring.Symbol(v).Sign == jet.NonNegative && !w.rooted[v] {
+			w.rooted[v] = true
+			w.premise(algebra.Variable(v))
+		}
+	}
 }
 
 // strict reports a sum of squares with a term that is surely positive.

@@ -92,9 +92,10 @@ func TestInequalitiesAreStatedAsTheyStand(t *testing.T) {
 // A denominator that may vanish is a premise.
 func TestDenominatorsThatMayVanish(t *testing.T) {
 	for text, want := range map[string][]string{
-		`states = "u_x^2/u_y^2 >= -1"`:                    {"0 < u_y^2 ->", "- 1 <= u_x^2 / u_y^2"},
-		`states = "1/(u_x^2 + u_y^2) >= -u_x^2"`:          {"0 < u_x^2 + u_y^2 ->"},
-		`states = "u_x^4/u_y^3 <= u_x^4/u_y^3 + 1/u_y^2"`: {"0 < u_y^2 ->"},
+		`states = "u_x^2/u_y^2 >= -1"`: {"0 < u_y^2 ->", "- 1 <= u_x^2 / u_y^2"},
+		`states = "u_xx/sqrt(u_x^2 + u_y^2) <= (u_xx^2 + 1)/(2 sqrt(u_x^2 + u_y^2))"`: {"0 < sqrt_u_x_pow_2_plus_u_y_pow_2 ->", "u_xx / sqrt_u_x_pow_2_plus_u_y_pow_2 <="},
+		`states = "1/(u_x^2 + u_y^2) >= -u_x^2"`:                                      {"0 < u_x^2 + u_y^2 ->"},
+		`states = "u_x^4/u_y^3 <= u_x^4/u_y^3 + 1/u_y^2"`:                             {"0 < u_y^2 ->"},
 	} {
 		s, err := of(t, claimOf(text), "claim")
 		require.NoError(t, err)
