@@ -2,7 +2,6 @@ package entropy
 
 import (
 	"fmt"
-	"math"
 	"math/big"
 
 	"creaseproof/entropy/formula"
@@ -38,7 +37,11 @@ type Input struct {
 // the derivative of a jet is another jet, of a coordinate 0 or 1, and of a
 // constant or an angle 0.
 //
-// Compiled formulas are evaluated in float64 and prove nothing.
+// Compiled formulas are evaluated in float64 and prove nothing. Where
+// Builder.Exact is set before the first formula, numbers that are no float64
+// and pi keep an enclosure, and evaluation over intervals is rigorous:
+// program.Program.EvalInterval. The float64 values of Constants are then taken
+// as they are; a constant that is none is to be an input.
 type Numeric struct {
 	Builder *program.Builder
 	// Constants gives values to constants. Those without a value are inputs.
@@ -140,14 +143,11 @@ func (n *Numeric) describe(in Input) string {
 
 func (n *Numeric) done(x program.Ref) (program.Ref, error) { return x, n.Err() }
 
-// Rational is x, rounded.
-func (n *Numeric) Rational(x *big.Rat) program.Ref {
-	f, _ := x.Float64()
-	return n.Builder.Const(f)
-}
+// Rational is x, rounded or enclosed.
+func (n *Numeric) Rational(x *big.Rat) program.Ref { return n.Builder.ConstRat(x) }
 
-// Pi is π, rounded.
-func (n *Numeric) Pi() program.Ref { return n.Builder.Const(math.Pi) }
+// Pi is π, rounded or enclosed.
+func (n *Numeric) Pi() program.Ref { return n.Builder.ConstPi() }
 
 // Coordinate is an input.
 func (n *Numeric) Coordinate(i int) program.Ref {
@@ -197,17 +197,27 @@ func (n *Numeric) Quo(a, b program.Ref) (program.Ref, error) {
 	return n.done(n.Builder.Quo(a, b))
 }
 
+// maxExponent bounds integer exponents.
+var maxExponent = big.NewInt(1 << 30)
+
 // Power is a to a rational power; NaN for a negative base where the exponent
 // is no integer.
 func (n *Numeric) Power(a program.Ref, e *big.Rat) (program.Ref, error) {
 	if e.IsInt() {
-		if !e.Num().IsInt64() || e.Num().CmpAbs(big.NewInt(1<<30)) > 0 {
+		if !e.Num().IsInt64() || e.Num().CmpAbs(maxExponent) > 0 {
 			return 0, fmt.Errorf("the exponent %s is too large", e.RatString())
 		}
 		return n.done(n.Builder.PowInt(a, int(e.Num().Int64())))
 	}
 	if e.Cmp(big.NewRat(1, 2)) == 0 {
 		return n.done(n.Builder.Func(program.Sqrt, a))
+	}
+	if p, q := e.Num(), e.Denom(); p.IsInt64() && q.IsInt64() && p.CmpAbs(maxExponent) <= 0 && q.Cmp(maxExponent) <= 0 {
+		return n.done(n.Builder.PowRat(a, int(p.Int64()), int(q.Int64())))
+	}
+	if n.Builder.Exact {
+		b := n.Builder
+		return n.done(b.Func(program.Exp, b.Mul(b.ConstRat(e), b.Func(program.Log, a))))
 	}
 	f, _ := e.Float64()
 	return n.done(n.Builder.Pow(a, f))

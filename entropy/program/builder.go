@@ -52,11 +52,13 @@ const (
 	kindPowInt
 	kindPow
 	kindFunc
+	kindRange  // a constant known by an enclosure
+	kindPowRat // a rational power
 )
 
 // A node has operands a (and b, for binary kinds) of smaller index. imm holds
-// the bits of a constant or of a real exponent, the index of an input, or an
-// integer exponent.
+// the bits of a constant or of a real exponent, the index of an input or of an
+// enclosed constant, an integer exponent, or the two halves of a rational one.
 type node struct {
 	kind kind
 	fn   Func
@@ -68,7 +70,7 @@ func (n node) value() float64 { return math.Float64frombits(n.imm) }
 
 func (n node) arity() int {
 	switch n.kind {
-	case kindConst, kindInput:
+	case kindConst, kindInput, kindRange:
 		return 0
 	case kindAdd, kindSub, kindMul, kindQuo:
 		return 2
@@ -84,8 +86,16 @@ type Builder struct {
 	// 0 means [DefaultMaxNodes].
 	MaxNodes int
 
+	// Exact makes programs whose evaluation over intervals encloses the formulas
+	// as written: see [Program.EvalInterval]. Constants are folded only where the
+	// result is exact, and powers are kept as operations of their own. It is to
+	// be set before the first formula is built.
+	Exact bool
+
 	nodes  []node
 	index  map[node]Ref
+	ranges []enclosed
+	named  map[string]int
 	inputs int
 	err    error
 }

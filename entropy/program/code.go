@@ -26,14 +26,17 @@ const (
 	opAddAbsMul               // c + |a b|
 	opPow                     // a^k, real k
 	opFunc                    // fn(a)
+	opRange                   // k, enclosed by the range with the number arg[0]
+	opPowInt                  // a^k, integer k
+	opPowRat                  // a^(arg[1]/arg[2])
 )
 
 // arity is the number of slots an instruction reads.
 func (op opcode) arity() int {
 	switch op {
-	case opFill:
+	case opFill, opRange:
 		return 0
-	case opCopy, opNeg, opAddK, opSubK, opMulK, opQuoK, opPow, opFunc:
+	case opCopy, opNeg, opAddK, opSubK, opMulK, opQuoK, opPow, opFunc, opPowInt, opPowRat:
 		return 1
 	case opAdd, opSub, opMul, opQuo, opMulKAdd, opAddAbs:
 		return 2
@@ -46,7 +49,7 @@ func (op opcode) arity() int {
 // flops is the number of operations of the graph an instruction stands for.
 func (op opcode) flops() int {
 	switch op {
-	case opCopy, opFill:
+	case opCopy, opFill, opRange:
 		return 0
 	case opMulAdd, opMulSub, opSubMul, opMulKAdd, opAddAbs:
 		return 2
@@ -67,11 +70,12 @@ type instr struct {
 }
 
 // lower copies what the outputs need into a new builder, with integer powers
-// written as products.
+// written as products unless the Builder is exact.
 func (b *Builder) lower(outs []Ref) (*Builder, []Ref, error) {
 	low := NewBuilder()
 	low.MaxNodes = b.MaxNodes
 	low.inputs = b.inputs
+	low.Exact, low.ranges, low.named = b.Exact, b.ranges, b.named
 	last := refZero
 	for _, r := range outs {
 		last = max(last, r)
@@ -97,7 +101,7 @@ func (b *Builder) lower(outs []Ref) (*Builder, []Ref, error) {
 		n := b.nodes[i]
 		x, y := to[n.a], to[n.b]
 		switch n.kind {
-		case kindConst, kindInput:
+		case kindConst, kindInput, kindRange:
 			to[i] = low.add(n)
 		case kindAdd:
 			to[i] = low.Add(x, y)
@@ -110,9 +114,16 @@ func (b *Builder) lower(outs []Ref) (*Builder, []Ref, error) {
 		case kindNeg:
 			to[i] = low.Neg(x)
 		case kindPowInt:
-			to[i] = low.expandPower(x, int(int64(n.imm)))
+			if e := int(int64(n.imm)); b.Exact {
+				to[i] = low.PowInt(x, e)
+			} else {
+				to[i] = low.expandPower(x, e)
+			}
 		case kindPow:
 			to[i] = low.Pow(x, n.value())
+		case kindPowRat:
+			num, den := n.exponent()
+			to[i] = low.PowRat(x, num, den)
 		case kindFunc:
 			to[i] = low.Func(n.fn, x)
 		}
@@ -202,6 +213,13 @@ func (b *Builder) match(n node, uses []int32) instr {
 		return instr{op: opCopy}
 	case kindNeg:
 		return instr{op: opNeg, arg: [4]int32{x}}
+	case kindRange:
+		return instr{op: opRange, arg: [4]int32{int32(n.imm)}, k: b.ranges[n.imm].mid}
+	case kindPowInt:
+		return instr{op: opPowInt, arg: [4]int32{x}, k: float64(int64(n.imm))}
+	case kindPowRat:
+		num, den := n.exponent()
+		return instr{op: opPowRat, arg: [4]int32{x, int32(num), int32(den)}, k: float64(num) / float64(den)}
 	case kindPow:
 		return instr{op: opPow, arg: [4]int32{x}, k: n.value()}
 	case kindFunc:

@@ -10,6 +10,8 @@ import (
 // Slots are numbered inputs first, then outputs, then temporaries.
 type Program struct {
 	code    []instr
+	ranges  []enclosed
+	exact   bool
 	inputs  int
 	outputs int
 	temps   int
@@ -37,7 +39,7 @@ func (b *Builder) Compile(outs ...Ref) (*Program, error) {
 		return nil, fmt.Errorf("compile: expanding powers: %w", err)
 	}
 	code, used := low.choose(outs)
-	p := &Program{inputs: b.inputs, outputs: len(outs)}
+	p := &Program{inputs: b.inputs, outputs: len(outs), exact: b.Exact, ranges: slices.Clip(b.ranges)}
 	p.assign(low, code, schedule(low, code, used, outs), outs)
 	for i := range p.code {
 		p.flops += p.code[i].op.flops()
@@ -178,7 +180,7 @@ func (p *Program) Select(outputs ...int) (*Program, error) {
 	for i := range p.inputs {
 		to[i] = int32(i)
 	}
-	q := &Program{inputs: p.inputs, outputs: len(outputs)}
+	q := &Program{inputs: p.inputs, outputs: len(outputs), exact: p.exact, ranges: p.ranges}
 	live := make([]bool, total)
 	for j, k := range outputs {
 		if k < 0 || k >= p.outputs {

@@ -51,7 +51,7 @@ func (b *Builder) Diff(x Ref, d func(input int) Ref) Ref {
 			}
 		case kindNeg:
 			dv[i] = b.Neg(da)
-		case kindPowInt, kindPow, kindFunc:
+		case kindPowInt, kindPow, kindPowRat, kindFunc:
 			if da != refZero {
 				dv[i] = b.Mul(b.slope(i), da)
 			}
@@ -127,7 +127,7 @@ func (b *Builder) Gradient(x Ref, inputs []int) []Ref {
 			}
 		case kindNeg:
 			give(n.a, b.Neg(g))
-		case kindPowInt, kindPow, kindFunc:
+		case kindPowInt, kindPow, kindPowRat, kindFunc:
 			give(n.a, b.Mul(b.slope(i), g))
 		}
 	}

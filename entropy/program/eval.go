@@ -40,7 +40,7 @@ func (ins *instr) eval(s []float64) float64 {
 	switch ins.op {
 	case opCopy:
 		return a(0)
-	case opFill:
+	case opFill, opRange:
 		return ins.k
 	case opNeg:
 		return -a(0)
@@ -76,8 +76,10 @@ func (ins *instr) eval(s []float64) float64 {
 		return a(1) + math.Abs(a(0))
 	case opAddAbsMul:
 		return a(2) + math.Abs(float64(a(0)*a(1)))
-	case opPow:
+	case opPow, opPowRat:
 		return math.Pow(a(0), ins.k)
+	case opPowInt:
+		return powInt(a(0), int(ins.k))
 	case opFunc:
 		return ins.fn.eval(a(0))
 	}
@@ -120,7 +122,7 @@ func (p *Program) run(v [][]float64) {
 		switch ins.op {
 		case opCopy:
 			copy(d, v[ins.arg[0]])
-		case opFill:
+		case opFill, opRange:
 			fill(d, ins.k)
 		case opNeg:
 			neg(d, v[ins.arg[0]])
@@ -156,7 +158,11 @@ func (p *Program) run(v [][]float64) {
 			addAbs(d, v[ins.arg[0]], v[ins.arg[1]])
 		case opAddAbsMul:
 			addAbsMul(d, v[ins.arg[0]], v[ins.arg[1]], v[ins.arg[2]])
-		case opPow:
+		case opPowInt:
+			for j, x := range v[ins.arg[0]] {
+				d[j] = powInt(x, int(ins.k))
+			}
+		case opPow, opPowRat:
 			for j, x := range v[ins.arg[0]] {
 				d[j] = math.Pow(x, ins.k)
 			}

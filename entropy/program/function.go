@@ -3,6 +3,9 @@ package program
 import (
 	"fmt"
 	"math"
+	"math/big"
+
+	"creaseproof/entropy/interval"
 )
 
 // Func is a function of one real variable.
@@ -94,7 +97,7 @@ func (b *Builder) Func(f Func, x Ref) Ref {
 	}
 	n := b.nodes[x]
 	if n.kind == kindConst {
-		if r, ok := b.fold(f.eval(n.value())); ok {
+		if r, ok := b.fold(f.eval(n.value()), func() interval.Interval { return f.enclose(pt(n.value())) }); ok {
 			return r
 		}
 	}
@@ -117,7 +120,13 @@ func (b *Builder) slope(self Ref) Ref {
 		return b.Mul(b.Const(float64(m)), b.PowInt(n.a, m-1))
 	case kindPow:
 		p := n.value()
+		if b.Exact && !pt(p).Sub(pt(1)).IsSingleton() {
+			return b.Mul(b.Const(p), b.Quo(self, n.a))
+		}
 		return b.Mul(b.Const(p), b.Pow(n.a, p-1))
+	case kindPowRat:
+		num, den := n.exponent()
+		return b.Mul(b.ConstRat(big.NewRat(int64(num), int64(den))), b.PowRat(n.a, num-den, den))
 	}
 	switch n.fn {
 	case Sin:
@@ -142,7 +151,7 @@ func (b *Builder) slope(self Ref) Ref {
 	case Cbrt:
 		return b.Quo(refOne, b.Mul(b.Const(3), b.Mul(self, self)))
 	case Erf:
-		return b.Mul(b.Const(2/math.SqrtPi), b.Func(Exp, b.Neg(b.Mul(n.a, n.a))))
+		return b.Mul(b.twoOverRootPi(), b.Func(Exp, b.Neg(b.Mul(n.a, n.a))))
 	case Abs:
 		return b.Func(Sign, n.a)
 	}

@@ -3,15 +3,28 @@ package program
 import (
 	"math"
 	"math/bits"
+
+	"creaseproof/entropy/interval"
 )
 
-// fold returns the constant v if it is finite.
-func (b *Builder) fold(v float64) (Ref, bool) {
+// fold returns the constant v if it is finite and, in an exact Builder, only if
+// the enclosure of the value is a single number, which is then the constant.
+func (b *Builder) fold(v float64, enclose func() interval.Interval) (Ref, bool) {
+	if b.Exact {
+		x := enclose()
+		if !x.IsSingleton() {
+			return refZero, false
+		}
+		return b.Const(x.Inf()), true
+	}
 	if math.IsInf(v, 0) || math.IsNaN(v) {
 		return refZero, false
 	}
 	return b.Const(v), true
 }
+
+// pt is a number as an interval.
+func pt(c float64) interval.Interval { return interval.Point(c) }
 
 // binary adds a node for operands that no rule simplifies. The operands of
 // commutative kinds are put in order.
@@ -30,7 +43,7 @@ func (b *Builder) Add(x, y Ref) Ref {
 	cx, okx := b.constOf(x)
 	cy, oky := b.constOf(y)
 	if okx && oky {
-		if r, ok := b.fold(cx + cy); ok {
+		if r, ok := b.fold(cx+cy, func() interval.Interval { return pt(cx).Add(pt(cy)) }); ok {
 			return r
 		}
 		return b.binary(kindAdd, x, y)
@@ -62,7 +75,7 @@ func (b *Builder) Sub(x, y Ref) Ref {
 	cx, okx := b.constOf(x)
 	cy, oky := b.constOf(y)
 	if okx && oky {
-		if r, ok := b.fold(cx - cy); ok {
+		if r, ok := b.fold(cx-cy, func() interval.Interval { return pt(cx).Sub(pt(cy)) }); ok {
 			return r
 		}
 		return b.binary(kindSub, x, y)
@@ -94,7 +107,7 @@ func (b *Builder) Mul(x, y Ref) Ref {
 	cx, okx := b.constOf(x)
 	cy, oky := b.constOf(y)
 	if okx && oky {
-		if r, ok := b.fold(cx * cy); ok {
+		if r, ok := b.fold(cx*cy, func() interval.Interval { return pt(cx).Mul(pt(cy)) }); ok {
 			return r
 		}
 		return b.binary(kindMul, x, y)
@@ -135,7 +148,7 @@ func (b *Builder) Quo(x, y Ref) Ref {
 	cx, okx := b.constOf(x)
 	cy, oky := b.constOf(y)
 	if okx && oky {
-		if r, ok := b.fold(cx / cy); ok {
+		if r, ok := b.fold(cx/cy, func() interval.Interval { return pt(cx).Div(pt(cy)) }); ok {
 			return r
 		}
 		return b.binary(kindQuo, x, y)
@@ -202,7 +215,7 @@ func (b *Builder) PowInt(x Ref, n int) Ref {
 		return b.Quo(refOne, x)
 	}
 	if c, ok := b.constOf(x); ok {
-		if r, ok := b.fold(powInt(c, n)); ok {
+		if r, ok := b.fold(powInt(c, n), func() interval.Interval { return pt(c).Pown(n) }); ok {
 			return r
 		}
 	}
@@ -234,7 +247,7 @@ func powInt(x float64, n int) float64 {
 
 // Pow returns the real power x^p of a base x >= 0. It is NaN for a negative
 // base unless p is an integer. Integers and halves of small odd integers
-// become products and a square root.
+// become products and a square root; in an exact Builder only integers and 1/2.
 func (b *Builder) Pow(x Ref, p float64) Ref {
 	if !b.valid(x) {
 		return refZero
@@ -242,7 +255,10 @@ func (b *Builder) Pow(x Ref, p float64) Ref {
 	if p == math.Trunc(p) && math.Abs(p) <= maxPower {
 		return b.PowInt(x, int(p))
 	}
-	if h := 2 * p; h == math.Trunc(h) && math.Abs(p) < 8 {
+	if b.Exact && p == 0.5 {
+		return b.Func(Sqrt, x)
+	}
+	if h := 2 * p; h == math.Trunc(h) && math.Abs(p) < 8 && !b.Exact {
 		n := int(math.Abs(p))
 		r := b.Mul(b.PowInt(x, n), b.Func(Sqrt, x))
 		if p < 0 {
@@ -251,7 +267,7 @@ func (b *Builder) Pow(x Ref, p float64) Ref {
 		return r
 	}
 	if c, ok := b.constOf(x); ok {
-		if r, ok := b.fold(math.Pow(c, p)); ok {
+		if r, ok := b.fold(math.Pow(c, p), func() interval.Interval { return pt(c).Pow(pt(p)) }); ok {
 			return r
 		}
 	}
