@@ -42,6 +42,14 @@ func (d *decider) search(g *exact.Gap) error {
 	if len(d.Ideal) > 0 || len(d.Wells) > 0 {
 		return d.searchOnVariety(g, pts)
 	}
+	for _, v := range pts.Free {
+		if lo, hi := (&task{d: d}).bounds(v); lo >= hi {
+			if _, ok := pts.Next(); !ok {
+				d.Open("no jet was met that satisfies the assumptions on %s", d.Ring.Name(v))
+				return nil
+			}
+		}
+	}
 	least := math.Inf(1)
 	for k := range 1 << len(pts.Signs) {
 		t := &task{d: d, g: g, pts: pts}
