@@ -132,6 +132,12 @@ type Surface struct {
 	Branches []source.Text
 	Combine  *source.Text // "max", "min" or a nested expression, with Branches
 	Mesh     string       // path of a file
+	// With Mesh: the degree of the rule on each triangle and the largest defect
+	// between mesh and traces, zero and nil where not given, and whether the mesh
+	// needs no consistent orientation.
+	Order      int
+	Tolerance  *big.Rat
+	Unoriented bool
 	// The domain of Level and Branches: one of
 	Box      []Interval
 	Ball     *Ball

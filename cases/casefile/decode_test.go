@@ -97,7 +97,10 @@ cylinder = { center = ["0", "1"], radius = "2", axis = "x", heights = [0, "1"] }
 [[surface]]
 name = "mesh"
 density = "1"
-mesh = "front.off"
+mesh = "front.stl"
+order = 8
+tolerance = "1/1000"
+orientation = "ignored"
 `
 
 func TestDecode(t *testing.T) {
@@ -173,7 +176,10 @@ func TestDecode(t *testing.T) {
 	assert.Equal(t, "2", f.Surfaces[7].Ball.Radius.S)
 	assert.Equal(t, "x", f.Surfaces[8].Cylinder.Axis.S)
 	assert.Equal(t, "1", f.Surfaces[8].Cylinder.Heights[1].S)
-	assert.Equal(t, "front.off", f.Surfaces[9].Mesh)
+	assert.Equal(t, "front.stl", f.Surfaces[9].Mesh)
+	assert.Equal(t, 8, f.Surfaces[9].Order)
+	assert.Zero(t, f.Surfaces[9].Tolerance.Cmp(big.NewRat(1, 1000)))
+	assert.True(t, f.Surfaces[9].Unoriented)
 }
 
 // The order of over orients a patch, so it must be that of the file.

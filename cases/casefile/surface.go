@@ -26,7 +26,7 @@ func (d *decoder) surfaces(v *value) {
 func (d *decoder) surface(v *value) Surface {
 	const gradient = `plus_gradient = ["u_x", "u_y", "u_z"] as formulas`
 	s := Surface{Pos: d.place.at(v.off)}
-	ok := d.keys(v, "a [[surface]]", []key{
+	ok := d.keys(v, "a [[surface]]", append([]key{
 		{"name", func(e *entry) { s.Name, s.Pos = d.title(e.value) }},
 		{"values", func(e *entry) { s.Values = d.parameters(e.value) }},
 		{"plus", func(e *entry) { s.Plus = d.optional(e.value, "plus") }},
@@ -62,7 +62,7 @@ func (d *decoder) surface(v *value) Surface {
 			}
 		}},
 		{"expect", func(e *entry) { s.Expect = d.expect(e.value, false) }},
-	})
+	}, d.meshKeys(&s)...))
 	if ok {
 		d.complete(v, &s)
 	}
@@ -87,6 +87,9 @@ func (d *decoder) complete(v *value, s *Surface) {
 	case 0:
 		d.add(v.off, what+" has no shape", "add one of polygon, patch, graph, level, branches, mesh")
 	case 1:
+		if shapes[0] != "mesh" {
+			d.onlyMesh(v, what, shapes[0])
+		}
 		switch shapes[0] {
 		case "level":
 			d.domain(v, what)
@@ -99,7 +102,7 @@ func (d *decoder) complete(v *value, s *Surface) {
 					break
 				}
 			}
-		case "polygon", "patch", "graph":
+		case "polygon", "patch", "graph", "mesh":
 			d.bounded(v, what, shapes[0])
 		}
 	default:
