@@ -71,7 +71,7 @@ func (x Interval) Exp() Interval {
 	if x.IsEmpty() {
 		return x
 	}
-	return Interval{expDown(x.lo), expUp(x.hi)}
+	return make2(expDown(x.lo), expUp(x.hi))
 }
 
 // odd returns the series of sinh(r)/r in w = r^2, or of sin(r)/r in w = -r^2,

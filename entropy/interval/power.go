@@ -137,12 +137,19 @@ func realBounds(x float64, y ball) (lo, hi float64) {
 		}
 		return inverseBounds(x, uint64(-y.h))
 	}
+	if y == number(0.5) {
+		return sqrtDown(x), sqrtUp(x)
+	}
 	l := logBall(x)
 	switch t := l.h * y.h; {
 	case t > 1000:
 		return math.MaxFloat64, inf
 	case t < -1000:
 		return 0, math.SmallestNonzeroFloat64
+	case math.Abs(t) < 0x1p-60 && (x > 1) == (y.h > 0):
+		return 1, 1 + 0x1p-52
+	case math.Abs(t) < 0x1p-60:
+		return 1 - 0x1p-53, 1
 	}
 	b, k := expBall(l.mul(y))
 	return bounds(b, int64(k))
