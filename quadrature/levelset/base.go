@@ -1,0 +1,135 @@
+package levelset
+
+import "math"
+
+// A base is the projection of a cell along its height direction with the
+// conditions, functions that have to be non-negative, that the part of the
+// surface in the cell puts on it. Conditions certainly met are left out.
+type base struct {
+	p      *plan
+	cell   cell
+	up     int
+	rising bool
+	dim    int
+	box    [2]Interval
+	faces  []Function // the surface is above the bottom, and below the top
+	trims  []Function
+}
+
+// newBase returns nil if no point of the base meets the conditions.
+func (p *plan) newBase(c *cell, up int, rising bool) *base {
+	d := p.dim
+	b := &base{p: p, cell: *c, up: up, rising: rising, dim: d - 1}
+	for i := range d - 1 {
+		j := skip(i, up)
+		b.box[i] = span(c.lo[j], c.hi[j])
+	}
+	sign := 1.0
+	if rising {
+		sign = -1
+	}
+	for _, f := range [2]*face{newFace(p.phi, d, up, c.lo[up], sign), newFace(p.phi, d, up, c.hi[up], -sign)} {
+		r := f.Range(b.box[:d-1])
+		if r.Sup() < 0 || r.IsEmpty() {
+			return nil
+		}
+		if !(r.Inf() >= 0) {
+			b.faces = append(b.faces, f)
+		}
+	}
+	box := p.tbox[:d]
+	for _, psi := range p.trims {
+		c.box(box)
+		if r := psi.Range(box); r.Inf() >= 0 {
+			continue
+		}
+		t := newTrace(psi, p.phi, d, up, c.lo[up], c.hi[up], rising)
+		r := t.Range(b.box[:d-1])
+		if r.Sup() < 0 || r.IsEmpty() {
+			return nil
+		}
+		if !(r.Inf() >= 0) {
+			b.trims = append(b.trims, t)
+		}
+	}
+	return b
+}
+
+// active calls f for every condition.
+func (b *base) active(f func(Function)) {
+	for _, g := range b.faces {
+		f(g)
+	}
+	for _, g := range b.trims {
+		f(g)
+	}
+}
+
+// direction returns a coordinate of the base in which all conditions are
+// certainly monotone, the steeper one if there are two. In the plane the base is
+// a segment, and nothing is asked.
+func (b *base) direction() (int, bool) {
+	if b.dim == 1 {
+		return -1, true
+	}
+	var g [2]Interval
+	ok := [2]bool{true, true}
+	var steep [2]float64
+	b.active(func(f Function) {
+		f.GradientRange(g[:], b.box[:])
+		for i := range g {
+			if !certain(g[i]) {
+				ok[i] = false
+				continue
+			}
+			mid := math.Abs(g[i].Inf() + g[i].Sup())
+			steep[i] += mid / (mid + math.Abs(g[1-i].Inf()+g[1-i].Sup()))
+		}
+	})
+	switch {
+	case ok[0] && ok[1]:
+		if len(b.faces)+len(b.trims) == 0 || steep[0] == steep[1] {
+			if b.cell.relative(b.p, skip(0, b.up)) > b.cell.relative(b.p, skip(1, b.up)) {
+				return 1, true
+			}
+			return 0, true
+		}
+		if steep[0] > steep[1] {
+			return 0, true
+		}
+		return 1, true
+	case ok[0]:
+		return 0, true
+	case ok[1]:
+		return 1, true
+	}
+	return 0, false
+}
+
+func (c *cell) relative(p *plan, i int) float64 { return (c.hi[i] - c.lo[i]) / p.whole[i] }
+
+// turning looks for a cut that makes a condition of the base monotone.
+func (p *plan) turning(c *cell, b *base) (j int, s float64, ok bool) {
+	var fails [2][]Function
+	var g [2]Interval
+	b.active(func(f Function) {
+		f.GradientRange(g[:], b.box[:])
+		for i := range g {
+			if !certain(g[i]) {
+				fails[i] = append(fails[i], f)
+			}
+		}
+	})
+	order := [2]int{1, 0}
+	if len(fails[0]) < len(fails[1]) {
+		order = [2]int{0, 1}
+	}
+	for _, k := range order {
+		for _, f := range fails[k] {
+			if j, s, ok = p.critical(c, f, 2, k, b.up); ok {
+				return j, s, ok
+			}
+		}
+	}
+	return 0, 0, false
+}

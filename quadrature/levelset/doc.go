@@ -1,0 +1,66 @@
+// Package levelset integrates over curves in the plane and surfaces in space
+// that are given as the zero set of a function, {phi = 0}, in a box.
+//
+// # Mathematics
+//
+// On a box where the derivative of phi by one coordinate, the height, has one
+// sign the zero set is a graph over the other coordinates, and
+//
+//	∫_S f dA = ∫ f(x, h(x)) |grad phi| / |phi_h| dx
+//
+// over those x for which phi has different signs on the two faces of the box.
+// That is a domain of one dimension less, bounded by zero sets of phi restricted
+// to the faces, to which the same is done again, down to a segment. This is the
+// recursive dimension reduction of R. I. Saye, High-order quadrature methods
+// for implicitly defined surfaces and volumes in hyperrectangles, SIAM J. Sci.
+// Comput. 37 (2015) A993–A1019. On the segment all zeros of the restricted
+// functions become break points; between them the integrand is smooth, and
+// tensor products of Gauss–Legendre rules are used.
+//
+// Trims, functions that have to be non-negative on the surface, are restricted
+// to it as functions of the base, psi(x, h(x)), with the gradient
+// psi_x - psi_h phi_x/phi_h, and join the functions that bound the domain; where
+// the zeros of two of them cross there is a further break point.
+//
+// # Cells
+//
+// The box is cut until in each cell a height, and in the base an inner
+// direction, are certain, by intervals. A cut is placed at a critical point where
+// one is found: next to a point s at which the derivative changes sign the cell
+// is cut at s - h and s + h, h about 2^-45 of the box. The two outer parts then
+// have certain signs, and the surface is nearly parallel to the height only at
+// their ends, where it is integrated after a substitution that is quadratic in
+// the distance; this turns roots of the distance, and their inverses, into
+// smooth functions. So a closed convex surface takes a few cells instead of a
+// graded multitude. The area in the slab is bounded, with the slab's own
+// derivatives, and left out; the bound is part of the error. Elsewhere cells are
+// cut off their centres, so that surfaces placed symmetrically do not lie on
+// faces.
+//
+// # What is guaranteed
+//
+//   - Cells are discarded only where outward-rounded intervals show that phi is
+//     not zero, or a trim negative. Together with the certain signs
+//     of derivatives, no component of the surface is missed, however small,
+//     except in the cells that Result counts as undecided: Resolution is the
+//     diameter of the largest, 0 if there is none. This rests on the
+//     enclosures that the caller supplies.
+//   - Break points: the zeros on segments are isolated with intervals; two zeros
+//     closer than 1e-12 of the segment are not told apart.
+//   - Value, Area: floating-point quadrature. Nothing here is an enclosure. Zeros
+//     are found to rounding by Newton's method in a bracket.
+//   - Error, AreaError: estimates, meant to be at least the true error. They are
+//     made of the decay of the Legendre coefficients in both directions, with
+//     half of the gain that the decay promises; of rounding, which grows where the
+//     surface is parallel to the height; and of the bounds of the area left out,
+//     times the largest density met. Where a refinement moves a value by more
+//     than the estimate allowed, the estimates of the parts are enlarged. A
+//     density with a peak between all nodes is not seen.
+//   - Singular points, where grad phi vanishes on the surface, as at the tip of a
+//     cone, end in undecided cells so small that their share is within
+//     the tolerance; that each of these holds at most two sheets is assumed, not
+//     proved. Lines of singular points, where sheets cross, cannot be closed in
+//     on in this way: ErrResolution says what was reached.
+//   - Nodes: exact count of evaluations of the density. Budgets count work, and
+//     results are deterministic.
+package levelset
