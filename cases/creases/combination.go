@@ -187,6 +187,9 @@ func (c *combination) evaluate() (Result, error) {
 		}
 		r.Claimed = &x
 	}
+	if s.src.Mesh != "" {
+		return c.meshed(r, rel, allowed)
+	}
 	if reason := c.broken(); reason != "" {
 		return r.refuse(reason), nil
 	}

@@ -134,6 +134,9 @@ var fractions = [][2]*big.Rat{
 // samples are a few points of the surface, none where they are not found.
 func (c *combination) samples() (list []samplePoint) {
 	h := &c.s.shape
+	if c.s.src.Mesh != "" {
+		return c.meshSamples()
+	}
 	ec := enclosure.Context{Prec: precision}
 	between := func(a, b enclosure.Interval, t *big.Rat) enclosure.Interval {
 		return ec.Add(a, ec.Mul(ec.FromRat(t), ec.Sub(b, a)))

@@ -14,6 +14,12 @@ type Result struct {
 	Area        *float64 `json:"area,omitempty"` // in the plane the length
 	Evaluations int      `json:"evaluations,omitempty"`
 
+	// Mesh and Defect are there for a mesh: what it is, and by how much it and the
+	// traces fail to fit at the worst node. Energy is that of the polyhedron, and
+	// Error does not know how far that is from the surface which it approximates.
+	Mesh   *Mesh    `json:"mesh,omitempty"`
+	Defect *float64 `json:"defect,omitempty"`
+
 	// Slices is the energy by horizontal slices and SlicesError its error,
 	// absent where the model or the surface has none.
 	Slices      *float64 `json:"slices,omitempty"`

@@ -55,11 +55,13 @@ func (s *Surface) readShape() (err error) {
 		return s.readOver(p.Over)
 	case src.Graph != nil:
 		return s.readGraph(src.Graph)
+	case src.Mesh != "":
+		return s.readMesh()
 	}
 	for _, k := range []struct {
 		name  string
 		given bool
-	}{{"level", src.Level != nil}, {"branches", src.Branches != nil}, {"mesh", src.Mesh != ""}} {
+	}{{"level", src.Level != nil}, {"branches", src.Branches != nil}} {
 		if k.given {
 			return fault(s.place, "write it as a patch or a graph", "a surface given by %s is not integrated by this version, which integrates polygons, patches and graphs", k.name)
 		}

@@ -50,6 +50,7 @@ type Surface struct {
 	density *formulaText
 	energy  *formulaText
 	shape   shapeFormulas
+	mesh    loaded
 }
 
 // formulaText is a formula and where it stands.
