@@ -29,7 +29,7 @@ func (a ball) add(b ball) ball {
 	th, tl := twoSum(a.l, b.l)
 	vh, vl := fastTwoSum(sh, sl+th)
 	h, l := fastTwoSum(vh, tl+vl)
-	return ball{h, l, (float64(math.Abs(h)*0x1p-104)+a.e+b.e)*grow + tiny}
+	return ball{h, l, float64((float64(math.Abs(h)*0x1p-104)+a.e+b.e)*grow) + tiny}
 }
 
 func (a ball) sub(b ball) ball { return a.add(b.neg()) }

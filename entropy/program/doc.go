@@ -27,7 +27,7 @@
 //
 // # What is exact and what is not
 //
-// Everything here is ordinary floating-point arithmetic and proves nothing:
+// Evaluation at points is ordinary floating-point arithmetic and proves nothing:
 // the sign of a result has to be settled elsewhere. Simplifications in the
 // Builder are identities of real numbers (x*0 = 0, x+0 = x, x-x = 0, -(-x) = x)
 // that do not change the rounding of a finite result; operations are not
@@ -40,4 +40,15 @@
 // results of sin, exp, log and the other functions come from package math and
 // may differ in the last place between architectures. The value at a point
 // does not depend on whether it was computed alone or in a block.
+//
+// # Enclosures
+//
+// The exception is [Program.EvalInterval], for programs from a [Builder] that
+// is Exact: it evaluates the formulas over boxes in outward-rounded interval
+// arithmetic (package interval) and encloses their values. Such a Builder folds
+// constants only where the result is exact, keeps numbers that are no float64 as
+// enclosures ([Builder.ConstRat], [Builder.ConstPi], [Builder.ConstInterval]), and
+// does not split powers, whose ranges would grow; x x is a square. Gradients are
+// further outputs, so that callers can form mean-value enclosures. The derivative
+// of Abs over an interval with 0 inside is [-1, 1].
 package program

@@ -2,7 +2,9 @@ package program_test
 
 import (
 	"fmt"
+	"math/big"
 
+	"creaseproof/entropy/interval"
 	"creaseproof/entropy/program"
 )
 
@@ -49,4 +51,34 @@ func ExampleProgram_EvalBlock() {
 	p.EvalBlock(p.NewWorkspace(), in, out, 3)
 	fmt.Println(out[0])
 	// Output: [11 41 91]
+}
+
+// A formula over a box: the constant 1/10 is enclosed, not rounded.
+func ExampleProgram_EvalInterval() {
+	b := program.NewBuilder()
+	b.Exact = true
+	x := b.Input(0)
+	f := b.Sub(b.PowInt(x, 4), b.Mul(b.ConstRat(big.NewRat(1, 10)), x))
+	p, err := b.Compile(append(b.Gradient(f, []int{0}), f)...)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	ws, err := p.NewIntervalWorkspace()
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	box, err := interval.New(-1, 2)
+	if err != nil {
+		fmt.Println(err)
+		return
+	}
+	out := make([]interval.Interval, 2)
+	p.EvalInterval(ws, []interval.Interval{box}, out)
+	fmt.Println(out[1])
+	fmt.Println(out[0])
+	// Output:
+	// [-0.2, 16.1]
+	// [-4.1000000000000005, 31.900000000000002]
 }
