@@ -193,6 +193,9 @@ func (c *combination) evaluate() (Result, error) {
 	if reason := c.broken(); reason != "" {
 		return r.refuse(reason), nil
 	}
+	if s.shape.implicit() {
+		return c.implicit(r, rel, allowed)
+	}
 	surface, err := c.surfaceOf()
 	if err != nil {
 		return r, err
@@ -243,6 +246,9 @@ func (c *combination) evaluate() (Result, error) {
 		r.add("the accuracy asked for was not reached: " + strings.TrimPrefix(err.Error(), "quadrature: "))
 	}
 	if err := c.slice(surface, tr, options, &r); err != nil {
+		return r, err
+	}
+	if err := c.certify(&r); err != nil {
 		return r, err
 	}
 	r.Met = r.Verdict == r.Expected || r.Verdict == "" && r.Expected == ""

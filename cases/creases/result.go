@@ -14,6 +14,19 @@ type Result struct {
 	Area        *float64 `json:"area,omitempty"` // in the plane the length
 	Evaluations int      `json:"evaluations,omitempty"`
 
+	// Exact is the energy as a rational number, where all branches are affine
+	// and it is one; AreaRoots are rational numbers whose roots add up to the
+	// area. A claimed energy is then proved or refuted.
+	Exact     string   `json:"exact,omitempty"`
+	AreaRoots []string `json:"area_roots,omitempty"`
+
+	// Pairs are the shares of the pairs of branches between which there is a
+	// crease.
+	Pairs []Pair `json:"pairs,omitempty"`
+	// Resolution is the diameter of the largest box in which it was not decided
+	// whether a level set passes; absent where everything was.
+	Resolution *float64 `json:"resolution,omitempty"`
+
 	// Mesh and Defect are there for a mesh: what it is, and by how much it and the
 	// traces fail to fit at the worst node. Energy is that of the polyhedron, and
 	// Error does not know how far that is from the surface which it approximates.
@@ -28,12 +41,36 @@ type Result struct {
 	// Claimed is the claimed energy, rounded once.
 	Claimed *float64 `json:"claimed,omitempty"`
 
+	// Enclosure are the ends of an interval that contains the energy, as decimals
+	// rounded outward, where one was asked for and found.
+	Enclosure []string `json:"enclosure,omitempty"`
+
 	// Verdict and Expected are empty for a surface that was integrated and
 	// claims no energy; a surface that was refused is open.
 	Verdict  identity.Verdict `json:"verdict,omitempty"`
 	Expected identity.Verdict `json:"expected,omitempty"`
 	Met      bool             `json:"met"`
 	Reason   string           `json:"reason,omitempty"`
+}
+
+// Pair is the crease between two branches, which are numbered from 1.
+type Pair struct {
+	Branches  [2]int   `json:"branches"`
+	Energy    float64  `json:"energy"`
+	Error     float64  `json:"error"`
+	Area      float64  `json:"area"`
+	Exact     string   `json:"exact,omitempty"`
+	AreaRoots []string `json:"area_roots,omitempty"`
+	Sheets    []Sheet  `json:"sheets,omitempty"` // of affine branches
+}
+
+// Sheet is a flat part of a crease between affine branches.
+type Sheet struct {
+	Vertices    [][]string `json:"vertices"`
+	Energy      float64    `json:"energy"`
+	Area        float64    `json:"area"`
+	Exact       string     `json:"exact,omitempty"`
+	SquaredArea string     `json:"squared_area"`
 }
 
 // Options of an evaluation. The zero value is ready for use.
@@ -43,6 +80,9 @@ type Options struct {
 	MaxEvaluations int
 	// NoSlices leaves out the second value.
 	NoSlices bool
+	// Certify asks for an enclosure of the energy. A claimed energy is then
+	// proved or refuted.
+	Certify bool
 }
 
 // Without within, a claimed energy has to agree with the number to its error

@@ -13,6 +13,7 @@ import (
 
 func newEnergy(s streams) *cobra.Command {
 	var c common
+	var certify bool
 	cmd := &cobra.Command{
 		Use:   "energy [CASE...]",
 		Short: "Integrate the jump energy over each surface",
@@ -21,6 +22,10 @@ energy that the case claims.
 
 An energy comes with an estimate of its error. A claimed energy is supported where
 the number agrees within that; a number computed in floating point proves nothing.
+With --certify the energies of polygons, patches and graphs are enclosed by
+outward-rounded arithmetic. A claim is proved where the energy differs from it by no
+more than the case allows (within, else 1e-9 of it), and refuted where the enclosure
+misses it; where there is no enclosure the reason is given.
 A surface on which a check fails has no energy, and is wrong input: the traces off
 the well, u discontinuous across it, the jump of the gradient not normal to it.
 
@@ -38,6 +43,7 @@ or - for standard input; without one, every built-in case is taken.`,
 				return err
 			}
 			opt := run.EnergyOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
+			opt.Certify = certify
 			kept := list[:0]
 			for _, k := range list {
 				if countSurfaces(k, &opt) > 0 || len(c.only) == 0 && len(args) > 0 {
@@ -51,6 +57,7 @@ or - for standard input; without one, every built-in case is taken.`,
 		},
 	}
 	c.flags(cmd, "surfaces")
+	cmd.Flags().BoolVar(&certify, "certify", false, "enclose the energy: a claim is then proved or refuted")
 	return cmd
 }
 

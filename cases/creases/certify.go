@@ -1,0 +1,429 @@
+package creases
+
+import (
+	"fmt"
+	"math"
+	"math/big"
+	"strings"
+
+	"creaseproof/entropy"
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/formula"
+	"creaseproof/entropy/interval"
+	"creaseproof/entropy/jet"
+	"creaseproof/identity"
+	"creaseproof/quadrature/certified"
+)
+
+// narrow is the relative difference within which a claimed energy is proved
+// where the case allows none of its own.
+const narrow = 1e-9
+
+// certify encloses the energy and decides the claimed one. A surface without
+// an enclosure keeps its verdict, and says why.
+func (c *combination) certify(r *Result) error {
+	if !c.o.Certify || r.Energy == nil || r.Verdict == identity.Proved || r.Verdict == identity.Refuted {
+		return nil
+	}
+	e, err := c.enclosed()
+	if c.ctx.Err() != nil {
+		return c.ctx.Err()
+	}
+	if err != nil {
+		r.add("no enclosure: " + strings.TrimPrefix(err.Error(), errNoEnclosure.Error()+": "))
+		return nil
+	}
+	r.Enclosure = []string{decimal(e.Inf(), -1), decimal(e.Sup(), 1)}
+	if r.Claimed == nil {
+		return nil
+	}
+	claimed, err := c.enclose(*c.s.energy)
+	if err != nil {
+		return err
+	}
+	lo, hi := new(big.Float).SetFloat64(e.Inf()), new(big.Float).SetFloat64(e.Sup())
+	allowed := narrow
+	if c.s.src.Within != nil {
+		allowed, _ = c.s.src.Within.Float64()
+	}
+	// Every energy in the enclosure against every claimed value.
+	off := math.Max(above(hi, claimed.Lo()), above(claimed.Hi(), lo))
+	before := r.Verdict
+	defer c.expect(r, before)
+	unit := math.Abs(*r.Claimed)
+	if unit == 0 {
+		unit = 1
+	}
+	switch {
+	case lo.Cmp(claimed.Hi()) > 0 || hi.Cmp(claimed.Lo()) < 0:
+		away := math.Max(above(lo, claimed.Hi()), above(claimed.Lo(), hi))
+		if c.s.src.Within != nil && off <= allowed*unit*(1-0x1p-40) {
+			c.proved(r, off, unit)
+			r.add(fmt.Sprintf("it is not the claimed value itself, which the enclosure misses by %.2g", away))
+			return nil
+		}
+		r.Verdict = identity.Refuted
+		r.add(fmt.Sprintf("the enclosure [%s, %s] misses the claimed value by %.2g", r.Enclosure[0], r.Enclosure[1], away))
+	case off <= allowed*unit*(1-0x1p-40):
+		c.proved(r, off, unit)
+	default:
+		r.add(fmt.Sprintf("the enclosure contains the claimed value and is wider than %.2g, so that it decides nothing", allowed*unit))
+	}
+	return nil
+}
+
+// expect is what the case expects once there is an enclosure: where it does not
+// say, that the claim is proved. A proof also meets the expectation that the
+// claim is supported, and a refutation that it is left open.
+func (c *combination) expect(r *Result, before identity.Verdict) {
+	switch {
+	case c.s.src.Expect == nil:
+		r.Expected = identity.Proved
+	case r.Expected == before && r.Verdict != before:
+		if before == identity.Supported && r.Verdict == identity.Proved || before == identity.Open && r.Verdict == identity.Refuted {
+			r.Expected = r.Verdict
+		}
+	}
+}
+
+// proved records that the energy and the claimed value differ by at most off.
+func (c *combination) proved(r *Result, off, unit float64) {
+	r.Verdict = identity.Proved
+	of := " of it"
+	if *r.Claimed == 0 {
+		of = ""
+	}
+	r.add(fmt.Sprintf("proved to within %.1e%s: the energy lies in [%s, %s]", math.Nextafter(off/unit, 1)*1.1, of, r.Enclosure[0], r.Enclosure[1]))
+}
+
+// above is a float64 not below a - b.
+func above(a, b *big.Float) float64 {
+	d := new(big.Float).SetPrec(4*precision).SetMode(big.ToPositiveInf).Sub(a, b)
+	x, acc := d.Float64()
+	if acc == big.Below {
+		x = math.Nextafter(x, math.Inf(1))
+	}
+	return x
+}
+
+// decimal is x with 17 digits, rounded down or up: the decimal nearest to x
+// reads back as x, but need not be on the right side of it.
+func decimal(x float64, side int) string {
+	f := new(big.Float).SetPrec(2000).SetMode(big.ToNegativeInf)
+	if side > 0 {
+		f.SetMode(big.ToPositiveInf)
+	}
+	for digits := 17; ; digits++ {
+		s := fmt.Sprintf("%.*e", digits-1, x)
+		y, ok := new(big.Rat).SetString(s)
+		if !ok {
+			return s
+		}
+		if cmp := y.Cmp(new(big.Rat).SetFloat64(x)); cmp == 0 || cmp == side {
+			return shorter(s)
+		}
+		if digits > 780 {
+			return s
+		}
+	}
+}
+
+// shorter writes a decimal without an exponent where it is small.
+func shorter(s string) string {
+	y, ok := new(big.Rat).SetString(s)
+	if !ok {
+		return s
+	}
+	e := strings.IndexByte(s, 'e')
+	var power int
+	if _, err := fmt.Sscanf(s[e+1:], "%d", &power); err != nil || power < -4 || power > 15 {
+		return s
+	}
+	digits := len(strings.TrimLeft(strings.Replace(s[:e], ".", "", 1), "-")) - 1
+	return y.FloatString(max(0, digits-power))
+}
+
+// enclosed is an enclosure of the energy.
+func (c *combination) enclosed() (interval.Interval, error) {
+	var angles *jet.Angles
+	for range 4 {
+		e, err := c.enclosedWith(angles)
+		if a := finer(err); a != nil {
+			angles = a
+			continue
+		}
+		return e, err
+	}
+	return interval.Entire(), noEnclosure("the angles in the formulas are not whole multiples of one")
+}
+
+func (c *combination) enclosedWith(angles *jet.Angles) (interval.Interval, error) {
+	total := interval.Point(0)
+	list, err := c.pieces(angles)
+	if err != nil {
+		return total, err
+	}
+	for _, p := range list {
+		if err := c.tracesOn(p); err != nil {
+			return total, err
+		}
+		d, err := c.densityOn(p)
+		if err != nil {
+			return total, err
+		}
+		f, err := p.Ring.Mul(d, p.area)
+		if err != nil {
+			return total, err
+		}
+		x, err := c.integral(p, f)
+		if err != nil {
+			return total, err
+		}
+		if err := p.conditions(); err != nil {
+			return total, err
+		}
+		total = total.Add(x)
+	}
+	if !total.IsBounded() || total.IsEmpty() {
+		return total, noEnclosure("the integrand could not be bounded near some point of the surface")
+	}
+	return total, nil
+}
+
+// tracesOn finds the traces on a piece and checks by exact arithmetic that
+// they are on the well, that u is continuous where it is given, and that the
+// jump of the gradient is normal.
+func (c *combination) tracesOn(p *piece) error {
+	if c.s.plus == nil {
+		return nil
+	}
+	p.grads = map[jet.Side][]algebra.Fraction{}
+	var values []algebra.Fraction
+	for side, list := range map[jet.Side][]formulaText{jet.PlusSide: c.s.plus, jet.MinusSide: c.s.minus} {
+		if !c.s.isU {
+			g, err := c.allOn(p.onSurface, list)
+			if err != nil {
+				return err
+			}
+			p.grads[side] = g
+			continue
+		}
+		in := &entropy.Interpreter[dual]{Setting: c.set, Arith: duals{p.onSurface}}
+		u, err := in.Scalar(list[0].node)
+		if err != nil {
+			return err
+		}
+		if u.d == nil {
+			u.d = make([]algebra.Fraction, len(p.pos))
+		}
+		p.grads[side] = u.d
+		values = append(values, u.x)
+	}
+	if c.s.isU {
+		if !values[0].Equal(values[1]) {
+			return noEnclosure("it does not show by exact arithmetic that u is continuous across the surface")
+		}
+		p.value = &values[0]
+	}
+	plus, minus := p.grads[jet.PlusSide], p.grads[jet.MinusSide]
+	q := make([]algebra.Fraction, len(plus))
+	for i := range q {
+		var err error
+		if q[i], err = p.Ring.Sub(plus[i], minus[i]); err != nil {
+			return err
+		}
+	}
+	for _, t := range p.tangents {
+		x, err := p.dot(q, t)
+		if err != nil {
+			return err
+		}
+		if !x.IsZero() {
+			return noEnclosure("it does not show by exact arithmetic that the jump of the gradient is normal to the surface")
+		}
+	}
+	if c.set.Model.Residual == nil {
+		return nil
+	}
+	for _, g := range [][]algebra.Fraction{plus, minus} {
+		at := *p.onSurface
+		at.grads = map[jet.Side][]algebra.Fraction{jet.NoSide: g}
+		r, err := c.on(&at, formulaText{node: c.set.Model.Residual})
+		if err != nil {
+			return err
+		}
+		if !r.IsZero() {
+			return noEnclosure("it does not show by exact arithmetic that both traces are on the well")
+		}
+	}
+	return nil
+}
+
+// densityOn is the density on a piece.
+func (c *combination) densityOn(p *piece) (algebra.Fraction, error) {
+	if f := c.s.density; f != nil {
+		in := &entropy.Interpreter[algebra.Fraction]{Setting: c.set, Arith: p.onSurface, Jump: c.s.plus != nil}
+		return in.Scalar(f.node)
+	}
+	var zero algebra.Fraction
+	if c.s.ev.profileErr != nil {
+		return zero, c.s.ev.profileErr
+	}
+	// R and L along the segment minus + s q.
+	n := len(p.pos)
+	s := jet.Of(p.Ring.FreshConstant("s"))
+	plus, minus := p.grads[jet.PlusSide], p.grads[jet.MinusSide]
+	q, path := make([]algebra.Fraction, n), make([]algebra.Fraction, n)
+	for i := range q {
+		q[i] = plus[i].Sub(minus[i])
+		path[i] = minus[i].Add(s.Mul(q[i]))
+	}
+	at := *p.onSurface
+	at.grads = map[jet.Side][]algebra.Fraction{jet.NoSide: path}
+	at.second = func(i, j int) (algebra.Fraction, error) {
+		sum := q[i].Mul(p.nu[j]).Add(q[j].Mul(p.nu[i]))
+		return p.Ring.Reduce(sum.Scale(algebra.Frac64(1, 2)))
+	}
+	var parts [2][]algebra.Fraction
+	for k, f := range []formula.Node{c.set.Model.Residual, c.set.Model.Bending} {
+		x, err := c.on(&at, formulaText{node: f})
+		if err != nil {
+			return zero, err
+		}
+		if parts[k], err = polynomialIn(x, s.Vars()[0]); err != nil {
+			return zero, err
+		}
+	}
+	r, l := parts[0], parts[1]
+	if len(r) < 3 {
+		return zero, nil // R is affine and vanishes at both ends
+	}
+	if len(r) == 3 && len(l) <= 1 {
+		if len(l) == 0 {
+			return zero, nil
+		}
+		x, err := p.Ring.Mul(r[2], l[0])
+		if err != nil {
+			return zero, err
+		}
+		return p.size(x.Scale(algebra.Frac64(1, 6)))
+	}
+	return p.cost(r, l)
+}
+
+// polynomialIn are the coefficients of a polynomial in s.
+func polynomialIn(f algebra.Fraction, s algebra.Var) ([]algebra.Fraction, error) {
+	den := jet.Whole(1)
+	for _, d := range f.DenFactors() {
+		if d.Base.Has(s) {
+			return nil, noEnclosure("the profile cost is not polynomial")
+		}
+		den = den.Mul(algebra.FromPoly(d.Base).Pow(-d.Exp))
+	}
+	var out []algebra.Fraction
+	for _, c := range f.Num().Coeffs(s) {
+		out = append(out, algebra.FromPoly(c).Mul(den))
+	}
+	return out, nil
+}
+
+// cost is the integral over [0, 1] of |R L|, polynomials in s, where all
+// Bernstein coefficients of the product are of one sign on the whole piece.
+func (p *piece) cost(r, l []algebra.Fraction) (algebra.Fraction, error) {
+	var sum algebra.Fraction
+	prod := make([]algebra.Fraction, len(r)+len(l)-1)
+	for i, a := range r {
+		for j, b := range l {
+			x, err := p.Ring.Mul(a, b)
+			if err == nil {
+				prod[i+j], err = p.Ring.Add(prod[i+j], x)
+			}
+			if err != nil {
+				return sum, err
+			}
+		}
+	}
+	n := len(prod) - 1
+	signs := map[bool]bool{}
+	for j := range prod {
+		var b algebra.Fraction
+		ratio := algebra.Int(1)
+		for i := 0; i <= j; i++ {
+			b = b.Add(prod[i].Scale(ratio))
+			if i < n {
+				ratio = ratio.Mul(algebra.Frac64(int64(j-i), int64(n-i)))
+			}
+		}
+		b, err := p.Ring.Reduce(b)
+		if err != nil {
+			return sum, err
+		}
+		sum = sum.Add(b)
+		if b.IsZero() {
+			continue
+		}
+		x := p.from.fraction(b)
+		up := p.tape.NonNegative(x, 10)
+		if !up && !p.tape.NonNegative(p.tape.Mul(p.tape.Const(interval.Point(-1)), x), 10) {
+			return sum, noEnclosure("the integrand of the profile cost is not shown to keep its sign")
+		}
+		signs[up] = true
+	}
+	if len(signs) > 1 {
+		return sum, noEnclosure("the integrand of the profile cost is not shown to keep its sign")
+	}
+	sum = sum.Scale(algebra.Frac64(1, int64(n+1)))
+	if signs[false] {
+		sum = sum.Neg()
+	}
+	return p.Ring.Reduce(sum)
+}
+
+// integral encloses the integral of f over the parameters.
+func (c *combination) integral(p *piece, f algebra.Fraction) (interval.Interval, error) {
+	total := interval.Point(0)
+	if err := p.Ring.Err(f); err != nil {
+		return total, err
+	}
+	w := p.from
+	list, ok := w.factors(f)
+	if !ok {
+		list = [][2]certified.Ref{{w.fraction(f), p.tape.Const(interval.Point(1))}}
+	}
+	if w.fault != "" {
+		return total, noEnclosure("%s has no value", w.fault)
+	}
+	for _, pair := range list {
+		x := interval.Point(1)
+		for _, g := range pair {
+			r, err := p.tape.Integrate(c.ctx, g, certified.Options{})
+			if err != nil {
+				return total, err
+			}
+			x = x.Mul(r.Value)
+		}
+		total = total.Add(x)
+	}
+	for _, s := range p.scale {
+		total = total.Mul(s)
+	}
+	return total, nil
+}
+
+// conditions checks that what stands under roots is not negative, and what
+// is in logarithms positive, inside the piece. Denominators that cancel are left out:
+// where one vanishes the integrand is its continuation.
+func (p *piece) conditions() error {
+	const depth = 12
+	for _, k := range p.Ring.Conditions() {
+		if k.Need == jet.NeedNonZero {
+			continue
+		}
+		x := p.from.fraction(k.Value)
+		if k.Need == jet.NeedPositive && p.tape.Positive(x, depth) || k.Need == jet.NeedNonNegative && p.tape.NonNegative(x, depth) {
+			continue
+		}
+		return noEnclosure("%s is not shown to be %s everywhere on the surface", p.Ring.Format(k.Value), k.Need)
+	}
+	return nil
+}
