@@ -13,7 +13,7 @@ type base struct {
 	dim    int
 	box    [2]Interval
 	faces  []Function // the surface is above the bottom, and below the top
-	trims  []Function
+	trims  []*trace
 }
 
 // newBase returns nil if no point of the base meets the conditions.

@@ -287,39 +287,52 @@ func (p *plan) bisect(c *cell, height int) verdict {
 	return cut
 }
 
-// treatThin bounds the area in a cell that is thin in some directions T. With
-// the derivatives in the other directions of certain sign, each of their
-// projections is one-to-one; and where the derivatives by T together are at most
-// half the largest of the others,
+// treatThin bounds the area in a cell that is thin in some directions. Where one
+// of the other directions, k, is a height with |grad phi| at most 1000 |phi_k|,
+// the area is at most 1000 times that of the thin base. Otherwise, let T be
+// the thin directions and those in which the derivative has no certain sign. The
+// projections in the others are one-to-one; and if the derivatives by T together
+// are at most half the largest of the others,
 //
 //	∫ dA ≤ ∫ Σ |n_i| dA ≤ 2 Σ_{i not in T} projection(i),
 //
-// which is small, for every such projection has a thin side. Otherwise the
-// surface may lie along the slab, and the cell is treated as any other.
+// where every projection has a thin side. If that fails too the surface may lie
+// along the slab, and where a thin direction is a height the cell is
+// treated as any other.
 func (p *plan) treatThin(c *cell, g []Interval) (verdict, error) {
 	d := p.dim
-	across, along, area := 0.0, 0.0, 0.0
-	open := -1
+	total, across, along, area := 0.0, 0.0, 0.0, 0.0
+	open, best := -1, -1
 	height := false
 	for i := range d {
-		if p.isThin(c, i) {
-			across += max(math.Abs(g[i].Inf()), math.Abs(g[i].Sup()))
+		total += g[i].Mag()
+		switch {
+		case p.isThin(c, i):
+			across += g[i].Mag()
 			height = height || certain(g[i])
-			continue
-		}
-		area += 2 * c.projection(d, i)
-		if !certain(g[i]) {
+		case !certain(g[i]):
+			across += g[i].Mag()
 			open = i
-			continue
+		default:
+			area += 2 * c.projection(d, i)
+			if m := g[i].Mig(); m > along {
+				along, best = m, i
+			}
 		}
-		along = max(along, min(math.Abs(g[i].Inf()), math.Abs(g[i].Sup())))
 	}
-	if height {
-		return p.treatPlain(c, g)
+	bound := math.Inf(1)
+	if across <= along/2 {
+		bound = area
 	}
-	if open < 0 && across <= along/2 {
-		p.skipped += area
+	if best >= 0 && total <= 1000*along {
+		bound = min(bound, c.projection(d, best)*total/along)
+	}
+	switch {
+	case !math.IsInf(bound, 1) && (open < 0 || bound <= 100*area):
+		p.skipped += bound
 		return done, nil
+	case height:
+		return p.treatPlain(c, g)
 	}
 	if open >= 0 {
 		if j, s, ok := p.critical(c, p.phi, d, open, -1); ok {

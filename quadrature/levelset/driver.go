@@ -6,6 +6,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 )
 
 // A driver refines leaves until the tolerance is met.
@@ -39,7 +40,10 @@ func (d *driver) run(ctx context.Context) error {
 		if err := d.refine(ctx); err != nil {
 			return err
 		}
-		area, _, _ := d.undecided()
+		area, _, count := d.undecided()
+		if count > 0 && d.nodes == 0 {
+			return ErrResolution
+		}
 		over := 0.0
 		for c := range d.want {
 			if d.want[c] > 0 && d.matters(c) {
@@ -261,6 +265,11 @@ func (d *driver) result(stop error) (Result, error) {
 	}
 	r.UndecidedArea, r.Resolution, r.Undecided = d.undecided()
 	lost := r.UndecidedArea + d.skipped
+	if d.nodes == 0 && lost > 0 {
+		// Nothing is known of the density.
+		copy(d.peak, slices.Repeat([]float64{math.Inf(1)}, len(d.peak)))
+		d.peak[0] = 1
+	}
 	for c := range d.sum {
 		noise := 4 * 0x1p-52 * d.bulk[c]
 		for _, list := range [2][]*leaf{d.heap, d.done} {
@@ -271,9 +280,6 @@ func (d *driver) result(stop error) (Result, error) {
 		v, e := d.total[c], d.sum[c]+noise+lost*d.peak[c]
 		if c == 0 {
 			r.Area, r.AreaError = v, e
-			if d.peak[0] == 0 {
-				r.AreaError = lost
-			}
 		} else {
 			r.Value[c-1], r.Error[c-1] = v, e
 		}

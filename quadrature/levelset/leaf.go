@@ -9,6 +9,7 @@ import (
 // coordinate l of the base, or a constant where f is nil.
 type bound struct {
 	f      Function
+	trim   *trace // f, if it is a trim
 	at     float64
 	rising bool
 }

@@ -109,16 +109,7 @@ func (s *isolation) zeros(f Function, lo, hi float64) bool {
 	}
 	f.GradientRange(g[:], box[:])
 	if certain(g[0]) {
-		u := func(t float64) float64 { return f.Value([]float64{t}) }
-		a, b := u(lo), u(hi)
-		switch {
-		case a == 0:
-			s.points = append(s.points, lo)
-		case b == 0:
-			s.points = append(s.points, hi)
-		case (a < 0) != (b < 0):
-			s.points = append(s.points, crossing(u, lo, hi, a, b))
-		}
+		s.bracketed(f, lo, hi)
 		return true
 	}
 	if hi-lo <= 1e-12*s.whole || hi-lo <= 8*ulp(max(math.Abs(lo), math.Abs(hi))) {
@@ -126,7 +117,39 @@ func (s *isolation) zeros(f Function, lo, hi float64) bool {
 		return true
 	}
 	m := lo + offCentre*(hi-lo)
+	c := span(m, m)
+	box[0] = c
+	if certain(f.Range(box[:]).Add(g[0].Mul(span(lo, hi).Sub(c)))) {
+		return true
+	}
 	return s.zeros(f, lo, m) && s.zeros(f, m, hi)
+}
+
+// bracketed appends the zero of f in [lo, hi] if its values at the ends have
+// different signs.
+func (s *isolation) bracketed(f Function, lo, hi float64) {
+	var x [1]float64
+	u := func(t float64) float64 {
+		x[0] = t
+		return f.Value(x[:])
+	}
+	a, b := u(lo), u(hi)
+	switch {
+	case a == 0:
+		s.points = append(s.points, lo)
+	case b == 0:
+		s.points = append(s.points, hi)
+	case (a < 0) != (b < 0):
+		s.points = append(s.points, crossing(u, lo, hi, a, b))
+	}
+}
+
+// sampled appends the zeros of f that show between 64 places.
+func (s *isolation) sampled(f Function, lo, hi float64) {
+	const n = 64
+	for i := range n {
+		s.bracketed(f, lo+(hi-lo)*float64(i)/n, lo+(hi-lo)*float64(i+1)/n)
+	}
 }
 
 // offCentre is where intervals are cut, so that surfaces placed

@@ -95,7 +95,10 @@ func (b *base) trimmed(sh *sheet, l int, out *[]*sheet) bool {
 		return newTrace(f, d.f, 2, l, b.box[l].Inf(), b.box[l].Sup(), d.rising)
 	}
 	for _, t := range b.trims {
-		if !s.zeros(along(sh.low, t), sh.x0, sh.x1) || !s.zeros(along(sh.high, t), sh.x0, sh.x1) {
+		if !b.coincide(sh, l, t, false) && !b.kinks(s, along(sh.low, t), sh.x0, sh.x1) {
+			return false
+		}
+		if !b.coincide(sh, l, t, true) && !b.kinks(s, along(sh.high, t), sh.x0, sh.x1) {
 			return false
 		}
 	}
@@ -114,6 +117,43 @@ func (b *base) trimmed(sh *sheet, l int, out *[]*sheet) bool {
 	})
 }
 
+// kinks finds the zeros of a trim along a bound. In small cells in which
+// intervals do not succeed, as between trims that nearly coincide, it takes
+// those that show at a number of places.
+func (b *base) kinks(s *isolation, f Function, x0, x1 float64) bool {
+	s.left = work
+	before := len(s.points)
+	if s.zeros(f, x0, x1) {
+		return true
+	}
+	if b.cell.size > sampledSize {
+		return false
+	}
+	s.points = s.points[:before]
+	s.sampled(f, x0, x1)
+	return true
+}
+
+// coincide reports whether the zeros of t agree with the lower or the upper
+// bound of a sheet to rounding, at five places. They are not isolated then:
+// either will do as the bound.
+func (b *base) coincide(sh *sheet, l int, t *trace, upper bool) bool {
+	var at, g [2]float64
+	for i := range 5 {
+		x := sh.x0 + (sh.x1-sh.x0)*(float64(i)+0.6)/5.2
+		lo, hi := b.p.eval.inside(sh, x)
+		if upper {
+			lo = hi
+		}
+		at[l], at[1-l] = lo, x
+		t.Gradient(g[:], at[:])
+		if v := t.psi.Value(t.x); !(math.Abs(v) <= 1e-13*norm(t.h)*b.box[l].Wid()) {
+			return false
+		}
+	}
+	return true
+}
+
 // trimBounds sets the bounds that the trims put on the inner coordinate
 // between the bounds of the faces.
 func (b *base) trimBounds(sh *sheet, l int) bool {
@@ -130,9 +170,9 @@ func (b *base) trimBounds(sh *sheet, l int) bool {
 		case v0 < 0 && v1 < 0:
 			return false
 		case v0 < 0:
-			sh.trimLow = append(sh.trimLow, bound{f: t, rising: true})
+			sh.trimLow = append(sh.trimLow, bound{f: t, trim: t, rising: true})
 		case v1 < 0:
-			sh.trimHigh = append(sh.trimHigh, bound{f: t, rising: false})
+			sh.trimHigh = append(sh.trimHigh, bound{f: t, trim: t, rising: false})
 		}
 	}
 	return true
@@ -146,9 +186,18 @@ func (b *base) crossed(sh *sheet, l int, inner []bound, out *[]*sheet) bool {
 	s := &isolation{whole: sh.x1 - sh.x0, left: work}
 	for i, d := range inner {
 		for _, e := range inner[:i] {
+			n := outer
+			if d.rising {
+				n.trimLow = []bound{d}
+			} else {
+				n.trimHigh = []bound{d}
+			}
+			if b.coincide(&n, l, e.trim, !d.rising) {
+				continue
+			}
 			t := newTrace(e.f, d.f, 2, l, b.box[l].Inf(), b.box[l].Sup(), d.rising)
 			t.bracket = func(x []float64) (lo, hi float64) { return b.p.eval.inside(&outer, x[0]) }
-			if !s.zeros(t, sh.x0, sh.x1) {
+			if !b.kinks(s, t, sh.x0, sh.x1) {
 				return false
 			}
 		}
@@ -202,17 +251,9 @@ func (p *plan) recordCurve(b *base) bool {
 			return false
 		}
 	}
-	met := func(list []Function, x float64) bool {
-		for _, f := range list {
-			if f.Value([]float64{x}) < 0 {
-				return false
-			}
-		}
-		return true
-	}
 	var out []*sheet
 	ok := pieces(s, x0, x1, func(x0, x1 float64) bool {
-		if !met(b.faces, x0+(x1-x0)/2) {
+		if slices.ContainsFunc(b.faces, func(f Function) bool { return f.Value([]float64{x0 + (x1-x0)/2}) < 0 }) {
 			return true
 		}
 		s := &isolation{whole: x1 - x0, left: work}
@@ -222,7 +263,7 @@ func (p *plan) recordCurve(b *base) bool {
 			}
 		}
 		return pieces(s, x0, x1, func(x0, x1 float64) bool {
-			if met(b.trims, x0+(x1-x0)/2) {
+			if !slices.ContainsFunc(b.trims, func(t *trace) bool { return t.Value([]float64{x0 + (x1-x0)/2}) < 0 }) {
 				out = append(out, &sheet{
 					up: b.up, inner: -1, outer: skip(0, b.up), rising: b.rising,
 					lo: b.cell.lo, hi: b.cell.hi, x0: x0, x1: x1,
@@ -237,5 +278,10 @@ func (p *plan) recordCurve(b *base) bool {
 	return ok
 }
 
-// work is the number of ranges evaluated to isolate the zeros on one segment.
-const work = 500
+const (
+	// work is the number of ranges evaluated to isolate the zeros on one segment.
+	work = 500
+	// sampledSize is the size of cells, relative to the box, in which break
+	// points between trims may be found without a proof.
+	sampledSize = 1.0 / 32
+)
