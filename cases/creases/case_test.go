@@ -294,8 +294,41 @@ graph = { of = "z", over = { x = ["0", "1"], y = ["0", "1"] } }
 		{layeredHead, `plus = "0"
 minus = "0"
 level = "x"
+box = { x = ["-1", "1"], y = ["-1", "1"] }
+`, 4, "the box has no range of z"},
+		{layeredHead, `plus = "0"
+minus = "0"
+level = "x"
+box = { x = ["-1", "1"], y = ["-1", "1"], z = ["1", "1"] }
+`, 4, "the range of z is empty"},
+		{layeredHead, `branches = ["x", "-x", "y"]
+combine = "max(min(1, 2), 4)"
 box = { x = ["-1", "1"], y = ["-1", "1"], z = ["-1", "1"] }
-`, 0, "not integrated by this version, which integrates polygons, patches and graphs"},
+`, 2, "there is no branch 4"},
+		{layeredHead, `branches = ["abs(x) + z/2", "0"]
+combine = "max"
+box = { x = ["-1", "1"], y = ["-1", "1"], z = ["-1", "1"] }
+`, 1, "a kink of its own"},
+		{layeredHead, `branches = ["x + z/2", "0", "x + 1/2 z"]
+combine = "max"
+box = { x = ["-1", "1"], y = ["-1", "1"], z = ["-1", "1"] }
+`, 1, ""},
+		{layeredHead, `branches = ["x + z/2", "0", "(2 x + z)/2"]
+combine = "max"
+box = { x = ["-1", "1"], y = ["-1", "1"], z = ["-1", "1"] }
+`, 1, "branches 1 and 3 are the same function"},
+		{layeredHead, `branches = ["x + z/2", "0"]
+combine = "max"
+ball = { center = ["0", "0"], radius = "1" }
+`, 3, "a centre of 2 coordinates in 3 dimensions"},
+		{layeredHead, `branches = ["x + z/2", "0"]
+combine = "max"
+ball = { center = ["0", "0", "0"], radius = "-1" }
+`, 3, "must be positive"},
+		{layeredHead, `branches = ["x + z/2", "0"]
+combine = "max"
+cylinder = { center = ["0", "0"], radius = "1", axis = "w", heights = ["0", "1"] }
+`, 3, "is no coordinate"},
 		{strings.Replace(layeredHead, "eps L^2/2", "eps L^2", 1), `plus = "x + z/2"
 minus = "-x + z/2"
 ` + wall, 0, "no profile cost: the energy is not"},

@@ -137,6 +137,9 @@ func (c *combination) samples() (list []samplePoint) {
 	if c.s.src.Mesh != "" {
 		return c.meshSamples()
 	}
+	if h.implicit() {
+		return nil // its points are the zeros of a formula
+	}
 	ec := enclosure.Context{Prec: precision}
 	between := func(a, b enclosure.Interval, t *big.Rat) enclosure.Interval {
 		return ec.Add(a, ec.Mul(ec.FromRat(t), ec.Sub(b, a)))

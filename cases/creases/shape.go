@@ -22,6 +22,7 @@ type shapeFormulas struct {
 	height   *formulaText     // graph
 	corners  [][]formulaText  // graph over a triangle
 	disc     []formulaText    // graph over a disc: centre, radius
+	implicitFormulas
 }
 
 func (s *Surface) readShape() (err error) {
@@ -55,16 +56,10 @@ func (s *Surface) readShape() (err error) {
 		return s.readOver(p.Over)
 	case src.Graph != nil:
 		return s.readGraph(src.Graph)
+	case src.Level != nil, src.Branches != nil:
+		return s.readImplicit()
 	case src.Mesh != "":
 		return s.readMesh()
-	}
-	for _, k := range []struct {
-		name  string
-		given bool
-	}{{"level", src.Level != nil}, {"branches", src.Branches != nil}} {
-		if k.given {
-			return fault(s.place, "write it as a patch or a graph", "a surface given by %s is not integrated by this version, which integrates polygons, patches and graphs", k.name)
-		}
 	}
 	return fault(s.place, "add a polygon, a patch or a graph", "the surface has no shape")
 }

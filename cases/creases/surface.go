@@ -173,7 +173,7 @@ func (s *Surface) readTraces() (err error) {
 	if n != 2 && n != 3 {
 		return fault(s.place, "declare two or three coordinates", "a surface in %d dimensions", n)
 	}
-	given := src.Plus != nil || src.PlusGradient != nil
+	given := src.Plus != nil || src.PlusGradient != nil || src.Branches != nil
 	if given && len(s.ev.set.Unknowns) != 1 {
 		return fault(s.place, "give the density alone", "traces of a case with %d unknowns", len(s.ev.set.Unknowns))
 	}
@@ -205,7 +205,7 @@ func (s *Surface) readTraces() (err error) {
 func (s *Surface) readRest() error {
 	if t := s.src.Density; t != nil {
 		scope := s.inner
-		if s.plus != nil {
+		if s.plus != nil || s.shape.branches != nil {
 			scope = scope.AtJump()
 		}
 		f, err := read(scope, *t)

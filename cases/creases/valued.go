@@ -13,7 +13,7 @@ import (
 // value.
 func (s *Surface) valued() error {
 	h := &s.shape
-	list := slices.Concat(s.plus, s.minus, h.maps, h.disc)
+	list := slices.Concat(s.plus, s.minus, h.maps, h.disc, h.all())
 	for _, v := range slices.Concat(h.vertices, h.corners) {
 		list = append(list, v...)
 	}
@@ -30,7 +30,7 @@ func (s *Surface) valued() error {
 			return placed(f.text, &entropy.Error{At: n.At(), Err: fmt.Errorf("the constant %s has no value here", n.ID), Advice: giveValue(n.ID)})
 		}
 	}
-	if r := s.ev.set.Model.Residual; r != nil && s.plus != nil {
+	if r := s.ev.set.Model.Residual; r != nil && (s.plus != nil || h.branches != nil) {
 		if n := s.valueless(r, map[string]bool{}); n != nil {
 			return source.NewError(s.place, 0, fmt.Sprintf("the residual of the model has the constant %s, which has no value here", n.ID), giveValue(n.ID))
 		}

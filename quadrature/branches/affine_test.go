@@ -58,6 +58,8 @@ func TestRectangle(t *testing.T) {
 	assert.Len(t, fs, 5)
 	e := fourth(fs)
 	assert.Equal(t, "4/3", e.Quo(e, big.NewRat(12, 1)).RatString())
+	// A crease on the boundary of the box has nothing on its other side.
+	assert.Empty(t, faces(t, list[2:], "min", branches.Box{Lo: rats("-1", "0"), Hi: rats("1", "1/2")}))
 	// In a larger box the branches go on outside the rectangle.
 	assert.NotEqual(t, "16", fourth(faces(t, list, "min", branches.Box{Lo: rats("-2", "-2"), Hi: rats("2", "2")})).RatString())
 	// Away from the corners there is the long ridge alone.

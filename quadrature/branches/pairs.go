@@ -100,6 +100,7 @@ func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(bo
 				g.seen[k] = Open
 			}
 		}
+		grow(g.box, box)
 		out = append(out, Pair{First: key[0], Second: key[1], Box: g.box, Known: g.seen})
 	}
 	slices.SortFunc(out, func(a, b Pair) int {
@@ -109,6 +110,17 @@ func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(bo
 		return a.Second - b.Second
 	})
 	return out, nil
+}
+
+// grow enlarges a box inside the whole by a little that is different for each
+// side, so that its sides are no longer where surfaces placed symmetrically
+// meet them in a special way.
+func grow(b, whole [][2]float64) {
+	for i := range b {
+		w := whole[i][1] - whole[i][0]
+		b[i][0] = max(whole[i][0], b[i][0]-w*(0.00731+0.00293*float64(i)))
+		b[i][1] = min(whole[i][1], b[i][1]+w*(0.00517+0.00371*float64(i)))
+	}
 }
 
 // widest is the direction in which a box is widest, relative to the whole.

@@ -41,6 +41,19 @@ func same(x, y []*big.Rat) bool {
 
 func (p polygon) empty() bool { return len(p.at) < p.dim }
 
+// outside reports whether the polygon lies in a side of the box: nothing is on
+// its other side then.
+func (p polygon) outside(box Box) bool {
+	for k := range p.dim {
+		for _, end := range []*big.Rat{box.Lo[k], box.Hi[k]} {
+			if !slices.ContainsFunc(p.at, func(x []*big.Rat) bool { return x[k].Cmp(end) != 0 }) {
+				return true
+			}
+		}
+	}
+	return false
+}
+
 // section is the part of the plane f = 0 in a box.
 func section(f Affine, box Box) polygon {
 	dim := len(box.Lo)

@@ -45,7 +45,7 @@ type level struct {
 
 func (s *sheet) find(box Box) error {
 	p := section(s.across, box)
-	if p.empty() {
+	if p.empty() || p.outside(box) {
 		return nil
 	}
 	levels := make([]level, len(s.list))

@@ -1,0 +1,78 @@
+package creases
+
+import (
+	"math"
+	"slices"
+
+	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/jet"
+	"creaseproof/entropy/program"
+)
+
+// looks is the number of points of a domain at which branches are looked at.
+const looks = 128
+
+// points are spread evenly over the domain: multiples of powers of generalised
+// golden sections (Roberts 2018), rounded to short binary fractions of the box.
+func (d *domain) points() (out [][]float64) {
+	steps := [][]float64{{0.6180339887498949}, {0.7548776662466927, 0.5698402909980532}, {0.8191725133961645, 0.6710436067037893, 0.5497004779019703}}
+	step := steps[len(d.box)-1]
+	for i := range 4 * looks {
+		x := make([]float64, len(d.box))
+		for k, b := range d.box {
+			_, f := math.Modf(0.5 + float64(i+1)*step[k])
+			x[k] = b[0] + math.Round(f*4096)/4096*(b[1]-b[0])
+		}
+		inside := d.round == nil || (&inBall{d.round, d.center, d.radius}).Value(x) > 0
+		if inside {
+			out = append(out, x)
+		}
+		if len(out) == looks {
+			break
+		}
+	}
+	return out
+}
+
+// active lists points of the domain, those first at which u is branch k.
+func (c *combination) active(d domain, k int) ([][]float64, error) {
+	in, num := c.numeric().NewNumeric(nil, coordinates(len(d.box))...)
+	num.Closed = true
+	var outs []program.Ref
+	for _, f := range c.s.shape.branches {
+		x, err := in.Scalar(c.fold(f.node))
+		if err == nil {
+			err = num.Err()
+		}
+		if err != nil {
+			return nil, placed(f.text, err)
+		}
+		outs = append(outs, x)
+	}
+	p, err := num.Compile(outs...)
+	if err != nil {
+		return nil, placed(c.s.shape.branches[k].text, err)
+	}
+	ws, values := p.NewWorkspace(), make([]float64, len(outs))
+	points := d.points()
+	here := func(x []float64) int {
+		p.Eval(ws, x, values)
+		if _, i := c.s.shape.tree.Eval(values); i == k {
+			return 0
+		}
+		return 1
+	}
+	slices.SortStableFunc(points, func(a, b []float64) int { return here(a) - here(b) })
+	return points, nil
+}
+
+// rationalPoint gives the coordinates the values of x.
+func (c *combination) rationalPoint(x []float64) jet.Point {
+	at := jet.Point{}
+	for i, v := range x {
+		if q, ok := algebra.FromFloat(v); ok {
+			at[c.exact.Ring.CoordinateVar(i)] = q
+		}
+	}
+	return at
+}
