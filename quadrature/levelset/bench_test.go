@@ -7,7 +7,8 @@ import (
 	"testing"
 )
 
-// BenchmarkConvergence reports the error against the nodes over the tolerance.
+// BenchmarkConvergence is the table of errors, as decimal digits, against nodes over
+// the tolerances.
 func BenchmarkConvergence(b *testing.B) {
 	for _, e := range examples() {
 		for _, rel := range []float64{1e-3, 1e-6, 1e-8, 1e-9, 1e-11} {
@@ -20,8 +21,9 @@ func BenchmarkConvergence(b *testing.B) {
 						b.Fatal(err)
 					}
 				}
-				b.ReportMetric(math.Abs(r.Value[0]/e.exact-1), "error")
-				b.ReportMetric(r.Error[0]/e.exact, "estimate")
+				digits := func(x float64) float64 { return -math.Log10(max(x, 1e-16)) }
+				b.ReportMetric(digits(math.Abs(r.Value[0]/e.exact-1)), "digits")
+				b.ReportMetric(digits(r.Error[0]/e.exact), "digits-estimated")
 				b.ReportMetric(float64(r.Nodes), "nodes")
 			})
 		}

@@ -78,7 +78,7 @@ func (d *driver) aim() {
 // firstOrder is the order with which a leaf begins: less for small ones.
 func (d *driver) firstOrder(share float64) int {
 	rel := min(max(d.opt.Rel, 1e-14), 1e-2)
-	full := 4 - 0.7*math.Log10(rel)
+	full := max(8, 4-0.7*math.Log10(rel))
 	if d.plan.dim == 2 {
 		full += 4
 	}
