@@ -49,7 +49,6 @@ func (c *combination) certify(r *Result) error {
 	// Every energy in the enclosure against every claimed value.
 	off := math.Max(above(hi, claimed.Lo()), above(claimed.Hi(), lo))
 	before := r.Verdict
-	defer c.expect(r, before)
 	unit := math.Abs(*r.Claimed)
 	if unit == 0 {
 		unit = 1
@@ -60,7 +59,7 @@ func (c *combination) certify(r *Result) error {
 		if c.s.src.Within != nil && off <= allowed*unit*(1-0x1p-40) {
 			c.proved(r, off, unit)
 			r.add(fmt.Sprintf("it is not the claimed value itself, which the enclosure misses by %.2g", away))
-			return nil
+			break
 		}
 		r.Verdict = identity.Refuted
 		r.add(fmt.Sprintf("the enclosure [%s, %s] misses the claimed value by %.2g", r.Enclosure[0], r.Enclosure[1], away))
@@ -68,11 +67,13 @@ func (c *combination) certify(r *Result) error {
 		c.proved(r, off, unit)
 	default:
 		r.add(fmt.Sprintf("the enclosure contains the claimed value and is wider than %.2g, so that it decides nothing", allowed*unit))
+		return nil
 	}
+	c.expect(r, before)
 	return nil
 }
 
-// expect is what the case expects once there is an enclosure: where it does not
+// expect is what the case expects once an enclosure has decided: where it does not
 // say, that the claim is proved. A proof also meets the expectation that the
 // claim is supported, and a refutation that it is left open.
 func (c *combination) expect(r *Result, before identity.Verdict) {
@@ -220,7 +221,7 @@ func (c *combination) tracesOn(p *piece) error {
 		values = append(values, u.x)
 	}
 	if c.s.isU {
-		if !values[0].Equal(values[1]) {
+		if !p.vanishes(values[0].Sub(values[1])) {
 			return noEnclosure("it does not show by exact arithmetic that u is continuous across the surface")
 		}
 		p.value = &values[0]
@@ -238,7 +239,7 @@ func (c *combination) tracesOn(p *piece) error {
 		if err != nil {
 			return err
 		}
-		if !x.IsZero() {
+		if !p.vanishes(x) {
 			return noEnclosure("it does not show by exact arithmetic that the jump of the gradient is normal to the surface")
 		}
 	}
@@ -252,7 +253,7 @@ func (c *combination) tracesOn(p *piece) error {
 		if err != nil {
 			return err
 		}
-		if !r.IsZero() {
+		if !p.vanishes(r) {
 			return noEnclosure("it does not show by exact arithmetic that both traces are on the well")
 		}
 	}
@@ -410,9 +411,9 @@ func (c *combination) integral(p *piece, f algebra.Fraction) (interval.Interval,
 	return total, nil
 }
 
-// conditions checks that what stands under roots is not negative, and what
-// is in logarithms positive, inside the piece. Denominators that cancel are left out:
-// where one vanishes the integrand is its continuation.
+// conditions checks that what stands under roots is not negative, and what is
+// in logarithms positive, inside the piece. Denominators that cancel are left
+// out: where one vanishes the integrand is its continuation.
 func (p *piece) conditions() error {
 	const depth = 12
 	for _, k := range p.Ring.Conditions() {
@@ -423,7 +424,57 @@ func (p *piece) conditions() error {
 		if k.Need == jet.NeedPositive && p.tape.Positive(x, depth) || k.Need == jet.NeedNonNegative && p.tape.NonNegative(x, depth) {
 			continue
 		}
+		if p.from.fault == "" && p.toEnds(k.Value) {
+			continue
+		}
 		return noEnclosure("%s is not shown to be %s everywhere on the surface", p.Ring.Format(k.Value), k.Need)
 	}
 	return nil
+}
+
+// toEnds shows that f is positive inside the range of the one parameter that it
+// depends on, although it vanishes at an end: there it does so exactly, and its
+// derivative has the right sign in the neighbourhood.
+func (p *piece) toEnds(f algebra.Fraction) bool {
+	const near, depth = 0x1p-6, 12
+	k := -1
+	for _, v := range f.Vars() {
+		switch mask := p.from.mask(v); {
+		case mask == 0:
+		case k < 0 && v == p.vars[mask>>1] && mask != 3:
+			k = int(mask >> 1)
+		default:
+			return false
+		}
+	}
+	if k < 0 || len(f.DenFactors()) > 0 {
+		return false
+	}
+	slope, err := p.Ring.Partial(f, p.vars[k])
+	if err != nil {
+		return false
+	}
+	from, to := 0.0, 1.0
+	for end, x := range p.over[k] {
+		at, err := p.Ring.Reduce(f.SubstMany(map[algebra.Var]algebra.Fraction{p.vars[k]: x}))
+		if err != nil {
+			return false
+		}
+		if !at.IsZero() {
+			continue
+		}
+		a, b, s := 0.0, near, slope
+		if end == 1 {
+			a, b, s = 1-near, 1, slope.Neg()
+			to = a
+		} else {
+			from = b
+		}
+		w, _, err := p.within(a, b)
+		if err != nil || !p.tape.Positive(w.fraction(s), depth) {
+			return false
+		}
+	}
+	w, _, err := p.within(from, to)
+	return err == nil && p.tape.Positive(w.fraction(f), depth)
 }

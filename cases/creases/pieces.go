@@ -18,6 +18,8 @@ type piece struct {
 	over [][2]algebra.Fraction
 	flip bool // the normal is turned round
 
+	sines []algebra.Fraction // of parameters, positive inside the ranges
+
 	tangents [][]algebra.Fraction
 	area     algebra.Fraction // element
 
@@ -67,6 +69,7 @@ func (c *combination) newPiece(names []string, angles *jet.Angles, ranges func(*
 			if s := sign(p.Pi().Sub(r[1])); angles == nil && (s == 0 || s == 1) {
 				if _, sine, err := ring.CosSin(jet.Of(v)); err == nil && len(sine.Vars()) == 1 {
 					ring.Assume(sine.Vars()[0], jet.Positive)
+					p.sines = append(p.sines, sine)
 				}
 			}
 		case hi == 0 || hi == -1:
@@ -329,7 +332,19 @@ func (p *piece) measure() error {
 	} else if n, err = p.cross(p.tangents[0], p.tangents[1]); err != nil {
 		return err
 	}
-	if p.area, err = p.Norm(n); err != nil {
+	// A sine that vanishes at a pole is taken out, so that no root vanishes there.
+	factor := jet.Whole(1)
+	for _, sine := range p.sines {
+		m, ok := p.divided(n, sine)
+		if ok {
+			n, factor = m, factor.Mul(sine)
+		}
+	}
+	length, err := p.Norm(n)
+	if err != nil {
+		return err
+	}
+	if p.area, err = p.Ring.Mul(length, factor); err != nil {
 		return err
 	}
 	if p.area.IsZero() {
@@ -339,7 +354,7 @@ func (p *piece) measure() error {
 		if p.flip {
 			x = x.Neg()
 		}
-		y, err := p.Ring.Quo(x, p.area)
+		y, err := p.Ring.Quo(x, length)
 		if err != nil {
 			return err
 		}
@@ -348,6 +363,20 @@ func (p *piece) measure() error {
 	p.tape = &certified.Tape{}
 	p.from, p.scale, err = p.within(0, 1)
 	return err
+}
+
+// divided are the components divided by a sine, where that leaves no new
+// denominator.
+func (p *piece) divided(n []algebra.Fraction, sine algebra.Fraction) ([]algebra.Fraction, bool) {
+	var out []algebra.Fraction
+	for _, x := range n {
+		y, err := p.Ring.Quo(x, sine)
+		if err != nil || len(y.DenFactors()) > len(x.DenFactors()) {
+			return nil, false
+		}
+		out = append(out, y)
+	}
+	return out, true
 }
 
 // within is a writer on the part from a to b, 0 <= a < b <= 1, of the range of
@@ -387,6 +416,38 @@ func (p *piece) size(f algebra.Fraction) (algebra.Fraction, error) {
 		return f.Neg(), nil
 	}
 	return p.Ring.Abs(f)
+}
+
+// vanishes reports whether f is shown to be zero on the whole piece: by its
+// normal form, or, where f = a + b r with a root r, because
+// (a + b r)(a - b r) vanishes and a - b r is shown to have no zero.
+func (p *piece) vanishes(f algebra.Fraction) bool {
+	const depth = 10
+	if f.Err() != nil {
+		return false
+	}
+	if f.IsZero() {
+		return true
+	}
+	vars := f.Num().Vars()
+	for i := len(vars) - 1; i >= 0; i-- {
+		s := p.Ring.Symbol(vars[i])
+		if s.Kind != jet.Root || s.Degree != 2 {
+			continue
+		}
+		c := f.Num().Coeffs(vars[i])
+		if len(c) != 2 {
+			return false
+		}
+		other := algebra.FromPoly(c[0].Sub(c[1].Mul(algebra.Variable(vars[i]))))
+		both, err := p.Ring.Mul(algebra.FromPoly(f.Num()), other)
+		if err != nil {
+			return false
+		}
+		x := p.from.fraction(other)
+		return (p.tape.Positive(x, depth) || p.tape.Positive(p.tape.Mul(p.tape.Const(interval.Point(-1)), x), depth)) && p.vanishes(both)
+	}
+	return false
 }
 
 // finer is the basis of angles that an error asks for.

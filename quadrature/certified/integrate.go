@@ -185,6 +185,17 @@ func (c *cell) narrow(x interval.Interval) {
 	}
 }
 
+// halved is the width of the range on the halves of a cell, added up.
+func (e *evaluator) halved(c *cell, dir int) (width float64) {
+	mid := c.box[dir][0] + (c.box[dir][1]-c.box[dir][0])/2
+	for _, side := range [][2]float64{{c.box[dir][0], mid}, {mid, c.box[dir][1]}} {
+		box := [2]interval.Interval{spread(c.box[0]), spread(c.box[1])}
+		box[dir] = spread(side)
+		width += e.at(box, 0, one, 0)[0].Wid()
+	}
+	return width
+}
+
 // rectangle encloses the integral over a cell in two directions.
 func (e *evaluator) rectangle(g *gauss, c *cell) {
 	box := [2]interval.Interval{spread(c.box[0]), spread(c.box[1])}
@@ -197,11 +208,13 @@ func (e *evaluator) rectangle(g *gauss, c *cell) {
 	rest1 := e.at(box, 1, h1, 2*g.n).coefficient(2 * g.n).Mul(g.gamma)
 	c.take(plain)
 	wide0, wide1 := rest0.Wid(), rest1.Wid()
-	if math.IsInf(wide0, 0) && math.IsInf(wide1, 0) {
-		wide0, wide1 = c.box[0][1]-c.box[0][0], c.box[1][1]-c.box[1][0]
-	}
 	c.split = 0
-	if wide1 > wide0 {
+	switch rough0, rough1 := !(wide0 < math.Inf(1)), !(wide1 < math.Inf(1)); {
+	case rough0 && rough1:
+		if e.halved(c, 1) < e.halved(c, 0) {
+			c.split = 1
+		}
+	case rough1 || !rough0 && wide1 > wide0:
 		c.split = 1
 	}
 	if plain.IsEmpty() || !rest0.IsBounded() || !rest1.IsBounded() || rest0.IsEmpty() || rest1.IsEmpty() {
