@@ -106,6 +106,9 @@ func tails(n int, t [3]float64, want float64) (estimate float64, order int) {
 	half := float64(n) / 2
 	ratio := max(tail/mid, math.Pow(tail/before, half/2)) // r^(-n/2)
 	if !(ratio < 0.1) {
+		if n < 10 {
+			return float64(n) * tail, n + 6 // too early to tell
+		}
 		return float64(n) * tail, maxOrder + 1
 	}
 	estimate = 4 * tail * math.Pow(ratio, trust(n))
