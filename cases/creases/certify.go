@@ -235,6 +235,9 @@ func (c *combination) tracesOn(p *piece) error {
 		}
 	}
 	for _, t := range p.tangents {
+		if c.s.isU {
+			break // the derivative of the jump of u, which vanishes
+		}
 		x, err := p.dot(q, t)
 		if err != nil {
 			return err

@@ -132,6 +132,10 @@ func (w *writer) variable(v algebra.Var) certified.Ref {
 		case jet.Sine:
 			r = w.tape.Sin(a)
 		case jet.Root:
+			if t, ok := squareRoot(s.Arg); ok && s.Degree == 2 {
+				r = w.tape.Abs(w.poly(t))
+				break
+			}
 			r = w.tape.Root(a, s.Degree)
 		case jet.Exponential:
 			r = w.tape.Exp(a)
@@ -199,4 +203,41 @@ func (w *writer) factors(f algebra.Fraction) (list [][2]certified.Ref, ok bool) 
 		})
 	}
 	return list, true
+}
+
+// squareRoot is a polynomial with the square f, if there is one: its leading
+// terms one by one, and the square compared. Written as an absolute value a root
+// of a square has narrow enclosures about its zeros.
+func squareRoot(f algebra.Fraction) (t algebra.Poly, ok bool) {
+	p, ok := f.IsPoly()
+	if !ok || p.IsZero() || p.Err() != nil {
+		return p, false
+	}
+	m, c := p.Leading()
+	root, ok := jet.SqrtRat(c)
+	if !ok {
+		return p, false
+	}
+	var half []algebra.Power
+	for _, pw := range m.Powers() {
+		if pw.Exp%2 != 0 {
+			return p, false
+		}
+		half = append(half, algebra.Power{Var: pw.Var, Exp: pw.Exp / 2})
+	}
+	lead := algebra.FromTerms([]algebra.Term{{Mono: algebra.NewMonomial(half...), Coef: root}})
+	t = lead
+	for range p.Len() {
+		rest := p.Sub(t.Mul(t))
+		if rest.IsZero() {
+			return t, true
+		}
+		lm, lc := rest.Leading()
+		next, ok := algebra.FromTerms([]algebra.Term{{Mono: lm, Coef: lc}}).DivExact(lead.Scale(algebra.Int(2)))
+		if !ok {
+			return p, false
+		}
+		t = t.Add(next)
+	}
+	return t, p.Sub(t.Mul(t)).IsZero()
 }

@@ -366,15 +366,20 @@ func (p *piece) measure() error {
 }
 
 // divided are the components divided by a sine, where that leaves no new
-// denominator.
+// denominator: x/s = x s/(1 - c²).
 func (p *piece) divided(n []algebra.Fraction, sine algebra.Fraction) ([]algebra.Fraction, bool) {
+	cos := jet.Of(p.Ring.Symbol(sine.Vars()[0]).Partner)
 	var out []algebra.Fraction
 	for _, x := range n {
-		y, err := p.Ring.Quo(x, sine)
-		if err != nil || len(y.DenFactors()) > len(x.DenFactors()) {
+		y, err := p.Ring.Mul(x, sine)
+		if err != nil {
 			return nil, false
 		}
-		out = append(out, y)
+		z, ok := y.Quo(jet.Whole(1).Sub(cos.Mul(cos)))
+		if !ok || z.Err() != nil || len(z.DenFactors()) > len(x.DenFactors()) {
+			return nil, false
+		}
+		out = append(out, z)
 	}
 	return out, true
 }

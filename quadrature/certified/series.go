@@ -77,6 +77,8 @@ func (e *evaluator) at(box [2]interval.Interval, dir int, h interval.Interval, o
 			s = log(e.value[o.a], m)
 		case errorFunction:
 			s = erf(e.value[o.a], m)
+		case magnitude:
+			s = abs(e.value[o.a], m)
 		}
 		e.value[i] = s
 	}
@@ -98,6 +100,24 @@ func unknown(value interval.Interval, m int) series {
 		s[k] = interval.Entire()
 	}
 	s[0] = value
+	return s
+}
+
+// abs is |a|, which is not smooth where a may vanish.
+func abs(a series, m int) series {
+	value := a[0].Abs()
+	switch {
+	case m == 0 || len(a) == 1:
+		return series{value}
+	case a[0].Contains(0):
+		return unknown(value, m)
+	case a[0].Inf() > 0:
+		return a
+	}
+	s := make(series, len(a))
+	for k, x := range a {
+		s[k] = x.Neg()
+	}
 	return s
 }
 

@@ -26,6 +26,7 @@ const (
 	exponential
 	logarithm
 	errorFunction
+	magnitude
 )
 
 type op struct {
@@ -202,3 +203,6 @@ func (t *Tape) Log(a Ref) Ref { return t.unary(logarithm, a, interval.Interval.L
 
 // Erf is the error function of a.
 func (t *Tape) Erf(a Ref) Ref { return t.unary(errorFunction, a, interval.Interval.Erf) }
+
+// Abs is |a|.
+func (t *Tape) Abs(a Ref) Ref { return t.unary(magnitude, a, interval.Interval.Abs) }
