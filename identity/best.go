@@ -31,12 +31,8 @@ func (d *decider) best() error {
 	if !g.Poly.Has(v) {
 		return &entropy.Error{At: st.Left.At(), Err: errors.New("the inequality does not depend on " + d.Claim.Best), Advice: "take `best` away, or let the constant occur"}
 	}
-	if g.Poly.Degree(v) > 1 || slices.ContainsFunc(d.Ring.Kernels(algebra.FromPoly(g.Poly)), func(k algebra.Var) bool { return d.DependsOn(d.Ring.Symbol(k).Arg, v) }) {
-		d.Open("the inequality is not affine in %s: its best values are not searched for", d.Claim.Best)
-		return nil
-	}
-	if slices.ContainsFunc(g.Value.DenFactors(), func(f algebra.Factor) bool { return f.Base.Has(v) }) {
-		d.Open("%s stands in a denominator: its best values are not searched for", d.Claim.Best)
+	if err := d.Affine(g, v); err != nil {
+		d.Open("%v: its best values are not searched for", err)
 		return nil
 	}
 	if len(d.Wells) > 0 || len(d.Ideal) > 0 {
@@ -45,10 +41,6 @@ func (d *decider) best() error {
 	}
 	b := &bestSearch{d: d, g: g, v: v, slope: g.Poly.Deriv(v), rest: g.Poly.Coeffs(v)[0]}
 	return b.run()
-}
-
-func (d *decider) DependsOn(f algebra.Fraction, v algebra.Var) bool {
-	return slices.Contains(d.Ring.Support(f), v)
 }
 
 type bestSearch struct {

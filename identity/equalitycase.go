@@ -60,7 +60,7 @@ func (r *reduction) term(s gram.Square) string {
 		return text
 	}
 	base := r.Format(s.Base)
-	if s.Base.Len() > 1 || strings.ContainsAny(base, " ") {
+	if s.Base.Len() > 1 || strings.ContainsAny(base, " ^") {
 		base = "(" + base + ")"
 	}
 	if text == "1" {

@@ -3,7 +3,6 @@ package identity
 import (
 	"fmt"
 	"slices"
-	"strings"
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
@@ -105,79 +104,12 @@ func (d *decider) withNull(g *exact.Gap, list []exact.NullLagrangian, x []algebr
 	if len(list) == 0 {
 		return true, nil
 	}
-	d.Rec.Solution = "N = " + d.formatNull(list, x)
+	d.Rec.Solution = d.FormatNull(list, x)
 	for _, c := range x {
 		d.Rec.Null = append(d.Rec.Null, c.String())
 	}
-	var parts []string
-	for i, p := range potential {
-		parts = append(parts, d.Ring.Coordinates[i]+": "+d.Ring.Format(p))
-	}
-	d.Rec.Details = append(d.Rec.Details, "N = div of ("+strings.Join(parts, ", ")+"), so its integral is a boundary term")
+	d.Rec.Details = append(d.Rec.Details, d.FormatPotential(potential))
 	return true, nil
-}
-
-// formatNull prints Σ x_k coef_k minor_k, with the name of a named formula in
-// place of a minor, or of a sum of minors with one coefficient, that it equals.
-func (d *decider) formatNull(list []exact.NullLagrangian, x []algebra.Rat) string {
-	type group struct {
-		Coef  algebra.Fraction
-		Minor algebra.Fraction
-	}
-	var groups []group
-next:
-	for k, l := range list {
-		if x[k].IsZero() {
-			continue
-		}
-		c := l.Coef.Scale(x[k])
-		for i := range groups {
-			if groups[i].Coef.Equal(c) {
-				groups[i].Minor = groups[i].Minor.Add(l.Minor)
-				continue next
-			}
-		}
-		groups = append(groups, group{c, l.Minor})
-	}
-	var b strings.Builder
-	for i, gr := range groups {
-		name := "(" + d.Ring.Format(gr.Minor) + ")"
-		for _, let := range sortedLets(d.Claim.Setting.Lets) {
-			if v, err := d.In.Scalar(d.Claim.Setting.Lets[let]); err == nil && v.Equal(gr.Minor) {
-				name = let
-				break
-			}
-		}
-		c := d.Ring.Format(gr.Coef)
-		if i > 0 {
-			if strings.HasPrefix(c, "-") {
-				b.WriteString(" - ")
-				c = c[1:]
-			} else {
-				b.WriteString(" + ")
-			}
-		}
-		switch {
-		case c == "1":
-			b.WriteString(name)
-		case c == "-1":
-			b.WriteString("-" + name)
-		case strings.Contains(c, "/") || strings.Contains(c, " + "):
-			b.WriteString("(" + c + ") " + name)
-		default:
-			b.WriteString(c + " " + name)
-		}
-	}
-	return b.String()
-}
-
-func sortedLets[V any](m map[string]V) []string {
-	out := make([]string, 0, len(m))
-	for k := range m {
-		out = append(out, k)
-	}
-	slices.Sort(out)
-	return out
 }
 
 // fitNull finds, numerically, a combination with which the gap is a sum of

@@ -42,6 +42,10 @@ func (d *decider) search(g *exact.Gap) error {
 	if len(d.Ideal) > 0 || len(d.Wells) > 0 {
 		return d.searchOnVariety(g, pts)
 	}
+	if slices.ContainsFunc(d.Assumed, func(c exact.Constraint) bool { return c.Relation == "=" }) {
+		d.Open("no proof and no exact counterexample was found; samples do not follow assumptions that are equations")
+		return nil
+	}
 	for _, v := range pts.Free {
 		if lo, hi := (&task{d: d}).bounds(v); lo >= hi {
 			if _, ok := pts.Next(); !ok {

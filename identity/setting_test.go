@@ -95,13 +95,26 @@ func expr(t testing.TB, set *entropy.Setting, text string) formula.Node {
 
 func assumption(t testing.TB, set *entropy.Setting, text string) entropy.Assumption {
 	t.Helper()
+	sc, err := set.Scope(false)
+	require.NoError(t, err)
+	return parseAssumption(sc, text)
+}
+
+func parseAssumption(sc *formula.Scope, text string) entropy.Assumption {
 	for _, rel := range []string{">=", "<=", ">", "<", "="} {
 		if l, r, ok := strings.Cut(text, rel); ok {
-			return entropy.Assumption{Left: expr(t, set, l), Right: expr(t, set, r), Relation: rel, Text: text}
+			left, err := sc.ParseExpr(source.Text{S: l})
+			if err != nil {
+				panic(err)
+			}
+			right, err := sc.ParseExpr(source.Text{S: r})
+			if err != nil {
+				panic(err)
+			}
+			return entropy.Assumption{Left: left, Right: right, Relation: rel, Text: text}
 		}
 	}
-	t.Fatalf("no relation in %q", text)
-	return entropy.Assumption{}
+	panic("no relation in " + text)
 }
 
 // state parses a claim; edit may change it before it is decided.

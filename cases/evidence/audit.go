@@ -51,10 +51,7 @@ func Audit(ctx context.Context, data []byte) (*File, error) {
 	case rec.Verdict != f.Verdict:
 		return f, fmt.Errorf("the verdict is %s, not %s: %s", rec.Verdict, f.Verdict, rec.Reason)
 	}
-	if f.Kind == Exact {
-		return f, sameRecord(f, rec)
-	}
-	return f, nil
+	return f, sameRecord(f, rec)
 }
 
 // fits makes sure that the file is of the kind that its claim has, and holds no
@@ -77,13 +74,13 @@ func (f *File) fits(cl *cases.Claim) error {
 		return fmt.Errorf("evidence of an unknown kind %.40q", f.Kind)
 	}
 	for what, foreign := range map[string]bool{
-		"a certificate":        f.Kind != Certificate && (f.Problem != nil || f.Certificate != nil || f.Equality != nil),
-		"a null Lagrangian":    len(f.Null) > 0 && (!cl.Divergence || !inequality(cl) || f.Kind == Witness),
-		"ends":                 f.Kind != Best && len(f.Ends)+len(f.Unbounded) > 0,
-		"a witness":            f.Witness != nil && (f.Kind == Best || f.Kind == Certificate),
-		"a remainder":          f.Remainder != "" && f.Kind != Exact,
-		"a solution":           f.Solution != "" && (f.Kind == Witness || inequality(cl) && f.Kind != Best && !cl.Divergence),
-		"an unknown condition": f.Equality != nil && !slices.Contains([]string{"yes", "no", "unknown"}, f.Equality.Consistent),
+		"a certificate":                f.Kind != Certificate && (f.Problem != nil || f.Certificate != nil),
+		"a null Lagrangian":            len(f.Null) > 0 && (!cl.Divergence || !inequality(cl) || f.Kind == Witness),
+		"ends":                         f.Kind != Best && len(f.Ends)+len(f.Unbounded) > 0,
+		"a witness":                    f.Witness != nil && (f.Kind == Best || f.Kind == Certificate),
+		"a remainder":                  f.Remainder != "" && f.Kind != Exact,
+		"a solution":                   f.Solution != "" && (f.Kind == Witness || inequality(cl) && f.Kind != Best && !cl.Divergence),
+		"a text that nothing verifies": f.Kind != Exact && (f.Method != "" || len(f.Details) > 0) || f.Equality != nil,
 	} {
 		if foreign {
 			return fmt.Errorf("the file holds %s beside evidence of the kind %q", what, f.Kind)
@@ -92,15 +89,20 @@ func (f *File) fits(cl *cases.Claim) error {
 	return nil
 }
 
-// sameRecord compares what an exact computation gives with what is recorded.
+// sameRecord compares what is computed with what is recorded: all of it for an
+// exact computation, and for the other kinds what their files hold beside the
+// evidence itself.
 func sameRecord(f *File, rec *claim.Record) error {
-	for _, x := range []struct {
+	type part struct {
 		what string
 		a, b any
-	}{
-		{"method", f.Method, rec.Method}, {"solution", f.Solution, rec.Solution}, {"remainder", f.Remainder, rec.Remainder},
-		{"witness", f.Witness, rec.Witness}, {"assumptions", f.Assumptions, rec.Assumptions}, {"details", f.Details, rec.Details},
-	} {
+	}
+	parts := []part{{"solution", f.Solution, rec.Solution}, {"assumptions", f.Assumptions, rec.Assumptions}}
+	if f.Kind == Exact {
+		parts = append(parts, part{"method", f.Method, rec.Method}, part{"remainder", f.Remainder, rec.Remainder},
+			part{"witness", f.Witness, rec.Witness}, part{"details", f.Details, rec.Details})
+	}
+	for _, x := range parts {
 		if !reflect.DeepEqual(x.a, x.b) && fmt.Sprint(x.a) != fmt.Sprint(x.b) {
 			return fmt.Errorf("the %s differs from what the computation gives", x.what)
 		}
@@ -188,9 +190,13 @@ func (a *audit) gap(d *exact.Problem) (*exact.Gap, error) {
 				return nil, err
 			}
 		}
-		if g, _, err = d.AddNull(g, list, x); err != nil {
+		var potential []algebra.Fraction
+		if g, potential, err = d.AddNull(g, list, x); err != nil {
 			return nil, err
 		}
+		d.Rec.Solution, d.Rec.Details = d.FormatNull(list, x), []string{d.FormatPotential(potential)}
+	} else if d.Claim.Divergence {
+		d.Rec.Solution = "N = 0"
 	}
 	return g, d.RemoveAngle(g)
 }
@@ -203,7 +209,7 @@ func (a *audit) certificate(d *exact.Problem) error {
 	if err := checkCertificate(d, g, a.file.Problem, a.file.Certificate); err != nil {
 		return err
 	}
-	d.Proved(a.file.Method)
+	d.Proved("certificate")
 	return nil
 }
 
@@ -276,7 +282,7 @@ func (a *audit) witness(d *exact.Problem) error {
 	case !d.Shows(a.file.Witness, g, at):
 		return errors.New("the two sides at the witness are not the recorded ones")
 	}
-	d.Refuted(a.file.Method, at, g.Left, g.Right)
+	d.Refuted("witness", at, g.Left, g.Right)
 	return nil
 }
 
@@ -289,8 +295,11 @@ func (a *audit) equal(d *exact.Problem) error {
 	if !g.Value.IsZero() {
 		return errors.New("the file holds no evidence for an inequality whose sides differ")
 	}
-	d.Proved(a.file.Method)
-	d.Rec.Solution, d.Rec.Details = a.file.Solution, a.file.Details
+	method := "exact normal form: both sides are equal"
+	if d.Claim.Divergence {
+		method += " up to a divergence"
+	}
+	d.Proved(method)
 	return nil
 }
 
@@ -303,9 +312,11 @@ func (a *audit) best(d *exact.Problem) error {
 		return err
 	}
 	v := d.Ring.ConstantVar(d.Claim.Best)
-	inDenominator := slices.ContainsFunc(g.Value.DenFactors(), func(f algebra.Factor) bool { return f.Base.Has(v) })
-	if g.Poly.Degree(v) != 1 || inDenominator {
+	if g.Poly.Degree(v) != 1 {
 		return errors.New("the inequality is not affine in " + d.Claim.Best)
+	}
+	if err := d.Affine(g, v); err != nil {
+		return err
 	}
 	if len(a.file.Ends) == 0 {
 		return errors.New("no value is recorded at which the inequality holds")
@@ -344,7 +355,8 @@ func (a *audit) best(d *exact.Problem) error {
 	if s := claim.SolutionText(d.Claim.Best, a.file.Ends); s != a.file.Solution {
 		return fmt.Errorf("the ends say %s, the file %s", s, a.file.Solution)
 	}
-	d.Proved(a.file.Method)
+	d.Proved("ends")
+	d.Rec.Solution = a.file.Solution
 	return nil
 }
 

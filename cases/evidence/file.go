@@ -35,7 +35,7 @@ type File struct {
 	Claim       string                   `json:"claim"`
 	Verdict     claim.Verdict            `json:"verdict"`
 	Kind        Kind                     `json:"kind"`
-	Method      string                   `json:"method"`
+	Method      string                   `json:"method,omitempty"`
 	Seed        uint64                   `json:"seed"`
 	Solution    string                   `json:"solution,omitempty"`
 	Remainder   string                   `json:"remainder,omitempty"`
@@ -81,6 +81,9 @@ func New(c *cases.Case, cl *cases.Claim, r *claim.Record, seed uint64) (*File, e
 		f.Kind = Witness
 	default:
 		f.Kind = Exact
+	}
+	if f.Kind != Exact { // what the audit does not compute again has no place in the file
+		f.Method, f.Details, f.Equality = "", nil, nil
 	}
 	return f, nil
 }

@@ -157,6 +157,7 @@ func (d *Problem) run(angles jet.Angles, signs []supposition, inequality func(*P
 	if err := d.rewrite(); err != nil {
 		return err
 	}
+	d.Ex.ResetNormal() // assumptions may have named it before the traces were those on the well
 	if d.Rec.Verdict != "" {
 		return nil
 	}

@@ -2,6 +2,7 @@ package exact
 
 import (
 	"errors"
+	"fmt"
 	"slices"
 
 	"creaseproof/entropy/algebra"
@@ -64,6 +65,23 @@ func (d *Problem) GapOnWells() (*Gap, bool, error) {
 		}
 	}
 	return g, len(gens) > 0, d.RemoveAngle(g)
+}
+
+// Affine reports whether a gap is affine in a constant on which nothing else
+// depends: no denominator, no kernel and no assumption holds it.
+func (d *Problem) Affine(g *Gap, v algebra.Var) error {
+	name := d.Ring.Name(v)
+	switch {
+	case g.Poly.Degree(v) > 1, slices.ContainsFunc(g.Value.DenFactors(), func(f algebra.Factor) bool { return f.Base.Has(v) }):
+		return fmt.Errorf("the inequality is not affine in %s", name)
+	case slices.ContainsFunc(d.Ring.Kernels(g.Value, g.Left, g.Right), func(k algebra.Var) bool { return slices.Contains(d.Ring.Support(d.Ring.Symbol(k).Arg), v) }):
+		return fmt.Errorf("%s stands inside a root or a function", name)
+	case slices.ContainsFunc(d.Assumed, func(c Constraint) bool { return slices.Contains(d.Ring.Support(c.Value), v) }):
+		return fmt.Errorf("an assumption holds %s", name)
+	case slices.ContainsFunc(d.Ring.Conditions(), func(c jet.Condition) bool { return slices.Contains(d.Ring.Support(c.Value), v) }):
+		return fmt.Errorf("the sides are not defined for every %s", name)
+	}
+	return nil
 }
 
 // At is the gap with a value put in for a constant in which it is affine.

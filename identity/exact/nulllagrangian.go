@@ -3,6 +3,7 @@ package exact
 import (
 	"fmt"
 	"slices"
+	"strings"
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
@@ -53,8 +54,7 @@ func (d *Problem) AddNull(g *Gap, list []NullLagrangian, x []algebra.Rat) (*Gap,
 // maxNull bounds the null Lagrangians that are combined.
 const maxNull = 60
 
-// Minors lists the minors of order two (and three, in the Hessian) that may be
-// added, times the coefficients that the quadratic part of the gap shows.
+// Minors lists the minors of order two that may be added, times the coefficients that the quadratic part of the gap shows.
 func (d *Problem) Minors(g *Gap) ([]NullLagrangian, error) {
 	n := len(d.Ring.Coordinates)
 	var out []NullLagrangian
@@ -169,6 +169,9 @@ func (d *Problem) nullFrom(m *minor, c algebra.Fraction) (NullLagrangian, bool, 
 	if m.Value.IsZero() {
 		return l, false, nil
 	}
+	if c.Den().Has(m.p) {
+		return l, false, nil
+	}
 	for _, v := range c.Vars() {
 		if k := d.Ring.Symbol(v).Kind; k != jet.Constant && v != m.p && v != m.q {
 			return l, false, nil
@@ -233,4 +236,77 @@ func (d *Problem) quadraticCoefficients(g *Gap, order int) []algebra.Fraction {
 		}
 	}
 	return out
+}
+
+// FormatNull prints N = Σ x_k coef_k minor_k, with the name of a named formula in
+// place of a minor, or of a sum of minors with one coefficient, that it equals.
+func (d *Problem) FormatNull(list []NullLagrangian, x []algebra.Rat) string {
+	type group struct {
+		Coef  algebra.Fraction
+		Minor algebra.Fraction
+	}
+	var groups []group
+next:
+	for k, l := range list {
+		if x[k].IsZero() {
+			continue
+		}
+		c := l.Coef.Scale(x[k])
+		for i := range groups {
+			if groups[i].Coef.Equal(c) {
+				groups[i].Minor = groups[i].Minor.Add(l.Minor)
+				continue next
+			}
+		}
+		groups = append(groups, group{c, l.Minor})
+	}
+	var b strings.Builder
+	b.WriteString("N = ")
+	for i, gr := range groups {
+		name := "(" + d.Ring.Format(gr.Minor) + ")"
+		for _, let := range sortedLets(d.Claim.Setting.Lets) {
+			if v, err := d.In.Scalar(d.Claim.Setting.Lets[let]); err == nil && v.Equal(gr.Minor) {
+				name = let
+				break
+			}
+		}
+		c := d.Ring.Format(gr.Coef)
+		if i > 0 {
+			if strings.HasPrefix(c, "-") {
+				b.WriteString(" - ")
+				c = c[1:]
+			} else {
+				b.WriteString(" + ")
+			}
+		}
+		switch {
+		case c == "1":
+			b.WriteString(name)
+		case c == "-1":
+			b.WriteString("-" + name)
+		case strings.Contains(c, "/") || strings.Contains(c, " + "):
+			b.WriteString("(" + c + ") " + name)
+		default:
+			b.WriteString(c + " " + name)
+		}
+	}
+	return b.String()
+}
+
+func sortedLets[V any](m map[string]V) []string {
+	out := make([]string, 0, len(m))
+	for k := range m {
+		out = append(out, k)
+	}
+	slices.Sort(out)
+	return out
+}
+
+// FormatPotential says whose divergence N is.
+func (d *Problem) FormatPotential(potential []algebra.Fraction) string {
+	var parts []string
+	for i, p := range potential {
+		parts = append(parts, d.Ring.Coordinates[i]+": "+d.Ring.Format(p))
+	}
+	return "N = div of (" + strings.Join(parts, ", ") + "), so its integral is a boundary term"
 }

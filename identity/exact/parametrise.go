@@ -2,6 +2,7 @@ package exact
 
 import (
 	"fmt"
+	"slices"
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
@@ -13,7 +14,7 @@ import (
 // at base + t w with t = -b(w)/a(w), and these points are dense in it. The
 // directions are then free. It reports whether that was possible.
 func (d *Problem) Parametrise() (bool, error) {
-	if len(d.Wells) != 2 {
+	if len(d.Wells) != 2 || d.assumedOfJets() {
 		return false, nil
 	}
 	on := map[jet.Side]map[jet.Index]algebra.Fraction{}
@@ -37,10 +38,18 @@ func (d *Problem) Parametrise() (bool, error) {
 	return true, nil
 }
 
+// assumedOfJets reports whether an assumption or a bound holds a derivative:
+// it was read before the parameters were put in.
+func (d *Problem) assumedOfJets() bool {
+	return slices.ContainsFunc(d.Assumed, func(c Constraint) bool {
+		return slices.ContainsFunc(d.Ring.Support(c.Value), func(v algebra.Var) bool { return d.Ring.Symbol(v).Kind == jet.Derivative })
+	})
+}
+
 // ParametriseZeros does the same for an inequality about first derivatives on
 // the zeros of one equation.
 func (d *Problem) ParametriseZeros(g *Gap) (bool, error) {
-	if len(d.equations) != 1 || len(d.Ring.Unknowns) != 1 || len(d.solved) > 0 {
+	if d.assumedOfJets() || len(d.equations) != 1 || len(d.Ring.Unknowns) != 1 || len(d.solved) > 0 {
 		return false, nil
 	}
 	for _, v := range d.Ring.Support(g.Value, g.Left, g.Right, algebra.FromPoly(d.equations[0])) {

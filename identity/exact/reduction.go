@@ -85,6 +85,10 @@ func (d *Problem) Reduce(g *Gap) *Reduction {
 		case ">", ">=":
 			strict = c.Relation == ">"
 		default:
+			if rel, ok := Monic(p); ok && !slices.ContainsFunc(r.Zero, func(z Relation) bool { return z.Var == rel.Var }) {
+				visit(p)
+				r.Zero = append(r.Zero, rel)
+			}
 			continue
 		}
 		visit(p)

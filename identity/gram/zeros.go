@@ -255,6 +255,9 @@ func (a *ansatz) atNumericalZeros(zeros [][]float64) {
 		f := newNumeric(b.factor, a.vars)
 		var vecs [][]float64
 		for _, z := range zeros {
+			if len(z) < len(a.vars) {
+				continue // a multiplier holds more than the target
+			}
 			if v, size := f.value(z); v <= 1e-7*size {
 				continue
 			}
