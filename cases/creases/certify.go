@@ -53,6 +53,8 @@ func (c *combination) certify(r *Result) error {
 	if unit == 0 {
 		unit = 1
 	}
+	reason := r.Reason // of what the floats showed
+	r.Reason = ""
 	switch {
 	case lo.Cmp(claimed.Hi()) > 0 || hi.Cmp(claimed.Lo()) < 0:
 		away := math.Max(above(lo, claimed.Hi()), above(claimed.Lo(), hi))
@@ -66,6 +68,7 @@ func (c *combination) certify(r *Result) error {
 	case off <= allowed*unit*(1-0x1p-40):
 		c.proved(r, off, unit)
 	default:
+		r.Reason = reason
 		r.add(fmt.Sprintf("the enclosure contains the claimed value and is wider than %.2g, so that it decides nothing", allowed*unit))
 		return nil
 	}

@@ -86,6 +86,9 @@ func (t *energyText) value(s *casefile.Surface, v *creases.Result) {
 	if v.Reason != "" {
 		t.note("", v.Reason)
 	}
+	if v.Enclosure != nil && v.Claimed == nil {
+		t.note("", "the energy lies in ["+strings.Join(v.Enclosure, ", ")+"]")
+	}
 	if !v.Met && v.Expected != "" {
 		t.lines(t.style.alarm, "expected "+string(v.Expected))
 	}

@@ -93,7 +93,7 @@ func (t *Tape) Integrate(ctx context.Context, of Ref, o Options) (Result, error)
 					size += l[i].size
 				}
 			}
-			if width <= o.Rel*size {
+			if width <= o.Rel*size && !math.IsInf(width, 0) {
 				break
 			}
 		}
