@@ -79,7 +79,7 @@ func (c *combination) newPiece(names []string, angles *jet.Angles, ranges func(*
 	return p, nil
 }
 
-// exactly evaluates a formula on the piece.
+// on evaluates a formula on the piece.
 func (c *combination) on(p *onSurface, f formulaText) (algebra.Fraction, error) {
 	in := &entropy.Interpreter[algebra.Fraction]{Setting: c.set, Arith: p}
 	x, err := in.Scalar(f.node)
