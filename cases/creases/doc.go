@@ -1,7 +1,7 @@
 // Package creases computes the jump energy over the surfaces of a case.
 //
-// A surface of a case file says where a gradient jumps (a polygon, a patch or
-// a graph) and what the traces are on its two sides: u itself, its gradients,
+// A surface of a case file says where a gradient jumps (a polygon, a patch, a
+// graph, a level set, or where branches of a maximum or minimum meet) and what the traces are on its two sides: u itself, its gradients,
 // or nothing but a density. For every combination of the listed values
 //
 //   - the assumptions of the case are decided for the values by exact
@@ -20,13 +20,60 @@
 //   - the parts of formulas without variables are evaluated to 200 bits and
 //     rounded once, so that the difference of two close constants costs nothing;
 //   - the density is the one given, or the profile cost of the model (package
-//     entropy, type Profile) where the energy is R²/(2 eps) + eps L²/2;
+//     entropy, type Profile) where the energy is R²/(2 eps) + eps L²/2, or the
+//     model gives R and L and no energy;
 //   - the integral is computed with an error estimate and compared with the
 //     claimed energy, which is enclosed with 200 bits and rounded once;
 //   - for the layered model the energy is computed a second time by
 //     horizontal slices, from which neither normals nor areas are needed.
 //
+// # Level sets and branches
+//
+// A level set {phi = 0} in a box, a ball or a cylinder has plus on the side
+// phi > 0. It is integrated by package levelset, with enclosures of phi and its
+// gradient by package ranges. The checks of the traces are made at its nodes.
+//
+// Branches are combined by max, min, or a nested expression in their numbers,
+// "max(min(1, 2), 3..5)", in which each stands once. They have to be
+// differentiable wherever u is that branch; at other points, such as the foci
+// of distances, they need not be. The jump set is that of package branches: the
+// residual of every branch is brought to normal form; pairs of branches that
+// enclosures exclude have no sheet; every other pair is the level set of its
+// difference, with the other branches as conditions. Nothing larger than the
+// resolution reported is missed, and where none is reported nothing at all, up
+// to the area that the error allows for.
+//
+// Branches that are affine with rational coefficients, in a box with rational
+// ends, have faces with rational corners. Where the density is rational on them
+// up to the root of the area, the energy is a rational number, or with a
+// rational density a sum of roots, and a claimed energy is proved or refuted.
+//
+// # Enclosures
+//
+// With Options.Certify the energy of a polygon, a patch or a graph is enclosed.
+// Positions, traces, normal and density are exact functions of the parameters
+// (package jet). Exact arithmetic shows that u is continuous across the surface,
+// or for given gradients that their jump is normal, and that both traces are on
+// the well; what it does not show leaves the claim as it was. Where a root keeps
+// a value a + b r from being visibly zero, that (a + b r)(a - b r) is and that
+// enclosures keep a - b r away from zero shows it. The profile cost is that of a
+// quadratic residual in closed form, or the mean of Bernstein coefficients that
+// are shown to be of one sign. The product of density and area element is
+// written as a sum of products of functions of one parameter, where its normal
+// form allows that, and integrated by package certified. What stands under roots
+// and in logarithms is shown to be in their domain inside the ranges of the
+// parameters; a denominator that cancels is not looked at, so that where it
+// vanishes the integrand is its continuation. That a polygon does not meet itself
+// is checked at the rounded vertices only.
+//
 // # Verdicts
+//
+// With an enclosure a claimed energy is proved where all of the enclosure
+// differs from all of the enclosure of the claimed value by no more than within,
+// or 1e-9 where that is not given, relative to the claimed value: proved is that
+// difference, not equality. It is refuted where the enclosure misses the claimed
+// value, unless the case allows for that much; then the reason says that it
+// does. An enclosure that is wider decides nothing.
 //
 // An energy that agrees with the claim within the error, and the relative
 // difference that the case allows (within), is supported; nothing
