@@ -255,3 +255,9 @@ box = { x = ["-1", "1"], y = ["-1", "1"] }
 		assert.Contains(t, r.Reason, test.says, name)
 	}
 }
+
+// A model without an energy takes the one made of its residual and bending.
+func TestModelWithoutEnergy(t *testing.T) {
+	r := one(t, strings.Replace(eikonalHead, "energy   = \"e\"\n", "", 1)+rectangle+"energy = \"4/3\"\n")
+	assert.Equal(t, identity.Proved, r.Verdict, r.Reason)
+}

@@ -7,6 +7,7 @@ import (
 	"maps"
 	"math"
 	"math/big"
+	"slices"
 	"strings"
 
 	"creaseproof/entropy"
@@ -71,12 +72,34 @@ func (s *Surface) Evaluate(ctx context.Context, o Options) ([]Result, error) {
 	}
 }
 
+// withEnergy is the setting with the energy R²/(2 c) + c L²/2 where the model
+// gives a residual and a bending and no energy.
+func withEnergy(set *entropy.Setting) *entropy.Setting {
+	m := set.Model
+	if m.Residual == nil || m.Bending == nil || m.Energy != nil {
+		return set
+	}
+	name := "c"
+	for slices.Contains(set.Coordinates, name) || slices.Contains(set.Unknowns, name) || slices.Contains(set.Constants, name) || set.Lets[name] != nil ||
+		set.Frame != nil && (name == set.Frame.Angle || slices.Contains(set.Frame.Axes[:], name)) {
+		name += "c"
+	}
+	out := *set
+	out.Constants = append(slices.Clone(set.Constants), name)
+	square := func(n formula.Node) formula.Node { return formula.NewPower(n, big.NewRat(2, 1)) }
+	two, c := formula.NewInt(2), formula.NewName(name)
+	out.Model.Energy = formula.NewSum(
+		formula.Term{X: formula.NewQuotient(square(m.Residual), formula.NewProduct(two, c))},
+		formula.Term{X: formula.NewQuotient(formula.NewProduct(c, square(m.Bending)), two)})
+	return &out
+}
+
 // look finds out once what profile cost the model has.
 func (e *Evaluator) look(ctx context.Context) error {
 	if e.looked {
 		return nil
 	}
-	p, err := e.set.NewProfile(ctx)
+	p, err := withEnergy(e.set).NewProfile(ctx)
 	if ctx.Err() != nil {
 		return ctx.Err()
 	}
