@@ -15,8 +15,7 @@ type nodes struct {
 	extent      float64 // of the domain
 	reach       float64 // largest distance from the origin
 	plus, minus []float64
-	count       int
-	low, high   float64 // of the densities met
+	count       int // densities so far
 	bad         *quadrature.PlaceError
 }
 
@@ -75,10 +74,7 @@ func (n *nodes) density(x, nu []float64) (float64, *quadrature.PlaceError) {
 	if math.IsNaN(v) || math.IsInf(v, 0) {
 		return 0, n.fail(quadrature.NotFinite, "density", x, v, 0)
 	}
-	if n.count++; n.count == 1 {
-		n.low, n.high = v, v
-	}
-	n.low, n.high = math.Min(n.low, v), math.Max(n.high, v)
+	n.count++
 	return v, nil
 }
 
