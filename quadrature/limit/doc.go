@@ -1,0 +1,66 @@
+// Package limit evaluates the energy of smooth approximations u_eps of a
+// function with creases, for a falling sequence of eps, and compares it with
+// the energy of the creases.
+//
+// # Approximations
+//
+// Let the sharp function be the maximum (sign +) or minimum (sign -) of
+// branches u_i.
+//
+//   - Front is ±2 eps log Σ exp(±u_i/(2 eps)). With the weights w_i
+//     proportional to exp(±u_i/(2 eps)) its gradient is Σ w_i ∇u_i and its
+//     Hessian Σ w_i ∇²u_i ± Cov_w(∇u_i)/(2 eps). For R = u_z - |∇u|²/2 and
+//     L = Δu in the remaining coordinates exp(u/(2 eps)) obeys the heat
+//     equation where R = eps L (Hopf, The partial differential equation
+//     u_t + u u_x = mu u_xx, Comm. Pure Appl. Math. 3 (1950) 201–230), so the
+//     front of affine branches on the well solves R = ± eps L.
+//   - Mollifier is the maximum convolved, in the difference d of two values,
+//     with the kernel proportional to (1 - (d/δ)²)⁴ on |d| < δ = width eps,
+//     the branches taken up one after the other. It is five times
+//     differentiable and equals the sharp function outside the layer.
+//   - Wall is the one-dimensional transition between two affine functions with
+//     gradients p⁻ and p⁺, q = p⁺ - p⁻, ν = q/|q|:
+//     ∇u = p⁻ + S(t/eps) q at the signed distance t from the wall. Optimal
+//     takes S from the first integral |R(p⁻ + s q)| = eps |L(q ⊗ ν)| ds/dt, for
+//     which both parts of the energy are equal at every point (Modica and
+//     Mortola, Un esempio di Γ-convergenza, Boll. Un. Mat. Ital. B 14 (1977)
+//     285–299); any other S may be given.
+//
+// # Quadrature
+//
+// The domain is a box of parameters and a map of it. One parameter, the one
+// across which most of the crease lies, runs along fibres. On a fibre the
+// crossings of branches are located, and the fibre is cut at them and at
+// multiples of the width eps/|d(u_i - u_j)/ds| of the layer; on the panels
+// Gauss–Kronrod pairs with global bisection are used, and bisection again for
+// the other parameters, which sees the ends of a crease and lines at which
+// creases meet. The number of nodes grows like log(1/eps), where a grid would
+// need a power of 1/eps. The sharp energy is integrated over fibres along every
+// parameter in turn: a crossing with direction t_k = ∂x/∂s_k of the fibre has the
+// area |det ∂x/∂s|/|ν·t_k|, of which the part (ν·t_k)²/Σ_j (ν·t_j)² counts, for
+// parameters scaled to unit ranges; the parts add up to the whole.
+//
+// The error of an integral is that of QUADPACK (Piessens, de Doncker-Kapenga,
+// Überhuber, Kahaner, 1983) from the distance of the two rules of each pair,
+// with the errors of the inner integrals: an estimate and no enclosure.
+// Crossings are looked for in 48 pieces of a fibre, and where the distance of
+// two branches has a minimum; what lies within one piece otherwise is missed by
+// the sharp energy. The energy of the approximation is only found faster where
+// the crossings are known.
+//
+// An energy is called infinite where the contributions of panels that shrink to
+// a place do not fall: over twelve halvings by less than a factor of two. A
+// function with a logarithmic or stronger divergence is recognised; a
+// convergent integral of |x|^a with a < -0.92 would be, too.
+//
+// # Limit and rate
+//
+// The rate is the slope of log|gap| against log eps by least squares over the
+// energies whose gap is well above the error of the integrals, with its
+// standard error. Where the gap at the smallest eps is not above that error
+// there is no rate: the gap is below rounding. The limit is extrapolated by a
+// polynomial in eps (Richardson; Neville's scheme), with the distance of the
+// last two orders as the estimate of its error.
+//
+// All of it is floating-point arithmetic and proves nothing.
+package limit

@@ -1,0 +1,290 @@
+package limit
+
+import (
+	"cmp"
+	"math"
+	"slices"
+
+	"creaseproof/quadrature/rule"
+)
+
+// crossing is a place on a fibre at which another branch takes over.
+type crossing struct {
+	s             float64
+	before, after int
+	slope         float64 // of the difference of the two branches along the fibre
+}
+
+const (
+	pieces   = 48 // of a fibre, between which crossings are looked for
+	probes   = 4  // fibres in each direction, to choose that of the fibres
+	halvings = 60
+
+	// smallestScale is an energy below which rounding is all there is.
+	smallestScale = 1e-26
+)
+
+// reach are the places of the cuts about a crossing, in units of the width of
+// the layer.
+var reach = [...]float64{3, 9, 20, 42}
+
+// winner is the branch that is the sharp function at parameter s of the fibre,
+// and its value.
+func (w *walk) winner(k int, s float64) int {
+	w.s[k] = s
+	w.move()
+	w.p.Values(w.x, w.v)
+	best := 0
+	for i, v := range w.v {
+		if w.p.Min && v < w.v[best] || !w.p.Min && v > w.v[best] {
+			best = i
+		}
+	}
+	return best
+}
+
+// cross finds the crossings along the current fibre.
+func (w *walk) cross() { w.crossAlong(w.order[w.n-1]) }
+
+func (w *walk) crossAlong(k int) {
+	w.cuts = w.cuts[:0]
+	lo, hi := w.p.Domain.Lo[k], w.p.Domain.Hi[k]
+	n := w.p.Branches
+	if len(w.heights) < (pieces+1)*n {
+		w.heights = make([]float64, (pieces+1)*n)
+	}
+	var first [pieces + 1]int
+	at := func(i int) float64 { return lo + (hi-lo)*float64(i)/pieces }
+	for i := range first {
+		first[i] = w.winner(k, at(i))
+		copy(w.heights[i*n:], w.v)
+	}
+	for i := range pieces {
+		a, b := first[i], first[i+1]
+		if a != b {
+			w.between(k, at(i), at(i+1), a, b, halvings)
+			continue
+		}
+		// Another branch may win on a short part: look where its distance
+		// has a minimum among three places.
+		for j := range n {
+			if j == a || i == 0 || first[i-1] != a {
+				continue
+			}
+			d := func(m int) float64 { return math.Abs(w.heights[m*n+j] - w.heights[m*n+a]) }
+			if l, m, r := d(i-1), d(i), d(i+1); m <= l && m <= r && 4*m <= l+r {
+				if s, ok := w.dip(k, a, j, at(i-1), at(i+1)); ok {
+					w.between(k, at(i-1), s, a, w.winner(k, s), halvings)
+					w.between(k, s, at(i+1), w.winner(k, s), a, halvings)
+				}
+			}
+		}
+	}
+	slices.SortFunc(w.cuts, func(a, b crossing) int { return cmp.Compare(a.s, b.s) })
+}
+
+// dip looks between two places at which branch i wins for one at which branch
+// j is better, by golden sections.
+func (w *walk) dip(k, i, j int, a, b float64) (float64, bool) {
+	const ratio = 0.6180339887498949
+	f := func(s float64) float64 {
+		w.winner(k, s)
+		if w.p.Min {
+			return w.v[j] - w.v[i]
+		}
+		return w.v[i] - w.v[j]
+	}
+	c, d := b-ratio*(b-a), a+ratio*(b-a)
+	fc, fd := f(c), f(d)
+	for range 40 {
+		switch {
+		case fc < 0:
+			return c, true
+		case fd < 0:
+			return d, true
+		case fc < fd:
+			b, d, fd = d, c, fc
+			c = b - ratio*(b-a)
+			fc = f(c)
+		default:
+			a, c, fc = c, d, fd
+			d = a + ratio*(b-a)
+			fd = f(d)
+		}
+	}
+	return 0, false
+}
+
+// between finds the crossings between two places with different winners.
+func (w *walk) between(k int, from, to float64, first, next, left int) {
+	if first == next {
+		return
+	}
+	// Two branches alone: a root of their difference, by false position
+	// (Illinois); where a third one wins there, each side by itself.
+	diff := func(s float64) float64 {
+		w.winner(k, s)
+		return w.v[next] - w.v[first]
+	}
+	if w.p.Min {
+		max := diff
+		diff = func(s float64) float64 { return -max(s) }
+	}
+	a, b := from, to
+	fa, fb := diff(a), diff(b)
+	if !(fa <= 0 && fb >= 0) { // not finite
+		return
+	}
+	side := 0
+	for range 100 {
+		if b-a <= 4e-16*math.Max(math.Abs(a), math.Abs(b)) || fb == 0 || fa == 0 {
+			break
+		}
+		m := b - fb*(b-a)/(fb-fa)
+		if !(m > a && m < b) {
+			m = a + (b-a)/2
+		}
+		fm := diff(m)
+		if fm > 0 || fm == 0 && side < 0 {
+			b, fb = m, fm
+			if side == 1 {
+				fa /= 2
+			}
+			side = 1
+		} else {
+			a, fa = m, fm
+			if side == -1 {
+				fb /= 2
+			}
+			side = -1
+		}
+	}
+	root := b
+	if fa == 0 || math.Abs(fa) < math.Abs(fb) {
+		root = a
+	}
+	third := w.winner(k, root)
+	if third != first && third != next && left > 0 {
+		better := math.Abs(w.v[third] - w.v[first])
+		if better > 1e-14*(math.Abs(w.v[third])+math.Abs(w.v[first])) {
+			w.between(k, from, root, first, third, left-1)
+			w.between(k, root, to, third, next, left-1)
+			return
+		}
+	}
+	h := 1e-4 * (w.p.Domain.Hi[k] - w.p.Domain.Lo[k])
+	low, high := math.Max(root-h, w.p.Domain.Lo[k]), math.Min(root+h, w.p.Domain.Hi[k])
+	w.cuts = append(w.cuts, crossing{root, first, next, (diff(high) - diff(low)) / (high - low)})
+}
+
+// panels are the edges of the panels of the current fibre.
+func (w *walk) panels() []float64 {
+	k := w.order[w.n-1]
+	lo, hi := w.p.Domain.Lo[k], w.p.Domain.Hi[k]
+	w.edges = append(w.edges[:0], lo, hi)
+	for i, c := range w.cuts {
+		left, right := lo, hi
+		if i > 0 {
+			left = (w.cuts[i-1].s + c.s) / 2
+		}
+		if i+1 < len(w.cuts) {
+			right = (c.s + w.cuts[i+1].s) / 2
+		}
+		w.edges = append(w.edges, c.s)
+		unit := w.eps / math.Abs(c.slope)
+		if !(unit > 0) || math.IsInf(unit, 0) {
+			continue
+		}
+		for _, r := range reach {
+			if s := c.s - r*unit; s > left {
+				w.edges = append(w.edges, s)
+			}
+			if s := c.s + r*unit; s < right {
+				w.edges = append(w.edges, s)
+			}
+		}
+	}
+	slices.Sort(w.edges)
+	kept := w.edges[:1]
+	for _, s := range w.edges[1:] {
+		if s-kept[len(kept)-1] > 1e-12*(hi-lo) {
+			kept = append(kept, s)
+		}
+	}
+	kept[len(kept)-1] = hi
+	return kept
+}
+
+// gauge sets the size of the integrals along fibres to the greatest on a few
+// of them, so that those off the layer are not computed to a tolerance of
+// their own, which would be that of rounding.
+func (w *walk) gauge() {
+	k := w.order[w.n-1]
+	size := &w.scale[w.n-1]
+	*size = smallestScale
+	r := rule.Kronrod15()
+	w.probe(k, func() {
+		w.cross()
+		edges := w.panels()
+		var sum float64
+		for i := 1; i < len(edges); i++ {
+			half := (edges[i] - edges[i-1]) / 2
+			for j, x := range r.X {
+				var v values
+				if w.density(edges[i-1]+half*(1+x), &v, nil) == nil {
+					sum += half * r.Weight[j] * math.Abs(v[0])
+				}
+			}
+		}
+		*size = math.Max(*size, sum)
+	})
+	w.bad = w.bad[:0]
+}
+
+// probe visits a few fibres along parameter k.
+func (w *walk) probe(k int, visit func()) {
+	total := 1
+	for range w.n - 1 {
+		total *= probes
+	}
+	for m := range total {
+		rest := m
+		for j := range w.n {
+			if j == k {
+				continue
+			}
+			t := (float64(rest%probes) + 0.37) / probes // no symmetric place
+			rest /= probes
+			w.s[j] = w.p.Domain.Lo[j] + t*(w.p.Domain.Hi[j]-w.p.Domain.Lo[j])
+		}
+		visit()
+	}
+}
+
+// orient chooses the parameter that runs along fibres: the one with the most
+// crossings on a few fibres, of equals the first.
+func (w *walk) orient() int {
+	most, best := -1, 0
+	for k := range w.n {
+		found := 0
+		w.probe(k, func() {
+			w.crossAlong(k)
+			found += len(w.cuts)
+		})
+		if found > most {
+			most, best = found, k
+		}
+	}
+	return best
+}
+
+// direct makes parameter k run along fibres. The others keep their order.
+func (w *walk) direct(k int) {
+	w.order = w.order[:0]
+	for j := range w.n {
+		if j != k {
+			w.order = append(w.order, j)
+		}
+	}
+	w.order = append(w.order, k)
+}

@@ -1,0 +1,32 @@
+package limit
+
+// Jet is a function with its first and second derivatives at a point of Dim
+// coordinates.
+type Jet struct {
+	U float64
+	P []float64 // gradient
+	H []float64 // Hessian, row by row, symmetric
+}
+
+// NewJet is a zero jet in dim coordinates.
+func NewJet(dim int) Jet {
+	return Jet{P: make([]float64, dim), H: make([]float64, dim*dim)}
+}
+
+func (j *Jet) clear() {
+	j.U = 0
+	clear(j.P)
+	clear(j.H)
+}
+
+func (j *Jet) set(k *Jet) {
+	j.U = k.U
+	copy(j.P, k.P)
+	copy(j.H, k.H)
+}
+
+// Smoothing makes an approximation of scale eps from the jets of the branches
+// at one point. It may change the jets of the branches.
+type Smoothing interface {
+	Smooth(branches []Jet, eps float64, out *Jet)
+}

@@ -1,0 +1,149 @@
+package limit
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+)
+
+// A Domain is the image of a box of parameters, as many as there are
+// coordinates, under a map that is injective inside.
+type Domain struct {
+	Lo, Hi []float64
+	// Map sets x to the position at s and jac[j] to its derivative by s[j].
+	// It must not keep the slices. Nil is the identity.
+	Map func(s, x []float64, jac [][]float64)
+}
+
+// Density is what is integrated at a point, all for one eps.
+type Density struct {
+	Energy      float64
+	Compression float64 // R²/(2 eps)
+	Bending     float64 // eps L²/2
+	Curvature   float64 // eps K
+}
+
+// Problem is a family of approximations on a domain. It is not safe for
+// concurrent use if its functions are not.
+type Problem struct {
+	Domain   Domain
+	Branches int
+	// Values sets the values of the branches at x.
+	Values func(x, v []float64)
+	// Jets sets their jets.
+	Jets func(x []float64, jets []Jet)
+	// Min says that the sharp function is the minimum of the branches.
+	Min bool
+	// Smoothing makes the approximation.
+	Smoothing Smoothing
+	// Density is the density of the approximation with the given jet at x.
+	Density func(x []float64, eps float64, j *Jet) Density
+	// Cost is the energy per area of a jump; nil where it is not known.
+	Cost func(x, plus, minus, nu []float64) float64
+
+	// Rel is the tolerance of the integrals, relative to the energy; 1e-10
+	// if zero.
+	Rel float64
+	// MaxEvaluations is the budget of evaluations of the density for each
+	// eps; 2e7 if zero.
+	MaxEvaluations int
+}
+
+// Energy is the energy of the approximation at one eps.
+type Energy struct {
+	Eps float64
+	Density
+	// Error estimates the error of each part of Density and of the energy.
+	Error       float64
+	Evaluations int
+	// Met says that the tolerance was met within the budget.
+	Met bool
+}
+
+// InfiniteError says that an approximation has infinite energy.
+type InfiniteError struct {
+	// Point is where it diverges, roughly.
+	Point []float64
+	// Branch is the branch with the greatest second derivatives there.
+	Branch int
+}
+
+func (e *InfiniteError) Error() string {
+	return fmt.Sprintf("limit: the energy is infinite: it diverges at %.3g, where branch %d is not smooth", e.Point, e.Branch+1)
+}
+
+// ErrNotFinite says that a density is not finite on a whole part of the
+// domain.
+var ErrNotFinite = errors.New("limit: the density is not finite")
+
+// ErrDomain says that a domain has no volume or is not finite.
+var ErrDomain = errors.New("limit: the domain is empty")
+
+const (
+	defaultRel = 1e-10
+	defaultMax = 20_000_000
+	mostFibres = 100_000 // for the sharp energy
+)
+
+func (d *Domain) check() error {
+	for i, lo := range d.Lo {
+		if hi := d.Hi[i]; !(hi > lo) || math.IsInf(hi-lo, 0) {
+			return fmt.Errorf("%w: a range from %g to %g", ErrDomain, lo, hi)
+		}
+	}
+	return nil
+}
+
+// Integrate is the energy of the approximation at eps. Where it is infinite the
+// error is an *InfiniteError; where no tolerance is met in the budget it is
+// nil and Met is false. The error of an ended context is returned as it is.
+func (p *Problem) Integrate(ctx context.Context, eps float64) (Energy, error) {
+	w, err := newWalk(ctx, p, eps, false)
+	if err != nil {
+		return Energy{}, err
+	}
+	if e := w.singular(); e != nil {
+		return Energy{Eps: eps}, e
+	}
+	v, e, err := w.run()
+	out := Energy{Eps: eps, Density: Density{v[0], v[1], v[2], v[3]}, Evaluations: w.used}
+	for _, x := range e {
+		out.Error = math.Max(out.Error, x)
+	}
+	if ctx.Err() != nil {
+		return out, ctx.Err()
+	}
+	switch {
+	case errors.Is(err, errInfinite):
+		return out, w.infinite()
+	case errors.Is(err, errPoint):
+		return out, fmt.Errorf("%w near %.4g", ErrNotFinite, w.bad)
+	case err != nil:
+		return out, err
+	}
+	out.Met = !w.spent()
+	return out, nil
+}
+
+// Sharp is the energy of the jumps of the sharp function inside the domain, an
+// estimate of its error, and their area. It needs Cost.
+func (p *Problem) Sharp(ctx context.Context) (energy, estimate, area float64, err error) {
+	w, err := newWalk(ctx, p, 0, true)
+	if err != nil {
+		return 0, 0, 0, err
+	}
+	for k := range w.n {
+		clear(w.scale)
+		w.direct(k)
+		v, e, err := w.run()
+		if ctx.Err() != nil {
+			return 0, 0, 0, ctx.Err()
+		}
+		if err != nil {
+			return 0, 0, 0, fmt.Errorf("%w: the energy per area of the jumps, near %.4g", ErrNotFinite, w.bad)
+		}
+		energy, estimate, area = energy+v[0], estimate+e[0], area+v[1]
+	}
+	return energy, estimate + 1e-14*math.Abs(energy), area, nil
+}
