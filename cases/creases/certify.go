@@ -297,7 +297,7 @@ func (c *combination) densityOn(p *piece) (algebra.Fraction, error) {
 		if err != nil {
 			return zero, err
 		}
-		if parts[k], err = polynomialIn(x, s.Vars()[0]); err != nil {
+		if parts[k], err = polynomialIn(p.Ring, x, s.Vars()[0]); err != nil {
 			return zero, err
 		}
 	}
@@ -319,8 +319,13 @@ func (c *combination) densityOn(p *piece) (algebra.Fraction, error) {
 }
 
 // polynomialIn are the coefficients of a polynomial in s.
-func polynomialIn(f algebra.Fraction, s algebra.Var) ([]algebra.Fraction, error) {
+func polynomialIn(ring *jet.Ring, f algebra.Fraction, s algebra.Var) ([]algebra.Fraction, error) {
 	den := jet.Whole(1)
+	for _, v := range ring.Kernels(f) {
+		if ring.Symbol(v).Arg.Has(s) {
+			return nil, noEnclosure("the profile cost is not polynomial")
+		}
+	}
 	for _, d := range f.DenFactors() {
 		if d.Base.Has(s) {
 			return nil, noEnclosure("the profile cost is not polynomial")

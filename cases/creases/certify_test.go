@@ -248,4 +248,27 @@ polygon = [["0", "0"], ["0", "2"]]
 	r = certified(t, "case.toml", head+"plus = \"x\"\nminus = \"-x\"\nenergy = \"2\"\n", nil)[0]
 	assert.Empty(t, r.Enclosure)
 	assert.Contains(t, r.Reason, "keep its sign")
+
+	// Not a polynomial on the segment.
+	for _, residual := range []string{"sqrt(1 + u_x^2 + u_y^2) - sqrt(2)", "exp(u_x^2) - exp(1)", "1/(2 + u_x^2) - 1/3"} {
+		r = certified(t, "case.toml", strings.Replace(head, "u_x (1 - u_x^2)", residual, 1)+"plus = \"x\"\nminus = \"-x\"\n", nil)[0]
+		require.NotNil(t, r.Energy, "%s: %s", residual, r.Reason)
+		assert.Empty(t, r.Enclosure, residual)
+		assert.Contains(t, r.Reason, "not polynomial", residual)
+	}
+}
+
+// The supremum of a family of fields is the profile cost of the layered model.
+func TestCertifiedSupremum(t *testing.T) {
+	const paraboloid = `plus = "-(x^2 + y^2)/(2 z)"
+minus = "-k"
+values = { k = ["2/3", "2"] }
+patch = { map = ["sqrt(2 k t) cos(a)", "sqrt(2 k t) sin(a)", "t"], over = { t = ["1", "2"], a = ["0", "2 pi"] } }
+energy = "(2 pi k^2/3) log(2)"
+`
+	for _, density := range []string{"", "density = \"sup(theta, [Sigma].nu)\"\n", "density = \"norm([u_x], [u_y])^4/(12 norm([u_x], [u_y], [u_z]))\"\n"} {
+		for _, r := range certified(t, "case.toml", layeredHead+density+paraboloid, nil) {
+			assert.Equal(t, identity.Proved, r.Verdict, "%s: %s", density, r.Reason)
+		}
+	}
 }

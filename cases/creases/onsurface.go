@@ -64,6 +64,11 @@ func (a *onSurface) Total(algebra.Fraction, int) (algebra.Fraction, error) {
 	return algebra.Fraction{}, fmt.Errorf("%w: a total derivative in a formula of a surface", jet.ErrOutside)
 }
 
+// Euler is refused: it acts on jets, and these are replaced by the traces.
+func (a *onSurface) Euler(algebra.Fraction, int) (algebra.Fraction, error) {
+	return algebra.Fraction{}, fmt.Errorf("%w: the Euler operator in a formula of a surface", jet.ErrOutside)
+}
+
 // dot is the scalar product.
 func (a *onSurface) dot(x, y []algebra.Fraction) (sum algebra.Fraction, err error) {
 	for i := range x {
