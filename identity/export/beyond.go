@@ -12,7 +12,9 @@ import (
 // beyond Value: the difference of the sides vanishes there at Value, is affine
 // in the constant and falls beyond. The theorem reads
 //
-//	forall lambda u_x eps : R,  u_x = 1 -> eps = 1 -> Value < lambda -> Right < Left.
+//	forall lambda u_x eps : R,  u_x = 1 -> eps = 1 -> Value < lambda -> 0 < eps /\ Right < Left,
+//
+// so that the point is one at which the claim is made.
 type Beyond struct {
 	Name     string
 	Comment  string
@@ -23,6 +25,9 @@ type Beyond struct {
 	// constant.
 	At          map[string]string
 	Left, Right Expr
+	// Assumed are the assumptions of the claim, which must hold at the point.
+	// The constant stands in none of them.
+	Assumed []Comparison
 }
 
 func (s *Beyond) title() (string, string) { return s.Name, s.Comment }
@@ -85,6 +90,11 @@ func (s *Beyond) read() (r *ring, names []string, values []*big.Rat, end, slope 
 			slope.Quo(slope, c)
 		}
 	}
+	for i, a := range s.Assumed {
+		if _, err := a.at(r, values); err != nil {
+			return fail(fmt.Errorf("assumption %d: %w", i, err))
+		}
+	}
 	if len(one) > 0 || slope.Sign() <= 0 {
 		return fail(errors.New("the difference of the sides does not vanish at the end, or does not fall beyond it"))
 	}
@@ -92,7 +102,7 @@ func (s *Beyond) read() (r *ring, names []string, values []*big.Rat, end, slope 
 }
 
 func (s *Beyond) coq(d *document) error {
-	_, names, values, end, slope, err := s.read()
+	r, names, values, end, slope, err := s.read()
 	if err != nil {
 		return err
 	}
@@ -110,10 +120,22 @@ func (s *Beyond) coq(d *document) error {
 		lemma, side = "fails_below", sc.at[0]+" < "+coqNumber(end)
 	}
 	h := sc.names.name("B")
-	d.statement("Theorem", name, sc, append(premises, side), tree(s.Right, sc.ids, levelSum)+" < "+tree(s.Left, sc.ids, levelSum))
+	var conclusions []string
+	for _, a := range s.Assumed {
+		conclusions = append(conclusions, a.text(sc.ids))
+	}
+	conclusions = append(conclusions, tree(s.Right, sc.ids, levelSum)+" < "+tree(s.Left, sc.ids, levelSum))
+	d.statement("Theorem", name, sc, append(premises, side), strings.Join(conclusions, " /\\ "))
 	d.intros(sc, append(given, h))
 	if len(given) > 0 {
 		d.printf("%s\n", wrap("  ", "subst "+strings.Join(sc.at[1:], " ")+"."))
+	}
+	for _, a := range s.Assumed {
+		c, err := a.at(r, values)
+		if err != nil {
+			return err
+		}
+		d.printf("  split.\n  { apply (%s _ _ %s); [lra | field; repeat split; lra]. }\n", comparisons[a.Relation].lemma, coqNumber(c))
 	}
 	d.printf("  apply (%s _ _ %s %s %s).\n", lemma, coqNumber(slope), coqNumber(end), sc.at[0])
 	d.printf("  - lra.\n  - exact %s.\n  - field; repeat split; lra.\nQed.\n", h)

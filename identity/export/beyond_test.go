@@ -36,6 +36,45 @@ func TestCoqAcceptsFailuresBeyondAnEnd(t *testing.T) {
 	require.NoError(t, err, "%s\n%s", out, text)
 }
 
+// The point is one at which the assumptions hold, by the theorem too.
+func TestAssumptionsBeyondAnEnd(t *testing.T) {
+	v := func(s string) export.Expr { return export.Variable(s) }
+	zero := export.Number("0")
+	s := twoSquares(true)
+	s.At["r"] = "2"
+	s.Assumed = []export.Comparison{
+		{Left: v("eps"), Relation: ">", Right: zero},
+		{Left: zero, Relation: "<", Right: export.Quotient{Num: v("x"), Den: export.Product{v("eps"), v("y")}}},
+		{Left: v("x"), Relation: "=", Right: v("y")},
+		{Left: export.Power{Base: v("r"), Exp: 2}, Relation: "=", Right: export.Number("4")},
+		{Left: v("r"), Relation: ">=", Right: export.Number("2")},
+		{Left: v("x"), Relation: "<=", Right: v("eps")},
+	}
+	text, err := export.Coq("", s)
+	require.NoError(t, err)
+	for _, want := range []string{"eps > 0 /\\", "x = y", "r^2 = 4", "r = 2 ->"} {
+		assert.Contains(t, text, want)
+	}
+	out, err := coqc(t, text)
+	require.NoError(t, err, "%s\n%s", out, text)
+
+	for name, c := range map[string]export.Comparison{
+		"one that is false":       {Left: v("eps"), Relation: "<", Right: zero},
+		"an equation off by some": {Left: v("x"), Relation: "=", Right: export.Number("1000001/1000000")},
+		"a strict one":            {Left: v("x"), Relation: "<", Right: v("y")},
+		"one on the constant":     {Left: v("lambda"), Relation: ">", Right: zero},
+		"a pole":                  {Left: export.Quotient{Num: v("x"), Den: export.Sum{v("x"), export.Negation{X: v("y")}}}, Relation: ">", Right: zero},
+		"an unknown name":         {Left: v("w"), Relation: ">", Right: zero},
+		"no relation":             {Left: v("x"), Relation: "!=", Right: zero},
+		"no side":                 {Left: v("x"), Relation: ">"},
+	} {
+		s := twoSquares(true)
+		s.Assumed = []export.Comparison{c}
+		_, err := export.Coq("", s)
+		require.Error(t, err, name)
+	}
+}
+
 func TestTeXOfFailuresBeyondAnEnd(t *testing.T) {
 	text, err := export.TeX(&export.Group{Statements: []export.Statement{twoSquares(true), twoSquares(false)}}, export.TeXOptions{Width: 500})
 	require.NoError(t, err)

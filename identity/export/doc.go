@@ -14,8 +14,8 @@
 // An identity reads `left = right` under its relations and under the premise
 // that its denominators do not vanish; several equations form one conjunction.
 // For the best values of a constant a Group holds an Inequality for each end and
-// a Beyond, which says that the sides compare the other way at a point for all
-// values beyond the end.
+// a Beyond, which says that the sides compare the other way for all values beyond
+// the end at a point, and that the assumptions hold at the point.
 // Trees are printed as they are given, not normalised, so that the theorem can
 // be compared with the claim by eye.
 //

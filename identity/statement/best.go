@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"reflect"
+	"slices"
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/jet"
@@ -102,8 +103,8 @@ func end(s *export.Group, d *exact.Problem, g *exact.Gap, v algebra.Var, e *clai
 	return nil
 }
 
-// beyond states that the inequality fails at the jet beyond an end, nil where
-// that cannot be exported.
+// beyond states that the inequality fails at the jet beyond an end, where all
+// assumptions hold, nil where that cannot be exported.
 func beyond(d *exact.Problem, g *exact.Gap, v algebra.Var, e *claim.End) *export.Beyond {
 	p, err := d.Replay(e.Beyond, d.Points(g.Value, g.Left, g.Right))
 	if err != nil {
@@ -122,8 +123,22 @@ func beyond(d *exact.Problem, g *exact.Gap, v algebra.Var, e *claim.End) *export
 	if s.Left, s.Right, err = sides(c, t); err != nil {
 		return nil
 	}
+	if s.Assumed, err = assumed(c, t); err != nil {
+		return nil
+	}
+	used := []export.Expr{s.Left, s.Right}
+	for _, a := range s.Assumed {
+		used = append(used, a.Left, a.Right)
+	}
+	kernels, err := t.kernels(used)
+	if err != nil {
+		return nil
+	}
+	for _, a := range kernels {
+		s.Assumed, used = append(s.Assumed, a), append(used, a.Left, a.Right)
+	}
 	for name, w := range t.vars {
-		if w == v || !occurs(name, s.Left) && !occurs(name, s.Right) {
+		if w == v || !slices.ContainsFunc(used, func(e export.Expr) bool { return occurs(name, e) }) {
 			continue
 		}
 		x, ok := d.Ring.Exact(jet.Of(w), p)

@@ -182,3 +182,16 @@ best = "lambda"`), "claim")
 	assert.Contains(t, text, "no upper end")
 	assert.Contains(t, text, "lambda < 0 ->")
 }
+
+// The jet beyond an end satisfies the assumptions, those of the setting and of
+// the claim.
+func TestAssumptionsBeyondAnEnd(t *testing.T) {
+	s, err := of(t, claimOf(`states = "u_x^2 + u_y^2 >= lambda u_x u_y/eps"
+best = "lambda"
+assume = ["u_x >= 3", "eps = 2"]`), "claim")
+	require.NoError(t, err)
+	text := accepted(t, s)
+	for _, want := range []string{"eps > 0 /\\ ", "u_x >= 3 /\\", "eps = 2 /\\"} {
+		assert.Contains(t, text, want)
+	}
+}

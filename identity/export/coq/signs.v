@@ -89,6 +89,22 @@ Proof.
   rewrite <- S in H. pose proof (from_squares x y Hx) as L. lra.
 Qed.
 
+(* Comparisons of numbers, from the value of left - right. *)
+Lemma less_from_value : forall l r c : R, c < 0 -> l - r = c -> l < r.
+Proof. intros l r c Hc E. apply Rminus_lt. rewrite E. exact Hc. Qed.
+
+Lemma at_most_from_value : forall l r c : R, c <= 0 -> l - r = c -> l <= r.
+Proof. intros l r c Hc E. apply Rminus_le. rewrite E. exact Hc. Qed.
+
+Lemma equal_from_value : forall l r c : R, c = 0 -> l - r = c -> l = r.
+Proof. intros l r c Hc E. apply Rminus_diag_uniq. rewrite E. exact Hc. Qed.
+
+Lemma at_least_from_value : forall l r c : R, c >= 0 -> l - r = c -> l >= r.
+Proof. intros l r c Hc E. lra. Qed.
+
+Lemma greater_from_value : forall l r c : R, c > 0 -> l - r = c -> l > r.
+Proof. intros l r c Hc E. lra. Qed.
+
 Lemma fails_above : forall l r k b x : R,
   0 < k -> b < x -> r - l = k * (b - x) -> r < l.
 Proof.
