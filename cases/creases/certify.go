@@ -19,6 +19,14 @@ import (
 // where the case allows none of its own.
 const narrow = 1e-9
 
+// certified is a result after certify.
+func (c *combination) certified(r Result, err error) (Result, error) {
+	if err == nil {
+		err = c.certify(&r)
+	}
+	return r, err
+}
+
 // certify encloses the energy and decides the claimed one. A surface without
 // an enclosure keeps its verdict, and says why.
 func (c *combination) certify(r *Result) error {

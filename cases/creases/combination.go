@@ -211,13 +211,13 @@ func (c *combination) evaluate() (Result, error) {
 		r.Claimed = &x
 	}
 	if s.src.Mesh != "" {
-		return c.meshed(r, rel, allowed)
+		return c.certified(c.meshed(r, rel, allowed))
 	}
 	if reason := c.broken(); reason != "" {
 		return r.refuse(reason), nil
 	}
 	if s.shape.implicit() {
-		return c.implicit(r, rel, allowed)
+		return c.certified(c.implicit(r, rel, allowed))
 	}
 	surface, err := c.surfaceOf()
 	if err != nil {
