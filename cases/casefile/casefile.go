@@ -15,13 +15,14 @@ type File struct {
 	About   string
 	Sources []string
 
-	Space    *Space // nil only in a case that has no claim, field or surface
+	Space    *Space // nil only in a case that has no claim, field, surface or limit
 	Frame    *Frame
 	Lets     []Let
 	Model    *Model
 	Fields   []Field
 	Claims   []Claim
 	Surfaces []Surface
+	Limits   []Limit
 }
 
 // Name is a name or a jet variable, as written, and its place.

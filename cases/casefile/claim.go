@@ -130,7 +130,7 @@ func (d *decoder) word(v *value, what string, words ...string) string {
 			return s
 		}
 	}
-	d.add(v.off, fmt.Sprintf("%s cannot be %s", quote(what), quote(s)), fmt.Sprintf("write %s = %q", what, strings.Join(words, `" or "`)))
+	d.add(v.off, fmt.Sprintf("%s cannot be %s", quote(what), quote(s)), fmt.Sprintf(`write %s = "%s"`, what, strings.Join(words, `" or "`)))
 	return ""
 }
 

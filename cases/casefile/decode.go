@@ -86,10 +86,11 @@ func (d *decoder) document(root *value) {
 		{"field", func(e *entry) { d.fields(e.value) }},
 		{"claim", func(e *entry) { d.claims(e.value) }},
 		{"surface", func(e *entry) { d.surfaces(e.value) }},
+		{"limit", func(e *entry) { d.limits(e.value) }},
 	})
 	for _, e := range root.entries {
 		switch e.key {
-		case "frame", "let", "model", "field", "claim", "surface":
+		case "frame", "let", "model", "field", "claim", "surface", "limit":
 			if needs == nil {
 				needs = e
 			}
@@ -101,7 +102,7 @@ func (d *decoder) document(root *value) {
 		d.add(needs.off, fmt.Sprintf("%s needs a space, and this file has no [space]", quote(needs.key)),
 			"add [space] with coordinates = [\"x\", \"y\"] and unknowns = [\"u\"]")
 	case len(d.problems) == 0:
-		d.add(root.entries[0].off, "this file holds no case: it has no [space], no [[claim]] and no [[surface]]",
+		d.add(root.entries[0].off, "this file holds no case: it has no [space], no [[claim]], no [[surface]] and no [[limit]]",
 			"`creaseproof cases new FILE` writes a case to start from")
 	}
 }

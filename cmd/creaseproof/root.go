@@ -64,7 +64,7 @@ Exit status: 0 every expectation met, 1 not so, 2 the input or the call is wrong
 		SilenceUsage:  true,
 		Run:           func(cmd *cobra.Command, _ []string) { _ = cmd.Help() },
 	}
-	root.AddCommand(newCheck(s), newEnergy(s), newAudit(s), newCases(s))
+	root.AddCommand(newCheck(s), newEnergy(s), newLimit(s), newAudit(s), newCases(s))
 	return root
 }
 

@@ -133,9 +133,15 @@ func (p *Problem) Sharp(ctx context.Context) (energy, estimate, area float64, er
 	if err != nil {
 		return 0, 0, 0, err
 	}
-	for k := range w.n {
-		clear(w.scale)
+	best := w.orient()
+	for i := range w.n {
+		k := (best + i) % w.n // the greatest part first
 		w.direct(k)
+		unit := 1e-3 * math.Abs(energy)
+		for d, j := range w.order {
+			w.scale[d] = math.Max(unit, smallestScale)
+			unit /= w.p.Domain.Hi[j] - w.p.Domain.Lo[j]
+		}
 		v, e, err := w.run()
 		if ctx.Err() != nil {
 			return 0, 0, 0, ctx.Err()

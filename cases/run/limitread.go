@@ -1,0 +1,262 @@
+package run
+
+import (
+	"context"
+	"errors"
+	"maps"
+	"math"
+	"slices"
+	"strings"
+
+	"creaseproof/cases"
+	"creaseproof/cases/casefile"
+	"creaseproof/entropy"
+	"creaseproof/entropy/formula"
+	"creaseproof/entropy/program"
+	"creaseproof/entropy/source"
+	"creaseproof/quadrature/limit"
+)
+
+// limitReader makes the problem of one limit at one choice of its values. The
+// values are named formulas of its setting.
+type limitReader struct {
+	ctx   context.Context
+	c     *cases.Case
+	l     *casefile.Limit
+	set   *entropy.Setting
+	scope *formula.Scope // with the names of the values
+	small string         // the name of eps
+	n     int            // coordinates
+}
+
+func (r *limitReader) fault(t source.Text, advice, format string, args ...any) error {
+	return r.c.Fault(source.Pos{Line: t.Line, Col: t.Col}, advice, format, args...)
+}
+
+// evaluateLimit evaluates a limit for every combination of its values, the
+// first listed varying slowest.
+func evaluateLimit(ctx context.Context, c *cases.Case, l *casefile.Limit) ([]LimitValue, error) {
+	total := 1
+	for _, v := range l.Values {
+		if total *= len(v.List); total > maxCombinations {
+			return nil, c.Fault(v.Name.Pos, "make a limit for each part of them", "the values have more than %d combinations", maxCombinations)
+		}
+	}
+	var out []LimitValue
+	at := make([]int, len(l.Values))
+	for range total {
+		v, err := oneLimit(ctx, c, l, at)
+		if v != nil {
+			out = append(out, *v)
+		}
+		if err != nil {
+			return out, err
+		}
+		for k := len(at) - 1; k >= 0; k-- {
+			if at[k]++; at[k] < len(l.Values[k].List) {
+				break
+			}
+			at[k] = 0
+		}
+	}
+	return out, nil
+}
+
+// oneLimit evaluates a limit at one choice of its values. Where the context
+// ends, what was found comes with its error.
+func oneLimit(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) (*LimitValue, error) {
+	r, err := newLimitReader(ctx, c, l, at)
+	if err != nil {
+		return nil, err
+	}
+	v := emptyLimit(l)
+	for i, x := range l.Values {
+		if v.Values == nil {
+			v.Values = map[string]string{}
+		}
+		v.Values[x.Name.S] = strings.TrimSpace(x.List[at[i]].S)
+	}
+	eps, err := r.falling()
+	if err != nil {
+		return nil, err
+	}
+	p, err := r.problem()
+	if err != nil {
+		return nil, err
+	}
+	if err := r.target(p, &v); err != nil {
+		return nil, err
+	}
+	for _, e := range eps {
+		energy, err := p.Integrate(ctx, e)
+		var infinite *limit.InfiniteError
+		switch {
+		case ctx.Err() != nil:
+			if len(v.Eps) == 0 {
+				return nil, ctx.Err()
+			}
+			return &v, ctx.Err()
+		case errors.As(err, &infinite):
+			v.infinite(r, infinite)
+			return &v, nil
+		case err != nil:
+			return nil, r.c.Fault(l.Pos, "", "%q at eps = %g: %s", cases.Clip(l.Name, 40), e, strings.TrimPrefix(err.Error(), "limit: "))
+		}
+		v.add(energy)
+	}
+	within := defaultGap
+	if l.Within != nil {
+		within, _ = l.Within.Float64()
+	}
+	v.judge(within)
+	v.complete = true
+	return &v, nil
+}
+
+func newLimitReader(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) (*limitReader, error) {
+	set := *c.Setting
+	set.Lets = maps.Clone(set.Lets)
+	if set.Lets == nil {
+		set.Lets = map[string]formula.Node{}
+	}
+	r := &limitReader{ctx: ctx, c: c, l: l, set: &set, n: len(set.Coordinates)}
+	if r.n < 1 || r.n > 3 || len(set.Unknowns) != 1 {
+		return nil, c.Fault(l.Pos, "declare one to three coordinates and one unknown", "approximations in %d coordinates of %d unknowns", r.n, len(set.Unknowns))
+	}
+	scope, err := set.Scope(false)
+	if err != nil {
+		return nil, err
+	}
+	plain, err := formula.NewScope(formula.ScopeConfig{})
+	if err != nil {
+		return nil, err
+	}
+	for i, v := range l.Values {
+		name, err := formula.FoldName(v.Name.S)
+		if err == nil {
+			scope, err = scope.With(v.Name.S)
+		}
+		if err != nil {
+			return nil, c.Place(err, v.Name.Pos)
+		}
+		node, err := plain.ParseExpr(v.List[at[i]])
+		if err != nil {
+			return nil, err
+		}
+		set.Lets[name] = node
+	}
+	r.scope = scope
+	for _, k := range set.Constants {
+		if set.Lets[k] == nil && (r.small == "" || k == "eps") {
+			r.small = k
+		}
+	}
+	if set.Model.Residual == nil || set.Model.Bending == nil {
+		return nil, c.Fault(l.Pos, "add [model] with residual, bending and energy", "a limit needs the residual and the bending of a model")
+	}
+	return r, nil
+}
+
+// program compiles a formula in the given inputs, with its derivatives by the
+// coordinates up to the given order.
+func (r *limitReader) compile(t source.Text, n formula.Node, order int, inputs ...entropy.Input) (*program.Program, error) {
+	in, num := r.set.NewNumeric(nil, inputs...)
+	num.Closed = true
+	at := source.Pos{Line: t.Line, Col: t.Col}
+	x, err := in.Scalar(n)
+	if err == nil {
+		err = num.Err()
+	}
+	if err != nil {
+		return nil, r.c.Place(err, at)
+	}
+	outs := []program.Ref{x}
+	if order > 0 {
+		for i := range r.n {
+			d, err := num.Total(x, i)
+			if err != nil {
+				return nil, r.c.Place(err, at)
+			}
+			outs = append(outs, d)
+		}
+	}
+	if order > 1 {
+		for i := range r.n {
+			for j := i; j < r.n; j++ {
+				d, err := num.Total(outs[1+i], j)
+				if err != nil {
+					return nil, r.c.Place(err, at)
+				}
+				outs = append(outs, d)
+			}
+		}
+	}
+	p, err := num.Compile(outs...)
+	if err != nil {
+		return nil, r.c.Place(err, at)
+	}
+	return p, nil
+}
+
+// number is the value of a formula without variables.
+func (r *limitReader) number(t source.Text) (float64, error) {
+	n, err := r.scope.ParseExpr(t)
+	if err != nil {
+		return 0, err
+	}
+	p, err := r.compile(t, n, 0)
+	if err != nil {
+		return 0, err
+	}
+	var out [1]float64
+	p.Eval(p.NewWorkspace(), nil, out[:])
+	if math.IsNaN(out[0]) || math.IsInf(out[0], 0) {
+		return 0, r.fault(t, "", "%s has no finite value", strings.TrimSpace(t.S))
+	}
+	return out[0], nil
+}
+
+func (r *limitReader) numbers(list []source.Text) ([]float64, error) {
+	var out []float64
+	for _, t := range list {
+		x, err := r.number(t)
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, x)
+	}
+	return out, nil
+}
+
+// falling are the values of eps.
+func (r *limitReader) falling() ([]float64, error) {
+	eps, err := r.numbers(r.l.Eps)
+	if err != nil {
+		return nil, err
+	}
+	for i, e := range eps {
+		if !(e > 0) {
+			return nil, r.fault(r.l.Eps[i], "write positive values, the greatest first", "eps = %g is not positive", e)
+		}
+		if i > 0 && e >= eps[i-1] {
+			return nil, r.fault(r.l.Eps[i], "write the greatest first", "eps does not fall: %g after %g", e, eps[i-1])
+		}
+	}
+	return eps, nil
+}
+
+func (r *limitReader) coordinates() []entropy.Input {
+	var in []entropy.Input
+	for i := range r.n {
+		in = append(in, entropy.Input{Kind: entropy.CoordinateInput, Place: i})
+	}
+	return in
+}
+
+// infinite says where an energy diverges.
+func (v *LimitValue) infinite(r *limitReader, e *limit.InfiniteError) {
+	v.Outcome, v.complete = Infinite, true
+	v.Met = v.Outcome == v.Expected
+	v.Reason = "the energy is infinite: it diverges near (" + strings.Join(r.set.Coordinates, ", ") + ") = " + point(e.Point) +
+		", where the branch " + strings.TrimSpace(slices.Concat(r.l.Branches)[e.Branch].S) + " is not smooth"
+}

@@ -1,0 +1,152 @@
+package run
+
+import (
+	"fmt"
+	"math"
+
+	"creaseproof/cases/casefile"
+	"creaseproof/quadrature/limit"
+)
+
+// What the energies of an approximation do as eps falls, as far as numbers can
+// show it.
+const (
+	// Sharp: at the smallest eps the energy is within the relative gap allowed
+	// of the jump energy.
+	Sharp = "sharp"
+	// Above: it is not, and the extrapolated limit is above the jump energy.
+	Above = "above"
+	// Below: it is not, and the extrapolated limit is below the jump energy.
+	Below = "below"
+	// Infinite: the approximation has infinite energy.
+	Infinite = "infinite"
+	// Undecided: none of these can be said.
+	Undecided = "open"
+)
+
+// LimitValue is what came of one limit at one choice of its values. The lists
+// run along with Eps.
+type LimitValue struct {
+	Approximation string            `json:"approximation"` // its name
+	Kind          string            `json:"kind"`          // profile, front, mollified
+	Values        map[string]string `json:"values,omitempty"`
+
+	Eps         []float64 `json:"eps"`
+	Energy      []float64 `json:"energy"`
+	Compression []float64 `json:"compression"`
+	Bending     []float64 `json:"bending"`
+	Curvature   []float64 `json:"curvature"` // eps ∫K
+	Error       []float64 `json:"error"`     // estimates of the absolute errors of these
+
+	// Equipartition is compression over bending at the smallest eps.
+	Equipartition *float64 `json:"equipartition,omitempty"`
+
+	// Target is the jump energy, claimed or integrated over the same domain.
+	Target        *float64 `json:"target,omitempty"`
+	TargetError   *float64 `json:"target_error,omitempty"`
+	TargetClaimed bool     `json:"target_claimed"`
+
+	// Gap is the energy at the smallest eps minus Target, RelativeGap over Target.
+	Gap         *float64 `json:"gap,omitempty"`
+	RelativeGap *float64 `json:"relative_gap,omitempty"`
+	// Rate is the fitted order of the gap in eps, RateError its standard error.
+	Rate      *float64 `json:"rate,omitempty"`
+	RateError *float64 `json:"rate_error,omitempty"`
+	// BelowRounding says that the gap at the smallest eps is not above the
+	// errors of the integrals, so that no rate is fitted.
+	BelowRounding bool `json:"below_rounding,omitempty"`
+	// Limit is the energy extrapolated to eps = 0.
+	Limit      *float64 `json:"limit,omitempty"`
+	LimitError *float64 `json:"limit_error,omitempty"`
+
+	Evaluations int    `json:"evaluations"`
+	Outcome     string `json:"outcome"`
+	Expected    string `json:"expected"`
+	Met         bool   `json:"met"`
+	Reason      string `json:"reason,omitempty"`
+
+	complete bool
+}
+
+// defaultGap is the relative gap that is allowed at the smallest eps.
+const defaultGap = 1e-3
+
+func emptyLimit(l *casefile.Limit) LimitValue {
+	v := LimitValue{Approximation: l.Name, Kind: l.Approximation, Expected: l.Expect, Outcome: Undecided,
+		Eps: []float64{}, Energy: []float64{}, Compression: []float64{}, Bending: []float64{}, Curvature: []float64{}, Error: []float64{}}
+	if v.Expected == "" {
+		v.Expected = Sharp
+	}
+	return v
+}
+
+func (v *LimitValue) add(e limit.Energy) {
+	v.Eps = append(v.Eps, e.Eps)
+	v.Energy = append(v.Energy, e.Energy)
+	v.Compression = append(v.Compression, e.Compression)
+	v.Bending = append(v.Bending, e.Bending)
+	v.Curvature = append(v.Curvature, e.Curvature)
+	v.Error = append(v.Error, e.Error+4e-16*math.Abs(e.Energy))
+	v.Evaluations += e.Evaluations
+}
+
+// rounding is the relative size of what rounding does to a claimed energy and
+// to the sums of an integral.
+const rounding = 1e-14
+
+// judge compares the energies with the target.
+func (v *LimitValue) judge(within float64) {
+	n := len(v.Eps)
+	if n == 0 || v.Target == nil {
+		return
+	}
+	target := *v.Target
+	last := n - 1
+	if v.Bending[last] != 0 {
+		q := v.Compression[last] / v.Bending[last]
+		v.Equipartition = &q
+	}
+	gaps, errors := make([]float64, n), make([]float64, n)
+	for i, e := range v.Energy {
+		gaps[i] = e - target
+		errors[i] = v.Error[i] + *v.TargetError + rounding*math.Abs(target)
+	}
+	v.Gap = &gaps[last]
+	unit := math.Abs(target)
+	if target != 0 {
+		q := gaps[last] / unit
+		v.RelativeGap = &q
+	} else {
+		unit = 1
+	}
+	v.BelowRounding = math.Abs(gaps[last]) <= errors[last]
+	if r := limit.FitRate(v.Eps, gaps, errors); r != nil && !v.BelowRounding {
+		v.Rate = &r.Value
+		if !math.IsNaN(r.Deviation) {
+			v.RateError = &r.Deviation
+		}
+	}
+	allowed := within * unit
+	x, e := limit.Extrapolate(v.Eps, v.Energy, v.Error)
+	if !math.IsInf(e, 0) {
+		v.Limit, v.LimitError = &x, &e
+	}
+	switch {
+	case v.Error[last] > allowed:
+		v.Reason = fmt.Sprintf("the energy at the smallest eps has an estimated error of %.2g, more than the gap of %.2g that is allowed", v.Error[last], allowed)
+	case math.Abs(gaps[last]) <= allowed:
+		v.Outcome = Sharp
+	case v.Limit != nil && x-target > allowed+5*e:
+		v.Outcome = Above
+		v.Reason = fmt.Sprintf("the limit %.10g is above the jump energy by %.4g (%.3g%%)", x, x-target, 100*(x-target)/unit)
+	case v.Limit != nil && target-x > allowed+5*e:
+		v.Outcome = Below
+		v.Reason = fmt.Sprintf("the limit %.10g is below the jump energy by %.4g (%.3g%%): the domain, the branches or the claimed energy are not those of one crease", x, target-x, 100*(target-x)/unit)
+	default:
+		v.Reason = fmt.Sprintf("the relative gap at the smallest eps is %.3g, more than the %.3g allowed; the limit %.10g ± %.2g is not away from the jump energy: add smaller eps", gaps[last]/unit, within, x, e)
+	}
+	if v.Outcome == Above || v.Outcome == Below {
+		v.Rate, v.RateError = nil, nil // the gap does not fall
+	}
+	v.Met = v.Outcome == v.Expected
+}
