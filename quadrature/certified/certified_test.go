@@ -1,8 +1,10 @@
 package certified_test
 
 import (
+	"context"
 	"math"
 	"math/big"
+	"math/rand/v2"
 	"testing"
 
 	"github.com/stretchr/testify/assert"
@@ -105,4 +107,44 @@ func TestConstantsByIntervals(t *testing.T) {
 		assert.True(t, r.Value.Contains(math.Log((1+a)/a)))
 	}
 	assert.Less(t, r.Value.Wid(), 1e-8)
+}
+
+// Kinks and roots in the second parameter only, and absolute values.
+func TestAbs(t *testing.T) {
+	var tape certified.Tape
+	x := tape.Add(tape.Mul(tape.Rat(rat(2, 1)), tape.Param(0)), tape.Rat(rat(-1, 3)))
+	for _, f := range []certified.Ref{tape.Abs(x), tape.Mul(tape.Abs(tape.Mul(x, tape.Rat(rat(-1, 1)))), tape.Exp(tape.Mul(tape.Rat(rat(0, 1)), tape.Param(1))))} {
+		r, err := tape.Integrate(t.Context(), f, certified.Options{})
+		require.NoError(t, err)
+		assert.True(t, overlap(r.Value, ec.FromRat(rat(13, 18))), "%v", r.Value)
+		assert.Less(t, r.Value.Wid(), 1e-11)
+	}
+}
+
+// Random rational functions against their partial fractions: the integral of
+// a/(x + b) is a log((1 + b)/b).
+func TestRandom(t *testing.T) {
+	rng := rand.New(rand.NewPCG(5, 6))
+	for range 50 {
+		var tape certified.Tape
+		sum, want := tape.Rat(rat(0, 1)), ec.Int(0)
+		for range 3 {
+			a, b := rat(rng.Int64N(41)-20, 1+rng.Int64N(9)), rat(1+rng.Int64N(20), 1+rng.Int64N(40))
+			sum = tape.Add(sum, tape.Quo(tape.Rat(a), tape.Add(tape.Param(0), tape.Rat(b))))
+			bi := ec.FromRat(b)
+			want = ec.Add(want, ec.Mul(ec.FromRat(a), ec.Log(ec.Quo(ec.Add(bi, ec.Int(1)), bi))))
+		}
+		r, err := tape.Integrate(t.Context(), sum, certified.Options{})
+		require.NoError(t, err)
+		assert.True(t, overlap(r.Value, want), "%v misses %v", r.Value, want)
+		assert.Less(t, r.Value.Wid(), 1e-10)
+	}
+}
+
+func TestCancelled(t *testing.T) {
+	ctx, cancel := context.WithCancel(t.Context())
+	cancel()
+	var tape certified.Tape
+	_, err := tape.Integrate(ctx, tape.Root(tape.Param(0), 2), certified.Options{})
+	assert.ErrorIs(t, err, context.Canceled)
 }
