@@ -119,7 +119,7 @@ func TestLimitDomains(t *testing.T) {
 		"cylinder={center=['0','0'],radius='1',axis='x',heights=['-1','2']}":         math.Pi,
 		"region={map=['a','b - a','c'],over={a=['-1','1'],b=['0','1'],c=['0','3']}}": 3,
 	} {
-		r := limitOfText(t, "[[limit]]\nname='f'\napproximation='front'\nbranches=['x + z/2','-x + z/2']\ncombine='max'\neps=['1/100','1/400']\nwithin=1e-2\n"+domain+"\n")
+		r := limitOfText(t, "[[limit]]\nname='f'\napproximation='front'\nbranches=['x + z/2','-x + z/2']\ncombine='max'\neps=['1/40','1/100']\nwithin=1e-2\n"+domain+"\n")
 		require.NoError(t, r.Err, domain)
 		v := r.Values[0]
 		assert.InEpsilon(t, 2./3*area, *v.Target, 1e-7, domain)
