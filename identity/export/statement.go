@@ -33,6 +33,10 @@ type Inequality struct {
 	// is {{{Weight: "2", Factors: []int{0}, Base: one}}} where assumption 0
 	// is eps > 0.
 	Scale [][]certificate.Square
+
+	// Origin is a sentence that says how the target comes from the claim, such
+	// as by which factor the gap was multiplied. TeX prints it as a comment.
+	Origin string
 }
 
 // Identity is one equation, or several that hold together, between formulas in

@@ -27,14 +27,31 @@ type TeXOptions struct {
 // with multiplier and equations where there are any; where the scale and the
 // multiplier are one term, the identity is divided by them. A squaring takes two
 // rows, gap = x - y with x visibly nonnegative and x² - y² = Σ weight · square.
-// For an Identity it
-// shows its equations.
+// For an Identity it shows its equations. Origins stand before the block, as
+// comments.
 func TeX(s Statement, o TeXOptions) (string, error) {
 	rows, err := s.tex(o)
 	if err != nil {
 		return "", err
 	}
-	return "\\begin{align}\n" + strings.Join(rows, " \\\\\n") + "\n\\end{align}\n", nil
+	return origins(s) + "\\begin{align}\n" + strings.Join(rows, " \\\\\n") + "\n\\end{align}\n", nil
+}
+
+// origins is a comment of TeX for each target that is not the gap as it stands.
+func origins(s Statement) string {
+	switch s := s.(type) {
+	case *Inequality:
+		if s.Origin != "" {
+			return "% " + strings.Join(strings.Fields(s.Name+": "+s.Origin), " ") + "\n"
+		}
+	case *Group:
+		var b strings.Builder
+		for _, x := range s.Statements {
+			b.WriteString(origins(x))
+		}
+		return b.String()
+	}
+	return ""
 }
 
 func (o TeXOptions) ids(variables []string) map[string]string {

@@ -89,7 +89,8 @@ func end(s *export.Group, d *exact.Problem, g *exact.Gap, v algebra.Var, e *clai
 	}
 	holds.Name = c.Name + ", at " + c.Best + " = " + e.Value
 	holds.Comment = text(c) + ", at " + c.Best + " = " + e.Value
-	whole, err := withSides(holds, d, at, d.Reduce(at), map[algebra.Var]export.Expr{v: export.Number(e.Value)})
+	holds.Origin = origin(d, at)
+	whole, err := withSides(holds, d, at, d.Reduce(at), map[algebra.Var]export.Expr{v: export.Number(e.Value)}, nil)
 	if err == nil && whole != nil {
 		holds = whole
 	}

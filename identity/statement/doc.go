@@ -6,15 +6,19 @@
 // Euler expression, which has to vanish; a span becomes one equation for each
 // component; an inequality becomes left <= right, with the certificate of its
 // reduced form. Where the sides cannot be written in its variables it is the
-// reduced form, 0 <= target: up to a divergence, on wells that determine no
-// derivative, with most roots at a jump, and where a denominator that is no
-// monomial has no visible sign. A denominator that may vanish is assumed not to.
-// Where the frame angle was removed, the sides are those at angle 0, in the
-// derivatives along the axes.
+// reduced form, 0 <= target, with a sentence on how that comes from the gap: on
+// wells that determine no derivative, with most roots at a jump, and where a
+// denominator that is no monomial has no visible sign. A denominator that may
+// vanish is assumed not to. Where the frame angle was removed, the sides are those
+// at angle 0, in the derivatives along the axes.
+//
+// An inequality up to a divergence becomes left <= right + N at every jet, and
+// the identity N = D_1 P_1 + ... + D_n P_n for the potential P. That the integral
+// of such an N is a boundary term is said beside them and not proved in the file.
 //
 // For the best values of a constant there is one inequality for each end, one
-// statement that the inequality fails beyond it where the jet that shows it is
-// rational, and the sign of the slope on a side without an end.
+// statement that the inequality fails beyond it, and that all assumptions hold at
+// the jet that shows it, where that jet is rational, and the sign of the slope on a side without an end.
 //
 // Kernels (roots, cosine and sine of an angle, exponentials) become variables;
 // what holds between them is stated beside the equations, and their total

@@ -23,9 +23,11 @@ import (
 // 0 <= target.
 func certified(ctx context.Context, c *claim.Claim, r *claim.Record) (export.Statement, error) {
 	s := &export.Inequality{Name: c.Name, Comment: text(c), Claim: r.Reduced, Certificate: r.Certificate}
-	if r.OnWells || r.Parameters || len(r.Null) > 0 || c.Divergence {
+	if r.OnWells || r.Parameters || len(r.Null) > 0 {
+		s.Origin = originUnknown
 		return s, nil // the target is not right - left in the jets of the claim
 	}
+	s.Origin = originUnknown
 	var whole *export.Inequality
 	err := replay(ctx, c, func(d *exact.Problem, g *exact.Gap) error {
 		red := d.Reduce(g)
@@ -33,7 +35,8 @@ func certified(ctx context.Context, c *claim.Claim, r *claim.Record) (export.Sta
 			return nil
 		}
 		var err error
-		whole, err = withSides(s, d, g, red, nil)
+		s.Origin = origin(d, g)
+		whole, err = withSides(s, d, g, red, nil, nil)
 		return err
 	})
 	if err := ctx.Err(); err != nil {
@@ -51,7 +54,7 @@ var errDone = errors.New("done")
 // replay makes a claim exact again, as far as the gap with its angle removed,
 // and visits that.
 func replay(ctx context.Context, c *claim.Claim, visit func(d *exact.Problem, g *exact.Gap) error) error {
-	_, err := exact.Decide(ctx, c, 0, func(d *exact.Problem) error {
+	return visited(ctx, c, func(d *exact.Problem) error {
 		g, err := d.Gap()
 		if err != nil {
 			return err
@@ -59,7 +62,14 @@ func replay(ctx context.Context, c *claim.Claim, visit func(d *exact.Problem, g 
 		if err := d.RemoveAngle(g); err != nil {
 			return err
 		}
-		if err := visit(d, g); err != nil {
+		return visit(d, g)
+	})
+}
+
+// visited makes a claim exact again, and visits it before it is decided.
+func visited(ctx context.Context, c *claim.Claim, visit func(d *exact.Problem) error) error {
+	_, err := exact.Decide(ctx, c, 0, func(d *exact.Problem) error {
+		if err := visit(d); err != nil {
 			return err
 		}
 		return errDone
@@ -91,7 +101,8 @@ func sides(c *claim.Claim, t *trees) (left, right export.Expr, err error) {
 }
 
 // withSides completes a copy of s by its sides, at the values put for some
-// indeterminates. It returns nil where the sides cannot be exported.
+// indeterminates and with a null Lagrangian, if any, added on the right. It
+// returns nil where the sides cannot be exported.
 //
 // Where the frame angle was removed, the sides are those at angle 0, written in
 // the derivatives along the axes, which are those along the coordinates there.
@@ -99,7 +110,7 @@ func sides(c *claim.Claim, t *trees) (left, right export.Expr, err error) {
 // is a bijection for every angle, and written in the jets along the axes the gap
 // does not depend on the angle, so that the claim at any angle is the claim at
 // angle 0.
-func withSides(s *export.Inequality, d *exact.Problem, g *exact.Gap, red *exact.Reduction, put map[algebra.Var]export.Expr) (*export.Inequality, error) {
+func withSides(s *export.Inequality, d *exact.Problem, g *exact.Gap, red *exact.Reduction, put map[algebra.Var]export.Expr, n *null) (*export.Inequality, error) {
 	t := &trees{Exact: d.Ex, vars: map[string]algebra.Var{}, put: map[algebra.Var]export.Expr{}}
 	maps.Copy(t.put, put)
 	out := *s
@@ -112,6 +123,10 @@ func withSides(s *export.Inequality, d *exact.Problem, g *exact.Gap, red *exact.
 	if out.Left, out.Right, err = sides(d.Claim, t); err != nil {
 		return nil, err
 	}
+	if n != nil {
+		out.Right = t.sum(out.Right, n.tree(t))
+	}
+	out.Origin = ""
 	w := &widened{d: d, red: red, claim: *s.Claim, name: t.name, added: map[algebra.Var]int{}, rooted: map[algebra.Var]bool{}}
 	w.claim.Variables, w.claim.Positive = slices.Clone(s.Claim.Variables), slices.Clone(s.Claim.Positive)
 	for name := range t.vars {

@@ -22,6 +22,12 @@ func Of(ctx context.Context, c *claim.Claim, r *claim.Record) (export.Statement,
 	if r.Verdict != claim.Proved {
 		return nil, fmt.Errorf("%w: the claim is not proved", export.ErrUnsupported)
 	}
+	if len(r.Null) > 0 {
+		s, err := upToDivergence(ctx, c, r)
+		if !errors.Is(err, export.ErrUnsupported) || r.Certificate == nil {
+			return s, err
+		}
+	}
 	switch {
 	case r.Certificate != nil && r.Reduced != nil:
 		return certified(ctx, c, r)
