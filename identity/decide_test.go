@@ -46,6 +46,8 @@ func TestVerdicts(t *testing.T) {
 		{layered, "norm(u_x + u_xx, u_y + u_yy) <= norm(u_x, u_y) + norm(u_xx, u_yy)", nil, identity.Proved},
 		{layered, "div(Sigma) <= e", edits{divergence}, identity.Proved},
 		{layered, "div(Sigma) <= e/2", edits{divergence}, identity.Open},
+		{layered, "u_xx (u_yy u_zz - u_yz^2) - u_xy (u_xy u_zz - u_yz u_xz) + u_xz (u_xy u_yz - u_yy u_xz) <= delta", edits{divergence}, identity.Proved},
+		{layered, "u_xx (u_yy u_zz - u_yz^2) - u_xy (u_xy u_zz - u_yz u_xz) + 2 u_xz (u_xy u_yz - u_yy u_xz) <= delta", edits{divergence}, identity.Open},
 		{eikonal, "sup(theta, [Sigma].nu) = norm([u_x], [u_y])^3/12", edits{atJump}, identity.Proved},
 		{eikonal, "sup(theta, [Sigma].nu) = norm([u_x], [u_y])^3/11", edits{atJump}, identity.Refuted},
 		{eikonal, "[Sigma].nu <= norm([u_x], [u_y])^3/12", edits{atJump}, identity.Proved},

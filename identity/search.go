@@ -83,6 +83,12 @@ func (d *decider) supported(least float64) {
 		d.Rec.Margin = &least
 	}
 	d.Rec.Reason = fmt.Sprintf("no counterexample in %d random jets and %d descents; a numerical check is not a proof", d.Rec.Samples, d.Rec.Searches)
+	if p := d.picture; p != nil && p.Feasible {
+		d.Rec.Reason += fmt.Sprintf("; a numerical sum of squares exists (least eigenvalue %.1e of the largest), but no rational one was found in %d forms", p.Least, p.Tried)
+		if p.Kernel > 0 {
+			d.Rec.Reason += fmt.Sprintf(", a kernel of dimension %d being not recognised as rational", p.Kernel)
+		}
+	}
 }
 
 // constant decides an inequality between constants.

@@ -54,12 +54,14 @@ func (d *Problem) AddNull(g *Gap, list []NullLagrangian, x []algebra.Rat) (*Gap,
 // maxNull bounds the null Lagrangians that are combined.
 const maxNull = 60
 
-// Minors lists the minors of order two that may be added, times the coefficients that the quadratic part of the gap shows.
+// Minors lists the minors of the Hessian and of the Jacobian, of order two and
+// three, that may be added, times the coefficients that stand in the gap beside
+// as many derivatives.
 func (d *Problem) Minors(g *Gap) ([]NullLagrangian, error) {
 	n := len(d.Ring.Coordinates)
 	var out []NullLagrangian
 	add := func(m *minor) error {
-		for _, c := range d.quadraticCoefficients(g, m.order) {
+		for _, c := range d.coefficientsBeside(g, m.order, m.rows()) {
 			if len(out) >= maxNull {
 				return nil
 			}
@@ -89,6 +91,17 @@ func (d *Problem) Minors(g *Gap) ([]NullLagrangian, error) {
 				}
 			}
 		}
+		for _, rows := range triples3(n) {
+			for _, cols := range triples3(n) {
+				m, err := d.hessianThird(u, rows, cols)
+				if err != nil {
+					return nil, err
+				}
+				if err := add(m); err != nil {
+					return nil, err
+				}
+			}
+		}
 		for w := u + 1; w < len(d.Ring.Unknowns); w++ {
 			for i := range n {
 				for j := i + 1; j < n; j++ {
@@ -106,13 +119,67 @@ func (d *Problem) Minors(g *Gap) ([]NullLagrangian, error) {
 	return out, nil
 }
 
-// minor is f·minor = D_a(F q_b) - D_b(F q_a) with F = ∫ f dp: p and q are two
-// functions whose Jacobian in the coordinates a, b it is.
+// minor is the Jacobian of two functions p, q in the coordinates a, b, and
+// f·minor = D_a(F q_b) - D_b(F q_a) with F = ∫ f dp; or, with third set, that of
+// three functions in three coordinates, p_a M_bc - p_b M_ac + p_c M_ab with the
+// minors M of the other two, which is D_a(p M_bc) - D_b(p M_ac) + D_c(p M_ab).
 type minor struct {
 	order int // of the derivatives in it
 	Value algebra.Fraction
 	p, q  algebra.Var
 	a, b  int
+	third *third
+}
+
+// third are the minors M_bc, -M_ac, M_ab of a minor of order three, by the
+// coordinate that is left out.
+type third struct {
+	cols  [3]int
+	minor [3]algebra.Fraction
+}
+
+func (m *minor) rows() int {
+	if m.third != nil {
+		return 3
+	}
+	return 2
+}
+
+// triples3 are the increasing triples of coordinates.
+func triples3(n int) [][3]int {
+	var out [][3]int
+	for i := range n {
+		for j := i + 1; j < n; j++ {
+			for k := j + 1; k < n; k++ {
+				out = append(out, [3]int{i, j, k})
+			}
+		}
+	}
+	return out
+}
+
+func (d *Problem) hessianThird(u int, rows, cols [3]int) (*minor, error) {
+	p, err := d.Ring.JetVar(u, jet.Index{}.Plus(rows[0]), jet.NoSide)
+	if err != nil {
+		return nil, err
+	}
+	m := &minor{p: p, order: 2, third: &third{cols: cols}}
+	for k, c := range cols {
+		b, e := cols[(k+1)%3], cols[(k+2)%3]
+		// The cyclic order carries the sign, whichever of the two is smaller.
+		sub, err := d.hessianMinor(u, rows[1], rows[2], b, e)
+		if err != nil {
+			return nil, err
+		}
+		m.third.minor[k] = sub.Value
+		pc, err := d.Ring.Total(jet.Of(p), c)
+		if err != nil {
+			return nil, err
+		}
+		m.Value = m.Value.Add(pc.Mul(sub.Value))
+	}
+	m.Value, err = d.Ring.Reduce(m.Value)
+	return m, err
 }
 
 func (d *Problem) minorOf(p, q algebra.Var, a, b, order int) (*minor, error) {
@@ -172,6 +239,16 @@ func (d *Problem) nullFrom(m *minor, c algebra.Fraction) (NullLagrangian, bool, 
 	if c.Den().Has(m.p) {
 		return l, false, nil
 	}
+	if m.third != nil {
+		if slices.ContainsFunc(c.Vars(), func(v algebra.Var) bool { return d.Ring.Symbol(v).Kind != jet.Constant }) {
+			return l, false, nil
+		}
+		l = NullLagrangian{Value: c.Mul(m.Value), Minor: m.Value, Coef: c, Potential: make([]algebra.Fraction, len(d.Ring.Coordinates))}
+		for k, i := range m.third.cols {
+			l.Potential[i] = c.Mul(jet.Of(m.p)).Mul(m.third.minor[k])
+		}
+		return l, true, nil
+	}
 	for _, v := range c.Vars() {
 		if k := d.Ring.Symbol(v).Kind; k != jet.Constant && v != m.p && v != m.q {
 			return l, false, nil
@@ -198,9 +275,9 @@ func (d *Problem) nullFrom(m *minor, c algebra.Fraction) (NullLagrangian, bool, 
 	return l, true, nil
 }
 
-// quadraticCoefficients are the monomials in constants and lower jets that
-// stand beside products of two derivatives of the given order in the gap.
-func (d *Problem) quadraticCoefficients(g *Gap, order int) []algebra.Fraction {
+// coefficientsBeside are the monomials in constants and lower jets that stand
+// beside products of so many derivatives of the given order in the gap.
+func (d *Problem) coefficientsBeside(g *Gap, order, factors int) []algebra.Fraction {
 	var out []algebra.Fraction
 	den := algebra.FromFactors(algebra.Const(algebra.Int(1)), g.Value.DenFactors())
 	for m := range g.Value.Num().Terms() {
@@ -216,7 +293,7 @@ func (d *Problem) quadraticCoefficients(g *Gap, order int) []algebra.Fraction {
 				rest = append(rest, pw)
 			}
 		}
-		if degree != 2 {
+		if degree != factors {
 			continue
 		}
 		c := algebra.FromPoly(algebra.FromTerms([]algebra.Term{{Mono: algebra.NewMonomial(rest...), Coef: algebra.Int(1)}})).Mul(den)
