@@ -83,6 +83,7 @@ func (t *energyText) value(s *casefile.Surface, v *creases.Result) {
 		line += "  " + t.style.faint(strings.Join(t.beside(v), ", "))
 	}
 	fmt.Fprintln(t.w, strings.TrimRight(line, " "))
+	t.pairs(v)
 	if v.Reason != "" {
 		t.note("", v.Reason)
 	}
@@ -119,7 +120,37 @@ func (t *energyText) beside(v *creases.Result) []string {
 		}
 		list = append(list, fmt.Sprintf("%s %.5g", area, *v.Area))
 	}
+	if v.Mesh != nil {
+		list = append(list, count(v.Mesh.Triangles, "triangle", "triangles"))
+	}
+	if v.Defect != nil {
+		list = append(list, fmt.Sprintf("defect %.1e", *v.Defect))
+	}
+	if v.Exact != "" && v.Evaluations == 0 {
+		return append(list, "exactly "+v.Exact)
+	}
 	return append(list, count(v.Evaluations, "evaluation", "evaluations"))
+}
+
+// mostPairs bounds the pairs of branches that are listed.
+const mostPairs = 8
+
+// pairs are the shares of the pairs of branches, where there are several.
+func (t *energyText) pairs(v *creases.Result) {
+	if len(v.Pairs) < 2 {
+		return
+	}
+	for i, p := range v.Pairs {
+		if i == mostPairs {
+			t.note("", fmt.Sprintf("and %d more pairs", len(v.Pairs)-i))
+			return
+		}
+		energy := p.Exact
+		if energy == "" {
+			energy = fmt.Sprintf("%.15g ± %.1e", p.Energy, p.Error)
+		}
+		t.note("", fmt.Sprintf("branches %d and %d: %s", p.Branches[0], p.Branches[1], energy))
+	}
 }
 
 // values are the parameters, in the order of the file.
