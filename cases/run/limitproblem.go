@@ -12,6 +12,7 @@ import (
 	"creaseproof/entropy/jet"
 	"creaseproof/entropy/program"
 	"creaseproof/entropy/source"
+	"creaseproof/quadrature/branches"
 	"creaseproof/quadrature/limit"
 	"creaseproof/quadrature/profile"
 )
@@ -38,7 +39,12 @@ func (r *limitReader) problem() (*limit.Problem, error) {
 	if err != nil {
 		return nil, err
 	}
-	p := &limit.Problem{Domain: d, Branches: len(texts), Min: l.Combine == "min"}
+	p := &limit.Problem{Domain: d, Branches: len(texts)}
+	if l.Approximation != "profile" {
+		if p.Combine, err = branches.Parse(l.Combine, len(texts)); err != nil {
+			return nil, err
+		}
+	}
 	if err := r.branches(p, texts); err != nil {
 		return nil, err
 	}
@@ -63,9 +69,9 @@ func (r *limitReader) problem() (*limit.Problem, error) {
 	}
 	switch l.Approximation {
 	case "front":
-		p.Smoothing = &limit.Front{Min: p.Min}
+		p.Smoothing = &limit.Front{Min: l.Combine == "min"}
 	case "mollified":
-		m := &limit.Mollifier{Min: p.Min}
+		m := &limit.Mollifier{}
 		if l.Width != nil {
 			if m.Width, err = r.number(*l.Width); err != nil {
 				return nil, err

@@ -28,19 +28,12 @@ const (
 // the layer.
 var reach = [...]float64{3, 9, 20, 42}
 
-// winner is the branch that is the sharp function at parameter s of the fibre,
-// and its value.
+// winner is the branch that is the sharp function at parameter s of the fibre.
 func (w *walk) winner(k int, s float64) int {
 	w.s[k] = s
 	w.move()
 	w.p.Values(w.x, w.v)
-	best := 0
-	for i, v := range w.v {
-		if w.p.Min && v < w.v[best] || !w.p.Min && v > w.v[best] {
-			best = i
-		}
-	}
-	return best
+	return w.p.active(w.v)
 }
 
 // cross finds the crossings along the current fibre.
@@ -83,16 +76,15 @@ func (w *walk) crossAlong(k int) {
 	slices.SortFunc(w.cuts, func(a, b crossing) int { return cmp.Compare(a.s, b.s) })
 }
 
-// dip looks between two places at which branch i wins for one at which branch
-// j is better, by golden sections.
+// dip looks between two places at which branch i wins for one at which it does
+// not, where branch j is closest to it, by golden sections.
 func (w *walk) dip(k, i, j int, a, b float64) (float64, bool) {
 	const ratio = 0.6180339887498949
 	f := func(s float64) float64 {
-		w.winner(k, s)
-		if w.p.Min {
-			return w.v[j] - w.v[i]
+		if w.winner(k, s) != i {
+			return -1
 		}
-		return w.v[i] - w.v[j]
+		return math.Abs(w.v[i] - w.v[j])
 	}
 	c, d := b-ratio*(b-a), a+ratio*(b-a)
 	fc, fd := f(c), f(d)
@@ -122,17 +114,23 @@ func (w *walk) between(k int, from, to float64, first, next, left int) {
 	}
 	// Two branches alone: a root of their difference, by false position
 	// (Illinois); where a third one wins there, each side by itself.
+	sign := 1.0
 	diff := func(s float64) float64 {
 		w.winner(k, s)
-		return w.v[next] - w.v[first]
-	}
-	if w.p.Min {
-		max := diff
-		diff = func(s float64) float64 { return -max(s) }
+		return sign * (w.v[next] - w.v[first])
 	}
 	a, b := from, to
 	fa, fb := diff(a), diff(b)
-	if !(fa <= 0 && fb >= 0) { // not finite
+	if fb < 0 || fb == 0 && fa > 0 {
+		sign, fa, fb = -1, -fa, -fb
+	}
+	if !(fa <= 0 && fb >= 0) {
+		// There is a third one between them, or a value that is not finite.
+		if m := a + (b-a)/2; left > 0 && !math.IsNaN(fa+fb) {
+			third := w.winner(k, m)
+			w.between(k, a, m, first, third, left-1)
+			w.between(k, m, b, third, next, left-1)
+		}
 		return
 	}
 	side := 0

@@ -10,10 +10,12 @@ type Front struct {
 	Min bool
 
 	w, d []float64
+	jets []Jet
 }
 
 // Smooth implements Smoothing.
-func (f *Front) Smooth(branches []Jet, eps float64, out *Jet) {
+func (f *Front) Smooth(p *Problem, x []float64, eps float64, out *Jet) {
+	branches := jetsOf(p, x, &f.jets)
 	sign := 1.0
 	if f.Min {
 		sign = -1

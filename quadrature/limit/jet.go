@@ -25,8 +25,17 @@ func (j *Jet) set(k *Jet) {
 	copy(j.H, k.H)
 }
 
-// Smoothing makes an approximation of scale eps from the jets of the branches
-// at one point. It may change the jets of the branches.
+// Smoothing makes an approximation of scale eps of the combined branches of a
+// problem: the jet at x.
 type Smoothing interface {
-	Smooth(branches []Jet, eps float64, out *Jet)
+	Smooth(p *Problem, x []float64, eps float64, out *Jet)
+}
+
+// jetsOf are the jets of the branches of p at x, in list, which grows as needed.
+func jetsOf(p *Problem, x []float64, list *[]Jet) []Jet {
+	for len(*list) < p.Branches {
+		*list = append(*list, NewJet(len(x)))
+	}
+	p.Jets(x, (*list)[:p.Branches])
+	return (*list)[:p.Branches]
 }

@@ -98,10 +98,12 @@ func TestThreeFrontsAreOfFirstOrder(t *testing.T) {
 func TestMollifiedAndWrongProfilesStayAbove(t *testing.T) {
 	d := box(-1, 1, 0, 2)
 	for _, s := range []Smoothing{
-		&Mollifier{Min: true},
+		&Mollifier{},
 		&Wall{Profile: func(x float64) (float64, float64) { th := math.Tanh(x); return (1 + th) / 2, (1 - th*th) / 2 }},
 	} {
-		list := sweep(t, problem(d, s, affine(1, -1, 0), affine(1, 1, 0)), .05, .025, .0125)
+		p := problem(d, s, affine(1, -1, 0), affine(1, 1, 0))
+		p.Combine = minimum(2)
+		list := sweep(t, p, .05, .025, .0125)
 		var eps, energy, err []float64
 		for _, e := range list {
 			eps, energy, err = append(eps, e.Eps), append(energy, e.Energy), append(err, e.Error)
@@ -170,13 +172,11 @@ func TestOptimalProfile(t *testing.T) {
 
 // Derivatives of the smoothings against differences.
 func TestSmoothingsAreConsistent(t *testing.T) {
-	for _, s := range []Smoothing{&Front{}, &Front{Min: true}, &Mollifier{}, &Mollifier{Min: true}} {
+	for _, s := range []Smoothing{&Front{}, &Front{Min: true}, &Mollifier{}} {
 		p := problem(box(-1, 1, -1, 1, .5, 1), s, focal, layeredBranch(.3, .1, -.2), layeredBranch(-.2, .2, -.15))
-		j := []Jet{NewJet(3), NewJet(3), NewJet(3)}
 		at := func(x ...float64) Jet {
 			out := NewJet(3)
-			p.Jets(x, j)
-			s.Smooth(j, .1, &out)
+			s.Smooth(p, x, .1, &out)
 			return out
 		}
 		x := []float64{.31, -.17, .7}

@@ -1,13 +1,16 @@
 package limit
 
+import "creaseproof/quadrature/branches"
+
 // Mollifier is the maximum or minimum of the branches, smoothed in the
 // difference d of two values by the kernel (315/256) (1 - (d/δ)²)⁴/δ on
 // |d| < δ = Width eps. More than two branches are taken up in their order, so
 // that where three meet within the layer the result depends on it. A Mollifier
 // is not safe for concurrent use.
 type Mollifier struct {
-	Min   bool
 	Width float64 // DefaultWidth if zero
+
+	jets []Jet
 }
 
 // DefaultWidth makes both parts of the energy about equal across a wall of the
@@ -32,9 +35,10 @@ func kernel(t float64) (phi, cdf, rho float64) {
 }
 
 // Smooth implements Smoothing.
-func (m *Mollifier) Smooth(branches []Jet, eps float64, out *Jet) {
+func (m *Mollifier) Smooth(p *Problem, x []float64, eps float64, out *Jet) {
+	list := jetsOf(p, x, &m.jets)
 	sign := 1.0
-	if m.Min {
+	if p.Combine != nil && p.Combine.Op == branches.Min {
 		sign = -1
 	}
 	width := m.Width
@@ -42,10 +46,10 @@ func (m *Mollifier) Smooth(branches []Jet, eps float64, out *Jet) {
 		width = DefaultWidth
 	}
 	delta := width * eps
-	out.set(&branches[0])
+	out.set(&list[0])
 	n := len(out.P)
-	for i := 1; i < len(branches); i++ {
-		b := &branches[i]
+	for i := 1; i < len(list); i++ {
+		b := &list[i]
 		t := sign * (out.U - b.U) / delta
 		switch {
 		case t >= 1:

@@ -5,6 +5,8 @@ import (
 	"errors"
 	"fmt"
 	"math"
+
+	"creaseproof/quadrature/branches"
 )
 
 // A Domain is the image of a box of parameters, as many as there are
@@ -33,8 +35,8 @@ type Problem struct {
 	Values func(x, v []float64)
 	// Jets sets their jets.
 	Jets func(x []float64, jets []Jet)
-	// Min says that the sharp function is the minimum of the branches.
-	Min bool
+	// Combine makes the sharp function of the branches; nil is the maximum.
+	Combine *branches.Tree
 	// Smoothing makes the approximation.
 	Smoothing Smoothing
 	// Density is the density of the approximation with the given jet at x.
@@ -85,6 +87,21 @@ const (
 	defaultMax = 20_000_000
 	mostFibres = 100_000 // for the sharp energy
 )
+
+// active is the branch that the sharp function is for the given values.
+func (p *Problem) active(v []float64) int {
+	if p.Combine != nil {
+		_, i := p.Combine.Eval(v)
+		return i
+	}
+	best := 0
+	for i, x := range v {
+		if x > v[best] {
+			best = i
+		}
+	}
+	return best
+}
 
 func (d *Domain) check() error {
 	for i, lo := range d.Lo {

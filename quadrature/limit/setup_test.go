@@ -1,6 +1,10 @@
 package limit
 
-import "math"
+import (
+	"math"
+
+	combine "creaseproof/quadrature/branches"
+)
 
 // branch sets the jet of a function at x.
 type branch func(x []float64, j *Jet)
@@ -77,6 +81,17 @@ func eikonalCost(_, plus, minus, nu []float64) float64 {
 	return q * q * q / 12
 }
 
+// minimum is the minimum of n branches.
+func minimum(n int) *combine.Tree { return tree("min", n) }
+
+func tree(text string, n int) *combine.Tree {
+	t, err := combine.Parse(text, n)
+	if err != nil {
+		panic(err)
+	}
+	return t
+}
+
 func problem(d Domain, s Smoothing, branches ...branch) *Problem {
 	jets := func(x []float64, out []Jet) {
 		for i, b := range branches {
@@ -97,11 +112,8 @@ func problem(d Domain, s Smoothing, branches ...branch) *Problem {
 	if len(d.Lo) == 2 {
 		p.Density, p.Cost = eikonal, eikonalCost
 	}
-	switch s := s.(type) {
-	case *Front:
-		p.Min = s.Min
-	case *Mollifier:
-		p.Min = s.Min
+	if f, ok := s.(*Front); ok && f.Min {
+		p.Combine = minimum(len(branches))
 	}
 	return p
 }

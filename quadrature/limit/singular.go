@@ -127,8 +127,7 @@ func (w *walk) diverges(i int, at []float64) bool {
 		for k := range directions {
 			sin, cos := math.Sincos(2 * math.Pi * (float64(k) + 0.31) / directions)
 			w.towards(at, radius*cos, radius*sin)
-			w.p.Jets(w.x, w.jets)
-			w.p.Smoothing.Smooth(w.jets, w.eps, &w.u)
+			w.p.Smoothing.Smooth(w.p, w.x, w.eps, &w.u)
 			e := w.p.Density(w.x, w.eps, &w.u).Energy
 			if !math.IsNaN(e) && !math.IsInf(e, 0) {
 				sum += e

@@ -165,8 +165,7 @@ func (w *walk) density(s float64, out, _ *values) error {
 	}
 	w.s[w.order[w.n-1]] = s
 	w.move()
-	w.p.Jets(w.x, w.jets)
-	w.p.Smoothing.Smooth(w.jets, w.eps, &w.u)
+	w.p.Smoothing.Smooth(w.p, w.x, w.eps, &w.u)
 	d := w.p.Density(w.x, w.eps, &w.u)
 	dx := w.volume()
 	*out = values{d.Energy * dx, d.Compression * dx, d.Bending * dx, d.Curvature * dx}

@@ -12,14 +12,17 @@ import (
 // Wall is the one-dimensional transition across the plane on which two affine
 // branches agree: the first on the side to which ν = q/|q| points, the second
 // on the other. It gives no value of u, only derivatives: U is NaN. A Wall is
-// not safe for concurrent use if its Profile is not.
+// not safe for concurrent use.
 type Wall struct {
 	// Profile is S and its derivative at the distance over eps.
 	Profile func(tau float64) (s, slope float64)
+
+	jets []Jet
 }
 
 // Smooth implements Smoothing.
-func (w *Wall) Smooth(branches []Jet, eps float64, out *Jet) {
+func (w *Wall) Smooth(p *Problem, x []float64, eps float64, out *Jet) {
+	branches := jetsOf(p, x, &w.jets)
 	plus, minus := &branches[0], &branches[1]
 	n := len(out.P)
 	var norm float64
