@@ -9,7 +9,7 @@ import (
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/enclosure"
 	"creaseproof/entropy/jet"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 	"creaseproof/quadrature/branches"
 )
 
@@ -272,14 +272,14 @@ func (c *combination) decide(r *Result, s *exactSum) {
 		return
 	}
 	if c.s.src.Expect == nil {
-		r.Expected = identity.Proved
+		r.Expected = claim.Proved
 	}
 	r.Verdict = c.settle(r, s)
 	r.Met = r.Verdict == r.Expected
 }
 
-func (c *combination) settle(r *Result, s *exactSum) identity.Verdict {
-	refuted := func() identity.Verdict {
+func (c *combination) settle(r *Result, s *exactSum) claim.Verdict {
+	refuted := func() claim.Verdict {
 		value := s.exact()
 		if value == "" || len(value) > 60 {
 			value = fmt.Sprintf("%.17g", *r.Energy)
@@ -292,11 +292,11 @@ func (c *combination) settle(r *Result, s *exactSum) identity.Verdict {
 		if w := c.s.src.Within; w == nil && difference <= 1e-3*math.Abs(*r.Claimed) {
 			r.add("if the claim has been rounded, allow for it with within")
 		}
-		return identity.Refuted
+		return claim.Refuted
 	}
 	claimed, err := c.enclose(*c.s.energy)
 	if err != nil {
-		return identity.Open
+		return claim.Open
 	}
 	value := s.value()
 	if enclosure.Disjoint(claimed, value) {
@@ -304,7 +304,7 @@ func (c *combination) settle(r *Result, s *exactSum) identity.Verdict {
 			// A claim within a relative difference.
 			tolerance := precise.Mul(precise.FromRat(w), precise.Abs(claimed))
 			if d := precise.Sub(tolerance, precise.Abs(precise.Sub(value, claimed))); d.Lo() != nil && d.Lo().Sign() >= 0 {
-				return identity.Proved
+				return claim.Proved
 			}
 		}
 		return refuted()
@@ -326,7 +326,7 @@ func (c *combination) settle(r *Result, s *exactSum) identity.Verdict {
 		return c.undecided(r)
 	}
 	if x.IsZero() {
-		return identity.Proved
+		return claim.Proved
 	}
 	if sign, ok := ring.Sign(x, nil); ok && sign != 0 {
 		return refuted()
@@ -336,7 +336,7 @@ func (c *combination) settle(r *Result, s *exactSum) identity.Verdict {
 
 // undecided is for a claim that agrees to all the digits computed, where exact
 // arithmetic does not show that it is equal.
-func (c *combination) undecided(r *Result) identity.Verdict {
+func (c *combination) undecided(r *Result) claim.Verdict {
 	r.add("the claimed energy agrees to 60 digits, and whether it is equal was not decided")
-	return identity.Supported
+	return claim.Supported
 }

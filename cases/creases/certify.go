@@ -11,7 +11,7 @@ import (
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/interval"
 	"creaseproof/entropy/jet"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 	"creaseproof/quadrature/certified"
 )
 
@@ -30,7 +30,7 @@ func (c *combination) certified(r Result, err error) (Result, error) {
 // certify encloses the energy and decides the claimed one. A surface without
 // an enclosure keeps its verdict, and says why.
 func (c *combination) certify(r *Result) error {
-	if !c.o.Certify || r.Energy == nil || r.Verdict == identity.Proved || r.Verdict == identity.Refuted {
+	if !c.o.Certify || r.Energy == nil || r.Verdict == claim.Proved || r.Verdict == claim.Refuted {
 		return nil
 	}
 	e, err := c.enclosed()
@@ -71,7 +71,7 @@ func (c *combination) certify(r *Result) error {
 			r.add(fmt.Sprintf("it is not the claimed value itself, which the enclosure misses by %.2g", away))
 			break
 		}
-		r.Verdict = identity.Refuted
+		r.Verdict = claim.Refuted
 		r.add(fmt.Sprintf("the enclosure [%s, %s] misses the claimed value by %.2g", r.Enclosure[0], r.Enclosure[1], away))
 	case off <= allowed*unit*(1-0x1p-40):
 		c.proved(r, off, unit)
@@ -87,12 +87,12 @@ func (c *combination) certify(r *Result) error {
 // expect is what the case expects once an enclosure has decided: where it does not
 // say, that the claim is proved. A proof also meets the expectation that the
 // claim is supported, and a refutation that it is left open.
-func (c *combination) expect(r *Result, before identity.Verdict) {
+func (c *combination) expect(r *Result, before claim.Verdict) {
 	switch {
 	case c.s.src.Expect == nil:
-		r.Expected = identity.Proved
+		r.Expected = claim.Proved
 	case r.Expected == before && r.Verdict != before:
-		if before == identity.Supported && r.Verdict == identity.Proved || before == identity.Open && r.Verdict == identity.Refuted {
+		if before == claim.Supported && r.Verdict == claim.Proved || before == claim.Open && r.Verdict == claim.Refuted {
 			r.Expected = r.Verdict
 		}
 	}
@@ -100,7 +100,7 @@ func (c *combination) expect(r *Result, before identity.Verdict) {
 
 // proved records that the energy and the claimed value differ by at most off.
 func (c *combination) proved(r *Result, off, unit float64) {
-	r.Verdict = identity.Proved
+	r.Verdict = claim.Proved
 	of := " of it"
 	if *r.Claimed == 0 {
 		of = ""

@@ -15,7 +15,7 @@ import (
 	"creaseproof/entropy/enclosure"
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 	"creaseproof/quadrature"
 )
 
@@ -264,8 +264,8 @@ func (c *combination) evaluate() (Result, error) {
 	}
 	r.Energy, r.Error, r.Area = &q.Energy, &q.Error, &q.Area
 	c.compare(&r, rel, allowed)
-	if limited && r.Verdict != identity.Supported && !(q.Error <= rel*math.Abs(q.Energy)) {
-		r.Verdict = identity.Open
+	if limited && r.Verdict != claim.Supported && !(q.Error <= rel*math.Abs(q.Energy)) {
+		r.Verdict = claim.Open
 		r.add("the accuracy asked for was not reached: " + strings.TrimPrefix(err.Error(), "quadrature: "))
 	}
 	if err := c.slice(surface, tr, options, &r); err != nil {
@@ -280,9 +280,9 @@ func (c *combination) evaluate() (Result, error) {
 
 // refuse is a result without an energy.
 func (r Result) refuse(reason string) Result {
-	r.Verdict = identity.Open
+	r.Verdict = claim.Open
 	if r.Expected == "" {
-		r.Expected = identity.Supported
+		r.Expected = claim.Supported
 	}
 	r.Met = r.Verdict == r.Expected
 	r.add(reason)
@@ -322,15 +322,15 @@ func (c *combination) compare(r *Result, accuracy, allowed float64) {
 	difference := math.Abs(*r.Energy - *r.Claimed)
 	switch {
 	case !(difference <= *r.Error+allowed*unit+rounding*size):
-		r.Verdict = identity.Open
+		r.Verdict = claim.Open
 		r.add(fmt.Sprintf("the energy is %.17g with an estimated error of %.2g, the claimed energy %.17g: they differ by %.3g, and floating-point numbers refute nothing", *r.Energy, *r.Error, *r.Claimed, difference))
 		if c.s.src.Within == nil && difference <= 1e-3*size {
 			r.add(fmt.Sprintf("if the claim has been rounded, allow for it: within = %.0e", math.Pow(10, math.Ceil(math.Log10(difference/size)))))
 		}
 	case !(*r.Error <= accuracy*unit+1e-12*size):
-		r.Verdict = identity.Open
+		r.Verdict = claim.Open
 		r.add(fmt.Sprintf("the energy %.17g agrees with the claimed %.17g, but its estimated error %.2g is more than the %.2g allowed", *r.Energy, *r.Claimed, *r.Error, accuracy*unit))
 	default:
-		r.Verdict = identity.Supported
+		r.Verdict = claim.Supported
 	}
 }

@@ -10,7 +10,7 @@ import (
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
 	"creaseproof/entropy/program"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 	"creaseproof/quadrature"
 	"creaseproof/quadrature/profile"
 )
@@ -141,12 +141,12 @@ func (c *combination) slice(surface quadrature.Surface, tr quadrature.Traces, o 
 		return nil
 	case err != nil && !errors.Is(err, quadrature.ErrBudget) && !errors.Is(err, quadrature.ErrAccuracy):
 		r.add("horizontal slices: " + c.explain(err))
-		r.Verdict = identity.Open
+		r.Verdict = claim.Open
 		return nil
 	}
 	r.Slices, r.SlicesError = &v.Value, &v.Error
 	if d := math.Abs(v.Value - *r.Energy); !(d <= v.Error+*r.Error) {
-		r.Verdict = identity.Open
+		r.Verdict = claim.Open
 		r.add(fmt.Sprintf("the energy by horizontal slices is %.17g with an estimated error of %.2g: it differs from %.17g by %.3g, more than both errors", v.Value, v.Error, *r.Energy, d))
 	}
 	return nil

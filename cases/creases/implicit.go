@@ -8,7 +8,7 @@ import (
 	"strings"
 
 	"creaseproof/entropy/formula"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 	"creaseproof/quadrature/branches"
 	"creaseproof/quadrature/levelset"
 )
@@ -88,10 +88,10 @@ func (c *combination) finish(r Result, rel, allowed float64, run func(*tally) (s
 		r.Resolution = &t.resolution
 	}
 	c.compare(&r, rel, allowed)
-	if t.limited != nil && r.Verdict != identity.Supported && !(t.failure <= rel*math.Abs(t.energy)) {
-		r.Verdict = identity.Open
+	if t.limited != nil && r.Verdict != claim.Supported && !(t.failure <= rel*math.Abs(t.energy)) {
+		r.Verdict = claim.Open
 		if r.Expected == "" {
-			r.Expected = identity.Supported
+			r.Expected = claim.Supported
 		}
 		r.add("the accuracy asked for was not reached: " + t.limited.Error())
 	}

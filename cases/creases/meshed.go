@@ -14,7 +14,7 @@ import (
 
 	"creaseproof/entropy/algebra"
 	"creaseproof/entropy/enclosure"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 	"creaseproof/quadrature"
 	"creaseproof/quadrature/mesh"
 )
@@ -142,8 +142,8 @@ func (c *combination) meshed(r Result, rel, allowed float64) (Result, error) {
 	}
 	r.Energy, r.Error, r.Area = &q.Energy, &q.Error, &q.Area
 	c.compare(&r, rel, allowed)
-	if limited && r.Verdict != identity.Supported && !(q.Error <= rel*math.Abs(q.Energy)) {
-		r.Verdict = identity.Open
+	if limited && r.Verdict != claim.Supported && !(q.Error <= rel*math.Abs(q.Energy)) {
+		r.Verdict = claim.Open
 		r.add("the accuracy asked for was not reached: " + strings.TrimPrefix(err.Error(), "mesh: "))
 	}
 	r.Met = r.Verdict == r.Expected || r.Verdict == "" && r.Expected == ""

@@ -1,6 +1,6 @@
 package creases
 
-import "creaseproof/identity"
+import "creaseproof/identity/claim"
 
 // Result is what came of one surface at one choice of its values.
 type Result struct {
@@ -47,10 +47,10 @@ type Result struct {
 
 	// Verdict and Expected are empty for a surface that was integrated and
 	// claims no energy; a surface that was refused is open.
-	Verdict  identity.Verdict `json:"verdict,omitempty"`
-	Expected identity.Verdict `json:"expected,omitempty"`
-	Met      bool             `json:"met"`
-	Reason   string           `json:"reason,omitempty"`
+	Verdict  claim.Verdict `json:"verdict,omitempty"`
+	Expected claim.Verdict `json:"expected,omitempty"`
+	Met      bool          `json:"met"`
+	Reason   string        `json:"reason,omitempty"`
 }
 
 // Pair is the crease between two branches, which are numbered from 1.

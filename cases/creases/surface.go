@@ -10,7 +10,7 @@ import (
 	"creaseproof/entropy"
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/source"
-	"creaseproof/identity"
+	"creaseproof/identity/claim"
 )
 
 // Evaluator evaluates the surfaces of one case. It is not safe for concurrent
@@ -34,7 +34,7 @@ func New(set *entropy.Setting, file string) *Evaluator {
 // Surface is a surface with its formulas read.
 type Surface struct {
 	Name     string
-	Expected identity.Verdict // "" where no energy is claimed and nothing is expected
+	Expected claim.Verdict // "" where no energy is claimed and nothing is expected
 
 	ev    *Evaluator
 	src   *casefile.Surface
@@ -220,11 +220,11 @@ func (s *Surface) readRest() error {
 			return err
 		}
 		s.energy = &f
-		s.Expected = identity.Supported
+		s.Expected = claim.Supported
 	}
 	if t := s.src.Expect; t != nil {
-		switch v := identity.Verdict(strings.TrimSpace(t.S)); v {
-		case identity.Proved, identity.Refuted, identity.Supported, identity.Open:
+		switch v := claim.Verdict(strings.TrimSpace(t.S)); v {
+		case claim.Proved, claim.Refuted, claim.Supported, claim.Open:
 			s.Expected = v
 		default:
 			return fault(*t, "write supported, open, proved or refuted", "%q is no verdict", t.S)

@@ -7,6 +7,7 @@ import (
 
 	"creaseproof/cases"
 	"creaseproof/cases/casefile"
+	"creaseproof/cases/limits"
 )
 
 // LimitOptions say how approximations are integrated.
@@ -29,7 +30,7 @@ func (o *LimitOptions) Selected(name string) bool { return selected(o.Only, name
 type LimitResult struct {
 	Case   *cases.Case
 	Limit  *casefile.Limit
-	Values []LimitValue
+	Values []limits.Value
 	Err    error
 	Failed bool // inside the program; the last value says so
 
@@ -77,12 +78,12 @@ func (o *LimitOutcome) Met() bool {
 // early as Energy does: at an interruption with the energies found by then, at
 // the timeout with values that are open.
 func Limit(ctx context.Context, list []*cases.Case, opt LimitOptions) *LimitOutcome {
-	return limits(ctx, list, opt, evaluateLimit)
+	return integrateLimits(ctx, list, opt, limits.Evaluate)
 }
 
-type approximate func(context.Context, *cases.Case, *casefile.Limit) ([]LimitValue, error)
+type approximate func(context.Context, *cases.Case, *casefile.Limit) ([]limits.Value, error)
 
-func limits(ctx context.Context, list []*cases.Case, opt LimitOptions, approximate approximate) *LimitOutcome {
+func integrateLimits(ctx context.Context, list []*cases.Case, opt LimitOptions, approximate approximate) *LimitOutcome {
 	var todo []*LimitResult
 	for _, c := range list {
 		for i := range c.File.Limits {
@@ -130,11 +131,11 @@ func limits(ctx context.Context, list []*cases.Case, opt LimitOptions, approxima
 // cutShort says that the last value, or the first that is missing, was not
 // finished.
 func (r *LimitResult) cutShort(reason string) {
-	if n := len(r.Values); n == 0 || r.Values[n-1].complete {
-		r.Values = append(r.Values, emptyLimit(r.Limit))
+	if n := len(r.Values); n == 0 || r.Values[n-1].Complete {
+		r.Values = append(r.Values, limits.Empty(r.Limit))
 	}
 	v := &r.Values[len(r.Values)-1]
-	v.Outcome, v.Met, v.Reason = Undecided, false, reason
+	v.Outcome, v.Met, v.Reason = limits.Undecided, false, reason
 }
 
 // limitOf evaluates one limit; nil where the context stopped it before the

@@ -13,6 +13,7 @@ import (
 	"github.com/stretchr/testify/require"
 
 	"creaseproof/cases/casefile"
+	"creaseproof/cases/limits"
 )
 
 const layeredCase = `[space]
@@ -54,7 +55,7 @@ func TestLimitOfAWall(t *testing.T) {
 	assert.True(t, r.Met())
 	for i, want := range []float64{2. / 3, 1. / 12} {
 		v := r.Values[i]
-		assert.Equal(t, Sharp, v.Outcome)
+		assert.Equal(t, limits.Sharp, v.Outcome)
 		assert.InEpsilon(t, want, *v.Target, 1e-13)
 		assert.InEpsilon(t, want, v.Energy[2], 1e-9)
 		assert.InEpsilon(t, 1, *v.Equipartition, 1e-9)
@@ -70,19 +71,19 @@ func TestLimitsThatAreNotSharp(t *testing.T) {
 		outcome string
 		says    string
 	}{
-		"wrong profile": {limitWall + "profile = '(1 + tanh(s))/2'\n", Above, "above the jump energy by 0.1667 (25%)"},
-		"claimed less":  {limitWall + "energy = '3 m^3/5'\n", Above, "above the jump energy"},
-		"claimed more":  {limitWall + "energy = '3 m^3/4'\n", Below, "below the jump energy"},
-		"cone":          {"[[limit]]\nname='cone'\napproximation='front'\nbranches=['sqrt(x^2 + y^2) + z/2', '1/4']\ncombine='max'\nbox={x=['-1','1'],y=['-1','1'],z=['0','1']}\neps=['1/10']\nenergy='1/24'\n", Infinite, "the branch sqrt(x^2 + y^2) + z/2 is not smooth"},
-		"mollified":     {"[[limit]]\nname='m'\napproximation='mollified'\nbranches=['x + z/2', '-x + z/2']\ncombine='max'\neps=['1/20','1/40']\nwidth='20'\n" + unitBox, Above, "above the jump energy"},
-		"too few":       {"[[limit]]\nname='m'\napproximation='front'\nbranches=['x + z/2', '-x + z/2']\ncombine='max'\neps=['1']\n" + unitBox, Undecided, "add smaller eps"},
+		"wrong profile": {limitWall + "profile = '(1 + tanh(s))/2'\n", limits.Above, "above the jump energy by 0.1667 (25%)"},
+		"claimed less":  {limitWall + "energy = '3 m^3/5'\n", limits.Above, "above the jump energy"},
+		"claimed more":  {limitWall + "energy = '3 m^3/4'\n", limits.Below, "below the jump energy"},
+		"cone":          {"[[limit]]\nname='cone'\napproximation='front'\nbranches=['sqrt(x^2 + y^2) + z/2', '1/4']\ncombine='max'\nbox={x=['-1','1'],y=['-1','1'],z=['0','1']}\neps=['1/10']\nenergy='1/24'\n", limits.Infinite, "the branch sqrt(x^2 + y^2) + z/2 is not smooth"},
+		"mollified":     {"[[limit]]\nname='m'\napproximation='mollified'\nbranches=['x + z/2', '-x + z/2']\ncombine='max'\neps=['1/20','1/40']\nwidth='20'\n" + unitBox, limits.Above, "above the jump energy"},
+		"too few":       {"[[limit]]\nname='m'\napproximation='front'\nbranches=['x + z/2', '-x + z/2']\ncombine='max'\neps=['1']\n" + unitBox, limits.Undecided, "add smaller eps"},
 	} {
 		r := limitOfText(t, c.text)
 		require.NoError(t, r.Err, name)
 		assert.Equal(t, c.outcome, r.Values[0].Outcome, name)
 		assert.Contains(t, r.Values[0].Reason, c.says, name)
 		assert.False(t, r.Met(), name)
-		if c.outcome != Undecided && c.outcome != Below {
+		if c.outcome != limits.Undecided && c.outcome != limits.Below {
 			assert.True(t, limitOfText(t, c.text+"expect='"+c.outcome+"'\n").Met(), name)
 		}
 	}
@@ -123,26 +124,26 @@ func TestLimitDomains(t *testing.T) {
 		require.NoError(t, r.Err, domain)
 		v := r.Values[0]
 		assert.InEpsilon(t, 2./3*area, *v.Target, 1e-7, domain)
-		assert.Equal(t, Sharp, v.Outcome, domain)
+		assert.Equal(t, limits.Sharp, v.Outcome, domain)
 	}
 }
 
 func TestLimitInterruptedAndTimeout(t *testing.T) {
 	list := []*cases.Case{parsed(t, layeredCase+limitWall)}
 	ctx, cancel := context.WithCancel(t.Context())
-	half := func(ctx context.Context, _ *cases.Case, l *casefile.Limit) ([]LimitValue, error) {
+	half := func(ctx context.Context, _ *cases.Case, l *casefile.Limit) ([]limits.Value, error) {
 		cancel()
 		<-ctx.Done()
-		return []LimitValue{emptyLimit(l)}, ctx.Err()
+		return []limits.Value{limits.Empty(l)}, ctx.Err()
 	}
-	out := limits(ctx, list, LimitOptions{}, half)
+	out := integrateLimits(ctx, list, LimitOptions{}, half)
 	assert.True(t, out.Interrupted)
 	require.Len(t, out.Results, 1)
-	out = limits(t.Context(), list, LimitOptions{Timeout: 20 * time.Millisecond}, half)
+	out = integrateLimits(t.Context(), list, LimitOptions{Timeout: 20 * time.Millisecond}, half)
 	assert.False(t, out.Interrupted)
 	assert.Equal(t, "not computed within the 20ms allowed", out.Results[0].Values[0].Reason)
 	assert.False(t, out.Met())
-	out = limits(t.Context(), list, LimitOptions{}, func(context.Context, *cases.Case, *casefile.Limit) ([]LimitValue, error) { panic("odd") })
+	out = integrateLimits(t.Context(), list, LimitOptions{}, func(context.Context, *cases.Case, *casefile.Limit) ([]limits.Value, error) { panic("odd") })
 	assert.True(t, out.Results[0].Failed)
 	assert.False(t, out.Met())
 }

@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"creaseproof/cases"
+	"creaseproof/cases/limits"
 )
 
 // LimitDocument is what `creaseproof limit --json` prints. What does not apply
@@ -15,15 +16,15 @@ type LimitDocument struct {
 
 // LimitCase is a case with the values of its limits.
 type LimitCase struct {
-	Case   string       `json:"case"`
-	Limits []LimitValue `json:"limits"`
+	Case   string         `json:"case"`
+	Limits []limits.Value `json:"limits"`
 }
 
 // Document is the outcome for the given cases, in their order. A limit that
 // means nothing is open, for the reason that the error gives.
 func (o *LimitOutcome) Document(list []*cases.Case) LimitDocument {
 	doc := LimitDocument{Schema: Schema, Cases: []LimitCase{}}
-	byCase := map[*cases.Case][]LimitValue{}
+	byCase := map[*cases.Case][]limits.Value{}
 	for _, r := range o.Results {
 		for _, v := range r.Values {
 			for _, x := range []**float64{&v.Equipartition, &v.Target, &v.TargetError, &v.Gap, &v.RelativeGap, &v.Rate, &v.RateError, &v.Limit, &v.LimitError} {
@@ -34,7 +35,7 @@ func (o *LimitOutcome) Document(list []*cases.Case) LimitDocument {
 			byCase[r.Case] = append(byCase[r.Case], v)
 		}
 		if r.Err != nil {
-			v := emptyLimit(r.Limit)
+			v := limits.Empty(r.Limit)
 			v.Reason = "without meaning: " + problem(r.Err)
 			byCase[r.Case] = append(byCase[r.Case], v)
 		}
@@ -42,7 +43,7 @@ func (o *LimitOutcome) Document(list []*cases.Case) LimitDocument {
 	for _, c := range list {
 		values := byCase[c]
 		if values == nil {
-			values = []LimitValue{}
+			values = []limits.Value{}
 		}
 		doc.Cases = append(doc.Cases, LimitCase{Case: c.Name, Limits: values})
 	}

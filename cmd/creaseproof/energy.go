@@ -38,22 +38,14 @@ or - for standard input; without one, every built-in case is taken.`,
 		RunE: func(cmd *cobra.Command, args []string) error {
 			defer c.begin()()
 			say := &complaints{w: s.err}
-			list, bad, err := load(cmd.Context(), args, s.in, say)
+			opt := run.EnergyOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
+			opt.Certify = certify
+			it := items{"surface", "surfaces", c.only, func(k *cases.Case) int { return countEnergy(k, &opt) }}
+			list, bad, err := it.chosen(cmd.Context(), args, s, say)
 			if err != nil {
 				return err
 			}
-			opt := run.EnergyOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
-			opt.Certify = certify
-			kept := list[:0]
-			for _, k := range list {
-				if countSurfaces(k, &opt) > 0 || len(c.only) == 0 && len(args) > 0 {
-					kept = append(kept, k)
-				}
-			}
-			if len(kept) == 0 && len(c.only) > 0 && bad == 0 {
-				return fmt.Errorf("no surface has a name that contains %q", c.only)
-			}
-			return energy(cmd.Context(), kept, opt, s, say, request{json: c.json, bad: bad})
+			return energyOf(cmd.Context(), newBatch(it, request{json: c.json, bad: bad}, s, say, list), opt)
 		},
 	}
 	c.flags(cmd, "surfaces")
@@ -61,7 +53,7 @@ or - for standard input; without one, every built-in case is taken.`,
 	return cmd
 }
 
-func countSurfaces(c *cases.Case, opt *run.EnergyOptions) int {
+func countEnergy(c *cases.Case, opt *run.EnergyOptions) int {
 	n := 0
 	for i := range c.File.Surfaces {
 		if opt.Selected(c.File.Surfaces[i].Name) {
@@ -71,41 +63,13 @@ func countSurfaces(c *cases.Case, opt *run.EnergyOptions) int {
 	return n
 }
 
-func energy(ctx context.Context, list []*cases.Case, opt run.EnergyOptions, s streams, say *complaints, q request) error {
-	total := 0
-	for _, c := range list {
-		total += countSurfaces(c, &opt)
-	}
-	p := newProgress(s, total)
-	text := &energyText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt, together: s.together}
-	p.inside("surfaces", 0, 0)
+func energyOf(ctx context.Context, b *batch, opt run.EnergyOptions) error {
+	text := &energyText{sheet: sheet{w: b.s.out, style: style(b.s.colour), width: b.s.width}, opt: &opt, together: b.s.together}
 	opt.Report = func(r *run.EnergyResult) {
-		p.report(func() {
-			if !q.json {
-				text.result(r)
-			}
-			if r.Err != nil {
-				say.add(r.Err)
-			}
-		})
-		p.inside(r.Surface.Name, 0, 0)
+		b.report(r.Surface.Name, func() { text.result(r) }, r.Err)
 	}
-	out := run.Energy(ctx, list, opt)
-	p.end()
-	if q.json {
-		if err := writeJSON(s.out, out.Document(list)); err != nil {
-			return err
-		}
-	} else {
-		for _, c := range list {
-			if len(c.File.Surfaces) == 0 {
-				text.header(c)
-				fmt.Fprintln(s.out, "  no surfaces")
-			}
-		}
-		text.summary(out, total, q.bad)
-	}
-	return finish(s, out.Interrupted, q.bad > 0 || out.Faulty(), out.Met())
+	out := run.Energy(ctx, b.list, opt)
+	return b.end(out, out.Interrupted, out.Document(b.list), &text.sheet, func() { text.summary(out, b.total(b.list), b.bad) })
 }
 
 // finish is the exit status of a command that ran.

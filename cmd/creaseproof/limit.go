@@ -2,7 +2,6 @@ package main
 
 import (
 	"context"
-	"fmt"
 	"time"
 
 	"creaseproof/cases"
@@ -43,28 +42,20 @@ or - for standard input; without one, every built-in case is taken.`,
 		RunE: func(cmd *cobra.Command, args []string) error {
 			defer c.begin()()
 			say := &complaints{w: s.err}
-			list, bad, err := load(cmd.Context(), args, s.in, say)
+			opt := run.LimitOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
+			it := items{"limit", "limits", c.only, func(k *cases.Case) int { return countLimit(k, &opt) }}
+			list, bad, err := it.chosen(cmd.Context(), args, s, say)
 			if err != nil {
 				return err
 			}
-			opt := run.LimitOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
-			kept := list[:0]
-			for _, k := range list {
-				if countLimits(k, &opt) > 0 || len(c.only) == 0 && len(args) > 0 {
-					kept = append(kept, k)
-				}
-			}
-			if len(kept) == 0 && len(c.only) > 0 && bad == 0 {
-				return fmt.Errorf("no limit has a name that contains %q", c.only)
-			}
-			return limits(cmd.Context(), kept, opt, s, say, request{json: c.json, bad: bad})
+			return limitsOf(cmd.Context(), newBatch(it, request{json: c.json, bad: bad}, s, say, list), opt)
 		},
 	}
 	c.flags(cmd, "limits")
 	return cmd
 }
 
-func countLimits(c *cases.Case, opt *run.LimitOptions) int {
+func countLimit(c *cases.Case, opt *run.LimitOptions) int {
 	n := 0
 	for i := range c.File.Limits {
 		if opt.Selected(c.File.Limits[i].Name) {
@@ -74,39 +65,11 @@ func countLimits(c *cases.Case, opt *run.LimitOptions) int {
 	return n
 }
 
-func limits(ctx context.Context, list []*cases.Case, opt run.LimitOptions, s streams, say *complaints, q request) error {
-	total := 0
-	for _, c := range list {
-		total += countLimits(c, &opt)
-	}
-	p := newProgress(s, total)
-	text := &limitText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}}
-	p.inside("limits", 0, 0)
+func limitsOf(ctx context.Context, b *batch, opt run.LimitOptions) error {
+	text := &limitText{sheet: sheet{w: b.s.out, style: style(b.s.colour), width: b.s.width}}
 	opt.Report = func(r *run.LimitResult) {
-		p.report(func() {
-			if !q.json {
-				text.result(r)
-			}
-			if r.Err != nil {
-				say.add(r.Err)
-			}
-		})
-		p.inside(r.Limit.Name, 0, 0)
+		b.report(r.Limit.Name, func() { text.result(r) }, r.Err)
 	}
-	out := run.Limit(ctx, list, opt)
-	p.end()
-	if q.json {
-		if err := writeJSON(s.out, out.Document(list)); err != nil {
-			return err
-		}
-	} else {
-		for _, c := range list {
-			if len(c.File.Limits) == 0 {
-				text.header(c)
-				fmt.Fprintln(s.out, "  no limits")
-			}
-		}
-		text.summary(out, total, q.bad)
-	}
-	return finish(s, out.Interrupted, q.bad > 0 || out.Faulty(), out.Met())
+	out := run.Limit(ctx, b.list, opt)
+	return b.end(out, out.Interrupted, out.Document(b.list), &text.sheet, func() { text.summary(out, b.total(b.list), b.bad) })
 }

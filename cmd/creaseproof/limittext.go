@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"creaseproof/cases/casefile"
+	"creaseproof/cases/limits"
 	"creaseproof/cases/run"
 )
 
@@ -13,7 +14,7 @@ import (
 type limitText struct{ sheet }
 
 // outcomes in the order in which they are counted.
-var outcomes = []string{run.Sharp, run.Above, run.Below, run.Infinite, run.Undecided}
+var outcomes = []string{limits.Sharp, limits.Above, limits.Below, limits.Infinite, limits.Undecided}
 
 func (t *limitText) result(r *run.LimitResult) {
 	if r.Case != t.current {
@@ -28,7 +29,7 @@ func (t *limitText) result(r *run.LimitResult) {
 }
 
 // value writes a table of the energies at one choice of the parameters.
-func (t *limitText) value(l *casefile.Limit, v *run.LimitValue) {
+func (t *limitText) value(l *casefile.Limit, v *limits.Value) {
 	outcome := pad(v.Outcome, 9)
 	if !v.Met {
 		outcome = t.style.alarm(outcome)
@@ -72,7 +73,7 @@ func (t *limitText) value(l *casefile.Limit, v *run.LimitValue) {
 }
 
 // beside is what is said below the table.
-func (t *limitText) beside(v *run.LimitValue) (list []string) {
+func (t *limitText) beside(v *limits.Value) (list []string) {
 	if v.Target != nil {
 		how := "integrated over the jumps"
 		if v.TargetClaimed {

@@ -1,8 +1,9 @@
-package run
+package limits
 
 import (
 	"context"
 	"errors"
+	"fmt"
 	"maps"
 	"math"
 	"slices"
@@ -17,9 +18,9 @@ import (
 	"creaseproof/quadrature/limit"
 )
 
-// limitReader makes the problem of one limit at one choice of its values. The
+// reader makes the problem of one limit at one choice of its values. The
 // values are named formulas of its setting.
-type limitReader struct {
+type reader struct {
 	ctx   context.Context
 	c     *cases.Case
 	l     *casefile.Limit
@@ -29,23 +30,28 @@ type limitReader struct {
 	n     int            // coordinates
 }
 
-func (r *limitReader) fault(t source.Text, advice, format string, args ...any) error {
+func (r *reader) fault(t source.Text, advice, format string, args ...any) error {
 	return r.c.Fault(source.Pos{Line: t.Line, Col: t.Col}, advice, format, args...)
 }
 
-// evaluateLimit evaluates a limit for every combination of its values, the
-// first listed varying slowest.
-func evaluateLimit(ctx context.Context, c *cases.Case, l *casefile.Limit) ([]LimitValue, error) {
+// maxCombinations bounds how often one limit is repeated.
+const maxCombinations = 10_000
+
+// Evaluate evaluates a limit for every combination of its values, the first
+// listed varying slowest. An error is a mistake in the file with its place, or
+// the context's; the values so far come with it, the last one unfinished where
+// the context ended between two eps.
+func Evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit) ([]Value, error) {
 	total := 1
 	for _, v := range l.Values {
 		if total *= len(v.List); total > maxCombinations {
 			return nil, c.Fault(v.Name.Pos, "make a limit for each part of them", "the values have more than %d combinations", maxCombinations)
 		}
 	}
-	var out []LimitValue
+	var out []Value
 	at := make([]int, len(l.Values))
 	for range total {
-		v, err := oneLimit(ctx, c, l, at)
+		v, err := evaluate(ctx, c, l, at, 0)
 		if v != nil {
 			out = append(out, *v)
 		}
@@ -62,14 +68,30 @@ func evaluateLimit(ctx context.Context, c *cases.Case, l *casefile.Limit) ([]Lim
 	return out, nil
 }
 
-// oneLimit evaluates a limit at one choice of its values. Where the context
+// At evaluates a limit at one choice of its values, which are as they are
+// written in the file. With first > 0 it stops, unfinished, after so many eps.
+func At(ctx context.Context, c *cases.Case, l *casefile.Limit, values map[string]string, first int) (*Value, error) {
+	if len(values) != len(l.Values) {
+		return nil, fmt.Errorf("%d values for %d parameters", len(values), len(l.Values))
+	}
+	at := make([]int, len(l.Values))
+	for k, v := range l.Values {
+		x, ok := values[v.Name.S]
+		if at[k] = slices.IndexFunc(v.List, func(t source.Text) bool { return strings.TrimSpace(t.S) == x }); !ok || at[k] < 0 {
+			return nil, fmt.Errorf("the limit is not repeated for %s = %q", v.Name.S, cases.Clip(x, 40))
+		}
+	}
+	return evaluate(ctx, c, l, at, first)
+}
+
+// evaluate evaluates a limit at one choice of its values. Where the context
 // ends, what was found comes with its error.
-func oneLimit(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) (*LimitValue, error) {
-	r, err := newLimitReader(ctx, c, l, at)
+func evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int, first int) (*Value, error) {
+	r, err := newReader(ctx, c, l, at)
 	if err != nil {
 		return nil, err
 	}
-	v := emptyLimit(l)
+	v := Empty(l)
 	for i, x := range l.Values {
 		if v.Values == nil {
 			v.Values = map[string]string{}
@@ -87,7 +109,10 @@ func oneLimit(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) (
 	if err := r.target(p, &v); err != nil {
 		return nil, err
 	}
-	for _, e := range eps {
+	for i, e := range eps {
+		if first > 0 && i == first {
+			return &v, nil
+		}
 		energy, err := p.Integrate(ctx, e)
 		var infinite *limit.InfiniteError
 		switch {
@@ -104,22 +129,17 @@ func oneLimit(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) (
 		}
 		v.add(energy)
 	}
-	within := defaultGap
-	if l.Within != nil {
-		within, _ = l.Within.Float64()
-	}
-	v.judge(within)
-	v.complete = true
+	v.Judge(l)
 	return &v, nil
 }
 
-func newLimitReader(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) (*limitReader, error) {
+func newReader(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) (*reader, error) {
 	set := *c.Setting
 	set.Lets = maps.Clone(set.Lets)
 	if set.Lets == nil {
 		set.Lets = map[string]formula.Node{}
 	}
-	r := &limitReader{ctx: ctx, c: c, l: l, set: &set, n: len(set.Coordinates)}
+	r := &reader{ctx: ctx, c: c, l: l, set: &set, n: len(set.Coordinates)}
 	if r.n < 1 || r.n > 3 || len(set.Unknowns) != 1 {
 		return nil, c.Fault(l.Pos, "declare one to three coordinates and one unknown", "approximations in %d coordinates of %d unknowns", r.n, len(set.Unknowns))
 	}
@@ -159,7 +179,7 @@ func newLimitReader(ctx context.Context, c *cases.Case, l *casefile.Limit, at []
 
 // program compiles a formula in the given inputs, with its derivatives by the
 // coordinates up to the given order.
-func (r *limitReader) compile(t source.Text, n formula.Node, order int, inputs ...entropy.Input) (*program.Program, error) {
+func (r *reader) compile(t source.Text, n formula.Node, order int, inputs ...entropy.Input) (*program.Program, error) {
 	in, num := r.set.NewNumeric(nil, inputs...)
 	num.Closed = true
 	at := source.Pos{Line: t.Line, Col: t.Col}
@@ -199,7 +219,7 @@ func (r *limitReader) compile(t source.Text, n formula.Node, order int, inputs .
 }
 
 // number is the value of a formula without variables.
-func (r *limitReader) number(t source.Text) (float64, error) {
+func (r *reader) number(t source.Text) (float64, error) {
 	n, err := r.scope.ParseExpr(t)
 	if err != nil {
 		return 0, err
@@ -216,7 +236,7 @@ func (r *limitReader) number(t source.Text) (float64, error) {
 	return out[0], nil
 }
 
-func (r *limitReader) numbers(list []source.Text) ([]float64, error) {
+func (r *reader) numbers(list []source.Text) ([]float64, error) {
 	var out []float64
 	for _, t := range list {
 		x, err := r.number(t)
@@ -229,7 +249,7 @@ func (r *limitReader) numbers(list []source.Text) ([]float64, error) {
 }
 
 // falling are the values of eps.
-func (r *limitReader) falling() ([]float64, error) {
+func (r *reader) falling() ([]float64, error) {
 	eps, err := r.numbers(r.l.Eps)
 	if err != nil {
 		return nil, err
@@ -245,7 +265,7 @@ func (r *limitReader) falling() ([]float64, error) {
 	return eps, nil
 }
 
-func (r *limitReader) coordinates() []entropy.Input {
+func (r *reader) coordinates() []entropy.Input {
 	var in []entropy.Input
 	for i := range r.n {
 		in = append(in, entropy.Input{Kind: entropy.CoordinateInput, Place: i})
@@ -254,8 +274,8 @@ func (r *limitReader) coordinates() []entropy.Input {
 }
 
 // infinite says where an energy diverges.
-func (v *LimitValue) infinite(r *limitReader, e *limit.InfiniteError) {
-	v.Outcome, v.complete = Infinite, true
+func (v *Value) infinite(r *reader, e *limit.InfiniteError) {
+	v.Outcome, v.Complete = Infinite, true
 	v.Met = v.Outcome == v.Expected
 	v.Reason = "the energy is infinite: it diverges near (" + strings.Join(r.set.Coordinates, ", ") + ") = " + point(e.Point) +
 		", where the branch " + strings.TrimSpace(slices.Concat(r.l.Branches)[e.Branch].S) + " is not smooth"

@@ -1,4 +1,4 @@
-package run
+package limits
 
 import (
 	"errors"
@@ -29,7 +29,7 @@ func point(x []float64) string {
 }
 
 // problem makes the problem at the values chosen.
-func (r *limitReader) problem() (*limit.Problem, error) {
+func (r *reader) problem() (*limit.Problem, error) {
 	l := r.l
 	texts := l.Branches
 	if l.Approximation == "profile" {
@@ -90,7 +90,7 @@ func (r *limitReader) problem() (*limit.Problem, error) {
 }
 
 // target is the claimed energy, or the integral over the jumps.
-func (r *limitReader) target(p *limit.Problem, v *LimitValue) error {
+func (r *reader) target(p *limit.Problem, v *Value) error {
 	var x, e float64
 	var err error
 	if r.l.Energy != nil {
@@ -108,7 +108,7 @@ func (r *limitReader) target(p *limit.Problem, v *LimitValue) error {
 
 // branches compiles the branches and requires that they lie on the well: by
 // exact arithmetic, or to rounding where that does not decide it.
-func (r *limitReader) branches(p *limit.Problem, texts []source.Text) error {
+func (r *reader) branches(p *limit.Problem, texts []source.Text) error {
 	n := r.n
 	inputs := r.coordinates()
 	type compiled struct {
@@ -158,7 +158,7 @@ func (r *limitReader) branches(p *limit.Problem, texts []source.Text) error {
 }
 
 // onWell refuses a branch off the well.
-func (r *limitReader) onWell(t source.Text, node formula.Node, jets *program.Program, d *limit.Domain) error {
+func (r *reader) onWell(t source.Text, node formula.Node, jets *program.Program, d *limit.Domain) error {
 	in, ex, err := r.set.NewExact(r.ctx)
 	if err != nil {
 		return err
@@ -211,7 +211,7 @@ func (r *limitReader) onWell(t source.Text, node formula.Node, jets *program.Pro
 // density compiles the energy, the residual and the bending. The curvature K
 // is the sum of the principal minors of second order of the Hessian in the
 // coordinates whose pure second derivatives are in the bending.
-func (r *limitReader) density(p *limit.Problem) error {
+func (r *reader) density(p *limit.Problem) error {
 	n := r.n
 	m := r.set.Model
 	if m.Energy != nil && r.small == "" {
@@ -293,7 +293,7 @@ func (r *limitReader) density(p *limit.Problem) error {
 }
 
 // bent are the coordinates whose pure second derivatives are in the bending.
-func (r *limitReader) bent() (list []int, err error) {
+func (r *reader) bent() (list []int, err error) {
 	in, num := r.set.NewNumeric(nil)
 	if _, err := in.Scalar(r.set.Model.Bending); err != nil {
 		return nil, r.c.Place(err, r.l.Pos)
@@ -309,7 +309,7 @@ func (r *limitReader) bent() (list []int, err error) {
 }
 
 // wall makes the transition between two affine branches.
-func (r *limitReader) wall(p *limit.Problem) (limit.Smoothing, error) {
+func (r *reader) wall(p *limit.Problem) (limit.Smoothing, error) {
 	l := r.l
 	for _, t := range []source.Text{*l.Plus, *l.Minus} {
 		if err := r.affine(t); err != nil {
@@ -358,7 +358,7 @@ func (r *limitReader) wall(p *limit.Problem) (limit.Smoothing, error) {
 }
 
 // residual compiles the residual in the gradient alone.
-func (r *limitReader) residual() (func(grad []float64) float64, error) {
+func (r *reader) residual() (func(grad []float64) float64, error) {
 	var inputs []entropy.Input
 	for i := range r.n {
 		inputs = append(inputs, entropy.Input{Kind: entropy.JetInput, Index: jet.Index{}.Plus(i)})
@@ -375,7 +375,7 @@ func (r *limitReader) residual() (func(grad []float64) float64, error) {
 }
 
 // affine refuses a branch that has second derivatives.
-func (r *limitReader) affine(t source.Text) error {
+func (r *reader) affine(t source.Text) error {
 	node, err := r.scope.ParseExpr(t)
 	if err != nil {
 		return err
@@ -403,7 +403,7 @@ func (r *limitReader) affine(t source.Text) error {
 }
 
 // givenProfile compiles a profile in s, the distance over eps.
-func (r *limitReader) givenProfile(t source.Text) (limit.Smoothing, error) {
+func (r *reader) givenProfile(t source.Text) (limit.Smoothing, error) {
 	scope, err := r.scope.With("s")
 	if err != nil {
 		return nil, r.c.Place(err, source.Pos{Line: t.Line, Col: t.Col})

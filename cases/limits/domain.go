@@ -1,4 +1,4 @@
-package run
+package limits
 
 import (
 	"math"
@@ -13,7 +13,7 @@ import (
 )
 
 // domain makes the domain of integration.
-func (r *limitReader) domain() (limit.Domain, error) {
+func (r *reader) domain() (limit.Domain, error) {
 	l := r.l
 	switch {
 	case l.Ball != nil:
@@ -43,7 +43,7 @@ func (r *limitReader) domain() (limit.Domain, error) {
 	return d, nil
 }
 
-func (r *limitReader) ends(b casefile.Interval) (lo, hi float64, err error) {
+func (r *reader) ends(b casefile.Interval) (lo, hi float64, err error) {
 	if lo, err = r.number(b.Lo); err == nil {
 		hi, err = r.number(b.Hi)
 	}
@@ -53,7 +53,7 @@ func (r *limitReader) ends(b casefile.Interval) (lo, hi float64, err error) {
 	return lo, hi, err
 }
 
-func (r *limitReader) radius(t source.Text) (float64, error) {
+func (r *reader) radius(t source.Text) (float64, error) {
 	x, err := r.number(t)
 	if err == nil && !(x > 0) {
 		err = r.fault(t, "", "the radius %g is not positive", x)
@@ -62,7 +62,7 @@ func (r *limitReader) radius(t source.Text) (float64, error) {
 }
 
 // ball is a disc in polar or a ball in spherical coordinates.
-func (r *limitReader) ball(b *casefile.Ball) (d limit.Domain, err error) {
+func (r *reader) ball(b *casefile.Ball) (d limit.Domain, err error) {
 	if len(b.Center) != r.n {
 		return d, r.c.Fault(b.Pos, "", "a centre of %d coordinates in %d dimensions", len(b.Center), r.n)
 	}
@@ -93,7 +93,7 @@ func (r *limitReader) ball(b *casefile.Ball) (d limit.Domain, err error) {
 }
 
 // cylinder has cylindrical coordinates about its axis.
-func (r *limitReader) cylinder(cyl *casefile.Cylinder) (d limit.Domain, err error) {
+func (r *reader) cylinder(cyl *casefile.Cylinder) (d limit.Domain, err error) {
 	if r.n != 3 {
 		return d, r.c.Fault(cyl.Pos, "give a box or a ball", "a cylinder in %d dimensions", r.n)
 	}
@@ -138,7 +138,7 @@ func (r *limitReader) cylinder(cyl *casefile.Cylinder) (d limit.Domain, err erro
 }
 
 // region is the image of a box of parameters.
-func (r *limitReader) region(p *casefile.Patch) (d limit.Domain, err error) {
+func (r *reader) region(p *casefile.Patch) (d limit.Domain, err error) {
 	n := r.n
 	if len(p.Map) != n || len(p.Over) != n {
 		return d, r.c.Fault(p.Pos, "give as many of each as there are coordinates", "a map of %d components of %d parameters in %d dimensions", len(p.Map), len(p.Over), n)

@@ -1,4 +1,4 @@
-package run
+package limits
 
 import (
 	"fmt"
@@ -24,9 +24,9 @@ const (
 	Undecided = "open"
 )
 
-// LimitValue is what came of one limit at one choice of its values. The lists
+// Value is what came of one limit at one choice of its values. The lists
 // run along with Eps.
-type LimitValue struct {
+type Value struct {
 	Approximation string            `json:"approximation"` // its name
 	Kind          string            `json:"kind"`          // profile, front, mollified
 	Values        map[string]string `json:"values,omitempty"`
@@ -65,14 +65,15 @@ type LimitValue struct {
 	Met         bool   `json:"met"`
 	Reason      string `json:"reason,omitempty"`
 
-	complete bool
+	Complete bool `json:"-"` // every eps was integrated, or one is infinite
 }
 
 // defaultGap is the relative gap that is allowed at the smallest eps.
 const defaultGap = 1e-3
 
-func emptyLimit(l *casefile.Limit) LimitValue {
-	v := LimitValue{Approximation: l.Name, Kind: l.Approximation, Expected: l.Expect, Outcome: Undecided,
+// Empty is a value of a limit of which nothing is known.
+func Empty(l *casefile.Limit) Value {
+	v := Value{Approximation: l.Name, Kind: l.Approximation, Expected: l.Expect, Outcome: Undecided,
 		Eps: []float64{}, Energy: []float64{}, Compression: []float64{}, Bending: []float64{}, Curvature: []float64{}, Error: []float64{}}
 	if v.Expected == "" {
 		v.Expected = Sharp
@@ -80,7 +81,7 @@ func emptyLimit(l *casefile.Limit) LimitValue {
 	return v
 }
 
-func (v *LimitValue) add(e limit.Energy) {
+func (v *Value) add(e limit.Energy) {
 	v.Eps = append(v.Eps, e.Eps)
 	v.Energy = append(v.Energy, e.Energy)
 	v.Compression = append(v.Compression, e.Compression)
@@ -94,8 +95,14 @@ func (v *LimitValue) add(e limit.Energy) {
 // to the sums of an integral.
 const rounding = 1e-14
 
-// judge compares the energies with the target.
-func (v *LimitValue) judge(within float64) {
+// Judge compares the energies with the target, and finishes the value: what
+// comes after Target follows from what comes before it.
+func (v *Value) Judge(l *casefile.Limit) {
+	within := defaultGap
+	if l.Within != nil {
+		within, _ = l.Within.Float64()
+	}
+	v.Complete = true
 	n := len(v.Eps)
 	if n == 0 || v.Target == nil {
 		return
