@@ -90,7 +90,8 @@ func (f *levelFunction) Range(box []levelset.Interval) levelset.Interval {
 	return v
 }
 
-// GradientRange encloses the partial derivatives on a box.
+// GradientRange encloses the partial derivatives on a box; they are the whole
+// line where no form is certainly continuous.
 func (f *levelFunction) GradientRange(g, box []levelset.Interval) {
 	f.ranges.At(box)
 	f.ranges.Gradient(f.of[0], g)

@@ -192,7 +192,7 @@ func (c *combination) over(t *tally, phi levelset.Function, trims []levelset.Fun
 	}
 	at := newNodes(len(box), tr, options, density, box)
 	q, err := levelset.Integrate(c.ctx, phi, trims, box, at.at, levelset.Options{
-		Parts: 1, Rel: t.rel, Abs: math.Max(t.abs, abs), MaxNodes: c.o.MaxEvaluations,
+		Parts: 1, Probe: at.near, Rel: t.rel, Abs: math.Max(t.abs, abs), MaxNodes: c.o.MaxEvaluations,
 	})
 	if c.ctx.Err() != nil {
 		return v, "", c.ctx.Err()

@@ -57,6 +57,15 @@ func (n *nodes) at(x, nu, out []float64) {
 	}
 }
 
+// near is the density next to the surface, where the traces need not agree.
+func (n *nodes) near(x, nu, out []float64) {
+	if n.tr.Plus != nil {
+		n.tr.Plus(x, n.plus)
+		n.tr.Minus(x, n.minus)
+	}
+	out[0] = n.d(x, n.plus, n.minus, nu)
+}
+
 func (n *nodes) density(x, nu []float64) (float64, *quadrature.PlaceError) {
 	jump := math.Inf(1)
 	if n.tr.Plus != nil {

@@ -1,6 +1,11 @@
 package creases
 
-import "creaseproof/identity/claim"
+import (
+	"encoding/json"
+	"math"
+
+	"creaseproof/identity/claim"
+)
 
 // Result is what came of one surface at one choice of its values.
 type Result struct {
@@ -62,6 +67,20 @@ type Pair struct {
 	Exact     string   `json:"exact,omitempty"`
 	AreaRoots []string `json:"area_roots,omitempty"`
 	Sheets    []Sheet  `json:"sheets,omitempty"` // of affine branches
+}
+
+// MarshalJSON leaves out an error that is not finite, for which JSON has no
+// spelling.
+func (p Pair) MarshalJSON() ([]byte, error) {
+	type plain Pair
+	out := struct {
+		plain
+		Error *float64 `json:"error,omitempty"`
+	}{plain: plain(p)}
+	if !math.IsNaN(p.Error) && !math.IsInf(p.Error, 0) {
+		out.Error = &p.Error
+	}
+	return json.Marshal(out)
 }
 
 // Sheet is a flat part of a crease between affine branches.

@@ -6,7 +6,6 @@ import (
 	"errors"
 	"fmt"
 	"math"
-	"slices"
 )
 
 // A driver refines leaves until the tolerance is met.
@@ -266,9 +265,7 @@ func (d *driver) result(stop error) (Result, error) {
 	r.UndecidedArea, r.Resolution, r.Undecided = d.undecided()
 	lost := r.UndecidedArea + d.skipped
 	if d.nodes == 0 && lost > 0 {
-		// Nothing is known of the density.
-		copy(d.peak, slices.Repeat([]float64{math.Inf(1)}, len(d.peak)))
-		d.peak[0] = 1
+		d.probe()
 	}
 	for c := range d.sum {
 		noise := 4 * 0x1p-52 * d.bulk[c]

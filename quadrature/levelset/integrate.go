@@ -16,6 +16,10 @@ type Options struct {
 	// AreaRel, if not zero, asks the same of the area. Otherwise the area comes
 	// with whatever accuracy its error says.
 	AreaRel float64
+	// Probe is the density at points near the surface, the density itself if
+	// nil. Where no node was found it is asked at a few places of the cells left
+	// out, for the size of their share.
+	Probe func(x, n []float64, out []float64)
 	// MaxNodes is the budget of evaluations of the density, 1e6 if zero. It may
 	// be overrun by one leaf.
 	MaxNodes int
@@ -83,6 +87,9 @@ func check(phi Function, box [][2]float64, density func(x, n []float64, out []fl
 	}
 	if opt.Rel == 0 && opt.Abs == 0 {
 		opt.Rel = 1e-10
+	}
+	if opt.Probe == nil {
+		opt.Probe = density
 	}
 	if opt.MaxNodes == 0 {
 		opt.MaxNodes = 1e6

@@ -22,6 +22,7 @@ type plan struct {
 	shaped   int     // sheets whose maps are chosen
 	bases    float64 // area of their bases
 	skipped  float64 // bound of the area in thin cells left out
+	left     []cell  // some of these
 	eval     *evaluator
 
 	box, cbox, tbox, grad, cgb, point []Interval

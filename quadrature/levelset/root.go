@@ -9,9 +9,15 @@ func solve(f Function, x []float64, k int, lo, hi, guess float64, rising bool, g
 	first, last := lo, hi
 	t := min(max(guess, lo), hi)
 	before := math.Inf(1)
+	holes := 0
 	for range 200 {
 		x[k] = t
 		v := f.Value(x)
+		if v != v && holes < 3 { // a removable singularity
+			holes++
+			t = lo + (0.5+0.03*float64(holes))*(hi-lo)
+			continue
+		}
 		if v == 0 || v != v {
 			return
 		}

@@ -60,14 +60,26 @@ func pieces(s *isolation, x0, x1 float64, f func(x0, x1 float64) bool) bool {
 	return true
 }
 
+// telling is the value of f largest in size at a few places between x0 and x1,
+// where f has one sign: at a single place it might vanish by rounding.
+func telling(x0, x1 float64, f func(x float64) float64) (v float64) {
+	for _, t := range [3]float64{0.5, 0.21, 0.83} {
+		if w := f(x0 + t*(x1-x0)); !(math.Abs(w) <= math.Abs(v)) {
+			v = w
+		}
+	}
+	return v
+}
+
 // faceBounds sets the bounds that the faces put on the inner coordinate, at
 // the outer coordinate x, and reports whether any is left.
 func (b *base) faceBounds(sh *sheet, l int, x, y0, y1 float64) bool {
 	var at [2]float64
-	at[1-l] = x
 	value := func(f Function, y float64) float64 {
-		at[l] = y
-		return f.Value(at[:])
+		return telling(sh.x0, sh.x1, func(x float64) float64 {
+			at[1-l], at[l] = x, y
+			return f.Value(at[:])
+		})
 	}
 	for _, f := range b.faces {
 		v0, v1 := value(f, y0), value(f, y1)
@@ -157,15 +169,20 @@ func (b *base) coincide(sh *sheet, l int, t *trace, upper bool) bool {
 // trimBounds sets the bounds that the trims put on the inner coordinate
 // between the bounds of the faces.
 func (b *base) trimBounds(sh *sheet, l int) bool {
-	x := sh.x0 + (sh.x1-sh.x0)/2
-	a, c := b.p.eval.inside(sh, x)
 	var at [2]float64
-	at[1-l] = x
+	outer := *sh
+	value := func(t *trace, upper bool) float64 {
+		return telling(sh.x0, sh.x1, func(x float64) float64 {
+			lo, hi := b.p.eval.inside(&outer, x)
+			if upper {
+				lo = hi
+			}
+			at[1-l], at[l] = x, lo
+			return t.Value(at[:])
+		})
+	}
 	for _, t := range b.trims {
-		at[l] = a
-		v0 := t.Value(at[:])
-		at[l] = c
-		v1 := t.Value(at[:])
+		v0, v1 := value(t, false), value(t, true)
 		switch {
 		case v0 < 0 && v1 < 0:
 			return false
@@ -251,9 +268,12 @@ func (p *plan) recordCurve(b *base) bool {
 			return false
 		}
 	}
+	below := func(f Function, x0, x1 float64) bool {
+		return telling(x0, x1, func(x float64) float64 { return f.Value([]float64{x}) }) < 0
+	}
 	var out []*sheet
 	ok := pieces(s, x0, x1, func(x0, x1 float64) bool {
-		if slices.ContainsFunc(b.faces, func(f Function) bool { return f.Value([]float64{x0 + (x1-x0)/2}) < 0 }) {
+		if slices.ContainsFunc(b.faces, func(f Function) bool { return below(f, x0, x1) }) {
 			return true
 		}
 		s := &isolation{whole: x1 - x0, left: work}
@@ -263,7 +283,7 @@ func (p *plan) recordCurve(b *base) bool {
 			}
 		}
 		return pieces(s, x0, x1, func(x0, x1 float64) bool {
-			if !slices.ContainsFunc(b.trims, func(t *trace) bool { return t.Value([]float64{x0 + (x1-x0)/2}) < 0 }) {
+			if !slices.ContainsFunc(b.trims, func(t *trace) bool { return below(t, x0, x1) }) {
 				out = append(out, &sheet{
 					up: b.up, inner: -1, outer: skip(0, b.up), rising: b.rising,
 					lo: b.cell.lo, hi: b.cell.hi, x0: x0, x1: x1,

@@ -1,6 +1,10 @@
 package ranges
 
-import "creaseproof/entropy/interval"
+import (
+	"math"
+
+	"creaseproof/entropy/interval"
+)
 
 // dims is the number of coordinates that a tape can have.
 const dims = 3
@@ -11,26 +15,41 @@ type Evaluator struct {
 	deps  []uint8
 	value []interval.Interval
 	slope [][dims]interval.Interval
+	sure  []bool // defined and continuous on the whole box
 }
 
 // Evaluator encloses what is recorded up to now.
 func (t *Tape) Evaluator() *Evaluator {
 	n := len(t.ops)
-	return &Evaluator{t.ops[:n:n], t.deps, make([]interval.Interval, n), make([][dims]interval.Interval, n)}
+	return &Evaluator{t.ops[:n:n], t.deps, make([]interval.Interval, n), make([][dims]interval.Interval, n), make([]bool, n)}
 }
 
 // At encloses all values of the tape on a box.
 func (e *Evaluator) At(box []interval.Interval) {
 	for i := range e.ops {
 		e.value[i] = e.compute(&e.ops[i], box)
+		e.sure[i] = e.continuous(&e.ops[i])
 	}
 }
 
 // Value is the enclosure of a value on the last box.
 func (e *Evaluator) Value(r Ref) interval.Interval { return e.value[r] }
 
-// Gradient encloses the partial derivatives of a value on the last box.
+// Continuous reports whether a value is certainly defined and continuous at
+// every point of the last box.
+func (e *Evaluator) Continuous(r Ref) bool { return e.sure[r] }
+
+// Gradient encloses the partial derivatives of a value on the last box, where
+// it is Lipschitz continuous also those in the sense of Clarke. Each is the
+// whole line unless the value is certainly defined and continuous on the box:
+// across a pole or a gap the sign of a derivative says nothing.
 func (e *Evaluator) Gradient(r Ref, g []interval.Interval) {
+	if !e.sure[r] {
+		for k := range g {
+			g[k] = interval.Entire()
+		}
+		return
+	}
 	for i := Ref(0); i <= r; i++ {
 		for k := range g {
 			if e.deps[i]>>k&1 == 0 {
@@ -40,8 +59,51 @@ func (e *Evaluator) Gradient(r Ref, g []interval.Interval) {
 			e.slope[i][k] = e.derive(i, k)
 		}
 	}
-	copy(g, e.slope[r][:])
+	for k := range g {
+		if g[k] = e.slope[r][k]; g[k].IsEmpty() {
+			g[k] = interval.Entire()
+		}
+	}
 }
+
+// continuous reports whether an operation whose operands have their values is
+// defined and continuous on the whole box.
+func (e *Evaluator) continuous(o *op) bool {
+	switch o.kind {
+	case number, coordinate:
+		return true
+	case sum, product:
+		return e.sure[o.a] && e.sure[o.b]
+	case quotient:
+		return e.sure[o.a] && e.sure[o.b] && apart(e.value[o.b])
+	case square:
+		return e.sure[o.a] && (o.b < 0 || e.sure[o.b])
+	}
+	x := e.value[o.a]
+	if !e.sure[o.a] {
+		return false
+	}
+	switch o.kind {
+	case power:
+		return o.n >= 0 || apart(x)
+	case rational:
+		return x.Inf() > 0 || x.Inf() == 0 && (o.n > 0) == (o.m > 0)
+	case function:
+		switch o.name {
+		case "sqrt":
+			return x.Inf() >= 0
+		case "log":
+			return x.Inf() > 0
+		case "tan":
+			y := x.Tan()
+			return !y.IsEmpty() && y.Inf() > math.Inf(-1) && y.Sup() < math.Inf(1)
+		}
+	}
+	return true
+}
+
+// apart reports whether x contains no zero.
+func apart(x interval.Interval) bool { return x.Inf() > 0 || x.Sup() < 0 }
 
 var (
 	zero = interval.Point(0)

@@ -81,6 +81,54 @@ func TestContainment(t *testing.T) {
 	}
 }
 
+// Across a pole, or where a formula is not defined on all of a box, the sign of
+// a derivative says nothing.
+func TestNotContinuous(t *testing.T) {
+	set := &entropy.Setting{Coordinates: []string{"x", "y"}, Unknowns: []string{"u"}, Lets: map[string]formula.Node{}}
+	scope, err := set.Scope(false)
+	require.NoError(t, err)
+	side := func(lo, hi float64) interval.Interval { return interval.Point(lo).ConvexHull(interval.Point(hi)) }
+	for _, test := range []struct {
+		text           string
+		lo, hi         float64 // of x
+		continuous     bool
+		certain, other bool // signs of the derivatives
+	}{
+		{"sqrt(x) + y", -1, 2, false, false, false},
+		{"sqrt(x) + y", 0, 2, true, true, true},
+		{"log(x) + y", -1, 2, false, false, false},
+		{"log(x) + y", 0, 2, false, false, false},
+		{"log(x) + y", 1, 2, true, true, true},
+		{"tan(x) + y", 1, 2, false, false, false},
+		{"tan(x) + y", -1, 1, true, true, true},
+		{"x^(-1) + y", -1, 2, false, false, false},
+		{"x^(-1) + y", 1, 2, true, true, true},
+		{"1/x + y", -1, 2, false, false, false},
+		{"1/x + y", 1, 2, true, true, true},
+		{"x^(3/2) + y", -1, 2, false, false, false},
+		{"x^(3/2) + y", 1, 2, true, true, true},
+		{"x^(-1/2) + y", 0, 2, false, false, false},
+		{"abs(x) + y", -1, 2, true, false, true},
+		{"sqrt(x^2 + 1) + y", -1, 2, true, false, true},
+		{"exp(sqrt(x)) + y", -1, 2, false, false, false},
+		{"norm(x, y) - 2*y", -1, 2, true, false, true},
+	} {
+		node, err := scope.ParseExpr(source.Text{File: "t", Line: 1, Col: 1, S: test.text})
+		require.NoError(t, err, test.text)
+		in, tape := ranges.New(set)
+		r, err := in.Scalar(node)
+		require.NoError(t, err, test.text)
+		e := tape.Evaluator()
+		e.At([]interval.Interval{side(test.lo, test.hi), side(-1, 1)})
+		g := make([]interval.Interval, 2)
+		e.Gradient(r, g)
+		certain := func(i interval.Interval) bool { return i.Inf() > 0 || i.Sup() < 0 }
+		assert.Equal(t, test.continuous, e.Continuous(r), "%s on [%g, %g]", test.text, test.lo, test.hi)
+		assert.Equal(t, test.certain, certain(g[0]), "%s on [%g, %g]: %v", test.text, test.lo, test.hi, g)
+		assert.Equal(t, test.other, certain(g[1]), "%s on [%g, %g]: %v", test.text, test.lo, test.hi, g)
+	}
+}
+
 func TestRefusals(t *testing.T) {
 	set := &entropy.Setting{Coordinates: []string{"x", "y"}, Unknowns: []string{"u"}, Lets: map[string]formula.Node{}}
 	scope, err := set.Scope(false)

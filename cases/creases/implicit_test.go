@@ -1,0 +1,96 @@
+package creases_test
+
+import (
+	"encoding/json"
+	"fmt"
+	"math"
+	"testing"
+
+	"github.com/stretchr/testify/assert"
+	"github.com/stretchr/testify/require"
+
+	"creaseproof/cases/creases"
+)
+
+// level is the area of a level set in a box.
+func level(t *testing.T, phi, x, y, z string) creases.Result {
+	t.Helper()
+	return one(t, layeredHead+fmt.Sprintf("density = \"1\"\nlevel = %q\nbox = { x = [%s], y = [%s], z = [%s] }\n", phi, x, y, z))
+}
+
+// Where phi is not defined in a part of the box, or has poles, no sheet gets
+// lost, and the error stands.
+func TestLevelSetOfAPartialFunction(t *testing.T) {
+	const b = `"-2", "2"`
+	line := func(f func(y float64) float64, lo, hi float64) float64 {
+		sum, n := 0.0, 4000
+		for i := range n {
+			sum += f(lo+(hi-lo)*(float64(i)+0.5)/float64(n)) * (hi - lo) / float64(n)
+		}
+		return sum
+	}
+	for _, test := range []struct {
+		phi, x string
+		want   float64
+		slack  float64 // of want
+		sharp  bool
+	}{
+		{"sqrt(x) - 1/2", b, 16, 0, true},
+		{"sqrt(x + 1) - 1", b, 16, 0, true},
+		{"log(x) - 1/2", b, 16, 0, true},
+		{"log(x) + y", b, 4 * line(func(y float64) float64 { return math.Sqrt(1 + math.Exp(-2*y)) }, -math.Ln2, 2), 1e-6, true},
+		{"1/x - 1", `"0", "2"`, 16, 0, true},
+		{"x^(1/3) - 1", b, 16, 0, true},
+		{"x^(-1/2) - 1", b, 16, 0, true},
+		{"x^2/x - 1", b, 16, 0, true},
+		{"sqrt(1 - x^2 - y^2) - z", b, 2 * math.Pi, 0, false},
+		{"x^(-1) - 1", b, 16, 0, false},
+		{"1/x - 1", b, 16, 0, false},
+		{"tan(x) - 1/3", `"-5", "5"`, 48, 0, false},
+	} {
+		r := level(t, test.phi, test.x, b, b)
+		require.NotNil(t, r.Energy, "%s: %s", test.phi, r.Reason)
+		assert.LessOrEqual(t, math.Abs(*r.Energy-test.want), *r.Error+test.slack, test.phi)
+		if test.sharp {
+			assert.LessOrEqual(t, *r.Error, 1e-9**r.Energy, test.phi)
+			assert.Empty(t, r.Reason, test.phi)
+		} else {
+			assert.Contains(t, r.Reason, "could not be resolved", test.phi)
+		}
+	}
+}
+
+// A surface tangent to a face of the box from within, given in a form whose
+// rounding errors hide it.
+func TestTangentToTheBox(t *testing.T) {
+	for _, phi := range []string{"x^2 + y^2 + (z - 1)^2 - 1", "x^2 + y^2 + z^2 - 2*z", "1/3*(x^2 + y^2 + (z - 1)^2) - 1/3"} {
+		r := level(t, phi, `"-2", "2"`, `"-2", "2"`, `"0", "2"`)
+		require.NotNil(t, r.Energy, r.Reason)
+		assert.InEpsilon(t, 4*math.Pi, *r.Energy, 1e-11, phi)
+		assert.LessOrEqual(t, *r.Error, 1e-9, phi)
+	}
+}
+
+// Where the only points of a crease are tangent to the domain or to each other,
+// what the undecided cells can hold is judged by the density about them, and
+// the document can be written.
+func TestTouching(t *testing.T) {
+	for _, text := range []string{
+		`branches = ["x + z/2", "-x + z/2"]
+combine = "max"
+ball = { center = ["1", "0", "0"], radius = "1" }
+`, `branches = ["-(x^2 + y^2)/(2 (z + 3))", "0"]
+combine = "max"
+box = { x = ["-2", "2"], y = ["-2", "2"], z = ["-2", "2"] }
+`} {
+		r := one(t, layeredHead+text)
+		require.NotNil(t, r.Energy, r.Reason)
+		assert.Zero(t, *r.Energy)
+		assert.Less(t, *r.Error, 1e-12)
+	}
+	_, err := json.Marshal(creases.Pair{Error: math.Inf(1)})
+	assert.NoError(t, err)
+	text, err := json.Marshal(creases.Pair{Branches: [2]int{1, 2}, Energy: 2, Error: 0.5})
+	require.NoError(t, err)
+	assert.JSONEq(t, `{"branches": [1, 2], "energy": 2, "error": 0.5, "area": 0}`, string(text))
+}
