@@ -75,3 +75,31 @@ func TestWellsWithRoots(t *testing.T) {
 		assert.Contains(t, c.want, rec.Verdict, "%s: %s: %+v", c.modulo, c.states, rec)
 	}
 }
+
+// A factor that may vanish does not leave a root alone: where it does, the
+// rest under the root may be negative.
+func TestRootsOfProductsThatVanish(t *testing.T) {
+	for _, c := range []struct {
+		assume, states string
+		holds          bool
+	}{
+		{"u_x >= 0", "u_y + sqrt(u_x u_y) >= 0", false},
+		{"u_x >= 0", "u_y >= 0*sqrt(u_x u_y)", false},
+		{"u_x >= 0", "u_y >= 0*sqrt(u_x^3 u_y)", false},
+		{"u_x >= 0", "u_y >= 0*(u_x u_y)^(1/3)", false},
+		{"u_x >= 0", "u_y >= 0*(u_x u_y)^(1/4)", false},
+		{"u_x >= 0", "abs(u_y) = u_y + 0*sqrt(u_x u_y)", false},
+		{"u_x >= 0", "u_y + a >= 0*sqrt(u_x u_y + a u_x)", false},
+		{"u_x <= 0", "u_y <= 0*sqrt(u_x u_y)", false},
+		{"eps > 0", "u_y >= 0*sqrt(abs(u_x) u_y)", false},
+		{"eps > 0", "u_y >= 0*sqrt(norm(u_x, a) u_y)", false},
+		{"u_x > 0", "u_y + sqrt(u_x u_y) >= 0", true},
+		{"u_x > 0", "abs(u_y) = u_y + 0*sqrt(u_x u_y)", true},
+		{"u_x >= 0", "sqrt(u_x u_y) = sqrt(u_x) sqrt(u_y)", true}, // the right side asks for u_y >= 0
+		{"u_x >= 0", "sqrt(u_x u_y^2) = sqrt(u_x) abs(u_y)", true},
+	} {
+		rec, err := decided(t, state(t, plane, c.states, assuming(t, c.assume)))
+		require.NoError(t, err)
+		assert.Equal(t, c.holds, rec.Verdict == identity.Proved, "%s: %s: %+v", c.assume, c.states, rec)
+	}
+}

@@ -221,7 +221,7 @@ func (r *Ring) rootPoly(p algebra.Poly, q int, sure bool) (algebra.Fraction, err
 	if !ok {
 		return out, prim.Err()
 	}
-	squares := false // were taken out that may vanish
+	vanish := false // what was taken out may
 	for _, pw := range mono.Powers() {
 		g, left, err := r.rootPower(pw, q)
 		if err != nil {
@@ -229,7 +229,8 @@ func (r *Ring) rootPoly(p algebra.Poly, q int, sure bool) (algebra.Fraction, err
 		}
 		out = out.Mul(g)
 		rest = rest.Mul(algebra.Variable(pw.Var).Pow(left))
-		squares = squares || left < pw.Exp && !r.nonNegativeVar(pw.Var)
+		sign := r.symbols[pw.Var].Sign
+		vanish = vanish || left < pw.Exp && sign != Positive && sign != Negative
 	}
 	if k, ok := rest.IsConst(); ok && k.IsOne() {
 		return r.Reduce(out)
@@ -248,8 +249,8 @@ func (r *Ring) rootPoly(p algebra.Poly, q int, sure bool) (algebra.Fraction, err
 			return r.Mul(out, a)
 		}
 	}
-	if squares && !sure && !r.visiblyNonNegativePoly(rest) {
-		// Where they vanish the rest may be negative: they stay.
+	if vanish && !sure && !r.visiblyNonNegativePoly(rest) {
+		// Where that vanishes the rest may be negative: it stays.
 		if out, err = r.rootRat(c, q); err != nil {
 			return out, err
 		}
