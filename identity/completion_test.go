@@ -53,7 +53,7 @@ func TestSystemsAreCompleted(t *testing.T) {
 		{pair, "v_yy = 0", []string{"u_x + v_y", "v_x + u_y", "u_y - v_x"}, []identity.Verdict{proved}},
 		{pair, "v_y = 0", []string{"u_x + v_y", "v_x + u_y", "u_y - v_x"}, []identity.Verdict{refuted}},
 		{plane, "u = 0", []string{"u_x - 1", "u_x - 2"}, []identity.Verdict{open}},
-		{plane, "u_x = 0", []string{"u_x - a", "u_x - b"}, []identity.Verdict{open}}, // true for no a, b but a = b
+		{plane, "u_x = 0", []string{"u_x - a", "u_x - b"}, []identity.Verdict{refuted}}, // at a = b = u_x
 		{plane, "u_x = a", []string{"u_x - a y", "u_y - b x"}, []identity.Verdict{open}},
 		{pair, "v_x = 2 u u_x", []string{"v - u^2"}, []identity.Verdict{proved}},
 		{pair, "v_x = u u_x", []string{"v - u^2"}, []identity.Verdict{refuted}},

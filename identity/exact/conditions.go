@@ -27,7 +27,8 @@ func (d *Problem) rest() {
 			equations = append(equations, c.Value.Num())
 		}
 	}
-	if len(equations) > 0 {
+	equations = slices.Concat(equations, d.equations, d.Wells)
+	if len(equations) > 0 && len(d.Ring.Conditions()) > 0 {
 		equations = d.completed(equations)
 	}
 	for _, c := range d.Ring.Conditions() {
@@ -46,7 +47,7 @@ func (d *Problem) rest() {
 			continue
 		}
 		if d.excluded(c, equations) {
-			d.unfounded("the claim rests on " + text + ", which the assumptions exclude")
+			d.unfounded("the claim rests on " + text + ", which the assumptions or equations exclude")
 			return
 		}
 		if d.Rec.Verdict == claim.Proved && !d.somewhere(c) {
@@ -70,6 +71,12 @@ func (d *Problem) excluded(c jet.Condition, equations []algebra.Poly) bool {
 		return false
 	}
 	p := c.Value.Num()
+	if len(d.Wells) > 0 {
+		var err error
+		if p, err = d.InTraces(p); err != nil {
+			return false
+		}
+	}
 	for range 3 {
 		_, p = p.DivMod(equations, algebra.GradedLex)
 		if p = d.Ring.ReducePoly(p); p.IsZero() && p.Err() == nil {

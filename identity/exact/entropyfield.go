@@ -130,8 +130,15 @@ func (d *Problem) Divide(sym, r algebra.Fraction) (algebra.Fraction, bool, error
 func (d *Problem) vanishesOnWell(sym, r algebra.Fraction) (bool, error) {
 	rad := d.zeroSet(r.Num()) // has the same zeros
 	num := algebra.FromPoly(rad)
-	if d.Ring.VisiblyPositive(num) || d.Ring.VisiblyPositive(num.Neg()) {
+	zeros := d.realZeros(rad)
+	if empty(zeros) || d.Ring.VisiblyPositive(num) || d.Ring.VisiblyPositive(num.Neg()) {
 		return false, nil // no real zeros at all
+	}
+	if len(zeros) > 1 {
+		_, rem := sym.Num().DivMod(d.completed(zeros), algebra.GradedLex)
+		if rem = d.Ring.ReducePoly(rem); rem.IsZero() && rem.Err() == nil {
+			return false, nil
+		}
 	}
 	if _, ok, err := d.Divide(sym, num); ok || err != nil {
 		return err != nil, err
@@ -150,7 +157,7 @@ func (d *Problem) vanishesOnWell(sym, r algebra.Fraction) (bool, error) {
 			return false, nil
 		}
 	}
-	d.Ideal = []algebra.Poly{rad}
+	d.Ideal = zeros
 	d.Rec.Remainder = Short(d.Ring.Format(sym))
 	pts := d.Points(sym)
 	for range witnessTries {

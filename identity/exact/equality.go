@@ -103,8 +103,8 @@ func (d *Problem) vanishes(g, left, right algebra.Fraction) (bool, error) {
 }
 
 // onIdeal is the remainder of g by the generators of the ideal, or by the
-// wells on both sides of a jump. The wells hold separate indeterminates, so
-// that with leading terms in each they form a Gröbner basis.
+// wells on both sides of a jump. One polynomial for each side, in separate
+// indeterminates, form a Gröbner basis as they stand; more are completed.
 func (d *Problem) onIdeal(g algebra.Fraction) (algebra.Fraction, error) {
 	gens := d.Wells
 	num := g.Num()
@@ -125,7 +125,7 @@ func (d *Problem) onIdeal(g algebra.Fraction) (algebra.Fraction, error) {
 	num = d.Ring.ReducePoly(num)
 	_, rem := num.DivMod(gens, algebra.GradedLex)
 	rem = d.Ring.ReducePoly(rem)
-	if len(d.Ideal) > 0 && !rem.IsZero() && rem.Err() == nil {
+	if (len(d.Ideal) > 0 || len(d.Wells) > 2) && !rem.IsZero() && rem.Err() == nil {
 		// The division depends on the order of the generators until they are
 		// completed to a Gröbner basis.
 		if len(d.basis) == 0 || d.basisOf != len(gens) {

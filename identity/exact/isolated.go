@@ -14,13 +14,17 @@ import (
 // isolated is the precision of the enclosures of algebraic points.
 var isolated = enclosure.Context{Prec: 320}
 
+// maxIsolation bounds the points, and the roots isolated for them, that are
+// looked at.
+const maxIsolation = 400
+
 // isolatedWitness refutes an equation at a real algebraic point: some jets are
 // rational, some are simple roots isolated by a change of sign, and some follow
 // linearly.
 func (d *Problem) isolatedWitness(g, left, right algebra.Fraction) bool {
-	return d.isolate(d.Points(g, left, right), left, right, func(at jet.Point, roots map[algebra.Var]enclosure.Interval) bool {
+	return d.isolate(d.Points(g, left, right), left, right, func(at jet.Point, roots map[algebra.Var]enclosure.Interval) (fails, told bool) {
 		s, ok := d.Ring.EncloseAt(g, at, roots, 256).Sign()
-		return ok && s != 0
+		return ok && s != 0, ok
 	})
 }
 
@@ -29,14 +33,15 @@ func (d *Problem) isolatedWitness(g, left, right algebra.Fraction) bool {
 // enclosures, and the point is certainly one that the claim is about. It
 // reports whether it did, and does nothing where there are no equations.
 func (d *Problem) RefuteIsolated(g *Gap) bool {
-	return d.isolate(d.GapPoints(g), g.Left, g.Right, func(at jet.Point, roots map[algebra.Var]enclosure.Interval) bool {
+	return d.isolate(d.GapPoints(g), g.Left, g.Right, func(at jet.Point, roots map[algebra.Var]enclosure.Interval) (fails, told bool) {
 		s, ok := d.Ring.EncloseAt(g.Value, at, roots, 256).Sign()
-		return ok && s < 0
+		return ok && s < 0, ok
 	})
 }
 
-// isolate looks for an admissible algebraic point at which the sides fail.
-func (d *Problem) isolate(pts *Points, left, right algebra.Fraction, fails func(jet.Point, map[algebra.Var]enclosure.Interval) bool) bool {
+// isolate looks for an admissible algebraic point at which the sides fail. The
+// test of a point says whether they do, and whether that could be told.
+func (d *Problem) isolate(pts *Points, left, right algebra.Fraction, test func(jet.Point, map[algebra.Var]enclosure.Interval) (fails, told bool)) bool {
 	gens := d.Ideal
 	if len(d.Wells) > 0 {
 		gens = d.Wells
@@ -44,12 +49,20 @@ func (d *Problem) isolate(pts *Points, left, right algebra.Fraction, fails func(
 	if len(gens) == 0 {
 		return false
 	}
-	for range witnessTries {
+	same := 0
+	for work := 0; work < maxIsolation && same < maxSame; {
 		if d.Ctx.Err() != nil {
 			return false
 		}
 		at, roots, ok := pts.drawIsolated(gens)
-		if !ok || !pts.admissibleIsolated(at, roots) || !fails(at, roots) {
+		if work += 1 + len(roots); !ok || !pts.admissibleIsolated(at, roots) {
+			continue
+		}
+		fails, told := test(at, roots)
+		if !told {
+			same++
+		}
+		if !fails {
 			continue
 		}
 		if d.Claim.Jump {
@@ -83,13 +96,16 @@ func (d *Problem) isolate(pts *Points, left, right algebra.Fraction, fails func(
 // all generators vanish.
 func (p *Points) drawIsolated(gens []algebra.Poly) (jet.Point, map[algebra.Var]enclosure.Interval, bool) {
 	at := jet.Point{}
+	flat := p.flat && p.rng.IntN(2) == 0
 	for _, v := range p.Free {
 		at[v] = p.value(v, p.rng.IntN(2) == 0)
+		p.flatten(at, v, flat)
 	}
 	for _, g := range gens { // traces are drawn themselves
 		for _, v := range p.d.Ring.Support(algebra.FromPoly(g)) {
 			if _, ok := at[v]; !ok && p.d.Ring.Symbol(v).Kind <= jet.Derivative {
 				at[v] = p.value(v, false)
+				p.flatten(at, v, flat)
 			}
 		}
 	}
@@ -244,8 +260,8 @@ func (p *Points) signChange(h algebra.Poly, v algebra.Var) (lo, hi algebra.Rat, 
 		return y.Sign()
 	}
 	grid := []algebra.Rat{
-		algebra.Int(-100), algebra.Int(-10), algebra.Int(-3), algebra.Frac64(-3, 2), algebra.Int(-1), algebra.Frac64(-1, 3), {},
-		algebra.Frac64(1, 3), algebra.Int(1), algebra.Frac64(3, 2), algebra.Int(3), algebra.Int(10), algebra.Int(100),
+		algebra.Int(-1_000_000), algebra.Int(-10_000), algebra.Int(-100), algebra.Int(-10), algebra.Int(-3), algebra.Frac64(-3, 2), algebra.Int(-1), algebra.Frac64(-1, 3), {},
+		algebra.Frac64(1, 3), algebra.Int(1), algebra.Frac64(3, 2), algebra.Int(3), algebra.Int(10), algebra.Int(100), algebra.Int(10_000), algebra.Int(1_000_000),
 	}
 	var found []int
 	for i := range grid[1:] {

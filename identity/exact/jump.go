@@ -51,8 +51,14 @@ func (d *Problem) atJump(restricted []*solved) error {
 			return nil
 		}
 	}
-	r = algebra.FromPoly(d.zeroSet(r.Num())) // has the same zeros
+	zeros := d.realZeros(d.zeroSet(r.Num()))
+	if empty(zeros) {
+		d.Open("the residual has no real zeros: there is no well")
+		return nil
+	}
+	r = algebra.FromPoly(zeros[0]) // has the same zeros, if it is alone
 	well, isSolved := d.solve(r, nil)
+	isSolved = isSolved && len(zeros) == 1
 	if !isSolved && len(d.Ring.Kernels(r)) > 0 {
 		d.Open("the residual is not polynomial in the gradient")
 		return nil
@@ -88,17 +94,19 @@ func (d *Problem) atJump(restricted []*solved) error {
 		return nil
 	}
 	for _, side := range []jet.Side{jet.PlusSide, jet.MinusSide} {
-		m := map[algebra.Var]algebra.Poly{}
-		for _, v := range r.Num().Vars() {
-			if s := d.Ring.Symbol(v); s.Kind == jet.Derivative {
-				w, err := d.Ring.JetVar(s.Place, s.Index, side)
-				if err != nil {
-					return err
+		for _, z := range zeros {
+			m := map[algebra.Var]algebra.Poly{}
+			for _, v := range z.Vars() {
+				if s := d.Ring.Symbol(v); s.Kind == jet.Derivative {
+					w, err := d.Ring.JetVar(s.Place, s.Index, side)
+					if err != nil {
+						return err
+					}
+					m[v] = algebra.Variable(w)
 				}
-				m[v] = algebra.Variable(w)
 			}
+			d.Wells = append(d.Wells, z.SubstMany(m))
 		}
-		d.Wells = append(d.Wells, r.Num().SubstMany(m))
 	}
 	return nil
 }

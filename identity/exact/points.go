@@ -20,6 +20,7 @@ type Points struct {
 	Fixed  jet.Point     // values that are not drawn
 	rng    *rand.Rand
 	drawn  int
+	flat   bool // derivatives of higher order are tried as zero
 
 	lattice     []latticeZeros // of whole generators, found so far
 	latticeWork int
@@ -106,6 +107,7 @@ func (d *Problem) Points(fs ...algebra.Fraction) *Points {
 		return s.Kind == jet.Derivative && (s.Side == jet.PlusSide || s.Side == jet.MinusSide)
 	})
 	slices.Sort(p.Free)
+	p.flat = len(d.equations) > 0 && d.ofGradients()
 	return p
 }
 
@@ -175,8 +177,10 @@ func (p *Points) Draw() jet.Point {
 	p.drawn++
 	wide := p.drawn > 60 && p.drawn%2 == 0
 	at := jet.Point{}
+	flat := p.flat && p.rng.IntN(4) == 0
 	for _, v := range p.Free {
 		at[v] = p.value(v, wide)
+		p.flatten(at, v, flat)
 	}
 	for _, c := range p.Angles {
 		t := triples[p.rng.IntN(len(triples))]
@@ -199,6 +203,13 @@ func (p *Points) Draw() jet.Point {
 		}
 	}
 	return at
+}
+
+// flatten makes a derivative of order two or more zero.
+func (p *Points) flatten(at jet.Point, v algebra.Var, flat bool) {
+	if s := p.d.Ring.Symbol(v); flat && s.Kind == jet.Derivative && s.Index.Order() > 1 {
+		at[v] = algebra.Rat{}
+	}
 }
 
 // Admissible reports whether the assumptions and the conditions of the ring

@@ -8,6 +8,7 @@ import (
 	"creaseproof/entropy/enclosure"
 	"creaseproof/entropy/formula"
 	"creaseproof/entropy/jet"
+	"creaseproof/identity/claim"
 )
 
 // A claim modulo equations is about jets at which the equations and all their
@@ -15,7 +16,9 @@ import (
 // refutation is a jet of finite order, and counts only where that jet extends
 // to all orders: at it the derivatives of higher order must be solvable for
 // the jets of higher order (formal integrability; Seiler, Involution, Springer
-// 2010, chapter 2).
+// 2010, chapter 2). Where the equations are about the gradient alone, a jet
+// whose derivatives of order two and more vanish extends without more: an affine
+// function has it, and satisfies the equations everywhere.
 
 // radical is the product of the square-free factors of p: it has the same
 // zeros, and so has the system of its derivatives.
@@ -43,7 +46,7 @@ func radical(p algebra.Poly) algebra.Poly {
 // lower order are. That is so where the matrix of the σ_k has full rank at
 // one ξ. A restriction of the jets besides makes this uncertain.
 func (d *Problem) extends(at jet.Point) bool {
-	if len(d.equations) == 0 {
+	if len(d.equations) == 0 || d.affine(at, nil) {
 		return true
 	}
 	if len(d.Claim.Restrict) > 0 {
@@ -64,6 +67,39 @@ func (d *Problem) extends(at jet.Point) bool {
 		}
 	}
 	return false
+}
+
+// ofGradients reports whether the equations and restrictions are about first
+// derivatives and constants only.
+func (d *Problem) ofGradients() bool {
+	if slices.ContainsFunc(d.Claim.Restrict, func(r claim.Restriction) bool { return r.Index.Order() != 1 }) {
+		return false
+	}
+	return !slices.ContainsFunc(d.equations, func(p algebra.Poly) bool {
+		return slices.ContainsFunc(d.Ring.Support(algebra.FromPoly(p)), func(v algebra.Var) bool {
+			s := d.Ring.Symbol(v)
+			return s.Kind == jet.Coordinate || s.Kind == jet.Derivative && s.Index.Order() != 1
+		})
+	})
+}
+
+// affine reports whether affine functions have the jet at a point of the
+// equations, and satisfy these.
+func (d *Problem) affine(at jet.Point, roots map[algebra.Var]enclosure.Interval) bool {
+	if !d.ofGradients() {
+		return false
+	}
+	for v, x := range at {
+		if s := d.Ring.Symbol(v); s.Kind == jet.Derivative && s.Index.Order() > 1 && !x.IsZero() {
+			return false
+		}
+	}
+	for v := range roots {
+		if s := d.Ring.Symbol(v); s.Kind == jet.Derivative && s.Index.Order() > 1 {
+			return false
+		}
+	}
+	return true
 }
 
 // symbols are the rows σ_k at a jet and a covector ξ, those of equations in
@@ -113,7 +149,7 @@ func (d *Problem) symbols(at jet.Point, xi []algebra.Rat) ([][]algebra.Rat, bool
 // extendsIsolated is extends for a jet known by enclosures: for one equation,
 // some coefficient of its symbol is certainly not zero.
 func (d *Problem) extendsIsolated(at jet.Point, roots map[algebra.Var]enclosure.Interval) bool {
-	if len(d.equations) == 0 {
+	if len(d.equations) == 0 || d.affine(at, roots) {
 		return true
 	}
 	if len(d.equations) > 1 || len(d.Claim.Restrict) > 0 {

@@ -61,8 +61,19 @@ func (d *Problem) rewrite() error {
 		if c, ok := f.IsConst(); ok {
 			return &entropy.Error{At: m.At(), Err: fmt.Errorf("the equation is %s = 0 on the jets that are looked at: there are none", c)}
 		}
-		all = append(all, d.zeroSet(f.Num()))
-		queue = append(queue, &equation{node: m})
+		zeros := d.realZeros(d.zeroSet(f.Num()))
+		all = append(all, zeros...)
+		switch {
+		case empty(zeros):
+			d.Open("an equation has no real zeros: no jet satisfies it")
+			return nil
+		case len(zeros) == 1:
+			queue = append(queue, &equation{node: m})
+		default:
+			for _, z := range zeros {
+				queue = append(queue, &equation{poly: z})
+			}
+		}
 	}
 	eqs, ok, err := d.solveAll(queue, restricted)
 	if err != nil || d.Rec.Verdict != "" {
