@@ -117,3 +117,22 @@ func TestMeshThatIsRefused(t *testing.T) {
 	_, err = creases.New(c.Setting, "case.toml").Evaluate(t.Context(), &c.File.Surfaces[0], creases.Options{})
 	assert.ErrorContains(t, err, "no regular file")
 }
+
+// The error of a density that is not smooth, or not bounded, stands.
+func TestMeshRoughDensity(t *testing.T) {
+	for _, test := range []struct {
+		density string
+		want    float64
+	}{
+		{"1/norm(y, z)", 2 * math.Log(1+math.Sqrt2)},
+		{"1/sqrt(y)", 2},
+		{"abs(y - 1/3)", 5.0 / 18},
+		{"sqrt(y)", 2.0 / 3},
+	} {
+		r, err := onMesh(t, "wall.obj", quad, fmt.Sprintf("density = %q\n", test.density))
+		require.NoError(t, err)
+		require.NotNil(t, r[0].Energy, r[0].Reason)
+		assert.LessOrEqual(t, math.Abs(*r[0].Energy-test.want), *r[0].Error, test.density)
+		assert.Less(t, *r[0].Error, 0.03, test.density)
+	}
+}

@@ -134,21 +134,30 @@ const deepest = 24
 // 6 and 4 on a smooth integrand it falls by 128.
 const slowest = 128
 
+// mostDoubt bounds the factor by which the differences of the rules are
+// enlarged where the division of a triangle changed its share by more than a
+// quarter of that difference, as it does where the integrand is not smooth: the
+// change is much less where the difference is that of a rule of lower degree.
+const mostDoubt = 1000
+
 // divide divides a triangle where its error is too large, one generation after
 // another, until its share of the evaluations is used up.
 func (w *worker) divide(t [3][3]float64, area float64) (p part, err error) {
 	type piece struct {
-		t [3][3]float64
-		p part
+		t     [3][3]float64
+		p     part
+		raw   float64 // difference of the rules
+		doubt float64 // factor on it
 	}
 	one, err := w.part(t, area)
 	if err != nil {
 		return p, err
 	}
+	raw := one.differ
 	one.differ = math.Max(one.differ, w.j.parts[w.triangle].differ)
 	nodes := len(w.j.main) + len(w.j.lower)
 	used := nodes
-	now := []piece{{t, one}}
+	now := []piece{{t, one, raw, 1}}
 	for range deepest {
 		if w.j.ctx.Err() != nil {
 			return p, context.Cause(w.j.ctx)
@@ -168,13 +177,24 @@ func (w *worker) divide(t [3][3]float64, area float64) (p part, err error) {
 		area /= 4
 		next := make([]piece, 0, 4*len(now))
 		for _, q := range now {
+			from := len(next)
+			change := q.p.energy
 			for _, t := range quarter(q.t) {
 				r, err := w.part(t, area)
 				if err != nil {
 					return p, err
 				}
-				r.differ = math.Max(r.differ, q.p.differ/slowest)
-				next = append(next, piece{t, r})
+				change -= r.energy
+				next = append(next, piece{t, r, r.differ, 1})
+			}
+			doubt := math.Max(1, q.doubt/4)
+			if change = math.Abs(change); change > 4*q.p.noise {
+				doubt = math.Max(doubt, math.Min(mostDoubt, 4*change/q.raw))
+			}
+			for i := range next[from:] {
+				r := &next[from+i]
+				r.doubt = doubt
+				r.p.differ = math.Max(doubt*r.raw, q.p.differ/slowest)
 			}
 		}
 		used += 4 * nodes * len(now)
