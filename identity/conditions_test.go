@@ -202,3 +202,23 @@ func TestExponentialsOfNumbers(t *testing.T) {
 		assert.Equal(t, want, rec.Verdict, "%s: %+v", states, rec)
 	}
 }
+
+// A condition that singles out a direction of the plane is not turned with the
+// frame: at angle 0 it would be one on the derivatives along the axes.
+func TestConditionsDoNotTurn(t *testing.T) {
+	for _, c := range []struct {
+		states string
+		want   identity.Verdict
+	}{
+		{"u_xi >= 0*sqrt(u_x)", identity.Refuted},
+		{"u_xi >= 0/sqrt(u_x)", identity.Refuted},
+		{"u_xi^3 >= 0*sqrt(u_x)", identity.Refuted},
+		{"u_xi >= 0*log(u_x)", identity.Refuted},
+		{"u_xi + 1 >= 0*sqrt(u_x + 1)", identity.Refuted},
+		{"u_xi^2 <= (u_x^2 + u_y^2) (1 + 0*sqrt(u_x))", identity.Proved},
+		{"u_xi^2/(u_x^2 + u_y^2) <= 1", identity.Proved},
+	} {
+		rec := decide(t, state(t, planarAngles, c.states))
+		assert.Equal(t, c.want, rec.Verdict, "%s: %+v", c.states, rec)
+	}
+}

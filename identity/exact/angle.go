@@ -34,31 +34,44 @@ func (d *Problem) RemoveAngle(g *Gap) error {
 		return nil
 	}
 	theta := d.Ring.ConstantVar(f.Angle)
-	var invariant []algebra.Poly // radicands that must not depend on the angle
-	for _, k := range d.Ring.Kernels(algebra.FromPoly(g.Poly)) {
-		if k == cos || k == sin {
-			continue
-		}
-		s := d.Ring.Symbol(k)
-		varies := slices.ContainsFunc(d.Ring.Support(s.Arg), func(v algebra.Var) bool {
+	varies := func(f algebra.Fraction) bool {
+		return slices.ContainsFunc(d.Ring.Support(f), func(v algebra.Var) bool {
 			return v == theta || d.Ring.Symbol(v).Kind == jet.Derivative || d.Ring.Symbol(v).Kind == jet.Coordinate
 		})
+	}
+	turning := []algebra.Poly{g.Poly} // to be the same at all angles, along the axes
+	for _, c := range d.Ring.Conditions() {
+		if !varies(c.Value) {
+			continue
+		}
+		turning = append(turning, c.Value.Num())
+		for _, f := range c.Value.DenFactors() {
+			turning = append(turning, f.Base)
+		}
+	}
+	// Radicands must not depend on the angle. That of any root of the claim is
+	// known to be non-negative, in the gap or not.
+	invariant := slices.Clone(d.Wells)
+	for k := range algebra.Var(d.Ring.Len()) {
+		s := d.Ring.Symbol(k)
 		switch {
-		case !varies:
+		case s.Kind < jet.Cosine || k == cos || k == sin || !varies(s.Arg):
 		case s.Kind == jet.Root:
 			invariant = append(invariant, s.Arg.Num())
-		default:
+		case slices.ContainsFunc(turning, func(p algebra.Poly) bool { return slices.Contains(d.Ring.Kernels(algebra.FromPoly(p)), k) }):
 			return nil
 		}
 	}
-	invariant = append(invariant, d.Wells...)
-	if g.Poly.Has(theta) || d.holdsPlane(g.Poly, f.Plane) || !d.assumptionsTurn(f.Plane) {
+	if g.Poly.Has(theta) || !d.assumptionsTurn(f.Plane) {
 		return nil
 	}
 	along := map[algebra.Var]algebra.Poly{}
 	names := map[algebra.Var]string{}
 	var vars []algebra.Var
-	for _, p := range append(invariant[:len(invariant):len(invariant)], g.Poly) {
+	for _, p := range slices.Concat(invariant, turning) {
+		if d.holdsPlane(p, f.Plane) {
+			return nil
+		}
 		for _, v := range p.Vars() {
 			if !slices.Contains(vars, v) {
 				vars = append(vars, v)
@@ -69,6 +82,9 @@ func (d *Problem) RemoveAngle(g *Gap) error {
 		s := d.Ring.Symbol(v)
 		if s.Kind != jet.Derivative || s.Index[f.Plane[0]] == 0 && s.Index[f.Plane[1]] == 0 {
 			continue
+		}
+		if s.Sign != jet.AnySign {
+			return nil // a sign that is known along the coordinates
 		}
 		p, err := d.alongAxes(v, f.Plane, cos, sin)
 		if err != nil {
@@ -84,17 +100,21 @@ func (d *Problem) RemoveAngle(g *Gap) error {
 			return nil
 		}
 	}
-	rotated := d.Ring.ReducePoly(g.Poly.SubstMany(along))
-	at0 := g.Poly.EvalPartial(map[algebra.Var]algebra.Rat{cos: algebra.Int(1), sin: {}})
-	if err := rotated.Err(); err != nil || !rotated.Equal(at0) {
-		return nil
+	at0 := func(p algebra.Poly) algebra.Poly {
+		return p.EvalPartial(map[algebra.Var]algebra.Rat{cos: algebra.Int(1), sin: {}})
+	}
+	for _, p := range turning {
+		rotated := d.Ring.ReducePoly(p.SubstMany(along))
+		if err := rotated.Err(); err != nil || !rotated.Equal(at0(p)) {
+			return nil
+		}
 	}
 	for _, v := range vars {
 		if s := d.Ring.Symbol(v); s.Kind == jet.Derivative {
 			names[v] = d.axisName(v, f.Plane, f.Axes)
 		}
 	}
-	g.Poly, g.Turned = at0, &Turned{cos, sin, names}
+	g.Poly, g.Turned = at0(g.Poly), &Turned{cos, sin, names}
 	return nil
 }
 
