@@ -20,10 +20,11 @@ type Limit struct {
 	// position of the gradient between theirs, a formula in s, the distance
 	// over eps. Nil is the optimal one.
 	Plus, Minus, Profile *source.Text
-	// Branches and Combine ("max" or "min") are those of a front or of a
-	// mollified function, and Width is that of the kernel over eps.
+	// Branches and Combine are those of a front or of a mollified function:
+	// "max", "min" or, for the latter, a nested expression in the numbers of the
+	// branches. Width is the radius of the kernel over eps.
 	Branches []source.Text
-	Combine  string
+	Combine  *source.Text
 	Width    *source.Text
 
 	// One of Box, Ball and Cylinder is set, or Region: the image of a box of
@@ -72,7 +73,7 @@ func (d *decoder) limit(v *value) Limit {
 		{"branches", func(e *entry) {
 			l.Branches = d.vector(e.value, "branches", 2, mostLimitBranches, `branches = ["1 - x", "1 + x"]`)
 		}},
-		{"combine", func(e *entry) { l.Combine = d.word(e.value, "combine", "max", "min") }},
+		{"combine", func(e *entry) { l.Combine = d.combine(e.value) }},
 		{"width", func(e *entry) { l.Width = d.optional(e.value, "width") }},
 		{"box", func(e *entry) { l.Box = d.intervals(e.value, "box", isName, `box = { x = ["-1", "1"] }`) }},
 		{"ball", func(e *entry) { l.Ball = d.ball(e.value) }},

@@ -1,7 +1,6 @@
 package creases
 
 import (
-	"errors"
 	"fmt"
 	"math/big"
 	"slices"
@@ -68,13 +67,8 @@ func (s *Surface) readImplicit() error {
 	if src.Combine == nil {
 		return fault(s.place, `add combine = "max" or combine = "min"`, "the branches are not combined")
 	}
-	h.tree, err = branches.Parse(src.Combine.S, len(h.branches))
-	var e *branches.SyntaxError
-	if errors.As(err, &e) {
-		return source.NewError(*src.Combine, len([]rune(src.Combine.S[:min(e.Offset, len(src.Combine.S))])), e.Problem, e.Advice)
-	}
-	if err != nil {
-		return placed(*src.Combine, err)
+	if h.tree, err = branches.Read(*src.Combine, len(h.branches)); err != nil {
+		return err
 	}
 	return s.readDomain()
 }

@@ -41,8 +41,11 @@ func (r *reader) problem() (*limit.Problem, error) {
 	}
 	p := &limit.Problem{Domain: d, Branches: len(texts)}
 	if l.Approximation != "profile" {
-		if p.Combine, err = branches.Parse(l.Combine, len(texts)); err != nil {
+		if p.Combine, err = branches.Read(*l.Combine, len(texts)); err != nil {
 			return nil, err
+		}
+		if l.Approximation == "front" && !p.Combine.Flat() {
+			return nil, r.fault(*l.Combine, `write combine = "max" or "min", or approximation = "mollified"`, "a front of a nested combination")
 		}
 	}
 	if err := r.branches(p, texts); err != nil {
@@ -69,7 +72,7 @@ func (r *reader) problem() (*limit.Problem, error) {
 	}
 	switch l.Approximation {
 	case "front":
-		p.Smoothing = &limit.Front{Min: l.Combine == "min"}
+		p.Smoothing = &limit.Front{Min: p.Combine.Op == branches.Min}
 	case "mollified":
 		m := &limit.Mollifier{}
 		if l.Width != nil {
@@ -112,8 +115,8 @@ func (r *reader) branches(p *limit.Problem, texts []source.Text) error {
 	n := r.n
 	inputs := r.coordinates()
 	type compiled struct {
-		value, jets     *program.Program
-		wsValue, wsJets *program.Workspace
+		value, jets, first       *program.Program // first has the gradient
+		wsValue, wsJets, wsFirst *program.Workspace
 	}
 	var list []compiled
 	out := make([]float64, 1+n+n*(n+1)/2)
@@ -130,7 +133,20 @@ func (r *reader) branches(p *limit.Problem, texts []source.Text) error {
 		if err != nil {
 			return err
 		}
-		list = append(list, compiled{value, jets, value.NewWorkspace(), jets.NewWorkspace()})
+		upTo := make([]int, 1+n)
+		for k := range upTo {
+			upTo[k] = k
+		}
+		first, err := jets.Select(upTo...)
+		if err != nil {
+			return err
+		}
+		list = append(list, compiled{value, jets, first, value.NewWorkspace(), jets.NewWorkspace(), first.NewWorkspace()})
+		affine, err := r.affine(t, node)
+		if err != nil {
+			return err
+		}
+		p.Affine = append(p.Affine, affine)
 		if err := r.onWell(t, node, jets, &p.Domain); err != nil {
 			return err
 		}
@@ -139,6 +155,12 @@ func (r *reader) branches(p *limit.Problem, texts []source.Text) error {
 		for i := range list {
 			list[i].value.Eval(list[i].wsValue, x, v[i:i+1])
 		}
+	}
+	outs := make([][]float64, 1+n)
+	p.Gradients = func(i int, x [][]float64, u []float64, g [][]float64) {
+		outs[0] = u
+		copy(outs[1:], g)
+		list[i].first.EvalBlock(list[i].wsFirst, x, outs, len(u))
 	}
 	p.Jets = func(x []float64, j []limit.Jet) {
 		for i := range list {
@@ -311,9 +333,9 @@ func (r *reader) bent() (list []int, err error) {
 // wall makes the transition between two affine branches.
 func (r *reader) wall(p *limit.Problem) (limit.Smoothing, error) {
 	l := r.l
-	for _, t := range []source.Text{*l.Plus, *l.Minus} {
-		if err := r.affine(t); err != nil {
-			return nil, err
+	for i, t := range []source.Text{*l.Plus, *l.Minus} {
+		if !p.Affine[i] {
+			return nil, r.fault(t, `use approximation = "front" or "mollified"`, "a profile goes across a plane, and this branch is not affine")
 		}
 	}
 	if l.Profile != nil {
@@ -374,32 +396,28 @@ func (r *reader) residual() (func(grad []float64) float64, error) {
 	}, nil
 }
 
-// affine refuses a branch that has second derivatives.
-func (r *reader) affine(t source.Text) error {
-	node, err := r.scope.ParseExpr(t)
-	if err != nil {
-		return err
-	}
+// affine reports whether a branch certainly has no second derivatives.
+func (r *reader) affine(t source.Text, node formula.Node) (bool, error) {
 	in, ex, err := r.set.NewExact(r.ctx)
 	if err != nil {
-		return err
+		return false, err
 	}
 	x, err := in.Scalar(node)
 	if err != nil {
-		return r.c.Place(err, source.Pos{Line: t.Line, Col: t.Col})
+		return false, r.c.Place(err, source.Pos{Line: t.Line, Col: t.Col})
 	}
 	for i := range r.n {
-		for k := range r.n {
+		for k := range i + 1 {
 			d, err := ex.Total(x, i)
 			if err == nil {
 				d, err = ex.Total(d, k)
 			}
 			if err != nil || !d.IsZero() {
-				return r.fault(t, `use approximation = "front" or "mollified"`, "a profile goes across a plane, and this branch is not affine")
+				return false, r.ctx.Err()
 			}
 		}
 	}
-	return nil
+	return true, nil
 }
 
 // givenProfile compiles a profile in s, the distance over eps.

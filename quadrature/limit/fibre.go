@@ -13,6 +13,7 @@ type crossing struct {
 	s             float64
 	before, after int
 	slope         float64 // of the difference of the two branches along the fibre
+	steep         float64 // its greatest slope, where the smoothing is inexact
 }
 
 const (
@@ -172,7 +173,17 @@ func (w *walk) between(k int, from, to float64, first, next, left int) {
 	}
 	h := 1e-4 * (w.p.Domain.Hi[k] - w.p.Domain.Lo[k])
 	low, high := math.Max(root-h, w.p.Domain.Lo[k]), math.Min(root+h, w.p.Domain.Hi[k])
-	w.cuts = append(w.cuts, crossing{root, first, next, (diff(high) - diff(low)) / (high - low)})
+	c := crossing{s: root, before: first, after: next, slope: (diff(high) - diff(low)) / (high - low)}
+	if w.layer != nil {
+		w.s[k] = root
+		w.move()
+		w.p.Jets(w.x, w.jets)
+		for a := range w.q {
+			w.q[a] = w.jets[next].P[a] - w.jets[first].P[a]
+		}
+		c.steep = length(w.q)
+	}
+	w.cuts = append(w.cuts, c)
 }
 
 // panels are the edges of the panels of the current fibre.
@@ -191,6 +202,15 @@ func (w *walk) panels() []float64 {
 		w.edges = append(w.edges, c.s)
 		unit := w.eps / math.Abs(c.slope)
 		if !(unit > 0) || math.IsInf(unit, 0) {
+			continue
+		}
+		if w.layer != nil {
+			l := w.layer.reach(w.eps) * c.steep / math.Abs(c.slope)
+			for _, s := range [2]float64{c.s - l, c.s + l} {
+				if s > left && s < right {
+					w.edges = append(w.edges, s)
+				}
+			}
 			continue
 		}
 		for _, r := range reach {

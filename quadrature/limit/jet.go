@@ -31,6 +31,20 @@ type Smoothing interface {
 	Smooth(p *Problem, x []float64, eps float64, out *Jet)
 }
 
+// An inexact smoothing has jets with an error of their own, and differs from the
+// sharp function within a distance of the creases only. Its energy is finite
+// wherever its jets are.
+type inexact interface {
+	// reach is that distance.
+	reach(eps float64) float64
+	// accuracy is the relative tolerance below which integrals would follow
+	// the errors of the jets.
+	accuracy(p *Problem) float64
+	// finer is the jet at the place of the last one by finer rules; false where
+	// that was exact.
+	finer(p *Problem, x []float64, eps float64, out *Jet) bool
+}
+
 // jetsOf are the jets of the branches of p at x, in list, which grows as needed.
 func jetsOf(p *Problem, x []float64, list *[]Jet) []Jet {
 	for len(*list) < p.Branches {

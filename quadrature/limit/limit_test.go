@@ -172,7 +172,8 @@ func TestOptimalProfile(t *testing.T) {
 
 // Derivatives of the smoothings against differences.
 func TestSmoothingsAreConsistent(t *testing.T) {
-	for _, s := range []Smoothing{&Front{}, &Front{Min: true}, &Mollifier{}} {
+	fine := newOrders(3, true)
+	for _, s := range []Smoothing{&Front{}, &Front{Min: true}, &Mollifier{Width: 2, dim: 3, rules: [2]*orders{fine, fine}}} {
 		p := problem(box(-1, 1, -1, 1, .5, 1), s, focal, layeredBranch(.3, .1, -.2), layeredBranch(-.2, .2, -.15))
 		at := func(x ...float64) Jet {
 			out := NewJet(3)
@@ -182,22 +183,20 @@ func TestSmoothingsAreConsistent(t *testing.T) {
 		x := []float64{.31, -.17, .7}
 		mid := at(x...)
 		for i := range 3 {
-			const h = 1e-5
-			hi, lo := append([]float64(nil), x...), append([]float64(nil), x...)
-			hi[i] += h
-			lo[i] -= h
-			a, b := at(hi...), at(lo...)
-			assert.InDelta(t, (a.U-b.U)/(2*h), mid.P[i], 1e-7)
+			const h = 4e-3
+			move := func(d float64) Jet {
+				y := append([]float64(nil), x...)
+				y[i] += d
+				return at(y...)
+			}
+			a, b, c, d := move(h), move(-h), move(2*h), move(-2*h)
+			diff := func(f func(j *Jet) float64) float64 { return (8*(f(&a)-f(&b)) - f(&c) + f(&d)) / (12 * h) }
+			assert.InDelta(t, diff(func(j *Jet) float64 { return j.U }), mid.P[i], 1e-5)
 			for k := range 3 {
-				assert.InDelta(t, (a.P[k]-b.P[k])/(2*h), mid.H[i*3+k], 1e-6)
+				assert.InDelta(t, diff(func(j *Jet) float64 { return j.P[k] }), mid.H[i*3+k], 1e-3)
 			}
 		}
 	}
-	_, cdf, rho := kernel(1)
-	phi, _, _ := kernel(-1)
-	assert.InDelta(t, 1, cdf, 1e-14)
-	assert.InDelta(t, 0, phi, 1e-14)
-	assert.Zero(t, rho)
 }
 
 func TestRateAndExtrapolation(t *testing.T) {

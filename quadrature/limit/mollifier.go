@@ -1,75 +1,84 @@
 package limit
 
-import "creaseproof/quadrature/branches"
-
-// Mollifier is the maximum or minimum of the branches, smoothed in the
-// difference d of two values by the kernel (315/256) (1 - (d/δ)²)⁴/δ on
-// |d| < δ = Width eps. More than two branches are taken up in their order, so
-// that where three meet within the layer the result depends on it. A Mollifier
-// is not safe for concurrent use.
+// Mollifier is the combined function u convolved in space with the kernel
+// ρ(y) = c (1 - |y|²/δ²)⁴ on |y| < δ = Width eps, of integral 1. It is five
+// times differentiable, symmetric in the branches, and equals every branch that
+// is affine on the ball about the point. With the derivatives on the kernel,
+//
+//	∇(ρ*u) = ρ*∇u,  ∇²(ρ*u) = ∇ρ*∇u,
+//
+// so that no branch is differentiated twice and the tip of a cone does no harm.
+// Branches are evaluated up to the distance δ outside of the domain.
+//
+// Jets come by quadrature, exact to rounding where the branches in the ball are
+// affine and their gradients lie on a line, otherwise with a relative error of
+// about 1e-9 in the plane and 1e-6 in space. A Mollifier is not safe for
+// concurrent use.
 type Mollifier struct {
 	Width float64 // DefaultWidth if zero
 
-	jets []Jet
+	rules  [2]*orders // usual and finer ones
+	dim    int
+	work   ball
+	approx bool // the last jet came by a rule that is not exact
 }
 
-// DefaultWidth makes both parts of the energy about equal across a wall of the
-// layered model and across one of the planar eikonal model.
-const DefaultWidth = 10.8
+// DefaultWidth makes both parts of the energy about equal across a wall with a
+// jump of the gradient of length 1, for the layered and the planar eikonal model:
+// they are equal with 11.31 in the plane and with 11.80 in space. Across a jump of
+// length q the equal width is 1/q times that, the least energy of a mollified
+// wall, 0.7 % above the sharp one.
+const DefaultWidth = 11.5
 
-// kernel is the kernel ρ on [-1, 1], its integral from -1 and the integral of
-// that, at t in [-1, 1].
-func kernel(t float64) (phi, cdf, rho float64) {
-	const c = 315.0 / 256
-	t2 := t * t
-	v := 1 - t2
-	rho = c * v * v * v * v
-	// ∫(1 - t²)⁴ = t - 4t³/3 + 6t⁵/5 - 4t⁷/7 + t⁹/9; from -1, 1/2 at 0.
-	cdf = 0.5 + c*t*(1+t2*(-4.0/3+t2*(6.0/5+t2*(-4.0/7+t2/9))))
-	// phi(-1) = 0, phi(1) = 1, phi(t) - t/2 is even.
-	even := func(t2 float64) float64 {
-		return c * t2 * (1.0/2 + t2*(-1.0/3+t2*(1.0/5+t2*(-1.0/14+t2/90))))
+func (m *Mollifier) delta(eps float64) float64 {
+	if m.Width == 0 {
+		return DefaultWidth * eps
 	}
-	phi = t/2 + even(t2) + 0.5 - even(1)
-	return phi, cdf, rho
+	return m.Width * eps
 }
 
 // Smooth implements Smoothing.
 func (m *Mollifier) Smooth(p *Problem, x []float64, eps float64, out *Jet) {
-	list := jetsOf(p, x, &m.jets)
-	sign := 1.0
-	if p.Combine != nil && p.Combine.Op == branches.Min {
-		sign = -1
+	m.smooth(p, x, eps, 0, out)
+}
+
+// finer is Smooth with finer rules, if the last jet came by a rule that is not
+// exact.
+func (m *Mollifier) finer(p *Problem, x []float64, eps float64, out *Jet) bool {
+	if !m.approx {
+		return false
 	}
-	width := m.Width
-	if width == 0 {
-		width = DefaultWidth
-	}
-	delta := width * eps
-	out.set(&list[0])
-	n := len(out.P)
-	for i := 1; i < len(list); i++ {
-		b := &list[i]
-		t := sign * (out.U - b.U) / delta
-		switch {
-		case t >= 1:
-			continue
-		case t <= -1:
-			out.set(b)
-			continue
-		}
-		phi, cdf, rho := kernel(t)
-		out.U = b.U + sign*delta*phi
-		for k := range out.H {
-			out.H[k] = b.H[k] + cdf*(out.H[k]-b.H[k])
-		}
-		for k := range n {
-			for l := range n {
-				out.H[k*n+l] += sign * rho / delta * (out.P[k] - b.P[k]) * (out.P[l] - b.P[l])
-			}
-		}
-		for k := range n {
-			out.P[k] = b.P[k] + cdf*(out.P[k]-b.P[k])
+	m.smooth(p, x, eps, 1, out)
+	return true
+}
+
+func (m *Mollifier) reach(eps float64) float64 { return m.delta(eps) }
+
+func (m *Mollifier) accuracy(p *Problem) float64 {
+	affine := 0
+	for _, a := range p.Affine {
+		if a {
+			affine++
 		}
 	}
+	switch {
+	case affine == p.Branches && affine == 2:
+		return 0
+	case affine == p.Branches, len(p.Domain.Lo) < 3:
+		return 1e-8
+	}
+	return 1e-6
+}
+
+func (m *Mollifier) smooth(p *Problem, x []float64, eps float64, level int, out *Jet) {
+	n := len(x)
+	if m.dim != n {
+		m.dim, m.rules = n, [2]*orders{newOrders(n, false), newOrders(n, true)}
+	}
+	b := &m.work
+	b.begin(p, x, m.delta(eps), m.rules[level])
+	b.survey()
+	b.convolve()
+	m.approx = b.approx
+	b.jet(out)
 }

@@ -35,6 +35,11 @@ type Problem struct {
 	Values func(x, v []float64)
 	// Jets sets their jets.
 	Jets func(x []float64, jets []Jet)
+	// Gradients sets, for branch i, u and g to its values and gradients at
+	// len(u) points: x[k] are their coordinates k. Nil is by Jets.
+	Gradients func(i int, x [][]float64, u []float64, g [][]float64)
+	// Affine says which branches are affine; nil is none.
+	Affine []bool
 	// Combine makes the sharp function of the branches; nil is the maximum.
 	Combine *branches.Tree
 	// Smoothing makes the approximation.
@@ -120,14 +125,17 @@ func (p *Problem) Integrate(ctx context.Context, eps float64) (Energy, error) {
 	if err != nil {
 		return Energy{}, err
 	}
-	if e := w.singular(); e != nil {
-		return Energy{Eps: eps}, e
+	if w.layer == nil {
+		if e := w.singular(); e != nil {
+			return Energy{Eps: eps}, e
+		}
 	}
 	v, e, err := w.run()
 	out := Energy{Eps: eps, Density: Density{v[0], v[1], v[2], v[3]}, Evaluations: w.used}
 	for _, x := range e {
 		out.Error = math.Max(out.Error, x)
 	}
+	out.Error += w.rough() * math.Abs(out.Energy)
 	if ctx.Err() != nil {
 		return out, ctx.Err()
 	}

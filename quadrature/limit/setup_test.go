@@ -2,6 +2,7 @@ package limit
 
 import (
 	"math"
+	"slices"
 
 	combine "creaseproof/quadrature/branches"
 )
@@ -111,6 +112,12 @@ func problem(d Domain, s Smoothing, branches ...branch) *Problem {
 		}}
 	if len(d.Lo) == 2 {
 		p.Density, p.Cost = eikonal, eikonalCost
+	}
+	for _, b := range branches { // affine ones, by their gradients at places
+		x, y, j, k := []float64{.3, .71, .57}[:len(d.Lo)], []float64{-.45, .23, .88}[:len(d.Lo)], NewJet(len(d.Lo)), NewJet(len(d.Lo))
+		b(x, &j)
+		b(y, &k)
+		p.Affine = append(p.Affine, slices.Equal(j.P, k.P))
 	}
 	if f, ok := s.(*Front); ok && f.Min {
 		p.Combine = minimum(len(branches))

@@ -32,9 +32,12 @@ type walk struct {
 	cuts    []crossing
 	heights []float64 // of the branches along a fibre
 	edges   []float64
-	bad     []float64 // where a density was not finite
-	steep   float64   // the greatest density met
-	summit  []float64 // and where
+	layer   inexact // the smoothing, if it is
+	finer   Jet
+	noise   [2]float64 // differences of densities by finer jets, and densities
+	bad     []float64  // where a density was not finite
+	steep   float64    // the greatest density met
+	summit  []float64  // and where
 }
 
 func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, error) {
@@ -53,6 +56,10 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 	}
 	if sharp {
 		w.most = min(w.most, mostFibres)
+	}
+	if l, ok := p.Smoothing.(inexact); ok && !sharp {
+		w.layer, w.finer = l, NewJet(n)
+		w.rel = math.Max(w.rel, l.accuracy(p))
 	}
 	for range n {
 		w.jac = append(w.jac, make([]float64, n))
@@ -157,6 +164,17 @@ func (w *walk) level(depth int, out, estimate *values) error {
 	return q.over(edges, out, estimate)
 }
 
+// probed is of how many densities one is computed again from a finer jet.
+const probed = 37
+
+// rough estimates the relative error of the integrals from that of the jets.
+func (w *walk) rough() float64 {
+	if !(w.noise[1] > 0) {
+		return 0
+	}
+	return 2 * w.noise[0] / w.noise[1]
+}
+
 // density is the integrand along a fibre.
 func (w *walk) density(s float64, out, _ *values) error {
 	w.used++
@@ -168,6 +186,12 @@ func (w *walk) density(s float64, out, _ *values) error {
 	w.p.Smoothing.Smooth(w.p, w.x, w.eps, &w.u)
 	d := w.p.Density(w.x, w.eps, &w.u)
 	dx := w.volume()
+	if w.layer != nil && w.used%probed == 0 && w.layer.finer(w.p, w.x, w.eps, &w.finer) {
+		f := w.p.Density(w.x, w.eps, &w.finer)
+		off := math.Max(math.Abs(f.Energy-d.Energy), math.Max(math.Abs(f.Compression-d.Compression), math.Abs(f.Bending-d.Bending)))
+		w.noise[0] += off * dx
+		w.noise[1] += math.Abs(d.Energy) * dx
+	}
 	*out = values{d.Energy * dx, d.Compression * dx, d.Bending * dx, d.Curvature * dx}
 	for _, v := range out {
 		if math.IsNaN(v) || math.IsInf(v, 0) {

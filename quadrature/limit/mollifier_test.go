@@ -1,0 +1,172 @@
+package limit
+
+import (
+	"math"
+	"slices"
+	"strings"
+	"testing"
+
+	"github.com/stretchr/testify/assert"
+)
+
+// brute convolves in the plane by polar coordinates about a place in the ball:
+// rays at equally spaced angles, on which places where two branches are equal are
+// halved in.
+func brute(p *Problem, x, from []float64, delta float64, angles int) Jet {
+	out := NewJet(2)
+	c := 5 / math.Pi
+	v := make([]float64, p.Branches)
+	j := make([]Jet, p.Branches)
+	for i := range j {
+		j[i] = NewJet(2)
+	}
+	g := newGauss(12)
+	for a := range angles {
+		sin, cos := math.Sincos(2 * math.Pi * (float64(a) + 0.123) / float64(angles))
+		ox, oy := (from[0]-x[0])/delta, (from[1]-x[1])/delta
+		foot := ox*cos + oy*sin
+		end := -foot + math.Sqrt(1+foot*foot-ox*ox-oy*oy)
+		at := func(r float64) []float64 { return []float64{from[0] + delta*r*cos, from[1] + delta*r*sin} }
+		who := func(r float64) int { p.Values(at(r), v); return p.active(v) }
+		less := func(r float64, i, j int) bool { p.Values(at(r), v); return v[i] < v[j] }
+		cuts := []float64{0}
+		const looks = 40
+		for k := range looks {
+			lo, hi := end*float64(k)/looks, end*float64(k+1)/looks
+			for i := range p.Branches {
+				for j := range i {
+					first := less(lo, i, j)
+					if less(hi, i, j) == first {
+						continue
+					}
+					l, h := lo, hi
+					for range 50 {
+						if m := (l + h) / 2; less(m, i, j) == first {
+							l = m
+						} else {
+							h = m
+						}
+					}
+					cuts = append(cuts, h)
+				}
+			}
+			if k%10 == 9 {
+				cuts = append(cuts, hi)
+			}
+		}
+		slices.Sort(cuts)
+		for k := 1; k < len(cuts); k++ {
+			i := who((cuts[k-1] + cuts[k]) / 2)
+			for q, s := range g.x {
+				r := cuts[k-1] + (cuts[k]-cuts[k-1])*s
+				w := g.w[q] * (cuts[k] - cuts[k-1]) * r * 2 * math.Pi / float64(angles)
+				p.Jets(at(r), j)
+				y := []float64{ox + r*cos, oy + r*sin}
+				rest := 1 - y[0]*y[0] - y[1]*y[1]
+				rho, slope := c*math.Pow(rest, 4), 8*c*math.Pow(rest, 3)
+				out.U += w * rho * j[i].U
+				for a, g := range j[i].P {
+					out.P[a] += w * rho * g
+					out.H[a] += w * slope * y[0] * g / delta
+					out.H[2+a] += w * slope * y[1] * g / delta
+				}
+			}
+		}
+	}
+	return out
+}
+
+func smoothed(p *Problem, eps float64, x ...float64) Jet {
+	out := NewJet(len(x))
+	p.Smoothing.Smooth(p, x, eps, &out)
+	return out
+}
+
+func assertJet(t *testing.T, want, got Jet, tol, eps float64, name string) {
+	t.Helper()
+	assert.InDelta(t, want.U, got.U, tol, name)
+	for i := range want.P {
+		assert.InDelta(t, want.P[i], got.P[i], tol, name)
+	}
+	for i := range want.H {
+		assert.InDelta(t, want.H[i], got.H[i], tol/eps, name)
+	}
+}
+
+// parabola is (x² - y²)/2 + x y/3 + x/5.
+func parabola(x []float64, j *Jet) {
+	j.U = (x[0]*x[0]-x[1]*x[1])/2 + x[0]*x[1]/3 + x[0]/5
+	j.P[0], j.P[1] = x[0]+x[1]/3+.2, -x[1]+x[0]/3
+	copy(j.H, []float64{1, 1. / 3, 1. / 3, -1})
+}
+
+// The general path, caps and closed forms against rays.
+func TestMollifiedAgainstRays(t *testing.T) {
+	plane := box(-1, 1, -1, 1)
+	for name, c := range map[string]struct {
+		branches []branch
+		tree     string
+		x        [][]float64
+		tol      float64
+	}{
+		"two affine":     {[]branch{affine(.1, 1, .3), affine(0, -.4, .8)}, "max", [][]float64{{0, 0}, {-.1, .05}, {.06, .1}}, 1e-7},
+		"three affine":   {[]branch{affine(0, 1, 0), affine(0, -.5, root), affine(.02, -.5, -root)}, "max", [][]float64{{.012, -.007}, {.03, -.05}, {-.1, .02}, {.13, .1}}, 1e-7},
+		"nested":         {[]branch{affine(0, 1, 0), affine(0, 0, 1), affine(.02, -.5, -root)}, "max(min(1, 2), 3)", [][]float64{{.012, -.007}, {.03, -.05}, {-.1, .02}, {.04, .1}}, 1e-7},
+		"a circle":       {[]branch{fromPoint(-1, 0), affine(1, 0, 0)}, "max", [][]float64{{.01, .005}, {.1, .1}, {-.15, .02}}, 1e-7},
+		"a parabola":     {[]branch{fromPoint(-.8, .1), affine(.9, 0, .2)}, "min", [][]float64{{.05, .1}, {.12, .1}, {.05, -.02}}, 1e-7},
+		"two curved":     {[]branch{parabola, affine(0, -.3, .1)}, "max", [][]float64{{.01, .005}, {-.1, .1}, {.08, -.08}}, 1e-7},
+		"three curved":   {[]branch{parabola, affine(0, -.7, .1), fromPoint(.9, .9)}, "min(max(1, 2), 3)", [][]float64{{.01, .005}, {-.1, .1}, {.3, .3}}, 1e-7},
+		"a cone's tip":   {[]branch{fromPoint(.05, .02), affine(-9, 0, 0)}, "max", [][]float64{{.1, .1}, {-.1, .05}, {.1, -.1}}, 1e-7},
+		"a cone cut off": {[]branch{fromPoint(.05, .02), affine(.1, .2, 0)}, "max", [][]float64{{.1, .1}, {-.1, .05}, {.1, -.05}}, 1e-7},
+	} {
+		m := &Mollifier{Width: 2}
+		p := problem(plane, m, c.branches...)
+		p.Combine = tree(c.tree, len(c.branches))
+		for _, x := range c.x {
+			from := x
+			if strings.Contains(name, "cone") {
+				from = []float64{.05, .02} // its tip
+			}
+			if strings.HasPrefix(name, "a circle") || strings.HasPrefix(name, "a parabola") {
+				from = []float64{x[0] - .12, x[1]} // inside, so that no ray touches it
+			}
+			want := brute(p, x, from, .2, 20000)
+			got := smoothed(p, .1, x...)
+			assertJet(t, want, got, c.tol, .1, name)
+			if again := NewJet(2); m.finer(p, x, .1, &again) {
+				assertJet(t, again, got, 1e-8, .1, name+", finer")
+			}
+			// The order of branches does not matter.
+			if c.tree == "max" {
+				p := problem(plane, &Mollifier{Width: 2}, c.branches[1], c.branches[0])
+				if len(c.branches) == 3 {
+					p = problem(plane, &Mollifier{Width: 2}, c.branches[2], c.branches[0], c.branches[1])
+				}
+				assertJet(t, got, smoothed(p, .1, x...), 1e-8, .1, name+", in another order")
+			}
+		}
+	}
+}
+
+// Values by mpmath, 30 digits: the regularised incomplete beta function, and
+// integrals in polar coordinates about the tip.
+func TestMollifiedClosedForms(t *testing.T) {
+	wall := problem(box(-1, 1, -1, 1), &Mollifier{Width: 1}, affine(0, 1, 0), affine(0, -1, 0))
+	j := smoothed(wall, .5, .15, .4)
+	assert.InDelta(t, 2*.840342263760720323159859858017-1, j.P[0], 1e-14)
+	assert.InDelta(t, 2*.846127496725142063957311064076/.5, j.H[0], 1e-13)
+	space := problem(box(-1, 1, -1, 1, -1, 1), &Mollifier{Width: 1}, affine(0, 1, 0, 0), affine(0, -1, 0, 0))
+	j = smoothed(space, .5, .15, .4, -.2)
+	assert.InDelta(t, 2*.851316276078886714061321338592-1, j.P[0], 1e-14)
+	assert.InDelta(t, 2*.8446372588951171875/.5, j.H[0], 1e-13)
+	cone := problem(box(-1, 1, -1, 1), &Mollifier{Width: 1}, fromPoint(.1, .2), affine(-9, 0, 0))
+	j = smoothed(cone, .5, .1, .2)
+	assert.InDelta(t, .369408369408369408*.5, j.U, 1e-9)
+	assert.InDelta(t, 4.06349206349206349/.5, j.H[0]+j.H[3], 1e-8)
+	assert.InDelta(t, j.H[0], j.H[3], 1e-8)
+	assert.InDelta(t, 0, j.P[0], 1e-9)
+	j = smoothed(cone, .5, .1+.15*.6, .2+.15*.8)
+	assert.InDelta(t, 3.33193785964542772/.5, j.H[0]+j.H[3], 1e-8)
+	assert.InDelta(t, .552447056833344615, .6*j.P[0]+.8*j.P[1], 1e-9)
+	assert.InDelta(t, 0, .8*j.P[0]-.6*j.P[1], 1e-9)
+}
