@@ -42,6 +42,11 @@ func (c *combination) certify(r *Result) error {
 		return nil
 	}
 	r.Enclosure = []string{decimal(e.Inf(), -1), decimal(e.Sup(), 1)}
+	return c.judge(r)
+}
+
+// judge decides the claimed energy by the enclosure, as it is written down.
+func (c *combination) judge(r *Result) error {
 	if r.Claimed == nil {
 		return nil
 	}
@@ -49,7 +54,10 @@ func (c *combination) certify(r *Result) error {
 	if err != nil {
 		return err
 	}
-	lo, hi := new(big.Float).SetFloat64(e.Inf()), new(big.Float).SetFloat64(e.Sup())
+	lo, hi, err := endpoints(r.Enclosure)
+	if err != nil {
+		return err
+	}
 	allowed := narrow
 	if c.s.src.Within != nil {
 		allowed, _ = c.s.src.Within.Float64()

@@ -274,7 +274,7 @@ func (c *combination) evaluate() (Result, error) {
 	if err := c.certify(&r); err != nil {
 		return r, err
 	}
-	r.Met = r.Verdict == r.Expected || r.Verdict == "" && r.Expected == ""
+	r.met()
 	return r, nil
 }
 

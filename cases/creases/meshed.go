@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"io"
 	"io/fs"
 	"math"
 	"math/big"
@@ -49,15 +50,27 @@ func (s *Surface) readMesh() error {
 // stdin is the one path at which a file need not be a regular one.
 const stdin = "/dev/stdin"
 
+// OpenMesh opens a mesh as a case names it: a path is taken from the folder of
+// the case file. Only a regular file is opened, or standard input.
+func OpenMesh(file, path string) (io.ReadCloser, error) {
+	if !filepath.IsAbs(path) {
+		path = filepath.Join(filepath.Dir(file), path)
+	}
+	info, err := os.Stat(path)
+	if err != nil {
+		return nil, err
+	}
+	if !info.Mode().IsRegular() && path != stdin {
+		return nil, errors.New("this is no regular file")
+	}
+	return os.Open(path)
+}
+
 // load reads the mesh. A path is taken from the folder of the case file. An error
 // is one of the path or of the context; what is wrong inside the file is kept.
 func (s *Surface) load(ctx context.Context) error {
 	if s.mesh.done {
 		return nil
-	}
-	path := s.src.Mesh
-	if !filepath.IsAbs(path) {
-		path = filepath.Join(filepath.Dir(s.ev.file), path)
 	}
 	bad := func(err error) error {
 		var p *fs.PathError
@@ -66,14 +79,11 @@ func (s *Surface) load(ctx context.Context) error {
 		}
 		return fault(s.place, "the path is taken from the folder of the case file", "the mesh %q: %v", s.src.Mesh, err)
 	}
-	info, err := os.Stat(path)
-	if err != nil {
-		return bad(err)
+	open := s.ev.Open
+	if open == nil {
+		open = func(mesh string) (io.ReadCloser, error) { return OpenMesh(s.ev.file, mesh) }
 	}
-	if !info.Mode().IsRegular() && path != stdin {
-		return bad(errors.New("this is no regular file"))
-	}
-	f, err := os.Open(path)
+	f, err := open(s.src.Mesh)
 	if err != nil {
 		return bad(err)
 	}

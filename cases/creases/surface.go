@@ -3,6 +3,7 @@ package creases
 import (
 	"context"
 	"fmt"
+	"io"
 	"slices"
 	"strings"
 
@@ -16,6 +17,9 @@ import (
 // Evaluator evaluates the surfaces of one case. It is not safe for concurrent
 // use; several evaluators may share a setting.
 type Evaluator struct {
+	// Open opens the mesh that a surface names; nil is OpenMesh.
+	Open func(mesh string) (io.ReadCloser, error)
+
 	set  *entropy.Setting
 	file string
 

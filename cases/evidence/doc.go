@@ -1,6 +1,7 @@
-// Package evidence writes down how a verdict is known, so that another person
-// can verify it: one JSON file for each decided claim, which holds the case
-// itself, and what the verdict rests on.
+// Package evidence writes down how the verdict on a claim is known, so that
+// another person can verify it: one JSON file for each decided claim, which holds
+// the case itself, and what the verdict rests on. Energies and approximations have
+// files of their own, see packages energies and approximations.
 //
 // Audit verifies such a file. It reads the case again and makes the claim exact
 // again (package identity/exact), and then

@@ -1,21 +1,16 @@
 package evidence
 
 import (
-	"bytes"
-	"crypto/sha256"
-	"encoding/hex"
-	"encoding/json"
 	"errors"
-	"fmt"
-	"io"
 
 	"creaseproof/cases"
+	"creaseproof/cases/evidence/sealed"
 	"creaseproof/identity/certificate"
 	"creaseproof/identity/claim"
 )
 
 // Schema numbers the format of the files.
-const Schema = 1
+const Schema = sealed.Schema
 
 // Kind says what a verdict rests on.
 type Kind string
@@ -54,9 +49,6 @@ type File struct {
 	Digest      string                   `json:"digest"` // SHA-256 of the rest
 }
 
-// maxSize bounds a file that is read.
-const maxSize = 16 << 20
-
 // ErrNone says that a verdict has no evidence to verify: it is not decided, or
 // nothing was recorded.
 var ErrNone = errors.New("no evidence for this verdict")
@@ -88,61 +80,18 @@ func New(c *cases.Case, cl *cases.Claim, r *claim.Record, seed uint64) (*File, e
 	return f, nil
 }
 
-// digest is the hash of the file with its digest left out.
-func (f *File) digest() (string, error) {
-	g := *f
-	g.Digest = ""
-	data, err := json.Marshal(&g)
-	if err != nil {
-		return "", err
-	}
-	sum := sha256.Sum256(data)
-	return hex.EncodeToString(sum[:]), nil
-}
+// Seal implements sealed.Document.
+func (f *File) Seal() (int, *string) { return f.Schema, &f.Digest }
 
 // Encode is the file as JSON, with its digest.
-func (f *File) Encode() ([]byte, error) {
-	var err error
-	if f.Digest, err = f.digest(); err != nil {
-		return nil, err
-	}
-	var b bytes.Buffer
-	enc := json.NewEncoder(&b)
-	enc.SetEscapeHTML(false)
-	enc.SetIndent("", " ")
-	if err := enc.Encode(f); err != nil {
-		return nil, err
-	}
-	return b.Bytes(), nil
-}
+func (f *File) Encode() ([]byte, error) { return sealed.Encode(f) }
 
 // Decode reads a file. Unknown keys, a key twice, anything after the document,
 // another schema and a digest that does not fit are errors.
 func Decode(data []byte) (*File, error) {
-	if len(data) > maxSize {
-		return nil, fmt.Errorf("the file has more than %d MiB", maxSize>>20)
-	}
-	if err := strict(data); err != nil {
-		return nil, fmt.Errorf("this is no evidence: %w", err)
-	}
-	dec := json.NewDecoder(bytes.NewReader(data))
-	dec.DisallowUnknownFields()
-	var f File
-	if err := dec.Decode(&f); err != nil {
-		return nil, fmt.Errorf("this is no evidence: %w", err)
-	}
-	if _, err := dec.Token(); !errors.Is(err, io.EOF) {
-		return nil, errors.New("there is more after the document")
-	}
-	if f.Schema != Schema {
-		return nil, fmt.Errorf("schema %d; this program reads schema %d", f.Schema, Schema)
-	}
-	d, err := f.digest()
-	if err != nil {
+	f := &File{}
+	if err := sealed.Decode(data, f); err != nil {
 		return nil, err
 	}
-	if d != f.Digest {
-		return nil, errors.New("the digest does not fit: the file was changed")
-	}
-	return &f, nil
+	return f, nil
 }

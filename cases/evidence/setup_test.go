@@ -24,9 +24,10 @@ func written(t testing.TB, names ...string) map[string][]byte {
 
 func writtenFor(t testing.TB, list ...*cases.Case) map[string][]byte {
 	t.Helper()
-	outcome := run.Check(context.Background(), list, run.Options{Options: identity.DefaultOptions()})
 	dir := t.TempDir()
-	n, err := run.WriteEvidence(context.Background(), dir, outcome, 1)
+	e := run.NewEvidence(dir)
+	run.Check(context.Background(), list, run.Options{Options: identity.DefaultOptions(), Report: func(r *run.Result) { e.Claim(context.Background(), r, 1) }})
+	n, err := e.Written()
 	require.NoError(t, err)
 	files, err := filepath.Glob(filepath.Join(dir, "*.json"))
 	require.NoError(t, err)

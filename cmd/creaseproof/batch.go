@@ -5,13 +5,15 @@ import (
 	"fmt"
 
 	"creaseproof/cases"
+	"creaseproof/cases/run"
 )
 
 // items are the parts of cases that a command goes through: surfaces or limits.
 type items struct {
-	one, many string // "surface", "surfaces"
-	only      []string
-	count     func(*cases.Case) int // those asked for
+	one, many       string // "surface", "surfaces"
+	result, results string // "energy", "energies"
+	only            []string
+	count           func(*cases.Case) int // those asked for
 }
 
 func (i *items) total(list []*cases.Case) int {
@@ -53,11 +55,12 @@ type batch struct {
 	s        streams
 	say      *complaints
 	progress *progress
+	evidence *run.Evidence // nil for none
 	list     []*cases.Case
 }
 
 func newBatch(i items, q request, s streams, say *complaints, list []*cases.Case) *batch {
-	b := &batch{items: i, request: q, s: s, say: say, list: list, progress: newProgress(s, i.total(list))}
+	b := &batch{items: i, request: q, s: s, say: say, list: list, progress: newProgress(s, i.total(list)), evidence: q.keep()}
 	b.progress.inside(i.many, 0, 0)
 	return b
 }
@@ -91,5 +94,6 @@ func (b *batch) end(o outcome, interrupted bool, doc any, sheet *sheet, summary 
 		}
 		summary()
 	}
-	return finish(b.s, interrupted, b.bad > 0 || o.Faulty(), o.Met())
+	lost := b.kept(b.s, b.evidence, b.result, b.results)
+	return finish(b.s, interrupted, b.bad > 0 || lost || o.Faulty(), o.Met())
 }

@@ -90,10 +90,34 @@ type request struct {
 	evidence string // folder; empty for none
 }
 
+// keep is where evidence goes, nil for nowhere.
+func (q *request) keep() *run.Evidence {
+	if q.evidence == "" {
+		return nil
+	}
+	return run.NewEvidence(q.evidence)
+}
+
+// kept says what evidence was written, and reports whether some was not.
+func (q *request) kept(s streams, e *run.Evidence, one, many string) (lost bool) {
+	if e == nil {
+		return false
+	}
+	n, err := e.Written()
+	if n > 0 || err == nil {
+		fmt.Fprintf(s.err, "evidence for %s in %s\n", count(n, one, many), q.evidence)
+	}
+	if err != nil {
+		fmt.Fprintf(s.err, "creaseproof: evidence is missing: %s\n", clip(err.Error(), 2000))
+	}
+	return err != nil
+}
+
 func check(ctx context.Context, list []*cases.Case, opt run.Options, s streams, say *complaints, q request) error {
 	p := newProgress(s, total(list, &opt))
 	opt.Progress = p.inside
 	text := &checkText{sheet: sheet{w: s.out, style: style(s.colour), width: s.width}, opt: &opt}
+	proofs := q.keep()
 	opt.Report = func(r *run.Result) {
 		p.report(func() {
 			if !q.json {
@@ -103,6 +127,9 @@ func check(ctx context.Context, list []*cases.Case, opt run.Options, s streams, 
 				say.add(r.Err)
 			}
 		})
+		if proofs != nil {
+			proofs.Claim(context.WithoutCancel(ctx), r, opt.Seed)
+		}
 	}
 	out := run.Check(ctx, list, opt)
 	p.end()
@@ -116,14 +143,8 @@ func check(ctx context.Context, list []*cases.Case, opt run.Options, s streams, 
 		}
 		text.summary(out, total(list, &opt), q.bad)
 	}
-	if q.evidence != "" {
-		n, err := run.WriteEvidence(context.WithoutCancel(ctx), q.evidence, out, opt.Seed)
-		if err != nil {
-			return err
-		}
-		fmt.Fprintf(s.err, "evidence for %d verdicts in %s\n", n, q.evidence)
-	}
-	return finish(s, out.Interrupted, q.bad > 0 || out.Faulty(), out.Met())
+	lost := q.kept(s, proofs, "verdict", "verdicts")
+	return finish(s, out.Interrupted, q.bad > 0 || lost || out.Faulty(), out.Met())
 }
 
 func total(list []*cases.Case, opt *run.Options) int {

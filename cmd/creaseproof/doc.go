@@ -3,6 +3,8 @@
 //
 //	creaseproof check [CASE...]    decide every claim
 //	creaseproof energy [CASE...]   integrate over every surface
+//	creaseproof limit [CASE...]    energies of smooth approximations as eps falls
+//	creaseproof audit EVIDENCE...  verify what --evidence has written
 //	creaseproof cases list         the built-in cases
 //	creaseproof cases show NAME    the text of one
 //	creaseproof cases new FILE     a case to start from

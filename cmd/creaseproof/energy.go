@@ -13,6 +13,7 @@ import (
 
 func newEnergy(s streams) *cobra.Command {
 	var c common
+	var evidence string
 	var certify bool
 	cmd := &cobra.Command{
 		Use:   "energy [CASE...]",
@@ -29,10 +30,15 @@ misses it; where there is no enclosure the reason is given.
 A surface on which a check fails has no energy, and is wrong input: the traces off
 the well, u discontinuous across it, the jump of the gradient not normal to it.
 
+With --evidence a file is written for each energy as soon as it is computed: the case,
+the numbers, and what they rest on. audit verifies enclosures and exact energies,
+and repeats the others.
+
 A CASE is a file, a folder (all files *.toml in it), the name of a built-in case,
 or - for standard input; without one, every built-in case is taken.`,
 		Example: `  creaseproof energy mine.toml
   creaseproof energy crease-paraboloid --only "paraboloid front" --json
+  creaseproof energy mine.toml --certify --evidence proofs
   creaseproof energy`,
 		ValidArgsFunction: completeCase,
 		RunE: func(cmd *cobra.Command, args []string) error {
@@ -40,16 +46,17 @@ or - for standard input; without one, every built-in case is taken.`,
 			say := &complaints{w: s.err}
 			opt := run.EnergyOptions{Only: c.only, Timeout: time.Duration(c.timeout), Jobs: c.jobs}
 			opt.Certify = certify
-			it := items{"surface", "surfaces", c.only, func(k *cases.Case) int { return countEnergy(k, &opt) }}
+			it := items{"surface", "surfaces", "energy", "energies", c.only, func(k *cases.Case) int { return countEnergy(k, &opt) }}
 			list, bad, err := it.chosen(cmd.Context(), args, s, say)
 			if err != nil {
 				return err
 			}
-			return energyOf(cmd.Context(), newBatch(it, request{json: c.json, bad: bad}, s, say, list), opt)
+			return energyOf(cmd.Context(), newBatch(it, request{json: c.json, bad: bad, evidence: evidence}, s, say, list), opt)
 		},
 	}
 	c.flags(cmd, "surfaces")
 	cmd.Flags().BoolVar(&certify, "certify", false, "enclose the energy: a claim is then proved or refuted")
+	cmd.Flags().StringVar(&evidence, "evidence", "", "write into the `folder` what audit can verify or repeat")
 	return cmd
 }
 
@@ -67,6 +74,9 @@ func energyOf(ctx context.Context, b *batch, opt run.EnergyOptions) error {
 	text := &energyText{sheet: sheet{w: b.s.out, style: style(b.s.colour), width: b.s.width}, opt: &opt, together: b.s.together}
 	opt.Report = func(r *run.EnergyResult) {
 		b.report(r.Surface.Name, func() { text.result(r) }, r.Err)
+		if b.evidence != nil {
+			b.evidence.Surface(context.WithoutCancel(ctx), r, opt.Certify)
+		}
 	}
 	out := run.Energy(ctx, b.list, opt)
 	return b.end(out, out.Interrupted, out.Document(b.list), &text.sheet, func() { text.summary(out, b.total(b.list), b.bad) })

@@ -1,4 +1,4 @@
-package evidence
+package sealed
 
 import (
 	"bytes"
@@ -16,7 +16,7 @@ const maxTokens = 1_000_000
 
 // tables are the objects whose names are those of variables, where capitals
 // are told from small letters.
-var tables = []string{"m", "jet", "angle", "plus", "minus", "normal"}
+var tables = []string{"m", "jet", "angle", "plus", "minus", "normal", "values"}
 
 // strict refuses what package encoding/json lets pass and another reader may
 // read otherwise: a name that stands twice in an object, or once in capitals
