@@ -54,6 +54,9 @@ func (d *Problem) Reduce(g *Gap) *Reduction {
 			seen[v] = true
 			r.Vars = append(r.Vars, v)
 			r.describe(v)
+			if s := d.Ring.Symbol(v); s.Kind == jet.Cosine && s.Degree == 0 && !seen[s.Partner] {
+				visit(algebra.Variable(s.Partner)) // whose relation bounds the cosine
+			}
 			if q, a := d.Ring.Relation(v); q > 0 {
 				if len(g.Wells) > 0 { // everything is written in the traces
 					if t, err := d.InTraces(a); err == nil {

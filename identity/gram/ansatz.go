@@ -36,9 +36,9 @@ type ansatz struct {
 	free   bool // the multiplier is unknown; its trace is 1
 }
 
-// allVars lists the variables of target and constraints.
+// allVars lists the variables of the target, and those beside it.
 func (p *Problem) allVars() []algebra.Var {
-	var out []algebra.Var
+	out := slices.Clone(p.Beside)
 	add := func(q algebra.Poly) {
 		for _, v := range q.Vars() {
 			if !slices.Contains(out, v) {

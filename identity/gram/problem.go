@@ -17,6 +17,9 @@ type Problem struct {
 	// Groups are sets of variables whose joint degrees bound the monomials,
 	// such as the second derivatives. They need not cover all.
 	Groups [][]algebra.Var
+	// Beside are variables that a certificate may hold although the target does
+	// not: sines, whose squares bound the cosines in it.
+	Beside []algebra.Var
 }
 
 // Constraint is Poly >= 0, or Poly > 0.
