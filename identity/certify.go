@@ -192,7 +192,7 @@ func (r *reduction) problemFor(target algebra.Poly) *gram.Problem {
 	}
 	groups := map[int][]algebra.Var{}
 	for _, v := range r.Vars {
-		if s := r.d.Ring.Symbol(v); s.Kind == jet.Sine && !target.Has(v) && target.Has(s.Partner) {
+		if s := r.d.Ring.Symbol(v); (s.Kind == jet.Sine || s.Kind == jet.Cosine) && s.Degree == 0 && !target.Has(v) && target.Has(s.Partner) {
 			p.Beside = append(p.Beside, v)
 		}
 		if s := r.d.Ring.Symbol(v); s.Kind == jet.Derivative {

@@ -18,7 +18,7 @@ type Problem struct {
 	// such as the second derivatives. They need not cover all.
 	Groups [][]algebra.Var
 	// Beside are variables that a certificate may hold although the target does
-	// not: sines, whose squares bound the cosines in it.
+	// not: the sines beside cosines, whose squares bound these, or the other way.
 	Beside []algebra.Var
 }
 
