@@ -2,7 +2,6 @@ package creases
 
 import (
 	"fmt"
-	"math"
 	"math/big"
 	"strings"
 
@@ -14,10 +13,6 @@ import (
 	"creaseproof/identity/claim"
 	"creaseproof/quadrature/certified"
 )
-
-// narrow is the relative difference within which a claimed energy is proved
-// where the case allows none of its own.
-const narrow = 1e-9
 
 // certified is a result after certify.
 func (c *combination) certified(r Result, err error) (Result, error) {
@@ -50,7 +45,7 @@ func (c *combination) judge(r *Result) error {
 	if r.Claimed == nil {
 		return nil
 	}
-	claimed, err := c.enclose(*c.s.energy)
+	energy, err := c.claimed()
 	if err != nil {
 		return err
 	}
@@ -58,36 +53,35 @@ func (c *combination) judge(r *Result) error {
 	if err != nil {
 		return err
 	}
-	allowed := narrow
-	if c.s.src.Within != nil {
-		allowed, _ = c.s.src.Within.Float64()
-	}
-	// Every energy in the enclosure against every claimed value.
-	off := math.Max(above(hi, claimed.Lo()), above(claimed.Hi(), lo))
+	d := energy.against(lo, hi, c.s.src.Within)
 	before := r.Verdict
-	unit := math.Abs(*r.Claimed)
-	if unit == 0 {
-		unit = 1
-	}
 	reason := r.Reason // of what the floats showed
 	r.Reason = ""
+	in := fmt.Sprintf("the energy lies in [%s, %s]", r.Enclosure[0], r.Enclosure[1])
 	switch {
-	case lo.Cmp(claimed.Hi()) > 0 || hi.Cmp(claimed.Lo()) < 0:
-		away := math.Max(above(lo, claimed.Hi()), above(claimed.Lo(), hi))
-		if c.s.src.Within != nil && off <= allowed*unit*(1-0x1p-40) {
-			c.proved(r, off, unit)
-			r.add(fmt.Sprintf("it is not the claimed value itself, which the enclosure misses by %.2g", away))
-			break
+	case d.verdict == claim.Proved && d.far.Sign() == 0:
+		r.add("proved: the energy is the claimed value")
+	case d.verdict == claim.Proved:
+		of := " of it"
+		if energy.zero() {
+			of = ""
 		}
-		r.Verdict = claim.Refuted
-		r.add(fmt.Sprintf("the enclosure [%s, %s] misses the claimed value by %.2g", r.Enclosure[0], r.Enclosure[1], away))
-	case off <= allowed*unit*(1-0x1p-40):
-		c.proved(r, off, unit)
+		r.add(fmt.Sprintf("proved to within %.1e%s: %s", min(1.1*above(d.relative), d.most), of, in))
+		if d.near.Sign() > 0 {
+			r.add(fmt.Sprintf("it is not the claimed value itself, which the enclosure misses by %.2g", above(d.near)))
+		}
+	case d.verdict == claim.Refuted:
+		r.add(fmt.Sprintf("the enclosure [%s, %s] misses the claimed value by %.2g", r.Enclosure[0], r.Enclosure[1], above(d.near)))
+	case d.near.Sign() > 0:
+		r.Reason = reason
+		r.add(in + ", which is not all within what is allowed of the claimed value, nor all outside, so that it decides nothing")
+		return nil
 	default:
 		r.Reason = reason
-		r.add(fmt.Sprintf("the enclosure contains the claimed value and is wider than %.2g, so that it decides nothing", allowed*unit))
+		r.add(fmt.Sprintf("the enclosure contains the claimed value and is wider than %.2g, so that it decides nothing", above(d.allowed)))
 		return nil
 	}
+	r.Verdict = d.verdict
 	c.expect(r, before)
 	return nil
 }
@@ -104,26 +98,6 @@ func (c *combination) expect(r *Result, before claim.Verdict) {
 			r.Expected = r.Verdict
 		}
 	}
-}
-
-// proved records that the energy and the claimed value differ by at most off.
-func (c *combination) proved(r *Result, off, unit float64) {
-	r.Verdict = claim.Proved
-	of := " of it"
-	if *r.Claimed == 0 {
-		of = ""
-	}
-	r.add(fmt.Sprintf("proved to within %.1e%s: the energy lies in [%s, %s]", math.Nextafter(off/unit, 1)*1.1, of, r.Enclosure[0], r.Enclosure[1]))
-}
-
-// above is a float64 not below a - b.
-func above(a, b *big.Float) float64 {
-	d := new(big.Float).SetPrec(4*precision).SetMode(big.ToPositiveInf).Sub(a, b)
-	x, acc := d.Float64()
-	if acc == big.Below {
-		x = math.Nextafter(x, math.Inf(1))
-	}
-	return x
 }
 
 // decimal is x with 17 digits, rounded down or up: the decimal nearest to x
@@ -439,12 +413,16 @@ func (c *combination) integral(p *piece, f algebra.Fraction) (interval.Interval,
 }
 
 // conditions checks that what stands under roots is not negative, and what is
-// in logarithms positive, inside the piece. Denominators that cancel are left
-// out: where one vanishes the integrand is its continuation.
+// in logarithms positive, inside the piece. Of a denominator it is enough that
+// it does not vanish on a part with an area: where it vanishes at single points or
+// on lines, and cancels, the integrand is its continuation.
 func (p *piece) conditions() error {
 	const depth = 12
 	for _, k := range p.Ring.Conditions() {
 		if k.Need == jet.NeedNonZero {
+			if p.dividesZero(k.Value) && !p.apart(k.Value) {
+				return noEnclosure("%s, which is divided by, may vanish on a part of the surface", p.Ring.Format(k.Value))
+			}
 			continue
 		}
 		x := p.from.fraction(k.Value)

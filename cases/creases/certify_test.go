@@ -154,6 +154,9 @@ graph = { of = "x", over = { x = ["0", "1"], y = ["0", "1"] } }
 		"root at an end": {`density = "sqrt(1 - x)"
 graph = { of = "y", over = { x = ["0", "1"], y = ["0", "1"] } }
 `, 0.94280904158206337},
+		"divided by what vanishes on a line": {`density = "abs(x - 1/3)^2/abs(x - 1/3) + (abs(x - 1/3) + x - 1/3 + y)/(abs(x - 1/3) + x - 1/3 + y)"
+graph = { of = "x", over = { x = ["0", "1"], y = ["0", "1"] } }
+`, 1.8070506630322882},
 		"half angles": {`density = "cos(a/2)^2"
 patch = { map = ["sin(b) cos(a)", "sin(b) sin(a)", "cos(b)"], over = { b = ["0", "pi"], a = ["0", "2 pi"] } }
 `, 6.2831853071795865},
@@ -188,6 +191,15 @@ minus_gradient = ["-1", "0", "1/2"]
 polygon = [["0", "0", "0"], ["1/10^20", "1", "0"], ["0", "1", "1"]]
 energy = "1/3"
 `, "normal to the surface"},
+		// Both vanish on a short segment, and 0/0 is no number there.
+		"divided by what vanishes between two points": {areaHead + `density = "(abs(x - 1/3) + abs(x - 1/3 - 1/10^9) - 1/10^9)/(abs(x - 1/3) + abs(x - 1/3 - 1/10^9) - 1/10^9)"
+graph = { of = "y", over = { x = ["0", "1"], y = ["0", "1"] } }
+energy = "sqrt(2)"
+`, "may vanish on a part"},
+		"divided by what vanishes between two points, inside a function": {areaHead + `density = "log(1 + abs(x - 1/3) + abs(x - 1/3 - 1/10^9) - 1/10^9)/log(1 + abs(x - 1/3) + abs(x - 1/3 - 1/10^9) - 1/10^9)"
+graph = { of = "y", over = { x = ["0", "1"], y = ["0", "1"] } }
+energy = "sqrt(2)"
+`, "may vanish on a part"},
 		"a vertex out of the plane by less than a float shows": {areaHead + `density = "1"
 polygon = [["0", "0", "0"], ["1", "0", "0"], ["1", "1", "1/10^20"], ["0", "1", "0"]]
 energy = "1"

@@ -69,19 +69,17 @@ func (r *Result) met() { r.Met = r.Verdict == r.Expected }
 
 var decimals = regexp.MustCompile(`^-?[0-9]{1,800}(\.[0-9]{1,800})?(e[-+]?[0-9]{1,3})?$`)
 
-// endpoints are the ends of an enclosure that is written in decimals, rounded
-// outward to 800 bits.
-func endpoints(enclosure []string) (lo, hi *big.Float, err error) {
+// endpoints are the ends of an enclosure that is written in decimals.
+func endpoints(enclosure []string) (lo, hi *big.Rat, err error) {
 	if len(enclosure) != 2 {
 		return nil, nil, errors.New("an enclosure has two ends")
 	}
-	var ends [2]*big.Float
-	for i, mode := range []big.RoundingMode{big.ToNegativeInf, big.ToPositiveInf} {
-		if !decimals.MatchString(enclosure[i]) {
-			return nil, nil, fmt.Errorf("%.40q is no decimal", enclosure[i])
+	var ends [2]*big.Rat
+	for i, text := range enclosure {
+		if !decimals.MatchString(text) {
+			return nil, nil, fmt.Errorf("%.40q is no decimal", text)
 		}
-		x, _ := new(big.Rat).SetString(enclosure[i])
-		ends[i] = new(big.Float).SetPrec(4 * precision).SetMode(mode).SetRat(x)
+		ends[i], _ = new(big.Rat).SetString(text)
 	}
 	if ends[0].Cmp(ends[1]) > 0 {
 		return nil, nil, errors.New("the ends of the enclosure are in the wrong order")

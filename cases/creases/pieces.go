@@ -423,38 +423,6 @@ func (p *piece) size(f algebra.Fraction) (algebra.Fraction, error) {
 	return p.Ring.Abs(f)
 }
 
-// vanishes reports whether f is shown to be zero on the whole piece: by its
-// normal form, or, where f = a + b r with a root r, because
-// (a + b r)(a - b r) vanishes and a - b r is shown to have no zero.
-func (p *piece) vanishes(f algebra.Fraction) bool {
-	const depth = 10
-	if f.Err() != nil {
-		return false
-	}
-	if f.IsZero() {
-		return true
-	}
-	vars := f.Num().Vars()
-	for i := len(vars) - 1; i >= 0; i-- {
-		s := p.Ring.Symbol(vars[i])
-		if s.Kind != jet.Root || s.Degree != 2 {
-			continue
-		}
-		c := f.Num().Coeffs(vars[i])
-		if len(c) != 2 {
-			return false
-		}
-		other := algebra.FromPoly(c[0].Sub(c[1].Mul(algebra.Variable(vars[i]))))
-		both, err := p.Ring.Mul(algebra.FromPoly(f.Num()), other)
-		if err != nil {
-			return false
-		}
-		x := p.from.fraction(other)
-		return (p.tape.Positive(x, depth) || p.tape.Positive(p.tape.Mul(p.tape.Const(interval.Point(-1)), x), depth)) && p.vanishes(both)
-	}
-	return false
-}
-
 // finer is the basis of angles that an error asks for.
 func finer(err error) *jet.Angles {
 	var f *jet.FinerAngles

@@ -13,7 +13,8 @@ type Options struct {
 	// Rel is the width aimed at, relative to the integral of the absolute value;
 	// 1e-13 if zero. Rounding may leave more.
 	Rel float64
-	// MaxCells bounds the cells that are looked at; 2000 if zero.
+	// MaxCells bounds the cells that are looked at. If zero it is 2000, and less
+	// for integrands of more than some 200 operations, so that the work is bounded.
 	MaxCells int
 }
 
@@ -51,13 +52,13 @@ func (t *Tape) Integrate(ctx context.Context, of Ref, o Options) (Result, error)
 	if o.Rel == 0 {
 		o.Rel = 1e-13
 	}
-	if o.MaxCells == 0 {
-		o.MaxCells = 2000
-	}
 	if x, ok := t.known(of); ok {
 		return Result{Value: x, Cells: 1}, nil
 	}
 	e := t.evaluator(of)
+	if o.MaxCells == 0 {
+		o.MaxCells = min(2000, max(16, 400_000/e.work()))
+	}
 	both := t.deps[of] == 3
 	dir := 0
 	if t.deps[of] == 2 {

@@ -1,6 +1,10 @@
 package certified
 
-import "creaseproof/entropy/interval"
+import (
+	"math/bits"
+
+	"creaseproof/entropy/interval"
+)
 
 // series are the Taylor coefficients of a function of x = c + h τ in τ, each
 // enclosed for all c in a cell; those beyond the end are zero.
@@ -37,6 +41,17 @@ func (t *Tape) evaluator(of Ref) *evaluator {
 		}
 	}
 	return e
+}
+
+// work is the number of operations, a power counting as its multiplications.
+func (e *evaluator) work() int {
+	n := len(e.need)
+	for _, i := range e.need {
+		if o := &e.ops[i]; o.kind == power {
+			n += 2 * bits.Len(uint(o.n))
+		}
+	}
+	return n
 }
 
 // at is the series of the value up to the given order in direction dir, for
