@@ -20,12 +20,16 @@ func TestWithin(t *testing.T) {
 }
 
 func TestErrors(t *testing.T) {
-	assert.True(t, agree.Errors(0, 0))
-	assert.True(t, agree.Errors(1e-15, 4e-15))
-	assert.False(t, agree.Errors(1e-15, 5e-15))
+	assert.True(t, agree.Errors(0, 0, 1))
+	assert.True(t, agree.Errors(1e-15, 4e-15, 1))
+	assert.False(t, agree.Errors(1e-15, 4.1e-15, 1))
+	assert.True(t, agree.Errors(1e-9, 1.05e-9, 1))
+	assert.False(t, agree.Errors(1e-9, 1.06e-9, 1))
+	assert.False(t, agree.Errors(1e-15, 4e-15, 0.1))
 	for _, x := range []float64{0, -1e-15, math.NaN(), math.Inf(1)} {
-		assert.False(t, agree.Errors(x, 1e-15))
-		assert.False(t, agree.Errors(1e-15, x))
+		assert.False(t, agree.Errors(x, 1e-15, 1))
+		assert.False(t, agree.Errors(1e-15, x, 1))
+		assert.False(t, agree.Errors(x, 1e-15, math.NaN()))
 	}
 }
 

@@ -87,7 +87,7 @@ func (f *File) numbers(got *limits.Value) error {
 		if !agree.Within(f.Eps[i], e, rounding*e) {
 			return fmt.Errorf("eps is %g here, and %g in the file", e, f.Eps[i])
 		}
-		if !agree.Errors(f.Error[i], got.Error[i]) {
+		if !agree.Errors(f.Error[i], got.Error[i], got.Energy[i]) {
 			return fmt.Errorf("at eps = %g the error is estimated to be %.2g here, and to be %.2g in the file", e, got.Error[i], f.Error[i])
 		}
 		for _, x := range []struct {
@@ -105,13 +105,12 @@ func (f *File) numbers(got *limits.Value) error {
 	switch a, b := finite(got.Target), finite(got.TargetError); {
 	case f.TargetClaimed != got.TargetClaimed, (f.Target == nil) != (a == nil), (f.TargetError == nil) != (b == nil):
 		return errors.New("the jump energy is claimed in the one and not in the other, or missing")
-	case b != nil && !agree.Errors(*f.TargetError, *b):
+	case (a == nil) != (b == nil):
+		return errors.New("the jump energy has no error, or an error without it")
+	case b != nil && !agree.Errors(*f.TargetError, *b, *a):
 		return fmt.Errorf("the error of the jump energy is estimated to be %.2g here, and to be %.2g in the file", *b, *f.TargetError)
 	case a != nil:
-		allowed := rounding * math.Abs(*a)
-		if b != nil {
-			allowed += *b + *f.TargetError
-		}
+		allowed := rounding*math.Abs(*a) + *b + *f.TargetError
 		if !agree.Within(*f.Target, *a, allowed) {
 			return fmt.Errorf("the jump energy is %.17g here, and %.17g in the file", *a, *f.Target)
 		}

@@ -11,9 +11,8 @@
 // integrates its energy anew at the values and the eps that the file names.
 //
 //   - Energy, compression, bending and eps ∫K at each eps agree to the sum of two
-//     errors, the one in the file and the one computed here, and these differ at
-//     most by a factor of four; so does the jump energy, to which rounding of
-//     1e-14 is added.
+//     errors, the one in the file and the one computed here, which are alike (see
+//     package agree); so does the jump energy, to which rounding of 1e-14 is added.
 //   - What follows from these numbers (gap, rate, extrapolated limit, equipartition,
 //     outcome, reason) is what follows from those in the file, but for rounding.
 //   - The outcome is also the one that the numbers computed here have.

@@ -136,7 +136,7 @@ func equal(a, b *float64) bool { return a == nil && b == nil || a != nil && b !=
 // which that agrees.
 func (f *File) floats(got *creases.Result) (failure float64, err error) {
 	if finite(got.Error) {
-		if f.Error == nil || !agree.Errors(*f.Error, *got.Error) {
+		if f.Error == nil || !agree.Errors(*f.Error, *got.Error, *got.Energy) {
 			return 0, fmt.Errorf("the error is estimated to be %.2g here, which is not as the file says", *got.Error)
 		}
 		failure = *f.Error + *got.Error

@@ -26,8 +26,8 @@
 //     surface of exact energy.
 //   - Of what is floating point (energy, error and area of surfaces that are not
 //     exact) the energy agrees to the sum of the two errors, the one in the file
-//     and the one computed here; these differ at most by a factor of four; and the
-//     area agrees to 1e-6 and the relative error of the energy. Numbers in a
+//     and the one computed here, which are alike (see package agree); and the area
+//     agrees to 1e-6 and the relative error of the energy. Numbers in a
 //     reason agree likewise, or to a unit of the last digit that is written.
 //     That is a repetition of a computation and shows that it was done; it does
 //     not prove its result.
