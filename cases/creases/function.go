@@ -16,7 +16,8 @@ import (
 type levelFunction struct {
 	p      *program.Program
 	ws     *program.Workspace
-	out    []float64 // value, gradient
+	out    []float64 // value, gradient, at last
+	last   [3]float64
 	ranges *ranges.Evaluator
 	of     []ranges.Ref // forms of the same function
 	other  []levelset.Interval
@@ -47,7 +48,7 @@ func (c *combination) levelFunction(a formulaText, b *formulaText) (*levelFuncti
 		}
 		outs = append(outs, d)
 	}
-	f := &levelFunction{out: make([]float64, n+1)}
+	f := &levelFunction{out: make([]float64, n+1), last: [3]float64{math.NaN(), math.NaN(), math.NaN()}}
 	if f.p, err = num.Compile(outs...); err != nil {
 		return nil, placed(a.text, err)
 	}
@@ -70,13 +71,25 @@ func (c *combination) levelFunction(a formulaText, b *formulaText) (*levelFuncti
 
 // Value is the value at x.
 func (f *levelFunction) Value(x []float64) float64 {
-	f.p.Eval(f.ws, x, f.out)
+	f.eval(x)
 	return f.out[0]
+}
+
+// eval computes value and gradient: they are asked for at the same places.
+func (f *levelFunction) eval(x []float64) {
+	same := true
+	for i, v := range x {
+		same = same && f.last[i] == v
+		f.last[i] = v
+	}
+	if !same {
+		f.p.Eval(f.ws, x, f.out)
+	}
 }
 
 // Gradient is the gradient at x.
 func (f *levelFunction) Gradient(g, x []float64) {
-	f.p.Eval(f.ws, x, f.out)
+	f.eval(x)
 	copy(g, f.out[1:])
 }
 

@@ -94,3 +94,26 @@ box = { x = ["-2", "2"], y = ["-2", "2"], z = ["-2", "2"] }
 	require.NoError(t, err)
 	assert.JSONEq(t, `{"branches": [1, 2], "energy": 2, "error": 0.5, "area": 0}`, string(text))
 }
+
+// Next to the tip of a cone that a sheet passes through Newton's method is not
+// quadratic, and the traces have kinks that are not those of the surface.
+func TestTipsOnSheets(t *testing.T) {
+	for _, test := range []struct {
+		text string
+		want float64 // found by scanning along lines, 90² in each direction
+	}{
+		{`branches=["-2*x + 3/2*y + 25/8*z - 2", "7/5*x + 1/10*y + 197/200*z - 1/2", "-2*x + y + 5/2*z + 1", "-1/2*norm(x - 1, y - 1) + 1/8*z + 2", "-((x + 2/5)^2 + (y + 3/10)^2)/(2*(z + 3/2)) + 17/10"]
+combine="min(max(2, min(5, 1)), min(4, 3))"
+box={x=["-3/2","2"], y=["-3/2","5/4"], z=["0","3/2"]}
+`, 33.568},
+		{`branches=["3/2*norm(x, y - 1) + 9/8*z + 2", "-((x - 1/5)^2 + (y - 1/5)^2)/(2*(z + 1)) + 11/10", "-((x + 5/7)^2 + (y + 3/7)^2)/(2*(z + 2)) - 6/7", "1/2*norm(x - 1, y + 1) + 1/8*z + 1/2"]
+combine="min(1, max(2, 3, 4))"
+ball={center=["-1/4","-1/4","1"],radius="7/4"}
+`, 0.0006864},
+	} {
+		r := one(t, layeredHead+test.text)
+		require.NotNil(t, r.Energy, r.Reason)
+		assert.InEpsilon(t, test.want, *r.Energy, 1e-3)
+		assert.LessOrEqual(t, *r.Error, 1e-9**r.Energy)
+	}
+}

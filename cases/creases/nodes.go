@@ -16,6 +16,7 @@ type nodes struct {
 	reach       float64 // largest distance from the origin
 	plus, minus []float64
 	count       int // densities so far
+	kinks       int // looks at smoothness that failed, without another in between
 	bad         *quadrature.PlaceError
 }
 
@@ -37,6 +38,7 @@ func newNodes(dim int, tr quadrature.Traces, o quadrature.Options, d quadrature.
 const (
 	nodeTolerance   = 1e-9
 	nodeContinuity  = 1024 * 0x1p-52
+	smoothFails     = 4  // looks in a row that show a kink: a single one may be next to a tip
 	smoothEvery     = 61 // nodes from one look at smoothness to the next
 	smoothAlways    = 32 // nodes looked at in the beginning
 	smoothStep      = 0x1p-20
@@ -175,9 +177,13 @@ func (n *nodes) smooth(x, nu []float64, size float64) *quadrature.PlaceError {
 		}
 		one, two := differs(far), differs(near)
 		if !math.IsNaN(one) && !math.IsNaN(two) && !math.IsInf(one, 0) && two > 1e-3*(size+one) && two > one/2 {
+			if n.kinks++; n.kinks < smoothFails {
+				return nil
+			}
 			return n.fail(quadrature.NotSmooth, what, x, two, size)
 		}
 	}
+	n.kinks = 0
 	return nil
 }
 

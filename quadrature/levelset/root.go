@@ -9,7 +9,7 @@ func solve(f Function, x []float64, k int, lo, hi, guess float64, rising bool, g
 	first, last := lo, hi
 	t := min(max(guess, lo), hi)
 	before := math.Inf(1)
-	holes := 0
+	holes, doubts := 0, 0
 	for range 200 {
 		x[k] = t
 		v := f.Value(x)
@@ -51,9 +51,11 @@ func solve(f Function, x []float64, k int, lo, hi, guess float64, rising bool, g
 			next, size = lo+(hi-lo)/2, math.Inf(1)
 		case size <= ulp(t) || !math.IsInf(before, 1) && size*size*size <= before*before*ulp(t)/8:
 			// Quadratic convergence: the step after this one would be
-			// size³/before², less than rounding.
+			// size³/before², less than rounding. Next to a kink it is not.
 			x[k] = next
-			return
+			if doubts++; doubts > 4 || !(math.Abs(f.Value(x)/g[k]) > 64*ulp(t)) {
+				return
+			}
 		}
 		before = size
 		t = next
