@@ -30,8 +30,8 @@ misses it; where there is no enclosure the reason is given.
 A surface on which a check fails has no energy, and is wrong input: the traces off
 the well, u discontinuous across it, the jump of the gradient not normal to it.
 
-With --evidence a file is written for each energy as soon as it is computed: the case,
-the numbers, and what they rest on. audit verifies enclosures and exact energies,
+With --evidence a file is written for each energy as soon as it is shown: the case, the
+numbers, and what they rest on. audit verifies enclosures and exact energies,
 and repeats the others.
 
 A CASE is a file, a folder (all files *.toml in it), the name of a built-in case,

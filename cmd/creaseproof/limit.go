@@ -34,7 +34,7 @@ standard error of the fit, and the energy extrapolated to eps = 0. The outcome i
 and expect in the case file says which is expected (sharp otherwise). All of it
 is floating-point arithmetic and proves nothing.
 
-With --evidence a file is written for each approximation as soon as it is computed:
+With --evidence a file is written for each approximation as soon as it is shown:
 the case and the numbers, which audit repeats.
 
 A CASE is a file, a folder (all files *.toml in it), the name of a built-in case,

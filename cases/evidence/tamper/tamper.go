@@ -1,5 +1,5 @@
-// Package tamper changes JSON documents in one place at a time, for tests of what
-// reads them.
+// Package tamper changes JSON documents in one place at a time, for the tests of
+// what reads them.
 package tamper
 
 import (
@@ -31,6 +31,36 @@ func Changes(text []byte) ([]Change, error) {
 	w.doc = func() ([]byte, error) { return json.Marshal(doc) }
 	w.walk(doc, "", func(x any) { doc = x }, nil)
 	return w.list, w.err
+}
+
+// Put is a document with another value in one place, any place below the top; the
+// places are counted round.
+func Put(text []byte, place uint, value any) ([]byte, error) {
+	var doc any
+	if err := json.Unmarshal(text, &doc); err != nil {
+		return nil, err
+	}
+	var places []func()
+	var visit func(x any)
+	visit = func(x any) {
+		switch x := x.(type) {
+		case []any:
+			for i := range x {
+				places = append(places, func() { x[i] = value })
+				visit(x[i])
+			}
+		case map[string]any:
+			for _, k := range slices.Sorted(maps.Keys(x)) {
+				places = append(places, func() { x[k] = value })
+				visit(x[k])
+			}
+		}
+	}
+	visit(doc)
+	if len(places) > 0 {
+		places[place%uint(len(places))]()
+	}
+	return json.Marshal(doc)
 }
 
 type walker struct {
