@@ -39,6 +39,9 @@ func (r *reader) problem() (*limit.Problem, error) {
 	if err != nil {
 		return nil, err
 	}
+	if err := r.assume(&d); err != nil {
+		return nil, err
+	}
 	p := &limit.Problem{Domain: d, Branches: len(texts)}
 	if l.Approximation != "profile" {
 		if p.Combine, err = branches.Read(*l.Combine, len(texts)); err != nil {
@@ -203,19 +206,7 @@ func (r *reader) onWell(t source.Text, node formula.Node, jets *program.Program,
 	}
 	ws, wsJets := p.NewWorkspace(), jets.NewWorkspace()
 	out, res := make([]float64, jets.NumOutputs()), make([]float64, 1)
-	s, x, jac := make([]float64, r.n), make([]float64, r.n), make([][]float64, r.n)
-	for i := range jac {
-		jac[i] = make([]float64, r.n)
-	}
-	for k := range 9 {
-		for i := range s {
-			_, f := math.Modf(0.5 + 0.618033988749895*float64((k+1)*(i+1)) + 0.1*float64(i))
-			s[i] = d.Lo[i] + f*(d.Hi[i]-d.Lo[i])
-		}
-		copy(x, s)
-		if d.Map != nil {
-			d.Map(s, x, jac)
-		}
+	for _, x := range r.points(d) {
 		jets.Eval(wsJets, x, out)
 		size := 1e-300
 		for _, v := range out[1 : 1+r.n] {

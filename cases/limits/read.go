@@ -27,7 +27,9 @@ type reader struct {
 	set   *entropy.Setting
 	scope *formula.Scope // with the names of the values
 	small string         // the name of eps
-	n     int            // coordinates
+
+	chosen map[string]string // values, as they are written
+	n      int               // coordinates
 }
 
 func (r *reader) fault(t source.Text, advice, format string, args ...any) error {
@@ -92,11 +94,8 @@ func evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int, f
 		return nil, err
 	}
 	v := Empty(l)
-	for i, x := range l.Values {
-		if v.Values == nil {
-			v.Values = map[string]string{}
-		}
-		v.Values[x.Name.S] = strings.TrimSpace(x.List[at[i]].S)
+	if len(l.Values) > 0 {
+		v.Values = r.chosen
 	}
 	eps, err := r.falling()
 	if err != nil {
@@ -139,7 +138,7 @@ func newReader(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) 
 	if set.Lets == nil {
 		set.Lets = map[string]formula.Node{}
 	}
-	r := &reader{ctx: ctx, c: c, l: l, set: &set, n: len(set.Coordinates)}
+	r := &reader{ctx: ctx, c: c, l: l, set: &set, n: len(set.Coordinates), chosen: map[string]string{}}
 	if r.n < 1 || r.n > 3 || len(set.Unknowns) != 1 {
 		return nil, c.Fault(l.Pos, "declare one to three coordinates and one unknown", "approximations in %d coordinates of %d unknowns", r.n, len(set.Unknowns))
 	}
@@ -164,6 +163,7 @@ func newReader(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) 
 			return nil, err
 		}
 		set.Lets[name] = node
+		r.chosen[v.Name.S] = strings.TrimSpace(v.List[at[i]].S)
 	}
 	r.scope = scope
 	for _, k := range set.Constants {

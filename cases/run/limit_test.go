@@ -4,6 +4,7 @@ import (
 	"context"
 	"encoding/json"
 	"math"
+	"strings"
 	"testing"
 	"time"
 
@@ -168,4 +169,24 @@ func TestLimitDocument(t *testing.T) {
 	assert.Equal(t, "wall", l["approximation"])
 	assert.NotContains(t, l, "rate")
 	assert.Equal(t, true, l["below_rounding"])
+}
+
+func TestLimitOfValuesThatBreakAnAssumption(t *testing.T) {
+	for name, c := range map[string]struct{ assume, text, says string }{
+		"a value":       {`"m > 1"`, limitWall, `the assumption "m > 1" of the case does not hold for m = 1, eps = 1/20`},
+		"an eps":        {`"eps < 1/50"`, limitWall, `the assumption "eps < 1/50" of the case does not hold`},
+		"a coordinate":  {`"x > 0"`, limitWall, `the assumption "x > 0" of the case does not hold at (x, y, z) = (`},
+		"no such value": {`"m > 0", "x < 2", "eps > 0"`, limitWall, ""},
+	} {
+		text := strings.Replace(layeredCase, "[let]", "assume = ["+c.assume+"]\n[let]", 1)
+		out := Limit(t.Context(), []*cases.Case{parsed(t, text+c.text)}, LimitOptions{})
+		if c.says == "" {
+			assert.NoError(t, out.Results[0].Err, name)
+			assert.True(t, out.Met(), name)
+			continue
+		}
+		assert.ErrorContains(t, out.Results[0].Err, c.says, name)
+		assert.True(t, out.Faulty(), name)
+		assert.Empty(t, out.Results[0].Values, name)
+	}
 }

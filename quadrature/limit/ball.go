@@ -253,14 +253,16 @@ func (b *ball) look(i int) {
 
 // convolve chooses the way.
 func (b *ball) convolve() {
-	one := b.here
-	if len(b.set) == 1 && !b.rough[one] {
-		b.whole(one)
-		return
-	}
 	b.flat = true
+	rough := false
 	for _, i := range b.set {
 		b.flat = b.flat && b.affine[i]
+		rough = rough || b.rough[i]
+	}
+	one := len(b.set) == 1
+	if one && !rough {
+		b.whole(b.here)
+		return
 	}
 	if b.flat {
 		b.axes()
@@ -270,18 +272,22 @@ func (b *ball) convolve() {
 		return
 	}
 	b.approx = true
+	b.rank, b.kernel = b.n, b.kernels[b.n]
+	for _, i := range b.set {
+		if b.rough[i] && b.n > 1 && b.about(i) {
+			return
+		}
+	}
+	if one && b.n > 1 {
+		b.whole(b.here)
+		return
+	}
 	if len(b.set) == 2 && b.n > 1 && b.pair(b.set[0], b.set[1]) {
 		return
 	}
 	b.sum = [13]float64{}
 	b.axes()
 	b.rank = b.n
-	b.kernel = b.kernels[b.n]
-	for _, i := range b.set {
-		if b.rough[i] && b.n > 1 && b.about(i) {
-			return
-		}
-	}
 	b.over()
 }
 

@@ -3,13 +3,14 @@ package limit
 import "math"
 
 const (
+	sure    = 0.3    // variation of the gradients over their jump, below which lines cross a crease once
 	grazing = 0.9995 // distance of a crease from which its part of the ball is nothing
 	newton  = 4      // steps to a crease
 )
 
 // bent is the variation of the gradients over their jump up to which a crease is
 // taken for a graph, by the number of coordinates.
-var bent = [4]float64{0, 0, 0.3, 0.5}
+var bent = [4]float64{0, 0, 0.3, 1.5}
 
 // pair adds branch i on the ball and the difference of branch j on the part of
 // it where j is active, if that is a cap whose base is the graph of a function
@@ -20,7 +21,7 @@ var bent = [4]float64{0, 0, 0.3, 0.5}
 // order, that need not be found exactly.
 func (b *ball) pair(i, j int) bool {
 	jump := b.g[j].sub(b.g[i]).norm()
-	if b.rough[i] || b.rough[j] || b.vary[i]+b.vary[j] > bent[b.n]*jump {
+	if b.vary[i]+b.vary[j] > bent[b.n]*jump {
 		return false
 	}
 	sign := b.takes(i, j)
@@ -37,10 +38,9 @@ func (b *ball) pair(i, j int) bool {
 	case unclear:
 		return false
 	}
-	if !c.rim() || !c.graph() {
+	if !c.rim() || !c.graph() || b.vary[i]+b.vary[j] > sure*jump && !c.below() || !c.add() {
 		return false
 	}
-	c.add()
 	b.whole(i)
 	return true
 }
@@ -226,8 +226,28 @@ func (c *caps) graph() bool {
 	return true
 }
 
-// add adds the cap.
-func (c *caps) add() {
+// below reports whether branch j is not active at the lower ends of the lines.
+func (c *caps) below() bool {
+	b := c.b
+	list := b.nodes[:0]
+	for _, s := range c.at {
+		if s.t > -s.top {
+			list = append(list, sample{y: s.y.plus(-s.t-s.top, c.e)})
+		}
+	}
+	b.nodes = list
+	c.differ(list)
+	for _, s := range list {
+		if s.u > 0 {
+			return false
+		}
+	}
+	return true
+}
+
+// add adds the cap. It reports false where branch j turns out not to be active
+// on all of it.
+func (c *caps) add() bool {
 	b := c.b
 	list := b.nodes[:0]
 	for _, s := range c.at {
@@ -245,7 +265,11 @@ func (c *caps) add() {
 	c.differ(list)
 	for k := range list {
 		s := &list[k]
+		if s.u < 0 && s.u < -1e-6*b.delta*s.g.norm() {
+			return false
+		}
 		value, slope := b.weights(s.y)
 		b.put(s.y, s.w*value, s.w*slope, c.sign*s.u, s.g.times(c.sign))
 	}
+	return true
 }

@@ -26,10 +26,17 @@ type orders struct {
 	rules       []gauss // by the number of nodes
 }
 
-// across is the rule on a piece of the given length of an angle.
-func (o *orders) across(length float64) *gauss {
-	return &o.rules[o.least+int(math.Ceil(float64(o.half-o.least)*math.Min(1, length/math.Pi)))]
+// across is the rule on a piece of the given length of an angle; exact lines are
+// cheap, so that there may be more of them.
+func (o *orders) across(length float64, exact bool) *gauss {
+	n := o.least + int(math.Ceil(float64(o.half-o.least)*math.Min(1, length/math.Pi)))
+	if exact {
+		n += more
+	}
+	return &o.rules[n]
 }
+
+const more = 5 // exact lines
 
 // node is a node of a rule on the unit ball with the weights of ρ and of -∇ρ.
 type node struct {
@@ -53,8 +60,8 @@ func newOrders(n int, finer bool) *orders {
 			heights += 3
 		}
 	}
-	o.rules = make([]gauss, 1, o.half+1)
-	for k := 1; k <= o.half; k++ {
+	o.rules = make([]gauss, 1, o.half+more+1)
+	for k := 1; k <= o.half+more; k++ {
 		o.rules = append(o.rules, newGauss(k))
 	}
 	o.ball = ballRule(n, newGauss(radial), angles, heights)

@@ -12,7 +12,8 @@ package limit
 //
 // Jets come by quadrature, exact to rounding where the branches in the ball are
 // affine and their gradients lie on a line, otherwise with a relative error of
-// about 1e-9 in the plane and 1e-6 in space. A Mollifier is not safe for
+// about 1e-9 in the plane and 1e-6 in space, more where a branch bends much within
+// a ball. A Mollifier is not safe for
 // concurrent use.
 type Mollifier struct {
 	Width float64 // DefaultWidth if zero
@@ -64,10 +65,12 @@ func (m *Mollifier) accuracy(p *Problem) float64 {
 	switch {
 	case affine == p.Branches && affine == 2:
 		return 0
-	case affine == p.Branches, len(p.Domain.Lo) < 3:
+	case len(p.Domain.Lo) < 3:
 		return 1e-8
+	case affine == p.Branches:
+		return 1e-6
 	}
-	return 1e-6
+	return 1e-5
 }
 
 func (m *Mollifier) smooth(p *Problem, x []float64, eps float64, level int, out *Jet) {

@@ -27,7 +27,7 @@ func (b *ball) planes(of func(t float64) slice) {
 		return s.pattern()
 	})
 	for k := 1; k < len(edges); k++ {
-		g := b.o.across(edges[k] - edges[k-1])
+		g := b.o.across(edges[k]-edges[k-1], false)
 		for i, x := range g.x {
 			sin, cos := math.Sincos(edges[k-1] + (edges[k]-edges[k-1])*x)
 			s := of(sin)
@@ -175,7 +175,7 @@ func (s *slice) add(weight float64) {
 		size := edges[k] - edges[k-1]
 		n := math.Ceil(size / (0.6 * math.Pi)) // parts
 		size /= n
-		g := s.b.o.across(size)
+		g := s.b.o.across(size, s.b.flat)
 		for c := range int(n) {
 			for i, x := range g.x {
 				l, w := s.line(edges[k-1] + size*(float64(c)+x))

@@ -178,7 +178,7 @@ func (w *walk) rough() float64 {
 // density is the integrand along a fibre.
 func (w *walk) density(s float64, out, _ *values) error {
 	w.used++
-	if w.used%1024 == 0 && w.ctx.Err() != nil {
+	if (w.used%1024 == 0 || w.layer != nil && w.used%16 == 0) && w.ctx.Err() != nil {
 		return w.ctx.Err()
 	}
 	w.s[w.order[w.n-1]] = s
