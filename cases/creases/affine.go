@@ -142,7 +142,7 @@ func (c *combination) faces(r *Result, d domain) (done bool, err error) {
 			s.add(f.SquaredArea(), p)
 		}
 		sheet := Sheet{Area: one.areaFloat(), Exact: one.exact(), SquaredArea: f.SquaredArea().RatString()}
-		sheet.Energy, _ = one.energy()
+		sheet.Energy, sheet.Error = one.energy()
 		for _, v := range f.Vertices {
 			var x []string
 			for _, q := range v {

@@ -43,6 +43,17 @@
 // resolution reported is missed, and where none is reported nothing at all, up
 // to the area that the error allows for.
 //
+// Branches that agree with a pair on all of its surface are ordered beside it:
+// exact arithmetic divides the differences, and the quotients have to be bounded
+// on the box of the pair and apart from each other, by enclosures. Where that does
+// not succeed the surface is refused.
+//
+// The sheets of a pair, and of a level set, are the connected components of where
+// the other branches are strictly on their side, in the inside of the domain: two
+// that only touch, at a point or along a line where more than two branches meet,
+// are two. Which parts are connected is found numerically (package levelset), and
+// where boxes are undecided their number is not settled, which the result says.
+//
 // Branches that are affine with rational coefficients, in a box with rational
 // ends, have faces with rational corners. Where the density is rational on them
 // up to the root of the area, the energy is a rational number, or with a

@@ -45,8 +45,12 @@ func (c *combination) implicit(r Result, rel, allowed float64) (Result, error) {
 		if err != nil {
 			return "", err
 		}
-		v, reason, err := c.within(t, &d, phi, d.trims(), d.box, onWell, 0)
+		v, reason, err := c.within(t, &d, part{phi: phi, systems: [][]levelset.Function{d.trims()}, box: d.box}, onWell)
+		if v.vanishing != nil && reason == "" {
+			reason = c.onBoundary(v.vanishing)
+		}
 		t.add(v)
+		t.sheets, t.unsettled = v.sheets, v.unsettled
 		if reason == "" && err == nil && v.empty {
 			reason = fmt.Sprintf("the level set %s = 0 misses the domain%s: by enclosures it has no point there", strings.TrimSpace(c.s.shape.level.text.S), c.where())
 		}
@@ -63,6 +67,8 @@ type tally struct {
 	resolution       float64
 	limited          error
 	pairs            []Pair
+	sheets           []Sheet // of a level set
+	unsettled        bool
 }
 
 // finish runs the integrals and compares.
@@ -83,7 +89,7 @@ func (c *combination) finish(r Result, rel, allowed float64, run func(*tally) (s
 		return r.refuse(reason), nil
 	}
 	r.Energy, r.Error, r.Area = &t.energy, &t.failure, &t.area
-	r.Pairs = t.pairs
+	r.Pairs, r.Sheets, r.Unsettled = t.pairs, t.sheets, t.unsettled
 	if t.undecided > 0 {
 		r.Resolution = &t.resolution
 	}
@@ -106,6 +112,9 @@ type share struct {
 	resolution            float64
 	limited               error
 	empty                 bool
+	sheets                []Sheet
+	unsettled             bool // how many sheets there are
+	vanishing             *levelset.VanishingError
 }
 
 func (t *tally) add(v share) {
@@ -119,66 +128,43 @@ func (t *tally) add(v share) {
 	}
 }
 
-// blocks cuts the box of a round domain into parts such that its boundary does
-// not pass through those about its centre: there branches may meet, just where
-// the boundary is parallel to a side.
-func (d *domain) blocks(box [][2]float64) [][][2]float64 {
-	list := [][][2]float64{slices.Clone(box)}
+// part is a part of a level set: where all conditions of one of the systems
+// hold, in a box.
+type part struct {
+	phi     levelset.Function
+	systems [][]levelset.Function
+	box     [][2]float64
+	abs     float64 // error that does not matter
+}
+
+// cuts are places at which the box of a round domain is cut such that its
+// boundary does not pass through the blocks about its centre: there branches may
+// meet, just where the boundary is parallel to a side.
+func (d *domain) cuts() [][]float64 {
+	list := make([][]float64, len(d.box))
 	for i, k := range d.round {
-		cuts := []float64{d.center[i] - 0.5234*d.radius, d.center[i] + 0.5417*d.radius}
-		var next [][][2]float64
-		for _, b := range list {
-			for _, at := range cuts {
-				if b[k][0] < at && at < b[k][1] {
-					low := slices.Clone(b)
-					low[k][1] = at
-					next = append(next, low)
-					b = slices.Clone(b)
-					b[k][0] = at
-				}
-			}
-			next = append(next, b)
-		}
-		list = next
+		list[k] = []float64{d.center[i] - 0.5234*d.radius, d.center[i] + 0.5417*d.radius}
 	}
 	return list
 }
 
 // within is over for a part of a round domain: where cells are left undecided
 // in one piece it is done in blocks.
-func (c *combination) within(t *tally, d *domain, phi levelset.Function, trims []levelset.Function, box [][2]float64, onWell bool, abs float64) (share, string, error) {
-	v, reason, err := c.over(t, phi, trims, box, onWell, abs)
+func (c *combination) within(t *tally, d *domain, p part, onWell bool) (share, string, error) {
+	v, reason, err := c.over(t, p, nil, onWell)
 	if d.round == nil || !errors.Is(v.limited, levelset.ErrResolution) {
 		return v, reason, err
 	}
-	sum := share{empty: true}
-	for _, b := range d.blocks(box) {
-		w, reason, err := c.over(t, phi, trims, b, onWell, max(abs, t.rel*math.Abs(v.energy)/8))
-		if reason != "" || err != nil {
-			return w, reason, err
-		}
-		if w.empty {
-			continue
-		}
-		sum.empty = false
-		sum.energy += w.energy
-		sum.failure += w.failure
-		sum.area += w.area
-		sum.undecided += w.undecided
-		sum.resolution = math.Max(sum.resolution, w.resolution)
-		if w.limited != nil {
-			sum.limited = w.limited
-		}
-	}
-	if sum.failure < v.failure {
-		return sum, "", nil
+	w, reason, err := c.over(t, p, d.cuts(), onWell)
+	if reason != "" || err != nil || w.empty || w.failure < v.failure {
+		return w, reason, err
 	}
 	return v, "", nil
 }
 
-// over integrates over a part of a level set; abs is the error that does not
-// matter. The reason is that for which the surface is refused.
-func (c *combination) over(t *tally, phi levelset.Function, trims []levelset.Function, box [][2]float64, onWell bool, abs float64) (v share, reason string, err error) {
+// over integrates over a part of a level set, whose box is cut in the beginning
+// at the places given. The reason is that for which the surface is refused.
+func (c *combination) over(t *tally, p part, cuts [][]float64, onWell bool) (v share, reason string, err error) {
 	tr, options, err := c.traces()
 	if err != nil {
 		return v, "", err
@@ -190,9 +176,9 @@ func (c *combination) over(t *tally, phi levelset.Function, trims []levelset.Fun
 	if onWell {
 		options.Well = nil
 	}
-	at := newNodes(len(box), tr, options, density, box)
-	q, err := levelset.Integrate(c.ctx, phi, trims, box, at.at, levelset.Options{
-		Parts: 1, Probe: at.near, Rel: t.rel, Abs: math.Max(t.abs, abs), MaxNodes: c.o.MaxEvaluations,
+	at := newNodes(len(p.box), tr, options, density, p.box)
+	q, err := levelset.IntegrateUnion(c.ctx, p.phi, p.systems, p.box, at.at, levelset.Options{
+		Parts: 1, Probe: at.near, Rel: t.rel, Abs: math.Max(t.abs, p.abs), MaxNodes: c.o.MaxEvaluations, Cuts: cuts,
 	})
 	if c.ctx.Err() != nil {
 		return v, "", c.ctx.Err()
@@ -205,12 +191,25 @@ func (c *combination) over(t *tally, phi levelset.Function, trims []levelset.Fun
 		return share{empty: true}, "", nil
 	case errors.Is(err, levelset.ErrBudget), errors.Is(err, levelset.ErrResolution), errors.Is(err, levelset.ErrAccuracy):
 		v.limited = err
+	case errors.As(err, &v.vanishing):
+		return v, "", nil
 	case err != nil:
 		return v, strings.TrimPrefix(err.Error(), "level set: ") + c.where(), nil
 	}
 	v.energy, v.failure, v.area = q.Value[0], q.Error[0]+inexact*math.Abs(q.Value[0]), q.Area
-	v.undecided, v.resolution = q.Undecided, q.Resolution
+	v.undecided, v.resolution, v.unsettled = q.Undecided, q.Resolution, !q.Settled
+	for _, s := range q.Components {
+		v.sheets = append(v.sheets, Sheet{
+			Energy: s.Value[0], Error: s.Error[0] + inexact*math.Abs(s.Value[0]), Area: s.Area, Point: s.Point, Box: s.Box,
+		})
+	}
 	return v, "", nil
+}
+
+// onBoundary is the reason to refuse a surface on which the condition of a round
+// domain vanishes.
+func (c *combination) onBoundary(v *levelset.VanishingError) string {
+	return "the surface runs along the boundary of the domain" + c.place(v.Point, nil) + c.where() + ": choose a domain that it crosses, or ends inside of"
 }
 
 // creases integrates over the sheets of all pairs of branches.
@@ -228,53 +227,93 @@ func (c *combination) creases(t *tally, d domain, onWell bool) (reason string, e
 		}
 	}
 	for _, p := range pairs {
-		op, systems, err := branches.Cells(h.tree, p.First, p.Second, p.Known)
-		if err != nil {
-			return "", fault(h.branches[p.First].text, "combine fewer branches", "branches %d and %d: the combination needs too many systems of inequalities", p.First+1, p.Second+1)
+		v, third, reason, err := c.crease(t, &d, p, nil, len(pairs), onWell)
+		if err == nil && reason == "" && v.vanishing != nil {
+			switch order := c.beside(p); {
+			case third < 0:
+				reason = c.onBoundary(v.vanishing)
+			case slices.Contains(order, third):
+				w, other, again, fault := c.crease(t, &d, p, order, len(pairs), onWell)
+				if v, reason, err = w, again, fault; v.vanishing != nil && err == nil {
+					reason = c.undecidedBeside(p, other, v.vanishing)
+				}
+			default:
+				reason = c.undecidedBeside(p, third, v.vanishing)
+			}
 		}
-		plus, minus := p.First, p.Second
-		if op == branches.Min {
-			plus, minus = minus, plus
+		if err != nil || reason != "" {
+			return c.ofPair(p, reason), err
 		}
-		between := c.between(plus, minus)
-		phi, err := c.levelFunction(h.branches[p.First], &h.branches[p.Second])
-		if err != nil {
-			return "", err
+		if v.empty {
+			continue
 		}
-		var sum Pair
-		found := false
+		t.add(v)
+		t.pairs = append(t.pairs, Pair{
+			Branches: [2]int{p.First + 1, p.Second + 1}, Energy: v.energy, Error: v.failure, Area: v.area,
+			Sheets: v.sheets, Unsettled: v.unsettled,
+		})
+	}
+	return "", nil
+}
+
+// crease integrates over the sheets of one pair of count. Order is that of
+// branches.Cells. Where a condition vanishes third is the branch it is about, or
+// -1 for that of the domain.
+func (c *combination) crease(t *tally, d *domain, p branches.Pair, order []int, count int, onWell bool) (sum share, third int, reason string, err error) {
+	h := &c.s.shape
+	systems, err := branches.Cells(h.tree, p.First, p.Second, p.Known, order)
+	if err != nil {
+		return sum, 0, "", fault(h.branches[p.First].text, "combine fewer branches", "branches %d and %d: the combination needs too many systems of inequalities", p.First+1, p.Second+1)
+	}
+	phi, err := c.levelFunction(h.branches[p.First], &h.branches[p.Second])
+	if err != nil {
+		return sum, 0, "", err
+	}
+	sum.empty = true
+	for _, op := range [2]branches.Op{branches.Max, branches.Min} {
+		part := part{phi: phi, box: p.Box, abs: t.rel * math.Abs(t.energy) / float64(count)}
+		var about [][]branches.Condition
 		for _, system := range systems {
+			if system.Op != op {
+				continue
+			}
 			trims := d.trims()
-			for _, q := range system {
+			for _, q := range system.Conditions {
 				above, below := h.branches[p.First], h.branches[q.Branch]
 				if q.Relation == branches.Above {
 					above, below = below, above
 				}
 				f, err := c.levelFunction(above, &below)
 				if err != nil {
-					return "", err
+					return sum, 0, "", err
 				}
 				trims = append(trims, f)
 			}
-			v, reason, err := between.within(t, &d, phi, trims, p.Box, onWell, t.rel*math.Abs(t.energy)/float64(len(pairs)))
-			if err != nil || reason != "" {
-				return c.ofPair(p, reason), err
-			}
-			if v.empty {
-				continue
-			}
-			t.add(v)
-			found = true
-			sum.Energy += v.energy
-			sum.Error += v.failure
-			sum.Area += v.area
+			part.systems, about = append(part.systems, trims), append(about, system.Conditions)
 		}
-		if found {
-			sum.Branches = [2]int{p.First + 1, p.Second + 1}
-			t.pairs = append(t.pairs, sum)
+		if about == nil {
+			continue
+		}
+		plus, minus := p.First, p.Second
+		if op == branches.Min {
+			plus, minus = minus, plus
+		}
+		v, reason, err := c.between(plus, minus).within(t, d, part, onWell)
+		if e := v.vanishing; e != nil {
+			third = -1
+			if k := e.Condition - len(d.trims()); k >= 0 {
+				third = about[e.System][k].Branch
+			}
+			return v, third, reason, err
+		}
+		if err != nil || reason != "" {
+			return v, 0, reason, err
+		}
+		if !v.empty {
+			sum = v
 		}
 	}
-	return "", nil
+	return sum, 0, "", nil
 }
 
 func (c *combination) ofPair(p branches.Pair, reason string) string {

@@ -28,6 +28,10 @@ type Result struct {
 	// Pairs are the shares of the pairs of branches between which there is a
 	// crease.
 	Pairs []Pair `json:"pairs,omitempty"`
+	// Sheets are the connected parts of a level set, the largest first, and
+	// Unsettled is as in Pair.
+	Sheets    []Sheet `json:"sheets,omitempty"`
+	Unsettled bool    `json:"unsettled,omitempty"`
 	// Resolution is the diameter of the largest box in which it was not decided
 	// whether a level set passes; absent where everything was.
 	Resolution *float64 `json:"resolution,omitempty"`
@@ -66,7 +70,12 @@ type Pair struct {
 	Area      float64  `json:"area"`
 	Exact     string   `json:"exact,omitempty"`
 	AreaRoots []string `json:"area_roots,omitempty"`
-	Sheets    []Sheet  `json:"sheets,omitempty"` // of affine branches
+	// Sheets are the parts of it, of curved branches the largest first. Unsettled
+	// says that their number is not settled: there are undecided boxes, which may
+	// join some or hold further ones, or places at which it was not found what a
+	// sheet continues to.
+	Sheets    []Sheet `json:"sheets,omitempty"`
+	Unsettled bool    `json:"unsettled,omitempty"`
 }
 
 // MarshalJSON leaves out an error that is not finite, for which JSON has no
@@ -83,13 +92,22 @@ func (p Pair) MarshalJSON() ([]byte, error) {
 	return json.Marshal(out)
 }
 
-// Sheet is a flat part of a crease between affine branches.
+// Sheet is a part of a crease or of a level set. Of affine branches it is a
+// convex polygon with Vertices. Otherwise it is a connected component of where
+// the other branches are strictly below or above, as the case may be, in the
+// inside of the domain; which parts are connected is a numerical finding.
 type Sheet struct {
-	Vertices    [][]string `json:"vertices"`
-	Energy      float64    `json:"energy"`
-	Area        float64    `json:"area"`
+	Energy float64 `json:"energy"`
+	Error  float64 `json:"error"`
+	Area   float64 `json:"area"` // in the plane the length
+	// Point is a point on a curved sheet, to rounding. Box contains the nodes on
+	// it; the sheet may reach a little farther.
+	Point []float64    `json:"point,omitempty"`
+	Box   [][2]float64 `json:"box,omitempty"`
+
+	Vertices    [][]string `json:"vertices,omitempty"`
 	Exact       string     `json:"exact,omitempty"`
-	SquaredArea string     `json:"squared_area"`
+	SquaredArea string     `json:"squared_area,omitempty"`
 }
 
 // Options of an evaluation. The zero value is ready for use.

@@ -132,24 +132,62 @@ func (t *energyText) beside(v *creases.Result) []string {
 	return append(list, count(v.Evaluations, "evaluation", "evaluations"))
 }
 
-// mostPairs bounds the pairs of branches that are listed.
-const mostPairs = 8
+// mostPairs bounds the pairs of branches that are listed, and mostSheets the
+// sheets of each, or of a level set.
+const (
+	mostPairs  = 8
+	mostSheets = 8
+)
 
-// pairs are the shares of the pairs of branches, where there are several.
+// pairs are the shares of the pairs of branches, where there are several, and
+// of the curved sheets of each, or of a level set, where there are several.
 func (t *energyText) pairs(v *creases.Result) {
-	if len(v.Pairs) < 2 {
-		return
-	}
+	t.sheets(v, "", v.Sheets, v.Unsettled)
 	for i, p := range v.Pairs {
 		if i == mostPairs {
 			t.note("", fmt.Sprintf("and %d more pairs", len(v.Pairs)-i))
 			return
 		}
-		energy := p.Exact
-		if energy == "" {
-			energy = fmt.Sprintf("%.15g ± %.1e", p.Energy, p.Error)
+		inner := ""
+		if len(v.Pairs) > 1 {
+			inner = "  "
+			energy := p.Exact
+			if energy == "" {
+				energy = fmt.Sprintf("%.15g ± %.1e", p.Energy, p.Error)
+			}
+			t.note("", fmt.Sprintf("branches %d and %d: %s", p.Branches[0], p.Branches[1], energy))
 		}
-		t.note("", fmt.Sprintf("branches %d and %d: %s", p.Branches[0], p.Branches[1], energy))
+		t.sheets(v, inner, p.Sheets, p.Unsettled)
+	}
+}
+
+// sheets lists curved sheets. That there is one alone is not said.
+func (t *energyText) sheets(v *creases.Result, inner string, list []creases.Sheet, unsettled bool) {
+	line := func(format string, args ...any) { fmt.Fprintf(t.w, indent+inner+format+"\n", args...) }
+	if unsettled {
+		why := ""
+		if v.Resolution != nil {
+			why = fmt.Sprintf(": boxes of diameter up to %.1e are undecided", *v.Resolution)
+		}
+		line("the number of sheets is not settled%s", why)
+	}
+	if len(list) < 2 || list[0].Point == nil {
+		return
+	}
+	area := "area"
+	if len(t.current.Setting.Coordinates) == 2 {
+		area = "length"
+	}
+	for i, s := range list {
+		if i == mostSheets {
+			line("and %d more sheets", len(list)-i)
+			return
+		}
+		var at []string
+		for _, x := range s.Point {
+			at = append(at, fmt.Sprintf("%.4g", x))
+		}
+		line("sheet through (%s): %.12g ± %.1e, %s %.5g", strings.Join(at, ", "), s.Energy, s.Error, area, s.Area)
 	}
 }
 

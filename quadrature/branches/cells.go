@@ -1,6 +1,9 @@
 package branches
 
-import "errors"
+import (
+	"errors"
+	"slices"
+)
 
 // A Relation says how a branch compares with the value of a pair.
 type Relation uint8
@@ -18,124 +21,145 @@ type Condition struct {
 	Relation Relation // Below or Above
 }
 
+// System is a set of conditions under which a pair makes a crease, and whether
+// the tree is the maximum or the minimum of the pair there.
+type System struct {
+	Conditions []Condition
+	Op         Op
+}
+
 // ErrCells says that a tree has too many ways to make a sheet of a pair.
 var ErrCells = errors.New("branches: the combination needs too many systems of inequalities")
 
-const mostCells = 1000
+// mostCells bounds the systems, and mostLooks the sets of conditions looked at.
+const (
+	mostCells = 1000
+	mostLooks = 50000
+)
 
 // Cells gives the conditions on the other branches under which the pair i, j,
 // with the same value, makes a crease: one of the systems has to hold, and no
-// two hold at once. Op says whether the tree is the maximum or the minimum of
-// the pair there. Known may hold relations that need no condition; it has an
+// two hold at once. Known may hold relations that need no condition; it has an
 // entry for each branch, or is nil.
-func Cells(t *Tree, i, j int, known []Relation) (op Op, systems [][]Condition, err error) {
-	c := &cells{i: i, j: j, known: known}
-	has := c.holds(t)
-	if has != both {
-		return Leaf, nil, nil
+//
+// Order is nil, or lists the branches that have the value of the pair on all of
+// its surface, the pair among them, as they follow on each other where u_i > u_j,
+// the lowest first. Where u_i < u_j they follow in the opposite order.
+func Cells(t *Tree, i, j int, known []Relation, order []int) ([]System, error) {
+	if order == nil {
+		order = []int{j, i}
 	}
-	systems = c.through(t)
+	c := &cells{i: i, j: j, at: map[int]place{}}
+	for k, r := range known {
+		if r != Open {
+			c.at[k] = place{relation: r}
+		}
+	}
+	for n, k := range order {
+		c.at[k] = place{rank: n - slices.Index(order, i), same: true}
+	}
+	c.split(t, nil)
 	if c.tooMany {
-		return Leaf, nil, ErrCells
+		return nil, ErrCells
 	}
-	return c.op, systems, nil
+	return c.systems, nil
+}
+
+// place is where a branch is compared with the pair: below, above, or at it with
+// a rank on the side where u_i > u_j, that of i being 0.
+type place struct {
+	relation Relation
+	rank     int
+	same     bool
 }
 
 type cells struct {
 	i, j    int
-	known   []Relation
-	op      Op
+	at      map[int]place
+	systems []System
+	looks   int
 	tooMany bool
 }
 
-const (
-	first  = 1
-	second = 2
-	both   = first | second
-)
-
-// holds tells which of the pair a tree holds.
-func (c *cells) holds(t *Tree) (h int) {
-	if t.Op == Leaf {
-		switch t.Branch {
-		case c.i:
-			return first
-		case c.j:
-			return second
-		}
-		return 0
-	}
-	for _, a := range t.Args {
-		h |= c.holds(a)
-	}
-	return h
-}
-
-// through gives the systems under which a tree that holds one of the pair, or
-// both, has their value.
-func (c *cells) through(t *Tree) [][]Condition {
-	out := [][]Condition{nil}
-	if t.Op == Leaf {
-		return out
-	}
-	parts := 0
-	for _, a := range t.Args {
-		if c.holds(a) != 0 {
-			parts++
-			out = c.product(out, c.through(a))
-			continue
-		}
-		side := Below
-		if t.Op == Min {
-			side = Above
-		}
-		out = c.product(out, c.apart(a, side))
-	}
-	if parts == 2 {
-		c.op = t.Op
-	}
-	return out
-}
-
-// apart gives the systems under which a tree without the pair is on that side.
-func (c *cells) apart(t *Tree, side Relation) [][]Condition {
-	if t.Op == Leaf {
-		if c.known != nil && c.known[t.Branch] != Open {
-			if c.known[t.Branch] == side {
-				return [][]Condition{nil}
-			}
-			return nil
-		}
-		return [][]Condition{{{t.Branch, side}}}
-	}
-	if (t.Op == Max) == (side == Below) { // all of them
-		out := [][]Condition{nil}
-		for _, a := range t.Args {
-			out = c.product(out, c.apart(a, side))
-		}
-		return out
-	}
-	// One of them: the first is at m.
-	var out [][]Condition
-	before := [][]Condition{nil}
-	for _, a := range t.Args {
-		out = append(out, c.product(before, c.apart(a, side))...)
-		before = c.product(before, c.apart(a, Below+Above-side))
-	}
-	return out
-}
-
-// product joins every system of a to every one of b.
-func (c *cells) product(a, b [][]Condition) [][]Condition {
-	if len(a)*len(b) > mostCells {
+// split decides the tree under conditions, and adds some where that needs them.
+func (c *cells) split(t *Tree, conditions []Condition) {
+	if c.looks++; c.looks > mostLooks || len(c.systems) > mostCells {
 		c.tooMany = true
-		return nil
+		return
 	}
-	var out [][]Condition
-	for _, x := range a {
-		for _, y := range b {
-			out = append(out, append(x[:len(x):len(x)], y...))
+	v := c.value(t, 1)
+	if v.known {
+		if !v.same {
+			return
+		}
+		plus, minus := v.branch, c.value(t, -1).branch
+		switch {
+		case plus == c.i && minus == c.j:
+			c.systems = append(c.systems, System{slices.Clone(conditions), Max})
+		case plus == c.j && minus == c.i:
+			c.systems = append(c.systems, System{slices.Clone(conditions), Min})
+		}
+		return
+	}
+	for _, r := range [2]Relation{Below, Above} {
+		c.at[v.want] = place{relation: r}
+		c.split(t, append(conditions, Condition{v.want, r}))
+		if c.tooMany {
+			return
 		}
 	}
-	return out
+	delete(c.at, v.want)
+}
+
+// reading is the place of a tree and the branch that it equals where that is at
+// the pair; or, where it is not known, a branch that has to be placed first.
+type reading struct {
+	place
+	branch int
+	known  bool
+	want   int
+}
+
+// order is -1 below the pair, 1 above, 0 at it.
+func (p place) order() int {
+	switch {
+	case p.same:
+		return 0
+	case p.relation == Below:
+		return -1
+	}
+	return 1
+}
+
+// value is the tree on the side where u_i - u_j has the given sign.
+func (c *cells) value(t *Tree, side int) reading {
+	if t.Op == Leaf {
+		p, ok := c.at[t.Branch]
+		return reading{place: p, branch: t.Branch, known: ok, want: t.Branch}
+	}
+	end := 1 // the order that settles the node
+	if t.Op == Min {
+		end = -1
+	}
+	var best, open reading
+	found, opened := false, false
+	for _, a := range t.Args {
+		v := c.value(a, side)
+		switch {
+		case !v.known:
+			if !opened {
+				open, opened = v, true
+			}
+		case v.order() == end:
+			return v
+		case !found:
+			best, found = v, true
+		case (v.order()-best.order())*end > 0, v.same && best.same && (v.rank-best.rank)*side*end > 0:
+			best = v
+		}
+	}
+	if opened {
+		return open
+	}
+	return best
 }

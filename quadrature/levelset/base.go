@@ -38,12 +38,13 @@ func (p *plan) newBase(c *cell, up int, rising bool) *base {
 		}
 	}
 	box := p.tbox[:d]
-	for _, psi := range p.trims {
+	for k, psi := range p.systems[c.system] {
 		c.box(box)
 		if r := psi.Range(box); r.Inf() >= 0 {
 			continue
 		}
 		t := newTrace(psi, p.phi, d, up, c.lo[up], c.hi[up], rising)
+		t.condition = k
 		r := t.Range(b.box[:d-1])
 		if r.Sup() < 0 || r.IsEmpty() {
 			return nil
@@ -132,4 +133,43 @@ func (p *plan) turning(c *cell, b *base) (j int, s float64, ok bool) {
 		}
 	}
 	return 0, 0, false
+}
+
+// vanishing returns a trim that is zero to rounding at all of a number of
+// points of the surface in the cell, spread over the base, and so everywhere. In
+// large cells it does not look.
+func (b *base) vanishing() *trace {
+	const most, need = 24, 6
+	for i := range b.p.dim {
+		if b.cell.relative(b.p, i) > 1.0/8 {
+			return nil
+		}
+	}
+	box := b.p.tbox[:b.p.dim]
+	b.cell.box(box)
+	tiny := func(f Function, x []float64) bool { return math.Abs(f.Value(x)) <= 1e-11*f.Range(box).Mag() }
+	var x [2]float64
+	for _, t := range b.trims {
+		found := 0
+		for i := range most {
+			// Multiples of powers of a generalised golden section.
+			for k, step := range [2]float64{0.7548776662466927, 0.5698402909980532} {
+				if k < b.dim {
+					_, f := math.Modf(0.5 + float64(i+1)*step)
+					x[k] = b.box[k].Inf() + f*b.box[k].Wid()
+				}
+			}
+			t.lift(x[:b.dim])
+			if !tiny(t.phi, t.x) {
+				continue // the surface is not over this point
+			}
+			if !tiny(t.psi, t.x) {
+				break
+			}
+			if found++; found == need {
+				return t
+			}
+		}
+	}
+	return nil
 }

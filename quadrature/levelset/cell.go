@@ -1,6 +1,9 @@
 package levelset
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // thinWidth is the width, relative to that of the whole box, below which a
 // direction of a cell is thin: it comes from a cut next to a critical point.
@@ -10,6 +13,7 @@ const thinWidth = 0x1p-40
 type cell struct {
 	lo, hi [3]float64
 	size   float64 // largest relative width
+	system int     // whose conditions apply
 }
 
 // box puts the intervals of a cell into b.
@@ -61,7 +65,7 @@ func (p *plan) treat(c *cell) (verdict, error) {
 	case r.Inf() == 0 && r.Sup() == 0:
 		return done, p.identical(c)
 	}
-	for _, t := range p.trims {
+	for _, t := range p.systems[c.system] {
 		if r := t.Range(box); r.Sup() < 0 || r.IsEmpty() {
 			return done, nil
 		}
@@ -124,6 +128,9 @@ func (p *plan) treatPlain(c *cell, g []Interval) (verdict, error) {
 		l, ok := b.direction()
 		if ok && p.record(b, l) {
 			return done, nil
+		}
+		if t := b.vanishing(); t != nil {
+			return done, &VanishingError{System: c.system, Condition: t.condition, Point: slices.Clone(t.x)}
 		}
 		if first == nil && !ok {
 			first = b

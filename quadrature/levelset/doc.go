@@ -37,6 +37,17 @@
 // cut off their centres, so that surfaces placed symmetrically do not lie on
 // faces.
 //
+// # Components
+//
+// Graphs of neighbouring cells belong to one component of the surface where they
+// have a point in common at which every condition holds strictly. Points on the
+// edges of graphs are looked at, several on each edge while there is more than
+// one component. In a cell there is one graph, cut into parts that do not
+// overlap, so that such a point belongs to every part whose cell and outer range
+// it lies in. Across a thin slab it does where the surface crosses the slab at an
+// angle of at least 2^-10. In IntegrateUnion parts of different systems are
+// joined where a condition vanishes and the opposite one does.
+//
 // # What is guaranteed
 //
 //   - Cells are discarded only where outward-rounded intervals show that phi is
@@ -59,6 +70,13 @@
 //     that at some places of the cells left out. Where a refinement moves a value by more
 //     than the estimate allowed, the estimates of the parts are enlarged. A
 //     density with a peak between all nodes is not seen.
+//   - Components: the points on edges are floating-point numbers, and a condition
+//     within 2^-38 of the box of its zero, by its gradient, counts as zero. A
+//     bridge between two parts narrower than 1e-6 of the edges it crosses, or a
+//     gap narrower than 2^-42 of the box, may go unseen; so may a curve on which
+//     a condition vanishes without a change of sign. Undecided cells may hold
+//     further components, or join those found: Result.Settled says that there are
+//     none, but for cells in which thin slabs cross.
 //   - Singular points, where grad phi vanishes on the surface, as at the tip of a
 //     cone, end in undecided cells so small that their share is within
 //     the tolerance; that each of these holds at most two sheets is assumed, not

@@ -281,6 +281,9 @@ func (d *driver) result(stop error) (Result, error) {
 			r.Value[c-1], r.Error[c-1] = v, e
 		}
 	}
+	if stop == nil || errors.Is(stop, ErrResolution) || errors.Is(stop, ErrBudget) || errors.Is(stop, ErrAccuracy) {
+		d.components(&r, lost)
+	}
 	switch {
 	case stop == nil && len(d.sheets) == 0 && r.Undecided == 0 && d.skipped == 0:
 		return r, ErrEmpty

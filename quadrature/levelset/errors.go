@@ -1,6 +1,9 @@
 package levelset
 
-import "errors"
+import (
+	"errors"
+	"fmt"
+)
 
 var (
 	// ErrEmpty says that the level set has no part in the box that meets the
@@ -30,3 +33,14 @@ var (
 	// malformed.
 	ErrInput = errors.New("malformed input")
 )
+
+// VanishingError says that a condition is zero, to rounding, on a whole part of
+// the surface about a point, so that it does not say which part is meant.
+type VanishingError struct {
+	System, Condition int
+	Point             []float64
+}
+
+func (e *VanishingError) Error() string {
+	return fmt.Sprintf("condition %d vanishes on the level set about %v", e.Condition+1, e.Point)
+}

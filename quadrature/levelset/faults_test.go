@@ -150,3 +150,33 @@ func TestRoughDensity(t *testing.T) {
 	require.ErrorIs(t, err, ErrBudget, "not integrable")
 	assert.Greater(t, r.Error[0], 0.01*r.Value[0])
 }
+
+// A condition that vanishes on the surface, or on a part of it, says nothing.
+func TestVanishing(t *testing.T) {
+	ball := sphere(1, 0, 0, 0)
+	both := product{ball, plane(0.1, 1, 0.3, 0)}
+	for name, c := range map[string]struct {
+		phi   Function
+		trims []Function
+		box   [][2]float64
+	}{
+		"the function itself":   {ball, []Function{plane(0.1, 1, 2, 3), ball}, cube(-1.5, 1.5)},
+		"minus it":              {ball, []Function{plane(0.1, 1, 2, 3), minus{ball}}, cube(-1.5, 1.5)},
+		"minus its square":      {ball, []Function{plane(0.1, 1, 2, 3), minus{product{ball, ball}}}, cube(-1.5, 1.5)},
+		"a multiple":            {ball, []Function{plane(0.1, 1, 2, 3), product{ball, plane(0.1, 1, -2, 3)}}, cube(-1.5, 1.5)},
+		"a part of the surface": {both, []Function{plane(0.1, 1, 2, 3), product{ball, plane(0.1, 1, -2, 3)}}, cube(-1.5, 1.5)},
+		"a circle":              {sphere(1, 0, 0), []Function{plane(0.1, 1, 2), sphere(1, 0, 0)}, cube(-1.5, 1.5)[:2]},
+	} {
+		_, err := run(c.phi, c.trims, c.box, Options{Rel: 1e-9})
+		var v *VanishingError
+		if assert.ErrorAs(t, err, &v, name) {
+			assert.Equal(t, 1, v.Condition, name)
+			assert.InDelta(t, 0, ball.Value(append(v.Point, 0)[:3]), 1e-12, name)
+		}
+	}
+	// One that is small is none of these.
+	small := quadric{a: zero3, b: []float64{1e-12, 0, 0}, c: zero3}
+	r, err := run(ball, []Function{small}, cube(-1.5, 1.5), Options{Rel: 1e-9})
+	require.NoError(t, err)
+	assert.InEpsilon(t, 2*math.Pi, r.Area, 1e-9)
+}

@@ -87,6 +87,8 @@ type trace struct {
 	k        int
 	lo, hi   float64
 	rising   bool
+	// condition is the number of psi in its system, where it is one.
+	condition int
 	// bracket, if not nil, bounds coordinate k of the graph more closely.
 	bracket func(x []float64) (lo, hi float64)
 	x       []float64

@@ -25,6 +25,9 @@ type Options struct {
 	MaxNodes int
 	// MaxCells is the budget of boxes looked at, 100,000 if zero.
 	MaxCells int
+	// Cuts are places, for each direction, at which the box is cut in the
+	// beginning; others may follow.
+	Cuts [][]float64
 }
 
 // Result is an integral over a level set.
@@ -44,6 +47,14 @@ type Result struct {
 	Undecided     int
 	Resolution    float64
 	UndecidedArea float64
+	// Components are the connected parts of the surface, the largest first.
+	Components []Component
+	// Loose counts the places on seams of cells at which no graph was found on
+	// the other side, where there are several components. Settled says that the
+	// number of components is, as far as floating-point numbers can tell:
+	// nothing is loose, and no cell is undecided but where thin slabs cross.
+	Loose   int
+	Settled bool
 }
 
 // Integrate integrates the components of a density over the part of the level
@@ -51,16 +62,27 @@ type Result struct {
 // trims is non-negative. The density gets the point and the unit normal
 // grad phi/|grad phi| and fills out; it must not keep the slices.
 //
+// A function of trims that vanishes on the level set is a *VanishingError.
+//
 // With ErrBudget, ErrResolution, ErrAccuracy and the errors of ctx the result
 // is the best there is, with an error estimate that stands; with any other
 // error it is to be ignored.
 func Integrate(ctx context.Context, phi Function, trims []Function, box [][2]float64,
 	density func(x, n []float64, out []float64), opt Options) (Result, error) {
+	return IntegrateUnion(ctx, phi, [][]Function{trims}, box, density, opt)
+}
+
+// IntegrateUnion is Integrate over the part of the level set where all
+// functions of one of the systems are non-negative. No two systems may hold at
+// once, but on their boundaries: there a function of one is minus a function of
+// the other, and the two parts belong together.
+func IntegrateUnion(ctx context.Context, phi Function, systems [][]Function, box [][2]float64,
+	density func(x, n []float64, out []float64), opt Options) (Result, error) {
 	if err := check(phi, box, density, &opt); err != nil {
 		return Result{}, err
 	}
 	e := newEvaluator(phi, len(box), opt.Parts, density)
-	p := newPlan(phi, trims, box, e)
+	p := newPlan(phi, systems, box, opt.Cuts, e)
 	d := newDriver(p, e, opt)
 	stop := d.run(ctx)
 	return d.result(stop)

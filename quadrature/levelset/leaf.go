@@ -22,6 +22,7 @@ type sheet struct {
 	up, inner, outer int // coordinates; inner is -1 in the plane
 	rising           bool
 	lo, hi           [3]float64 // the cell
+	system           int        // of conditions
 	x0, x1           float64
 	// The outermost bounds, then those of trims between them.
 	low, high         bound
@@ -29,7 +30,9 @@ type sheet struct {
 	scale             float64 // of the size of coordinates against that of the cell
 	mapOuter          spread
 	mapInner          spread
-	share             float64 // area of the base
+	share             float64       // area of the base
+	seen              [3][2]float64 // range of the nodes, and of the base on their rows
+	number            int           // among all sheets
 }
 
 // A leaf is a rectangle of the parameters of a sheet.
@@ -203,6 +206,7 @@ func (e *evaluator) evaluate(l *leaf) error {
 		}
 		gq := e.rules[l.nq]
 		a, b := e.inside(l.sheet, x)
+		l.seen[l.inner][0], l.seen[l.inner][1] = min(l.seen[l.inner][0], a), max(l.seen[l.inner][1], b)
 		guess = first
 		for j := range cols {
 			v, rest, d := l.mapInner.at(l.q0 + (l.q1-l.q0)*gq.x[j])
@@ -231,6 +235,7 @@ func (e *evaluator) node(l *leaf, at int, weight, jac, guess float64) error {
 		e.n[i] = e.g[i] / g
 	}
 	e.nodes++
+	l.sheet.see(e.x)
 	e.out[0] = 1
 	if jac == 0 {
 		ratio = 0

@@ -5,15 +5,17 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 )
 
 // A plan cuts the box into sheets.
 type plan struct {
 	dim      int
 	phi      Function
-	trims    []Function
-	whole    [3]float64 // widths of the box
-	smallest float64    // relative width of cells that are not cut any more
+	systems  [][]Function
+	inside   [3][2]float64 // the box
+	whole    [3]float64    // its widths
+	smallest float64       // relative width of cells that are not cut any more
 	queue    cells
 	pending  float64 // bound of the area in the queue
 	atoms    cells   // cells too small to be cut
@@ -31,21 +33,49 @@ type plan struct {
 	last                              float64
 }
 
-func newPlan(phi Function, trims []Function, box [][2]float64, eval *evaluator) *plan {
+func newPlan(phi Function, systems [][]Function, box [][2]float64, cuts [][]float64, eval *evaluator) *plan {
 	d := len(box)
 	p := &plan{
-		dim: d, phi: phi, trims: trims, smallest: 0x1p-30, eval: eval,
+		dim: d, phi: phi, systems: systems, smallest: 0x1p-30, eval: eval,
 		box: make([]Interval, d), cbox: make([]Interval, d), tbox: make([]Interval, d),
 		grad: make([]Interval, d), cgb: make([]Interval, d), point: make([]Interval, d),
 		x: make([]float64, d), g: make([]float64, d), cx: make([]float64, d), cg: make([]float64, d),
 	}
-	c := new(cell)
+	first := []cell{{}}
 	for i, b := range box {
-		c.lo[i], c.hi[i] = b[0], b[1]
+		p.inside[i] = b
 		p.whole[i] = b[1] - b[0]
+		first = slabs(first, i, b, cuts)
 	}
-	p.push(c)
+	for k := range systems {
+		for _, c := range first {
+			c.system = k
+			p.push(&c)
+		}
+	}
 	return p
+}
+
+// slabs extends cells in direction i over the range b, cut at the places given.
+func slabs(cells []cell, i int, b [2]float64, cuts [][]float64) []cell {
+	at := []float64{b[0], b[1]}
+	if i < len(cuts) {
+		for _, s := range cuts[i] {
+			if b[0] < s && s < b[1] {
+				at = append(at, s)
+			}
+		}
+		slices.Sort(at)
+		at = slices.Compact(at)
+	}
+	var out []cell
+	for _, c := range cells {
+		for k := 1; k < len(at); k++ {
+			c.lo[i], c.hi[i] = at[k-1], at[k]
+			out = append(out, c)
+		}
+	}
+	return out
 }
 
 func (p *plan) push(c *cell) {
@@ -85,6 +115,10 @@ func (p *plan) run(ctx context.Context, part float64, budget int) error {
 		for ; p.shaped < len(p.sheets); p.shaped++ {
 			s := p.sheets[p.shaped]
 			s.scale = p.scale(c)
+			for i := range s.seen {
+				s.seen[i] = [2]float64{math.Inf(1), math.Inf(-1)}
+			}
+			s.seen[s.outer] = [2]float64{s.x0, s.x1}
 			p.eval.shape(s)
 			if !(s.share >= 0) {
 				return fmt.Errorf("%w: the zero could not be found in the cell %s", ErrNotFinite, p.describe(c))

@@ -27,7 +27,7 @@ func (p *plan) record(b *base, l int) bool {
 	ok := pieces(s, x0, x1, func(x0, x1 float64) bool {
 		sh := &sheet{
 			up: b.up, inner: skip(l, b.up), outer: skip(m, b.up), rising: b.rising,
-			lo: b.cell.lo, hi: b.cell.hi, x0: x0, x1: x1,
+			lo: b.cell.lo, hi: b.cell.hi, system: b.cell.system, x0: x0, x1: x1,
 			low: bound{at: y0}, high: bound{at: y1},
 		}
 		if !b.faceBounds(sh, l, x0+(x1-x0)/2, y0, y1) {
@@ -286,7 +286,7 @@ func (p *plan) recordCurve(b *base) bool {
 			if !slices.ContainsFunc(b.trims, func(t *trace) bool { return below(t, x0, x1) }) {
 				out = append(out, &sheet{
 					up: b.up, inner: -1, outer: skip(0, b.up), rising: b.rising,
-					lo: b.cell.lo, hi: b.cell.hi, x0: x0, x1: x1,
+					lo: b.cell.lo, hi: b.cell.hi, system: b.cell.system, x0: x0, x1: x1,
 				})
 			}
 			return true
