@@ -12,6 +12,7 @@ import (
 
 	"creaseproof/cases/creases"
 	"creaseproof/cases/evidence/replay"
+	"creaseproof/cases/evidence/sealed"
 
 	"github.com/spf13/cobra"
 )
@@ -64,7 +65,7 @@ func audit(ctx context.Context, args []string, s streams) error {
 	}
 	refused, verified, repeated := 0, 0, 0
 	for _, path := range files {
-		data, err := os.ReadFile(path)
+		data, err := readEvidence(path)
 		if err != nil {
 			fmt.Fprintf(s.err, "%s: %s\n", path, clip(err.Error(), 500))
 			unread++
@@ -99,6 +100,16 @@ func audit(ctx context.Context, args []string, s streams) error {
 		return status(exitNotMet)
 	}
 	return nil
+}
+
+// readEvidence reads no more of a file than evidence may have, and one byte.
+func readEvidence(path string) ([]byte, error) {
+	f, err := os.Open(path)
+	if err != nil {
+		return nil, err
+	}
+	defer f.Close()
+	return io.ReadAll(io.LimitReader(f, sealed.MaxSize+1))
 }
 
 // beside opens the mesh that stands beside a file of evidence. A name with a

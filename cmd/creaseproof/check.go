@@ -104,8 +104,11 @@ func (q *request) kept(s streams, e *run.Evidence, one, many string) (lost bool)
 		return false
 	}
 	n, err := e.Written()
-	if n > 0 || err == nil {
+	switch {
+	case n > 0:
 		fmt.Fprintf(s.err, "evidence for %s in %s\n", count(n, one, many), q.evidence)
+	case err == nil:
+		fmt.Fprintf(s.err, "no %s to write evidence of\n", one)
 	}
 	if err != nil {
 		fmt.Fprintf(s.err, "creaseproof: evidence is missing: %s\n", clip(err.Error(), 2000))

@@ -19,8 +19,8 @@ import (
 // Schema numbers the format of the documents.
 const Schema = 1
 
-// maxSize bounds a document that is read.
-const maxSize = 16 << 20
+// MaxSize bounds a document, in bytes.
+const MaxSize = 16 << 20
 
 // Document is a pointer to what is written as one JSON object. Seal gives the
 // number of its format and the place of its digest.
@@ -56,8 +56,8 @@ func Encode(d Document) ([]byte, error) {
 	if err := enc.Encode(d); err != nil {
 		return nil, err
 	}
-	if b.Len() > maxSize {
-		return nil, fmt.Errorf("the evidence would have more than %d MiB", maxSize>>20)
+	if b.Len() > MaxSize {
+		return nil, fmt.Errorf("the evidence would have more than %d MiB", MaxSize>>20)
 	}
 	return b.Bytes(), nil
 }
@@ -65,8 +65,8 @@ func Encode(d Document) ([]byte, error) {
 // Decode reads a document. Unknown names, a name twice, anything after the
 // document, another schema and a digest that does not fit are errors.
 func Decode(data []byte, d Document) error {
-	if len(data) > maxSize {
-		return fmt.Errorf("the file has more than %d MiB", maxSize>>20)
+	if len(data) > MaxSize {
+		return fmt.Errorf("the file has more than %d MiB", MaxSize>>20)
 	}
 	if err := strict(data); err != nil {
 		return fmt.Errorf("this is no evidence: %w", err)
@@ -95,8 +95,8 @@ func Decode(data []byte, d Document) error {
 
 // Names are the names at the top of a document, with their values not yet read.
 func Names(data []byte) (map[string]json.RawMessage, error) {
-	if len(data) > maxSize {
-		return nil, fmt.Errorf("the file has more than %d MiB", maxSize>>20)
+	if len(data) > MaxSize {
+		return nil, fmt.Errorf("the file has more than %d MiB", MaxSize>>20)
 	}
 	if err := strict(data); err != nil {
 		return nil, fmt.Errorf("this is no evidence: %w", err)
