@@ -248,6 +248,9 @@ func (c *combination) creases(t *tally, d domain, onWell bool) (reason string, e
 			continue
 		}
 		t.add(v)
+		if v.sheets == nil && !v.unsettled && v.limited == nil {
+			continue // they only touch
+		}
 		t.pairs = append(t.pairs, Pair{
 			Branches: [2]int{p.First + 1, p.Second + 1}, Energy: v.energy, Error: v.failure, Area: v.area,
 			Sheets: v.sheets, Unsettled: v.unsettled,

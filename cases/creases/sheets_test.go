@@ -207,3 +207,43 @@ ball = { center = ["0", "0", "0"], radius = "2" }
 	assert.Nil(t, r.Energy)
 	assert.Contains(t, r.Reason, "the surface runs along the boundary of the domain")
 }
+
+// Round domains whose centre or axis lies on the line where branches meet: the
+// boundary is parallel to sides of boxes just there. Rays from the axis to
+// the boundary, and |q|^3/12 for each; in a ball the half discs of area pi/2.
+func TestTripleLineThroughTheCentre(t *testing.T) {
+	const (
+		regular  = `branches = ["x + z/2", "-x/2 + sqrt(3) y/2 + z/2", "-x/2 - sqrt(3) y/2 + z/2"]`
+		rational = `branches = ["x + z/2", "-(3/5) x + (4/5) y + z/2", "-(3/5) x - (4/5) y + z/2"]`
+		four     = `branches = ["x + z/2", "-x + z/2", "y + z/2", "-y + z/2"]`
+		cylinder = `cylinder = { center = ["0", "0"], radius = "1", heights = ["0", "1"] }`
+		ball     = `ball = { center = ["0", "0", "0"], radius = "1" }`
+	)
+	cube := func(q float64) float64 { return q * q * q / 12 }
+	for _, test := range []struct {
+		branches string
+		density  float64
+		sheets   int
+	}{
+		{regular, 3 * cube(math.Sqrt(3)), 3},
+		{rational, 2*cube(math.Sqrt(3.2)) + cube(1.6), 3},
+		{four, 4 * cube(math.Sqrt2), 4},
+	} {
+		for domain, area := range map[string]float64{cylinder: 1, ball: math.Pi / 2} {
+			r := agrees(t, test.density*area, layeredHead+test.branches+"\ncombine = \"max\"\n"+domain+"\n")
+			assert.Len(t, sheets(t, r), test.sheets)
+		}
+	}
+	// A curved front and a wall that meet on a curve through the same places.
+	for _, domain := range []string{
+		`cylinder = { center = ["0", "0"], radius = "2", heights = ["1/2", "3"] }`,
+		`ball = { center = ["0", "0", "3"], radius = "2" }`,
+	} {
+		r := one(t, layeredHead+`branches = ["-(x^2 + y^2)/(2 z)", "-1/2", "x/4 + z/32 - 3/5"]
+combine = "max"
+`+domain+"\n")
+		assert.Empty(t, r.Reason)
+		assert.LessOrEqual(t, *r.Error, 1e-9**r.Energy)
+		sheets(t, r)
+	}
+}

@@ -94,6 +94,14 @@ func (d *driver) components(r *Result, lost float64) {
 			c.Error[m] += lost * d.peak[m+1]
 		}
 	}
+	least := 0x1p-56
+	for _, w := range d.plan.whole[1:d.plan.dim] {
+		least *= w
+	}
+	r.Components = slices.DeleteFunc(r.Components, func(c Component) bool { return c.Area <= least })
+	if len(r.Components) <= 1 && r.Resolution <= 0x1p-38*diagonal {
+		r.Loose, r.Settled = 0, true
+	}
 	slices.SortStableFunc(r.Components, func(a, b Component) int {
 		if math.Abs(a.Area-b.Area) > 1e-6*max(a.Area, b.Area) {
 			return cmp.Compare(b.Area, a.Area)

@@ -47,7 +47,8 @@ type Result struct {
 	Undecided     int
 	Resolution    float64
 	UndecidedArea float64
-	// Components are the connected parts of the surface, the largest first.
+	// Components are the connected parts of the surface, the largest first. Parts
+	// with no area to rounding, such as where a condition only touches, are none.
 	Components []Component
 	// Loose counts the places on seams of cells at which no graph was found on
 	// the other side, where there are several components. Settled says that the
