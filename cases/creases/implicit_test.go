@@ -117,3 +117,16 @@ ball={center=["-1/4","-1/4","1"],radius="7/4"}
 		assert.LessOrEqual(t, *r.Error, 1e-9**r.Energy)
 	}
 }
+
+// Two branches that touch along a line make no crease there, and do not keep
+// the others from being known.
+func TestTouchingBesideACrease(t *testing.T) {
+	r := one(t, layeredHead+`branches=["-((x + 7/10)^2 + y^2)/(2*(z + 1)) - 6/5", "-((x + 1)^2 + y^2)/(2*(z + 2)) + 1", "-(x^2 + (y + 1)^2)/(2*(z + 3/2))", "-(x^2 + (y + 1)^2)/(2*(z + 2))"]
+combine="min(max(1, 2), 3, 4)"
+box={x=["-1","7/4"], y=["-2","5/4"], z=["0","3/2"]}
+`)
+	require.NotNil(t, r.Energy, r.Reason)
+	assert.Empty(t, r.Reason)
+	assert.InEpsilon(t, 0.01303154, *r.Energy, 1e-6)
+	assert.LessOrEqual(t, *r.Error, 1e-9**r.Energy)
+}

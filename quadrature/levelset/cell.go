@@ -337,7 +337,7 @@ func (p *plan) treatThin(c *cell, g []Interval) (verdict, error) {
 	switch {
 	case !math.IsInf(bound, 1) && (open < 0 || bound <= 100*area):
 		p.skipped += bound
-		if len(p.left) < mostProbes {
+		if len(p.left) < mostLeft {
 			p.left = append(p.left, *c)
 		}
 		return done, nil

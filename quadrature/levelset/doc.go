@@ -66,8 +66,8 @@
 //     made of the decay of the Legendre coefficients in both directions, with
 //     half of the gain that the decay promises; of rounding, which grows where the
 //     surface is parallel to the height; and of the bounds of the area left out,
-//     times the largest density met, or where no node was found twice
-//     that at some places of the cells left out. Where a refinement moves a value by more
+//     times twice the density at the centres of the cells left out, or the
+//     largest met. Where a refinement moves a value by more
 //     than the estimate allowed, the estimates of the parts are enlarged. A
 //     density with a peak between all nodes is not seen.
 //   - Components: the points on edges are floating-point numbers, and a condition

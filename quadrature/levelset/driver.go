@@ -39,14 +39,16 @@ func (d *driver) run(ctx context.Context) error {
 		if err := d.refine(ctx); err != nil {
 			return err
 		}
-		area, _, count := d.undecided()
-		if count > 0 && d.nodes == 0 {
-			return ErrResolution
+		if len(d.queue)+len(d.atoms) == 0 {
+			return nil
 		}
 		over := 0.0
-		for c := range d.want {
+		lost, _ := d.lost()
+		for c, lost := range lost {
 			if d.want[c] > 0 && d.matters(c) {
-				over = max(over, area*d.peak[c]/d.want[c])
+				over = max(over, lost/d.want[c])
+			} else if d.nodes == 0 {
+				return ErrResolution
 			}
 		}
 		if over <= 0.5 {
@@ -263,10 +265,7 @@ func (d *driver) result(stop error) (Result, error) {
 		Nodes: d.nodes, Cells: d.plan.cells, Sheets: len(d.sheets),
 	}
 	r.UndecidedArea, r.Resolution, r.Undecided = d.undecided()
-	lost := r.UndecidedArea + d.skipped
-	if d.nodes == 0 && lost > 0 {
-		d.probe()
-	}
+	lost, thin := d.lost()
 	for c := range d.sum {
 		noise := 4 * 0x1p-52 * d.bulk[c]
 		for _, list := range [2][]*leaf{d.heap, d.done} {
@@ -274,7 +273,7 @@ func (d *driver) result(stop error) (Result, error) {
 				noise += l.noise[c]
 			}
 		}
-		v, e := d.total[c], d.sum[c]+noise+lost*d.peak[c]
+		v, e := d.total[c], d.sum[c]+noise+lost[c]+thin[c]
 		if c == 0 {
 			r.Area, r.AreaError = v, e
 		} else {

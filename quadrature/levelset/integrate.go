@@ -17,8 +17,8 @@ type Options struct {
 	// with whatever accuracy its error says.
 	AreaRel float64
 	// Probe is the density at points near the surface, the density itself if
-	// nil. Where no node was found it is asked at a few places of the cells left
-	// out, for the size of their share.
+	// nil. It is asked at the centres of the cells left out, for the size of
+	// their share.
 	Probe func(x, n []float64, out []float64)
 	// MaxNodes is the budget of evaluations of the density, 1e6 if zero. It may
 	// be overrun by one leaf.
