@@ -31,8 +31,8 @@ func (s *sheet) see(x []float64) {
 }
 
 // components joins the sheets and sums up what belongs together; lost is the
-// bound of the area left out.
-func (d *driver) components(r *Result, lost float64) {
+// bound of what was left out.
+func (d *driver) components(r *Result, lost []float64) {
 	n := d.taken
 	diagonal := norm(d.plan.whole[:d.plan.dim])
 	r.Settled = r.Resolution <= 0x1p-38*diagonal
@@ -89,9 +89,9 @@ func (d *driver) components(r *Result, lost float64) {
 	}
 	for k := range r.Components {
 		c := &r.Components[k]
-		c.AreaError += lost * d.peak[0]
+		c.AreaError += lost[0]
 		for m := range c.Error {
-			c.Error[m] += lost * d.peak[m+1]
+			c.Error[m] += lost[m+1]
 		}
 	}
 	least := 0x1p-56

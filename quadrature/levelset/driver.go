@@ -266,6 +266,9 @@ func (d *driver) result(stop error) (Result, error) {
 	}
 	r.UndecidedArea, r.Resolution, r.Undecided = d.undecided()
 	lost, thin := d.lost()
+	for c, v := range thin {
+		lost[c] += v
+	}
 	for c := range d.sum {
 		noise := 4 * 0x1p-52 * d.bulk[c]
 		for _, list := range [2][]*leaf{d.heap, d.done} {
@@ -273,7 +276,7 @@ func (d *driver) result(stop error) (Result, error) {
 				noise += l.noise[c]
 			}
 		}
-		v, e := d.total[c], d.sum[c]+noise+lost[c]+thin[c]
+		v, e := d.total[c], d.sum[c]+noise+lost[c]
 		if c == 0 {
 			r.Area, r.AreaError = v, e
 		} else {
