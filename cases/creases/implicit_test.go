@@ -130,3 +130,12 @@ box={x=["-1","7/4"], y=["-2","5/4"], z=["0","3/2"]}
 	assert.InEpsilon(t, 0.01303154, *r.Energy, 1e-6)
 	assert.LessOrEqual(t, *r.Error, 1e-9**r.Energy)
 }
+
+// The size of phi does not matter.
+func TestScaleOfALevelSet(t *testing.T) {
+	for _, factor := range []string{"10^(-300)", "10^(-200)", "10^200", "10^300"} {
+		r := level(t, factor+"*(x^2 + y^2 + z^2 - 1)", `"-2", "2"`, `"-2", "2"`, `"-2", "2"`)
+		require.NotNil(t, r.Energy, "%s: %s", factor, r.Reason)
+		assert.InEpsilon(t, 4*math.Pi, *r.Energy, 1e-11, factor)
+	}
+}

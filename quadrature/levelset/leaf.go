@@ -106,10 +106,18 @@ func (e *evaluator) point(s *sheet, guess float64) float64 {
 }
 
 func norm(g []float64) float64 {
-	if len(g) == 2 {
-		return math.Sqrt(g[0]*g[0] + g[1]*g[1])
+	sum := 0.0
+	for _, x := range g {
+		sum += x * x
 	}
-	return math.Sqrt(g[0]*g[0] + g[1]*g[1] + g[2]*g[2])
+	if sum > 0x1p-900 && sum < 0x1p900 {
+		return math.Sqrt(sum)
+	}
+	size := 0.0
+	for _, x := range g {
+		size = math.Hypot(size, x)
+	}
+	return size
 }
 
 // shape chooses the maps of a sheet: quadratic at the ends at which the
