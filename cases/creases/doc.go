@@ -31,7 +31,10 @@
 //
 // A level set {phi = 0} in a box, a ball or a cylinder has plus on the side
 // phi > 0. It is integrated by package levelset, with enclosures of phi and its
-// gradient by package ranges. The checks of the traces are made at its nodes.
+// gradient by package ranges. The traces are checked at its nodes; and where u is
+// a formula, its jump and a residual that does not vanish identically are enclosed
+// at a few points of the surface, which lie between rational points of different
+// signs of phi.
 //
 // Branches are combined by max, min, or a nested expression in their numbers,
 // "max(min(1, 2), 3..5)", in which each stands once. They have to be

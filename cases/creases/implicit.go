@@ -40,6 +40,9 @@ func (c *combination) implicit(r Result, rel, allowed float64) (Result, error) {
 	if reason != "" {
 		return r.refuse(reason), nil
 	}
+	if reason, _ := c.torn(); reason != "" {
+		return r.refuse(reason), nil
+	}
 	return c.finish(r, rel, allowed, func(t *tally) (string, error) {
 		phi, err := c.levelFunction(*c.s.shape.level, nil)
 		if err != nil {

@@ -137,8 +137,11 @@ func (c *combination) samples() (list []samplePoint) {
 	if c.s.src.Mesh != "" {
 		return c.meshSamples()
 	}
-	if h.implicit() {
-		return nil // its points are the zeros of a formula
+	if h.level != nil {
+		return c.levelSamples()
+	}
+	if h.branches != nil {
+		return nil
 	}
 	ec := enclosure.Context{Prec: precision}
 	between := func(a, b enclosure.Interval, t *big.Rat) enclosure.Interval {
