@@ -249,6 +249,18 @@ func (s *exactSum) exact() string {
 	return sum.RatString()
 }
 
+// ends are rational numbers on both sides of the energy, the energy itself where
+// that is rational.
+func (s *exactSum) ends() (lo, hi *big.Rat) {
+	if x, ok := new(big.Rat).SetString(s.exact()); ok {
+		return x, x
+	}
+	i := s.value()
+	lo, _ = i.Lo().Rat(nil)
+	hi, _ = i.Hi().Rat(nil)
+	return lo, hi
+}
+
 // roots are the rational numbers whose roots add up to the area.
 func (s *exactSum) roots() (out []string) {
 	for _, r := range s.areas {
@@ -294,20 +306,20 @@ func (c *combination) settle(r *Result, s *exactSum) claim.Verdict {
 		}
 		return claim.Refuted
 	}
-	claimed, err := c.enclose(*c.s.energy)
+	claimed, err := c.claimed()
 	if err != nil {
 		return claim.Open
 	}
-	value := s.value()
-	if enclosure.Disjoint(claimed, value) {
-		if w := c.s.src.Within; w != nil {
-			// A claim within a relative difference.
-			tolerance := precise.Mul(precise.FromRat(w), precise.Abs(claimed))
-			if d := precise.Sub(tolerance, precise.Abs(precise.Sub(value, claimed))); d.Lo() != nil && d.Lo().Sign() >= 0 {
-				return claim.Proved
-			}
-		}
+	lo, hi := s.ends()
+	d := claimed.against(lo, hi, c.s.src.Within)
+	switch {
+	case d.verdict == claim.Refuted:
 		return refuted()
+	case c.s.src.Within != nil && d.verdict == claim.Proved:
+		return claim.Proved
+	case d.near.Sign() > 0:
+		r.add("the energy differs from the claimed one by what is allowed, to 60 digits, and whether by more was not decided")
+		return claim.Open
 	}
 	ring := c.exact.Ring
 	x, err := c.in.Scalar(c.s.energy.node)

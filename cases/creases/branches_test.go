@@ -37,6 +37,7 @@ box = { x = ["-1", "1"], y = ["-1", "1"], z = ["0", "1"] }
 		{"irrational and wrong", eikonalHead, rectangle, "sqrt(2)", identity.Refuted, "4/3", ""},
 		{"rounded", eikonalHead, rectangle + "within = 1e-6\n", "1.3333333", identity.Proved, "4/3", ""},
 		{"rounded too far", eikonalHead, rectangle + "within = 1e-9\n", "1.3333333", identity.Refuted, "4/3", ""},
+		{"rounded to the limit", eikonalHead, rectangle + "within = 1e-3\n", "4000/3003", identity.Proved, "4/3", ""},
 		// Three rays of lengths √5/2, √5/2 and 1: |q|³/12 times the length is
 		// 8/15, 8/15 and 128/375.
 		{"three fronts on a line", layeredHead, three, "176/125", identity.Proved, "176/125", ""},

@@ -2,6 +2,7 @@ package creases
 
 import (
 	"fmt"
+	"math"
 	"math/big"
 	"strings"
 
@@ -40,16 +41,31 @@ func (c *combination) certify(r *Result) error {
 	return c.judge(r)
 }
 
-// judge decides the claimed energy by the enclosure, as it is written down.
+// judge decides the claimed energy by the enclosure, as it is written down, and
+// says so where the number found by quadrature is not in it.
 func (c *combination) judge(r *Result) error {
-	if r.Claimed == nil {
-		return nil
-	}
-	energy, err := c.claimed()
+	lo, hi, err := endpoints(r.Enclosure)
 	if err != nil {
 		return err
 	}
-	lo, hi, err := endpoints(r.Enclosure)
+	if r.Claimed != nil {
+		if err := c.weigh(r, lo, hi); err != nil {
+			return err
+		}
+	}
+	if r.Energy == nil || r.Error == nil {
+		return nil
+	}
+	least, most := above(lo), -above(new(big.Rat).Neg(hi))
+	if x, e := *r.Energy, *r.Error+settled*math.Abs(*r.Energy); x+e < least || x-e > most {
+		r.add(fmt.Sprintf("the number %.17g with its estimated error is not in [%s, %s]: quadrature in floating point has missed something", x, r.Enclosure[0], r.Enclosure[1]))
+	}
+	return nil
+}
+
+// weigh decides the claimed energy by the enclosure from lo to hi.
+func (c *combination) weigh(r *Result, lo, hi *big.Rat) error {
+	energy, err := c.claimed()
 	if err != nil {
 		return err
 	}
@@ -381,7 +397,13 @@ func (p *piece) cost(r, l []algebra.Fraction) (algebra.Fraction, error) {
 	return p.Ring.Reduce(sum)
 }
 
-// integral encloses the integral of f over the parameters.
+// fine is the relative width up to which an enclosure is not tried to be
+// narrowed in a second way.
+const fine = 1e-12
+
+// integral encloses the integral of f over the parameters, f the density times
+// the area element in normal form, and where that is wide the density as it is
+// written.
 func (c *combination) integral(p *piece, f algebra.Fraction) (interval.Interval, error) {
 	total := interval.Point(0)
 	if err := p.Ring.Err(f); err != nil {
@@ -406,10 +428,19 @@ func (c *combination) integral(p *piece, f algebra.Fraction) (interval.Interval,
 		}
 		total = total.Add(x)
 	}
-	for _, s := range p.scale {
-		total = total.Mul(s)
+	total = p.scaled(total)
+	if total.IsBounded() && total.Wid() <= fine*total.Mag() {
+		return total, nil
 	}
-	return total, nil
+	other, err := c.asWritten(p)
+	if err != nil {
+		return total, err
+	}
+	both := total.Intersection(other)
+	if both.IsEmpty() {
+		return total, noEnclosure("the enclosures %s and %s, found in two ways, have nothing in common", total, other)
+	}
+	return both, nil
 }
 
 // conditions checks that what stands under roots is not negative, and what is

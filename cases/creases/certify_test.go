@@ -173,6 +173,46 @@ polygon = [["0", "0", "0"], ["2", "0", "0"], ["2", "1", "1"], ["1", "2", "2"], [
 	}
 }
 
+// Densities that are enclosed as they are written: their normal forms multiply
+// out what then cancels.
+func TestCertifiedAsWritten(t *testing.T) {
+	const head = `
+[space]
+coordinates = ["x", "y"]
+unknowns    = ["u"]
+[[surface]]
+name = "s"
+polygon = [["0", "0"], ["1", "0"]]
+`
+	for _, c := range []struct{ density, energy, within string }{
+		{"abs(abs(x - 1/3) - 1/5)", "71/450", ""},
+		{"abs(sin(10 x))", "(7 + cos(10))/10", ""},
+		{"sin(300 x)", "(1 - cos(300))/300", ""},
+		{"1/(1 + 10^14*(x - 123457/1000000)^2)", "", ""},
+		{"tanh(1000*(x - 1/3))", "log(cosh(2000/3)/cosh(1000/3))/1000", ""},
+		{"sinh(x - 1/2) + cosh(x - 1/2)", "2 sinh(1/2)", ""},
+		{"tan(x) + erf(x) - norm(x, 1)^(3/2)", "", ""},
+		// Narrower than what quadrature finds without being told.
+		{"exp(-10^14*(x - 123457/1000000)^2)", "sqrt(pi)/10^7", "1e-8"},
+	} {
+		text := head + fmt.Sprintf("density = %q\n", c.density)
+		if c.energy != "" {
+			text += fmt.Sprintf("energy = %q\n", c.energy)
+		}
+		if c.within != "" {
+			text += "within = " + c.within + "\n"
+		}
+		r := certified(t, "case.toml", text, nil)[0]
+		lo, hi := ends(t, r)
+		width, _ := new(big.Rat).Quo(new(big.Rat).Sub(hi, lo), new(big.Rat).Abs(hi)).Float64()
+		assert.LessOrEqual(t, width, 1e-8, "%s: %v", c.density, r.Enclosure)
+		if c.energy != "" {
+			assert.Equal(t, identity.Proved, r.Verdict, "%s: %v: %s", c.density, r.Enclosure, r.Reason)
+		}
+		assert.Equal(t, c.within != "", strings.Contains(r.Reason, "has missed something"), "%s: %s", c.density, r.Reason)
+	}
+}
+
 // Where there is no enclosure the claim stays as it was, and the reason says
 // why.
 func TestNotCertified(t *testing.T) {
