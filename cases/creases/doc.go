@@ -76,18 +76,22 @@
 // written as a sum of products of functions of one parameter, where its normal
 // form allows that, and integrated by package certified. What stands under roots
 // and in logarithms is shown to be in their domain inside the ranges of the
-// parameters; a denominator that cancels is not looked at, so that where it
-// vanishes the integrand is its continuation. That a polygon does not meet itself
-// is checked at the rounded vertices only.
+// parameters. A denominator that cancels may vanish at points and on lines, where
+// the integrand is its continuation; where it may vanish on a part with an area, as
+// |s| - s does, there is no enclosure. Where that of the normal form is wide, a
+// given density is enclosed a second time as its formula is written, and the
+// intersection taken. That a polygon does not meet itself is checked at the rounded
+// vertices only; what a patch covers twice counts twice.
 //
 // # Verdicts
 //
 // With an enclosure a claimed energy is proved where all of the enclosure
 // differs from all of the enclosure of the claimed value by no more than within,
 // or 1e-9 where that is not given, relative to the claimed value: proved is that
-// difference, not equality. It is refuted where the enclosure misses the claimed
-// value, unless the case allows for that much; then the reason says that it
-// does. An enclosure that is wider decides nothing.
+// difference, not equality. It is refuted where all of the enclosure differs from
+// the claimed value by more than within, or, without within, where it misses that
+// value. All of this is decided in rational arithmetic; a claim is relative, however
+// small, unless it is zero. What is left over decides nothing.
 //
 // An energy that agrees with the claim within the error, and the relative
 // difference that the case allows (within), is supported; nothing

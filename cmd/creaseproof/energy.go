@@ -25,8 +25,9 @@ An energy comes with an estimate of its error. A claimed energy is supported whe
 the number agrees within that; a number computed in floating point proves nothing.
 With --certify the energies of polygons, patches and graphs are enclosed by
 outward-rounded arithmetic. A claim is proved where the energy differs from it by no
-more than the case allows (within, else 1e-9 of it), and refuted where the enclosure
-misses it; where there is no enclosure the reason is given.
+more than the case allows (within, else 1e-9 of it), and refuted where it differs by
+more than within, or without within is not equal; where there is no enclosure the
+reason is given. What a patch covers twice counts twice.
 A surface on which a check fails has no energy, and is wrong input: the traces off
 the well, u discontinuous across it, the jump of the gradient not normal to it.
 
