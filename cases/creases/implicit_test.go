@@ -139,3 +139,21 @@ func TestScaleOfALevelSet(t *testing.T) {
 		assert.InEpsilon(t, 4*math.Pi, *r.Energy, 1e-11, factor)
 	}
 }
+
+// Curves with nodes and cusps.
+func TestSingularCurves(t *testing.T) {
+	for _, test := range []struct {
+		phi  string
+		want float64
+	}{
+		{"x*y", 8},
+		{"(x^2 + y^2)^2 - x^2 + y^2", math.Pow(math.Gamma(0.25), 2) / math.Sqrt(2*math.Pi)},
+		{"(x^2 + y^2 - 1)^3 + 27*x^2*y^2", 6},
+		{"y^2 - x^3", 2 * (math.Pow(4+9*math.Cbrt(4), 1.5) - 8) / 27}, // to y = 2
+	} {
+		r := one(t, eikonalHead+fmt.Sprintf("density = \"1\"\nlevel = %q\nbox = { x = [\"-2\", \"2\"], y = [\"-2\", \"2\"] }\n", test.phi))
+		require.NotNil(t, r.Energy, "%s: %s", test.phi, r.Reason)
+		assert.LessOrEqual(t, math.Abs(*r.Energy-test.want), *r.Error, test.phi)
+		assert.InDelta(t, test.want, *r.Energy, 1e-7, test.phi)
+	}
+}

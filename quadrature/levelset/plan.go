@@ -41,6 +41,9 @@ func newPlan(phi Function, systems [][]Function, box [][2]float64, cuts [][]floa
 		grad: make([]Interval, d), cgb: make([]Interval, d), point: make([]Interval, d),
 		x: make([]float64, d), g: make([]float64, d), cx: make([]float64, d), cg: make([]float64, d),
 	}
+	if d == 2 { // a singular point costs the length of its cell, not the square of that
+		p.smallest = 0x1p-38
+	}
 	first := []cell{{}}
 	for i, b := range box {
 		p.inside[i] = b

@@ -66,12 +66,13 @@ func solve(f Function, x []float64, k int, lo, hi, guess float64, rising bool, g
 func ulp(t float64) float64 { return 0x1p-52*math.Abs(t) + 0x1p-1000 }
 
 // crossing finds a zero of u between a and b, where it has the values ua and
-// ub of opposite signs, by the Illinois method.
+// ub of opposite signs, by the Illinois method, and by bisection where that is
+// slow, as at a triple zero.
 func crossing(u func(float64) float64, a, b, ua, ub float64) float64 {
 	side := 0
-	for i := range 120 {
+	for i := range 200 {
 		t := (a*ub - b*ua) / (ub - ua)
-		if i%8 == 7 || !(t > min(a, b) && t < max(a, b)) {
+		if i%8 == 7 || i >= 40 || !(t > min(a, b) && t < max(a, b)) {
 			t = a + (b-a)/2
 		}
 		ut := u(t)
