@@ -88,3 +88,18 @@ func TestDecideStopsWithItsContext(t *testing.T) {
 		t.Fatal("a cancelled decision goes on")
 	}
 }
+
+// The name of a function holds those inside it, twice for a hyperbolic one: it
+// stays short all the same.
+func TestNestedFunctionsStaySmall(t *testing.T) {
+	for _, f := range []string{"sinh", "cosh", "tanh", "exp", "log", "erf", "sqrt"} {
+		text := "u_x"
+		for range 40 {
+			text = f + "(" + text + ")"
+		}
+		rec, err := decided(t, state(t, plane, text+" = u_y"))
+		require.NoError(t, err, f)
+		assert.NotEqual(t, identity.Proved, rec.Verdict, f)
+		assert.Less(t, len(rec.Reason)+len(rec.Remainder), 10_000, f)
+	}
+}

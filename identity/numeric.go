@@ -6,6 +6,20 @@ import (
 	"creaseproof/entropy/program"
 )
 
+// Budgets of the numerical search, in operations of the compiled programs: long
+// formulas are sampled and attacked less often.
+const (
+	sampleWork  = 4_000_000_000 // of all samples
+	descentWork = 10_000_000    // of one evaluation in all descents
+	exactTerm   = 500           // for the exact evaluations of one term that go with it
+)
+
+// within is n where so many runs of ops operations each stay within the work;
+// else as many as do, at least one hundredth of n.
+func within(n, work, ops int64) int64 {
+	return min(n, max(work/max(ops, 1), n/100, 2))
+}
+
 // compiler turns normal forms into float64 programs. Indeterminates that have
 // no input are computed from what they are kernels of.
 type compiler struct {

@@ -279,17 +279,15 @@ const keepBest = 64
 // true where a counterexample was found.
 func (t *task) run() (float64, bool, error) {
 	d := t.d
-	opts := sample.Options{Seed: d.opt.Seed, Samples: d.opt.Samples, Jobs: d.opt.Jobs, Laws: t.laws()}
+	samples := within(d.opt.Samples, sampleWork, int64(t.sampled.NumOps()))
+	opts := sample.Options{Seed: d.opt.Seed, Samples: samples, Jobs: d.opt.Jobs, Laws: t.laws()}
 	if d.opt.Progress != nil {
 		opts.Progress = func(done, total int64) { d.opt.Progress(d.Claim.Name, done, total) }
 	}
 	res, err := sample.Run(d.Ctx, opts, t.layout, t.sampled, keepBest)
 	d.Rec.Samples += res.Valid
-	if err != nil {
-		return 0, false, err
-	}
-	if res.Valid == 0 {
-		return math.Inf(1), false, nil
+	if err != nil || res.Valid == 0 {
+		return math.Inf(1), false, err
 	}
 	var starts [][]float64
 	for _, p := range res.Best {
@@ -440,8 +438,7 @@ func (t *task) attack(starts [][]float64) (adversary.Result, error) {
 	n := len(t.pts.Free) + len(t.pts.Angles)
 	p := adversary.Problem{Dim: n, Lower: make([]float64, n), Upper: make([]float64, n)}
 	for i := range n {
-		p.Lower[i], p.Upper[i] = math.Inf(-1), math.Inf(1)
-		if i < len(t.pts.Free) {
+		if p.Lower[i], p.Upper[i] = math.Inf(-1), math.Inf(1); i < len(t.pts.Free) {
 			p.Lower[i], p.Upper[i] = t.bounds(t.pts.Free[i])
 		}
 	}
@@ -502,5 +499,6 @@ func (t *task) attack(starts [][]float64) (adversary.Result, error) {
 		}
 		return y.Big(), true
 	}
-	return adversary.Search(d.Ctx, p, adversary.Options{Seed: d.opt.Seed, Starts: d.opt.Starts, Jobs: d.opt.Jobs})
+	n = int(within(int64(d.opt.Starts), descentWork, int64(t.margin.NumOps()+exactTerm*t.g.Poly.Len())))
+	return adversary.Search(d.Ctx, p, adversary.Options{Seed: d.opt.Seed, Starts: n, Jobs: d.opt.Jobs})
 }

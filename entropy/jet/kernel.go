@@ -6,11 +6,18 @@ import (
 	"creaseproof/entropy/algebra"
 )
 
+// maxName bounds the name of a kernel, in bytes. Names hold those of the kernels
+// inside, often several times.
+const maxName = 1 << 16
+
 // kernel finds or makes the kernel of the given kind and argument.
 func (r *Ring) kernel(s Symbol) (algebra.Var, error) {
 	key := fmt.Sprintf("%d|%d|%s", s.Kind, s.Degree, s.Arg.String(func(v algebra.Var) string { return fmt.Sprintf("#%d", v) }))
 	if v, ok := r.kernels[key]; ok {
 		return v, nil
+	}
+	if len(s.Name) > maxName {
+		return 0, fmt.Errorf("%w: a function nested so deep that its name has %d characters", algebra.ErrLimit, len(s.Name))
 	}
 	if len(r.symbols) >= MaxSymbols {
 		return 0, fmt.Errorf("%w: more than %d indeterminates", algebra.ErrLimit, MaxSymbols)
