@@ -42,8 +42,9 @@ const maxCombinations = 10_000
 // Evaluate evaluates a limit for every combination of its values, the first
 // listed varying slowest. An error is a mistake in the file with its place, or
 // the context's; the values so far come with it, the last one unfinished where
-// the context ended between two eps.
-func Evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit) ([]Value, error) {
+// the context ended between two eps. Up to jobs eps are integrated at once; no
+// result depends on it.
+func Evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit, jobs int) ([]Value, error) {
 	total := 1
 	for _, v := range l.Values {
 		if total *= len(v.List); total > maxCombinations {
@@ -53,7 +54,7 @@ func Evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit) ([]Value, e
 	var out []Value
 	at := make([]int, len(l.Values))
 	for range total {
-		v, err := evaluate(ctx, c, l, at, 0)
+		v, err := evaluate(ctx, c, l, at, 0, jobs)
 		if v != nil {
 			out = append(out, *v)
 		}
@@ -83,12 +84,12 @@ func At(ctx context.Context, c *cases.Case, l *casefile.Limit, values map[string
 			return nil, fmt.Errorf("the limit is not repeated for %s = %q", v.Name.S, cases.Clip(x, 40))
 		}
 	}
-	return evaluate(ctx, c, l, at, first)
+	return evaluate(ctx, c, l, at, first, 1)
 }
 
 // evaluate evaluates a limit at one choice of its values. Where the context
 // ends, what was found comes with its error.
-func evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int, first int) (*Value, error) {
+func evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int, first, jobs int) (*Value, error) {
 	r, err := newReader(ctx, c, l, at)
 	if err != nil {
 		return nil, err
@@ -108,28 +109,46 @@ func evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int, f
 	if err := r.target(p, &v); err != nil {
 		return nil, err
 	}
-	for i, e := range eps {
-		if first > 0 && i == first {
-			return &v, nil
-		}
-		energy, err := p.Integrate(ctx, e)
+	short := first > 0 && first < len(eps)
+	if short {
+		eps = eps[:first]
+	}
+	list := r.energies(p, eps, jobs)
+	for i, x := range list {
 		var infinite *limit.InfiniteError
 		switch {
-		case ctx.Err() != nil:
+		case errors.As(x.err, &infinite):
+			v.infinite(r, infinite)
+			return &v, nil
+		case x.err != nil && ctx.Err() == nil:
+			return nil, r.c.Fault(l.Pos, r.outside(p, eps[i]), "%q at eps = %g: %s", cases.Clip(l.Name, 40), eps[i], strings.TrimPrefix(x.err.Error(), "limit: "))
+		case x.err != nil || !x.done:
+			for _, x := range list[i:] { // those that were found beside it
+				if x.done && x.err == nil {
+					v.add(x.energy)
+				}
+			}
 			if len(v.Eps) == 0 {
 				return nil, ctx.Err()
 			}
 			return &v, ctx.Err()
-		case errors.As(err, &infinite):
-			v.infinite(r, infinite)
-			return &v, nil
-		case err != nil:
-			return nil, r.c.Fault(l.Pos, "", "%q at eps = %g: %s", cases.Clip(l.Name, 40), e, strings.TrimPrefix(err.Error(), "limit: "))
 		}
-		v.add(energy)
+		v.add(x.energy)
+	}
+	if short {
+		return &v, nil
 	}
 	v.Judge(l)
 	return &v, nil
+}
+
+// outside is advice where branches are evaluated beyond the domain.
+func (r *reader) outside(p *limit.Problem, eps float64) string {
+	m, ok := p.Smoothing.(*limit.Mollifier)
+	if !ok {
+		return ""
+	}
+	return fmt.Sprintf("a mollified function needs its branches up to the distance %.3g from the domain: make the domain, the width or eps smaller", m.Radius(eps))
 }
 
 func newReader(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int) (*reader, error) {

@@ -3,6 +3,7 @@ package run
 import (
 	"context"
 	"fmt"
+	"runtime"
 	"time"
 
 	"creaseproof/cases"
@@ -78,7 +79,7 @@ func (o *LimitOutcome) Met() bool {
 // early as Energy does: at an interruption with the energies found by then, at
 // the timeout with values that are open.
 func Limit(ctx context.Context, list []*cases.Case, opt LimitOptions) *LimitOutcome {
-	return integrateLimits(ctx, list, opt, limits.Evaluate)
+	return integrateLimits(ctx, list, opt, nil)
 }
 
 type approximate func(context.Context, *cases.Case, *casefile.Limit) ([]limits.Value, error)
@@ -92,17 +93,29 @@ func integrateLimits(ctx context.Context, list []*cases.Case, opt LimitOptions, 
 			}
 		}
 	}
+	if approximate == nil {
+		jobs := opt.Jobs
+		if jobs <= 0 {
+			jobs = runtime.GOMAXPROCS(0)
+		}
+		jobs = max(1, jobs/max(1, len(todo))) // for each limit
+		approximate = func(ctx context.Context, c *cases.Case, l *casefile.Limit) ([]limits.Value, error) {
+			return limits.Evaluate(ctx, c, l, jobs)
+		}
+	}
 	inner, cancel := limited(ctx, opt.Timeout)
 	defer cancel()
 	out := &LimitOutcome{}
 	cut := false
 	emit := func(_ int, r *LimitResult) {
 		if r.partial {
+			reason := "interrupted"
 			if ctx.Err() != nil {
 				cut = true
 			} else {
-				r.cutShort(fmt.Sprintf("not computed within the %v allowed", opt.Timeout))
+				reason = fmt.Sprintf("not computed within the %v allowed", opt.Timeout)
 			}
+			r.cutShort(reason)
 		}
 		out.Results = append(out.Results, r)
 		if opt.Report != nil {
@@ -135,6 +148,9 @@ func (r *LimitResult) cutShort(reason string) {
 		r.Values = append(r.Values, limits.Empty(r.Limit))
 	}
 	v := &r.Values[len(r.Values)-1]
+	if n := len(v.Eps); n > 0 {
+		reason += fmt.Sprintf(", after %d of %d eps", n, len(r.Limit.Eps))
+	}
 	v.Outcome, v.Met, v.Reason = limits.Undecided, false, reason
 }
 

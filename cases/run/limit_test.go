@@ -140,6 +140,21 @@ func TestLimitInterruptedAndTimeout(t *testing.T) {
 	out := integrateLimits(ctx, list, LimitOptions{}, half)
 	assert.True(t, out.Interrupted)
 	require.Len(t, out.Results, 1)
+	assert.Equal(t, "interrupted", out.Results[0].Values[0].Reason)
+	assert.False(t, out.Met())
+	one := func(context.Context, *cases.Case, *casefile.Limit) ([]limits.Value, error) {
+		v := limits.Empty(&list[0].File.Limits[0])
+		v.Eps, v.Energy = []float64{.05}, []float64{1}
+		return []limits.Value{v}, context.Canceled
+	}
+	ctx, cancel = context.WithCancel(t.Context())
+	out = integrateLimits(ctx, list, LimitOptions{Jobs: 1}, func(ctx context.Context, c *cases.Case, l *casefile.Limit) ([]limits.Value, error) {
+		cancel()
+		return one(ctx, c, l)
+	})
+	assert.True(t, out.Interrupted)
+	assert.Equal(t, "interrupted, after 1 of 3 eps", out.Results[0].Values[0].Reason)
+	assert.Equal(t, []float64{1}, out.Results[0].Values[0].Energy)
 	out = integrateLimits(t.Context(), list, LimitOptions{Timeout: 20 * time.Millisecond}, half)
 	assert.False(t, out.Interrupted)
 	assert.Equal(t, "not computed within the 20ms allowed", out.Results[0].Values[0].Reason)
@@ -188,5 +203,39 @@ func TestLimitOfValuesThatBreakAnAssumption(t *testing.T) {
 		assert.ErrorContains(t, out.Results[0].Err, c.says, name)
 		assert.True(t, out.Faulty(), name)
 		assert.Empty(t, out.Results[0].Values, name)
+	}
+}
+
+const mollified = `[[limit]]
+name = "fronts"
+approximation = "mollified"
+branches = ["x + z/2", "-x + z/2", "y + z/2", "-y + z/2"]
+combine = "max(min(1, 3), 2, 4)"
+box = { x = ["-1", "1"], y = ["-1", "1"], z = ["0", "1/10"] }
+eps = ["1/10", "1/12"]
+width = "2"
+energy = "1/10"
+within = 1e-1
+`
+
+func TestJobsDoNotChangeLimits(t *testing.T) {
+	list := []*cases.Case{parsed(t, layeredCase+"[[limit]]\nname='m'\napproximation='mollified'\nbranches=['x + z/2', '-x + z/2']\ncombine='max'\neps=['1/20','1/40','1/80']\n"+unitBox)}
+	one := Limit(t.Context(), list, LimitOptions{Jobs: 1}).Results[0]
+	two := Limit(t.Context(), list, LimitOptions{Jobs: 2}).Results[0]
+	require.NoError(t, one.Err)
+	require.NoError(t, two.Err)
+	assert.Equal(t, one.Values, two.Values)
+	assert.Len(t, one.Values[0].Energy, 3)
+}
+
+func TestMistakesOfMollifiedLimits(t *testing.T) {
+	nested := strings.Replace(mollified, `"mollified"`, `"front"`, 1)
+	for name, c := range map[string]struct{ text, says string }{
+		"a nested front":    {strings.Replace(nested, "width = \"2\"\n", "", 1), "a front of a nested combination"},
+		"a branch left out": {strings.Replace(mollified, "2, 4)", "2)", 1), "branch 4 is not used"},
+		"no such branch":    {strings.Replace(mollified, "2, 4)", "2, 7)", 1), "there is no branch 7"},
+	} {
+		r := limitOfText(t, c.text)
+		assert.ErrorContains(t, r.Err, c.says, name)
 	}
 }

@@ -35,6 +35,8 @@ type Smoothing interface {
 // sharp function within a distance of the creases only. Its energy is finite
 // wherever its jets are.
 type inexact interface {
+	// begin forgets what earlier integrals found.
+	begin()
 	// reach is that distance.
 	reach(eps float64) float64
 	// accuracy is the relative tolerance below which integrals would follow

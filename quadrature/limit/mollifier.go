@@ -31,7 +31,8 @@ type Mollifier struct {
 // wall, 0.7 % above the sharp one.
 const DefaultWidth = 11.5
 
-func (m *Mollifier) delta(eps float64) float64 {
+// Radius is the radius δ of the kernel.
+func (m *Mollifier) Radius(eps float64) float64 {
 	if m.Width == 0 {
 		return DefaultWidth * eps
 	}
@@ -53,7 +54,9 @@ func (m *Mollifier) finer(p *Problem, x []float64, eps float64, out *Jet) bool {
 	return true
 }
 
-func (m *Mollifier) reach(eps float64) float64 { return m.delta(eps) }
+func (m *Mollifier) begin() { m.work = ball{} }
+
+func (m *Mollifier) reach(eps float64) float64 { return m.Radius(eps) }
 
 func (m *Mollifier) accuracy(p *Problem) float64 {
 	affine := 0
@@ -79,7 +82,7 @@ func (m *Mollifier) smooth(p *Problem, x []float64, eps float64, level int, out 
 		m.dim, m.rules = n, [2]*orders{newOrders(n, false), newOrders(n, true)}
 	}
 	b := &m.work
-	b.begin(p, x, m.delta(eps), m.rules[level])
+	b.begin(p, x, m.Radius(eps), m.rules[level])
 	b.survey()
 	b.convolve()
 	m.approx = b.approx

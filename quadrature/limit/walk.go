@@ -59,6 +59,7 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 	}
 	if l, ok := p.Smoothing.(inexact); ok && !sharp {
 		w.layer, w.finer = l, NewJet(n)
+		l.begin()
 		w.rel = math.Max(w.rel, l.accuracy(p))
 	}
 	for range n {
