@@ -136,34 +136,26 @@ func (p *plan) turning(c *cell, b *base) (j int, s float64, ok bool) {
 }
 
 // vanishing returns a trim that is zero to rounding at all of a number of
-// points of the surface in the cell, spread over the base, and so everywhere. In
-// large cells it does not look.
+// points of the surface in the cell, spread over the base, and so everywhere.
 func (b *base) vanishing() *trace {
-	const most, need = 24, 6
-	for i := range b.p.dim {
-		if b.cell.relative(b.p, i) > 1.0/8 {
-			return nil
-		}
+	if len(b.trims) == 0 {
+		return nil
 	}
-	box := b.p.tbox[:b.p.dim]
-	b.cell.box(box)
-	tiny := func(f Function, x []float64) bool { return math.Abs(f.Value(x)) <= 1e-11*f.Range(box).Mag() }
+	const most, need = 24, 6
+	d := b.p.dim
+	onSurface := b.usual(b.p.phi)
 	var x [2]float64
 	for _, t := range b.trims {
-		found := 0
+		found, tiny := 0, b.usual(t.psi)
 		for i := range most {
-			// Multiples of powers of a generalised golden section.
-			for k, step := range [2]float64{0.7548776662466927, 0.5698402909980532} {
-				if k < b.dim {
-					_, f := math.Modf(0.5 + float64(i+1)*step)
-					x[k] = b.box[k].Inf() + f*b.box[k].Wid()
-				}
+			for k := range b.dim {
+				x[k] = b.box[k].Inf() + golden(d-1, k, i)*b.box[k].Wid()
 			}
 			t.lift(x[:b.dim])
-			if !tiny(t.phi, t.x) {
+			if !(math.Abs(t.phi.Value(t.x)) <= onSurface) {
 				continue // the surface is not over this point
 			}
-			if !tiny(t.psi, t.x) {
+			if !(math.Abs(t.psi.Value(t.x)) <= tiny) {
 				break
 			}
 			if found++; found == need {
@@ -172,4 +164,31 @@ func (b *base) vanishing() *trace {
 		}
 	}
 	return nil
+}
+
+// usual is 1e-11 of the least absolute value of a function at a few places in
+// the cell, most of which will not be on the surface; 0 where it has none.
+func (b *base) usual(f Function) float64 {
+	least := math.Inf(1)
+	x := make([]float64, b.p.dim)
+	for i := range 7 {
+		for k := range x {
+			x[k] = b.cell.lo[k] + golden(len(x), k, i)*(b.cell.hi[k]-b.cell.lo[k])
+		}
+		v := math.Abs(f.Value(x))
+		if !(v < math.Inf(1)) {
+			return 0
+		}
+		least = min(least, v)
+	}
+	return 1e-11 * least
+}
+
+// golden is coordinate k of the i-th of points spread evenly over the unit cube
+// of d dimensions: multiples of powers of generalised golden sections (Roberts
+// 2018).
+func golden(d, k, i int) float64 {
+	step := [4][3]float64{1: {0.6180339887498949}, 2: {0.7548776662466927, 0.5698402909980532}, 3: {0.8191725133961645, 0.6710436067037893, 0.5497004779019703}}[d][k]
+	_, f := math.Modf(0.5 + float64(i+1)*step)
+	return f
 }

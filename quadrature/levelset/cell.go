@@ -126,11 +126,14 @@ func (p *plan) treatPlain(c *cell, g []Interval) (verdict, error) {
 			return done, nil
 		}
 		l, ok := b.direction()
-		if ok && p.record(b, l) {
+		if ok && b.dim > 1 && p.record(b, l) {
 			return done, nil
 		}
 		if t := b.vanishing(); t != nil {
 			return done, &VanishingError{System: c.system, Condition: t.condition, Point: slices.Clone(t.x)}
+		}
+		if ok && b.dim == 1 && p.record(b, l) {
+			return done, nil
 		}
 		if first == nil && !ok {
 			first = b

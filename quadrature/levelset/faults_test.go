@@ -180,3 +180,42 @@ func TestVanishing(t *testing.T) {
 	require.NoError(t, err)
 	assert.InEpsilon(t, 2*math.Pi, r.Area, 1e-9)
 }
+
+// pole is a condition with a pole in the box: 1/(x - 0.1) - 3 and no enclosure
+// next to the pole.
+type pole struct{}
+
+func (p pole) Value(x []float64) float64 { return 1/(x[0]-0.1) - 3 }
+
+func (p pole) Gradient(g, x []float64) {
+	clear(g)
+	g[0] = -1 / ((x[0] - 0.1) * (x[0] - 0.1))
+}
+
+func (p pole) Range(box []Interval) Interval {
+	d := box[0].Sub(span(0.1, 0.1))
+	if !certain(d) {
+		return span(1, 0)
+	}
+	return span(1, 1).Div(d).Sub(span(3, 3))
+}
+
+func (p pole) GradientRange(g, box []Interval) {
+	d := box[0].Sub(span(0.1, 0.1))
+	for i := range g {
+		g[i] = span(0, 0)
+	}
+	if g[0] = span(1, 0); certain(d) {
+		g[0] = span(-1, -1).Div(d.Sqr())
+	}
+}
+
+// A condition with a pole does not vanish, wide as its enclosures are.
+func TestPoleIsNotVanishing(t *testing.T) {
+	for _, phi := range []Function{sphere(1, 0, 0, 0), plane(0, 0, 1, 0.2)} {
+		r, err := run(phi, []Function{pole{}}, cube(-1.5, 1.5), Options{Rel: 1e-4, MaxCells: 20000})
+		var v *VanishingError
+		assert.NotErrorAs(t, err, &v)
+		assert.Positive(t, r.Area)
+	}
+}
