@@ -2,8 +2,8 @@
 // at falling eps, and compares it with the jump energy.
 //
 // A limit of a case file names an approximation (the one-dimensional profile of
-// a planar wall, the smooth front of branches, their mollified maximum or
-// minimum), a domain and some eps. This package compiles the branches, the
+// a planar wall, the smooth front of branches, a combination of branches
+// mollified in space), a domain and some eps. This package compiles the branches, the
 // density R²/(2 eps) + eps L²/2 or that of the model, and the domain, for package
 // quadrature/limit. Branches off the well are refused, by exact arithmetic or,
 // where that does not decide it, by the residual at a few points.

@@ -18,7 +18,9 @@ func newLimit(s streams) *cobra.Command {
 		Short: "Compare energies of smooth approximations with the jump energy as eps falls",
 		Long: `Integrate the energy of smooth approximations at a falling sequence of eps, and
 compare it with the jump energy: the one-dimensional profile of a planar wall,
-the smooth front of branches, or their mollified maximum or minimum.
+the smooth front of branches, or a combination of branches convolved in space
+with a kernel of radius width eps, where branches are evaluated up to that
+distance outside of the domain.
 
 Shown for each eps are the energy, its two parts R^2/(2 eps) (compression) and
 eps L^2/2 (bending), eps times the integral of the curvature K, and the gap to

@@ -170,3 +170,88 @@ func TestMollifiedClosedForms(t *testing.T) {
 	assert.InDelta(t, .552447056833344615, .6*j.P[0]+.8*j.P[1], 1e-9)
 	assert.InDelta(t, 0, .8*j.P[0]-.6*j.P[1], 1e-9)
 }
+
+// turned is the rotation of the plane that takes (1, 0) to (4, 3)/5, about the
+// origin, and a translation.
+func turned(x, y float64) (float64, float64) { return .8*x - .6*y + .31, .6*x + .8*y - .27 }
+
+// Energies by mpmath, from ∫(1 - S²)² and ∫ρ² of the kernel integrated over
+// lines or planes, S the regularised incomplete beta function.
+func TestEnergyOfMollifiedWalls(t *testing.T) {
+	for name, c := range map[string]struct {
+		p                    *Problem
+		compression, bending float64
+	}{
+		"plane": {problem(box(-1, 1, 0, 1), &Mollifier{}, affine(0, 1, 0), affine(0, -1, 0)), .682656347017594347, .165132518214983794},
+		"space": {problem(box(-1, 1, 0, 1, 0, 1), &Mollifier{}, layeredBranch(1, 0, 0), layeredBranch(-1, 0, 0)), .653943767623688774, .172214916595048511},
+		// The jump √2 of a square's diagonals.
+		"at an angle": {problem(box(-1, 1, 0, 1), &Mollifier{}, affine(0, 1, 0), affine(0, 0, 1)), .682656347017594347 / 4 * math.Sqrt2, .165132518214983794 / 2 * math.Sqrt2},
+		"turned": {problem(Domain{Lo: []float64{-1, 0}, Hi: []float64{1, 1}, Map: func(s, x []float64, jac [][]float64) {
+			x[0], x[1] = turned(s[0], s[1])
+			copy(jac[0], []float64{.8, .6})
+			copy(jac[1], []float64{-.6, .8})
+		}}, &Mollifier{}, affine(-.31*.8+.27*.6, .8, .6), affine(.31*.8-.27*.6, -.8, -.6)), .682656347017594347, .165132518214983794},
+	} {
+		if name == "at an angle" {
+			c.p.Domain = box(-1, 1, -.5, .5)
+			c.p.Domain.Map = func(s, x []float64, jac [][]float64) { // the crease x = y along it
+				x[0], x[1] = s[0]+s[1], s[1]-s[0]
+				copy(jac[0], []float64{1, -1})
+				copy(jac[1], []float64{1, 1})
+			}
+		}
+		e, err := c.p.Integrate(t.Context(), .02)
+		assert.NoError(t, err, name)
+		assert.InDelta(t, c.compression, e.Compression, 2*e.Error+1e-9, name)
+		assert.InDelta(t, c.bending, e.Bending, 2*e.Error+1e-9, name)
+		assert.Less(t, e.Error, 1e-7, name)
+		assert.True(t, e.Met, name)
+	}
+}
+
+// A problem that is moved and turned has the same jets, moved and turned.
+func TestMollifiedJetsMoveWithTheProblem(t *testing.T) {
+	moved := func(b branch) branch {
+		return func(x []float64, j *Jet) {
+			a, c := x[0]-.31, x[1]+.27
+			k := NewJet(2)
+			b([]float64{.8*a + .6*c, -.6*a + .8*c}, &k)
+			j.U = k.U
+			j.P[0], j.P[1] = .8*k.P[0]-.6*k.P[1], .6*k.P[0]+.8*k.P[1]
+			r := [2][2]float64{{.8, -.6}, {.6, .8}}
+			for i := range 2 {
+				for l := range 2 {
+					j.H[2*i+l] = 0
+					for m := range 2 {
+						for n := range 2 {
+							j.H[2*i+l] += r[i][m] * r[l][n] * k.H[2*m+n]
+						}
+					}
+				}
+			}
+		}
+	}
+	for name, list := range map[string][]branch{
+		"three":  {affine(0, 1, 0), affine(0, -.5, root), affine(.02, -.5, -root)},
+		"circle": {fromPoint(-1, 0), affine(1, 0, 0)},
+		"tip":    {fromPoint(.05, .02), affine(.1, .2, 0)},
+	} {
+		var other []branch
+		for _, b := range list {
+			other = append(other, moved(b))
+		}
+		p, q := problem(box(-1, 1, -1, 1), &Mollifier{Width: 2}, list...), problem(box(-1, 1, -1, 1), &Mollifier{Width: 2}, other...)
+		for i := range q.Affine {
+			q.Affine[i] = p.Affine[i]
+		}
+		for _, x := range [][2]float64{{.04, .03}, {-.07, .05}, {.02, -.11}} {
+			a, b := turned(x[0], x[1])
+			want, got := smoothed(p, .1, x[0], x[1]), smoothed(q, .1, a, b)
+			assert.InDelta(t, want.U, got.U, 1e-8, name)
+			assert.InDelta(t, .8*want.P[0]-.6*want.P[1], got.P[0], 1e-7, name)
+			assert.InDelta(t, .6*want.P[0]+.8*want.P[1], got.P[1], 1e-7, name)
+			assert.InDelta(t, want.H[0]+want.H[3], got.H[0]+got.H[3], 1e-6, name)
+			assert.InDelta(t, want.H[0]*want.H[3]-want.H[1]*want.H[2], got.H[0]*got.H[3]-got.H[1]*got.H[2], 1e-4, name)
+		}
+	}
+}
