@@ -27,7 +27,7 @@ const (
 
 // reach are the places of the cuts about a crossing, in units of the width of
 // the layer.
-var reach = [...]float64{3, 9, 20, 42}
+var reach = [...]float64{10, 26, 48}
 
 // winner is the branch that is the sharp function at parameter s of the fibre.
 func (w *walk) winner(k int, s float64) int {
@@ -186,51 +186,96 @@ func (w *walk) between(k int, from, to float64, first, next, left int) {
 	w.cuts = append(w.cuts, c)
 }
 
-// panels are the edges of the panels of the current fibre.
-func (w *walk) panels() []float64 {
+// panels cuts the current fibre at the crossings and about them. Spans on which
+// nothing is left of the share are left out.
+func (w *walk) panels() []span {
 	k := w.order[w.n-1]
 	lo, hi := w.p.Domain.Lo[k], w.p.Domain.Hi[k]
-	w.edges = append(w.edges[:0], lo, hi)
+	w.spans = w.spans[:0]
+	from := lo // what is before it is covered
 	for i, c := range w.cuts {
-		left, right := lo, hi
-		if i > 0 {
-			left = (w.cuts[i-1].s + c.s) / 2
-		}
+		right := hi
 		if i+1 < len(w.cuts) {
 			right = (c.s + w.cuts[i+1].s) / 2
 		}
-		w.edges = append(w.edges, c.s)
+		left := from
+		if i > 0 {
+			left = (w.cuts[i-1].s + c.s) / 2
+		}
 		unit := w.eps / math.Abs(c.slope)
 		if !(unit > 0) || math.IsInf(unit, 0) {
+			w.put(from, c.s, false)
+			from = c.s
 			continue
 		}
 		if w.layer != nil {
 			l := w.layer.reach(w.eps) * c.steep / math.Abs(c.slope)
-			for _, s := range [2]float64{c.s - l, c.s + l} {
-				if s > left && s < right {
-					w.edges = append(w.edges, s)
+			for _, s := range [3]float64{c.s - l, c.s, c.s + l} {
+				if s == c.s || s > left && s < right {
+					w.put(from, s, false)
+					from = s
 				}
 			}
 			continue
 		}
-		for _, r := range reach {
-			if s := c.s - r*unit; s > left {
-				w.edges = append(w.edges, s)
-			}
-			if s := c.s + r*unit; s < right {
-				w.edges = append(w.edges, s)
+		last := len(reach) - 1
+		for m := last; m >= 0; m-- {
+			if s := c.s - reach[m]*unit; s > left {
+				w.put(from, s, m < last)
+				from = s
 			}
 		}
-	}
-	slices.Sort(w.edges)
-	kept := w.edges[:1]
-	for _, s := range w.edges[1:] {
-		if s-kept[len(kept)-1] > 1e-12*(hi-lo) {
-			kept = append(kept, s)
+		w.put(from, c.s, false)
+		from = c.s
+		for m, r := range reach {
+			s := c.s + r*unit
+			if s >= right {
+				break
+			}
+			w.put(from, s, m > 0)
+			from = s
 		}
 	}
-	kept[len(kept)-1] = hi
-	return kept
+	w.put(from, hi, false)
+	return w.spans
+}
+
+// put adds a span of the current fibre.
+func (w *walk) put(a, b float64, coarse bool) {
+	k := w.order[w.n-1]
+	if p := (span{a, b, coarse && w.fades}); b > a && (k == w.first || !w.empty(k, p)) {
+		w.spans = append(w.spans, p)
+	}
+}
+
+// empty reports whether nothing is left of the share on a span of the current
+// fibre, as far as a few places show.
+func (w *walk) empty(k int, p span) bool {
+	lo, hi := w.p.Domain.Lo[k], w.p.Domain.Hi[k]
+	n := w.p.Branches
+	for i := range pieces + 1 {
+		if s := lo + (hi-lo)*float64(i)/pieces; s > p.lo && s < p.hi && w.close(w.heights[i*n:(i+1)*n]) {
+			return false
+		}
+	}
+	for _, s := range [3]float64{p.lo, p.lo + (p.hi-p.lo)/2, p.hi} {
+		if w.winner(k, s); w.close(w.v) {
+			return false
+		}
+	}
+	return true
+}
+
+// close reports whether another branch is near to that which wins.
+func (w *walk) close(v []float64) bool {
+	best := v[w.p.active(v)]
+	found := 0
+	for _, u := range v {
+		if math.Abs(u-best) < farAway*reachOfShare*w.eps {
+			found++
+		}
+	}
+	return found > 1
 }
 
 // gauge sets the size of the integrals along fibres to the greatest on a few
@@ -243,13 +288,12 @@ func (w *walk) gauge() {
 	r := rule.Kronrod15()
 	w.probe(k, func() {
 		w.cross()
-		edges := w.panels()
 		var sum float64
-		for i := 1; i < len(edges); i++ {
-			half := (edges[i] - edges[i-1]) / 2
+		for _, p := range w.panels() {
+			half := (p.hi - p.lo) / 2
 			for j, x := range r.X {
 				var v values
-				if w.density(edges[i-1]+half*(1+x), &v, nil) == nil {
+				if w.density(p.lo+half*(1+x), &v, nil) == nil {
 					sum += half * r.Weight[j] * math.Abs(v[0])
 				}
 			}

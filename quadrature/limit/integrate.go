@@ -19,6 +19,9 @@ var errInfinite = errors.New("the integral diverges")
 // errPoint says that an integrand is not finite at a node.
 var errPoint = errors.New("the integrand is not finite")
 
+// mostPanels of one integral; more of them chase rounding.
+const mostPanels = 2000
+
 // window is over how many halvings contributions have to fall by a half.
 const window = 12
 
@@ -28,6 +31,8 @@ type integral struct {
 	// errInfinite make the node infinite; other errors end the integration.
 	f func(s float64, out, err *values) error
 	k *rule.Kronrod
+	// coarse is tried first on spans that are coarse.
+	coarse *rule.Kronrod
 	// scale is the size that rel refers to; it grows with the values met.
 	scale *float64
 	rel   float64
@@ -46,6 +51,7 @@ type panel struct {
 	worst    float64
 	depth    int
 	infinite int // nodes
+	coarse   bool
 	past     [2 * window]float64
 }
 
@@ -67,9 +73,13 @@ func (q *integral) apply(p *panel) error {
 	half, mid := (p.hi-p.lo)/2, p.lo+(p.hi-p.lo)/2
 	var kronrod, gauss, inner, spread values
 	var seen [31]values
-	for n, i := range q.k.Order {
+	k := q.k
+	if p.coarse {
+		k = q.coarse
+	}
+	for n, i := range k.Order {
 		var v, e values
-		err := q.f(mid+half*q.k.X[i], &v, &e)
+		err := q.f(mid+half*k.X[i], &v, &e)
 		switch {
 		case errors.Is(err, errPoint), errors.Is(err, errInfinite):
 			p.infinite++
@@ -82,15 +92,15 @@ func (q *integral) apply(p *panel) error {
 		}
 		seen[i] = v
 		for c := range v {
-			kronrod[c] += q.k.Weight[i] * v[c]
-			gauss[c] += q.k.Gauss[i] * v[c]
-			inner[c] += q.k.Weight[i] * e[c]
+			kronrod[c] += k.Weight[i] * v[c]
+			gauss[c] += k.Gauss[i] * v[c]
+			inner[c] += k.Weight[i] * e[c]
 		}
 	}
 	p.worst = 0
 	for c := range kronrod {
 		p.value[c] = half * kronrod[c]
-		for i, w := range q.k.Weight {
+		for i, w := range k.Weight {
 			spread[c] += w * math.Abs(seen[i][c]-kronrod[c]/2)
 		}
 		p.err[c] = half * distance(kronrod[c]-gauss[c], spread[c])
@@ -116,7 +126,7 @@ func distance(d, spread float64) float64 {
 	if spread == 0 || d == 0 {
 		return d
 	}
-	return spread * math.Min(1, math.Pow(200*d/spread, 1.5))
+	return math.Min(2*d, spread*math.Pow(200*d/spread, 1.5))
 }
 
 // divergent reports whether the contributions of the panel and of those it came
@@ -139,10 +149,16 @@ func (q *integral) divergent(p *panel) bool {
 	return late > early/2 && late > 1e-9**q.scale
 }
 
-// over integrates over the panels between consecutive edges. The estimate
+// span is an interval.
+type span struct {
+	lo, hi float64
+	coarse bool // where little is expected
+}
+
+// over integrates over the spans. The estimate
 // includes the errors of the nodes. Where the work is used up the values come
 // with their estimates as they are.
-func (q *integral) over(edges []float64, out, estimate *values) error {
+func (q *integral) over(spans []span, out, estimate *values) error {
 	var open, done panels
 	add := func(p *panel) error {
 		if err := q.apply(p); err != nil {
@@ -151,21 +167,21 @@ func (q *integral) over(edges []float64, out, estimate *values) error {
 		if q.divergent(p) {
 			return errInfinite
 		}
-		if p.infinite == 0 && (p.depth >= 2*q.deepest || p.worst <= 4e-16*math.Abs(p.value[0])) {
+		if p.infinite == 0 && (p.depth >= 2*q.deepest || p.worst <= 4e-16*math.Abs(p.value[0]) || p.worst <= p.inner[0]) {
 			done = append(done, p)
 		} else {
 			heap.Push(&open, p)
 		}
 		return nil
 	}
-	for i := 1; i < len(edges); i++ {
-		if edges[i] > edges[i-1] {
-			if err := add(&panel{lo: edges[i-1], hi: edges[i]}); err != nil {
+	for _, s := range spans {
+		if s.hi > s.lo {
+			if err := add(&panel{lo: s.lo, hi: s.hi, coarse: s.coarse}); err != nil {
 				return err
 			}
 		}
 	}
-	for len(open) > 0 && !q.spent() {
+	for len(open) > 0 && len(open)+len(done) < mostPanels && !q.spent() {
 		var size, err float64
 		for _, p := range open {
 			size += math.Abs(p.value[0])
@@ -181,6 +197,12 @@ func (q *integral) over(edges []float64, out, estimate *values) error {
 			break
 		}
 		p := heap.Pop(&open).(*panel)
+		if p.coarse {
+			if err := add(&panel{lo: p.lo, hi: p.hi}); err != nil {
+				return err
+			}
+			continue
+		}
 		mid := p.lo + (p.hi-p.lo)/2
 		if !(mid > p.lo && mid < p.hi) {
 			if p.infinite > 0 {

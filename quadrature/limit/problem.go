@@ -89,7 +89,7 @@ var ErrDomain = errors.New("limit: the domain is empty")
 
 const (
 	defaultRel = 1e-10
-	defaultMax = 20_000_000
+	defaultMax = 10_000_000
 	mostFibres = 100_000 // for the sharp energy
 )
 
@@ -147,7 +147,7 @@ func (p *Problem) Integrate(ctx context.Context, eps float64) (Energy, error) {
 	case err != nil:
 		return out, err
 	}
-	out.Met = !w.spent()
+	out.Met = w.met
 	return out, nil
 }
 
@@ -158,23 +158,16 @@ func (p *Problem) Sharp(ctx context.Context) (energy, estimate, area float64, er
 	if err != nil {
 		return 0, 0, 0, err
 	}
-	best := w.orient()
 	for i := range w.n {
-		k := (best + i) % w.n // the greatest part first
-		w.direct(k)
-		unit := 1e-3 * math.Abs(energy)
-		for d, j := range w.order {
-			w.scale[d] = math.Max(unit, smallestScale)
-			unit /= w.p.Domain.Hi[j] - w.p.Domain.Lo[j]
-		}
-		v, e, err := w.run()
-		if ctx.Err() != nil {
-			return 0, 0, 0, ctx.Err()
-		}
-		if err != nil {
-			return 0, 0, 0, fmt.Errorf("%w: the energy per area of the jumps, near %.4g", ErrNotFinite, w.bad)
-		}
-		energy, estimate, area = energy+v[0], estimate+e[0], area+v[1]
+		w.scale[i] = smallestScale
 	}
+	v, e, err := w.run()
+	if ctx.Err() != nil {
+		return 0, 0, 0, ctx.Err()
+	}
+	if err != nil {
+		return 0, 0, 0, fmt.Errorf("%w: the energy per area of the jumps, near %.4g", ErrNotFinite, w.bad)
+	}
+	energy, estimate, area = v[0], e[0], v[1]
 	return energy, estimate + 1e-14*math.Abs(energy), area, nil
 }

@@ -16,8 +16,11 @@ type walk struct {
 	sharp bool // the jumps, not the approximation
 
 	n     int
-	order []int // of the parameters, outermost first; the last runs along fibres
-	rel   float64
+	order []int   // of the parameters, outermost first; the last runs along fibres
+	goal  float64 // the tolerance asked for
+	rel   float64 // of this stage
+	met   bool
+	size  float64   // of the whole energy, 0 where not known
 	scale []float64 // of the integrals of each level
 	used  int
 	most  int
@@ -31,13 +34,19 @@ type walk struct {
 	q, nu   []float64
 	cuts    []crossing
 	heights []float64 // of the branches along a fibre
-	edges   []float64
-	layer   inexact // the smoothing, if it is
+	layer   inexact   // the smoothing, if it is
 	finer   Jet
 	noise   [2]float64 // differences of densities by finer jets, and densities
 	bad     []float64  // where a density was not finite
 	steep   float64    // the greatest density met
 	summit  []float64  // and where
+
+	first       int     // the parameter that is best along fibres
+	fades       bool    // the layer does so exponentially
+	plain       bool    // no other direction is needed
+	ref         float64 // see reference
+	near, parts []float64
+	spans       []span
 }
 
 func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, error) {
@@ -45,11 +54,12 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 		return nil, err
 	}
 	n := len(p.Domain.Lo)
-	w := &walk{p: p, ctx: ctx, eps: eps, sharp: sharp, n: n, rel: p.Rel, most: p.MaxEvaluations,
+	w := &walk{p: p, ctx: ctx, eps: eps, sharp: sharp, n: n, goal: p.Rel, most: p.MaxEvaluations,
 		scale: make([]float64, n), s: make([]float64, n), x: make([]float64, n), det: make([]float64, n*n),
-		v: make([]float64, p.Branches), u: NewJet(n), q: make([]float64, n), nu: make([]float64, n)}
-	if w.rel == 0 {
-		w.rel = defaultRel
+		v: make([]float64, p.Branches), u: NewJet(n), q: make([]float64, n), nu: make([]float64, n),
+		near: make([]float64, p.Branches), parts: make([]float64, n)}
+	if w.goal == 0 {
+		w.goal = defaultRel
 	}
 	if w.most == 0 {
 		w.most = defaultMax
@@ -60,16 +70,22 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 	if l, ok := p.Smoothing.(inexact); ok && !sharp {
 		w.layer, w.finer = l, NewJet(n)
 		l.begin()
-		w.rel = math.Max(w.rel, l.accuracy(p))
+		w.goal = math.Max(w.goal, l.accuracy(p))
 	}
+	w.rel = w.goal
 	for range n {
 		w.jac = append(w.jac, make([]float64, n))
 	}
 	for range p.Branches {
 		w.jets = append(w.jets, NewJet(n))
 	}
+	if _, w.fades = p.Smoothing.(*Front); w.fades {
+		w.p = p.remembering()
+	}
+	w.first = w.orient()
+	w.reference()
+	w.direct(w.first)
 	if !sharp {
-		w.direct(w.orient())
 		w.gauge()
 	}
 	return w, nil
@@ -77,8 +93,77 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 
 func (w *walk) spent() bool { return w.used >= w.most || w.ctx.Err() != nil }
 
+// run integrates with falling tolerances, as long as that pays and the work
+// allows it.
 func (w *walk) run() (v, e values, err error) {
-	err = w.level(0, &v, &e)
+	w.rel = math.Max(w.goal, roughly)
+	for stage := 0; ; stage++ {
+		start := w.used
+		now, errs, err := w.whole()
+		if err != nil || stage > 0 && w.spent() {
+			return v, e, err // of the stage before
+		}
+		for c := range now {
+			if stage > 0 {
+				errs[c] = math.Max(errs[c]/trust, math.Min(errs[c], 2*math.Abs(now[c]-v[c])))
+			}
+		}
+		cost := float64(w.used - start)
+		v, e = now, errs
+		w.size = math.Abs(v[0])
+		worst := 0.0
+		for _, x := range e {
+			worst = math.Max(worst, x)
+		}
+		allowed := float64(w.most - w.used)
+		if worst <= enough*w.size && !w.sharp {
+			allowed = float64(w.most)/patience - float64(w.used)
+		}
+		w.met = worst <= math.Max(w.goal, enough)*w.size
+		if w.rel <= w.goal || worst <= w.goal*w.size || w.spent() || cost*growth > allowed {
+			return v, e, nil
+		}
+		// As many decades as the usual work allows.
+		decades := 1.0
+		if left := float64(w.most)/patience - float64(w.used); left > cost {
+			decades = math.Min(4, math.Max(1, math.Floor(math.Log(left/cost)/math.Log(growth))))
+		}
+		w.rel = math.Max(w.goal, w.rel*math.Pow(0.1, decades))
+	}
+}
+
+const (
+	roughly  = 1e-3 // tolerance of the first stage
+	trust    = 30   // by how much the distance of two stages may undercut an estimate
+	growth   = 3.0  // of the work for a tenth of the tolerance, about
+	enough   = 1e-5 // relative errors with which the integration is content
+	patience = 5    // where more than this part of the work allowed would be used
+)
+
+// whole integrates the shares of all directions.
+func (w *walk) whole() (v, e values, err error) {
+	for i := range w.n {
+		if w.plain && i > 0 {
+			break
+		}
+		w.direct((w.first + i) % w.n)
+		var own, errs values
+		unit := w.size
+		for d, j := range w.order {
+			if w.size != 0 {
+				w.scale[d] = math.Max(unit, smallestScale)
+			}
+			unit /= w.p.Domain.Hi[j] - w.p.Domain.Lo[j]
+		}
+		err = w.level(0, &own, &errs)
+		for c := range v {
+			v[c] += own[c]
+			e[c] += errs[c]
+		}
+		if err != nil {
+			break
+		}
+	}
 	return v, e, err
 }
 
@@ -142,15 +227,14 @@ func determinant(a []float64, n int) float64 {
 // level integrates over the parameters from the given one inwards.
 func (w *walk) level(depth int, out, estimate *values) error {
 	k := w.order[depth]
-	lo, hi := w.p.Domain.Lo[k], w.p.Domain.Hi[k]
 	inner := w.n - 1 - depth
-	q := integral{scale: &w.scale[depth], rel: w.rel * math.Pow(0.2, float64(depth)), deepest: 34, spent: w.spent}
+	q := integral{scale: &w.scale[depth], rel: w.rel * math.Pow(0.3, float64(depth)), deepest: 34, spent: w.spent}
 	if inner == 0 {
 		w.cross()
 		if w.sharp {
 			return w.jumps(out)
 		}
-		q.k, q.f, q.deepest = rule.Kronrod21(), w.density, 46
+		q.coarse, q.k, q.f, q.deepest = rule.Kronrod7(), rule.Kronrod15(), w.density, 46
 		return q.over(w.panels(), out, estimate)
 	}
 	q.k = rule.Kronrod15()
@@ -158,11 +242,8 @@ func (w *walk) level(depth int, out, estimate *values) error {
 		w.s[k] = s
 		return w.level(depth+1, v, e)
 	}
-	edges := []float64{lo, hi}
-	if depth == 0 {
-		edges = []float64{lo, lo + (hi-lo)/2, hi}
-	}
-	return q.over(edges, out, estimate)
+	spans := w.turns(depth)
+	return q.over(spans, out, estimate)
 }
 
 // probed is of how many densities one is computed again from a finer jet.
@@ -184,9 +265,17 @@ func (w *walk) density(s float64, out, _ *values) error {
 	}
 	w.s[w.order[w.n-1]] = s
 	w.move()
+	part := 1.0
+	if !w.plain {
+		w.p.Jets(w.x, w.jets)
+		if part = w.share(w.order[w.n-1]); part < 1e-2*w.rel {
+			*out = values{}
+			return nil
+		}
+	}
 	w.p.Smoothing.Smooth(w.p, w.x, w.eps, &w.u)
 	d := w.p.Density(w.x, w.eps, &w.u)
-	dx := w.volume()
+	dx := w.volume() * part
 	if w.layer != nil && w.used%probed == 0 && w.layer.finer(w.p, w.x, w.eps, &w.finer) {
 		f := w.p.Density(w.x, w.eps, &w.finer)
 		off := math.Max(math.Abs(f.Energy-d.Energy), math.Max(math.Abs(f.Compression-d.Compression), math.Abs(f.Bending-d.Bending)))
@@ -223,19 +312,11 @@ func (w *walk) jumps(out *values) error {
 		w.p.Jets(w.x, w.jets)
 		plus, minus := w.jets[c.after].P, w.jets[c.before].P
 		along := w.jac[w.order[w.n-1]]
-		var q2, rate, all float64
+		var q2, rate float64
 		for i := range w.q {
 			w.q[i] = plus[i] - minus[i]
 			q2 += w.q[i] * w.q[i]
 			rate += w.q[i] * along[i]
-		}
-		for k, row := range w.jac {
-			var r float64
-			for i, q := range w.q {
-				r += q * row[i]
-			}
-			r *= w.p.Domain.Hi[k] - w.p.Domain.Lo[k]
-			all += r * r
 		}
 		norm := math.Sqrt(q2)
 		if norm == 0 || math.Abs(rate) < 1e-12*norm*length(along) {
@@ -244,10 +325,7 @@ func (w *walk) jumps(out *values) error {
 		for i := range w.nu {
 			w.nu[i] = w.q[i] / norm
 		}
-		// The part of this direction of fibres; the parts add up to 1.
-		k := w.order[w.n-1]
-		scaled := rate * (w.p.Domain.Hi[k] - w.p.Domain.Lo[k])
-		area := w.volume() * norm / math.Abs(rate) * scaled * scaled / all
+		area := w.volume() * norm / math.Abs(rate) * w.shareOfJump(w.order[w.n-1], c)
 		out[0] += area * w.p.Cost(w.x, plus, minus, w.nu)
 		out[1] += area
 	}

@@ -29,10 +29,15 @@ type Kronrod struct {
 }
 
 var (
+	k7  = newKronrod(half7[:])
 	k15 = newKronrod(half15[:])
 	k21 = newKronrod(half21[:])
 	k31 = newKronrod(half31[:])
 )
+
+// Kronrod7 is the pair of the 3-point Gauss and the 7-point Kronrod rule. It has
+// no more than six coefficients; the others are nil.
+func Kronrod7() *Kronrod { return k7 }
 
 // Kronrod15 is the pair of the 7-point Gauss and the 15-point Kronrod rule.
 func Kronrod15() *Kronrod { return k15 }
@@ -66,6 +71,9 @@ func newKronrod(half [][3]float64) *Kronrod {
 	k.High = k.Degree / 2
 	for j := range k.Coefficient {
 		d := k.High - j
+		if d < 0 {
+			break
+		}
 		c := make([]float64, m)
 		for i, x := range k.X {
 			c[i] = float64(2*d+1) / 2 * k.Weight[i] * legendre(d, x)
