@@ -33,3 +33,14 @@ func BenchmarkMollified(b *testing.B) {
 		})
 	}
 }
+
+func BenchmarkParaboloidInABox(b *testing.B) {
+	p := front(box(-2.5, 2.5, -2.5, 2.5, .5, 3), focal, flat)
+	for b.Loop() {
+		e, err := p.Integrate(b.Context(), 1./320)
+		if err != nil || !e.Met {
+			b.Fatal(e, err)
+		}
+		b.ReportMetric(float64(e.Evaluations), "evaluations")
+	}
+}

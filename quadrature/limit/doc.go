@@ -29,21 +29,42 @@
 //
 // # Quadrature
 //
-// The domain is a box of parameters and a map of it. One parameter, the one
-// across which most of the crease lies, runs along fibres. On a fibre the
-// crossings of branches are located, and the fibre is cut at them and at
-// multiples of the width eps/|d(u_i - u_j)/ds| of the layer; on the panels
-// Gauss–Kronrod pairs with global bisection are used, and bisection again for
-// the other parameters, which sees the ends of a crease and lines at which
-// creases meet. The number of nodes grows like log(1/eps), where a grid would
-// need a power of 1/eps. The sharp energy is integrated over fibres along every
-// parameter in turn: a crossing with direction t_k = ∂x/∂s_k of the fibre has the
-// area |det ∂x/∂s|/|ν·t_k|, of which the part (ν·t_k)²/Σ_j (ν·t_j)² counts, for
-// parameters scaled to unit ranges; the parts add up to the whole.
+// The domain is a box of parameters and a map of it. The integral is split into
+// shares w_k, which add up to 1, one for each parameter: the share of parameter k
+// is integrated along fibres in its direction, where
 //
-// The error of an integral is that of QUADPACK (Piessens, de Doncker-Kapenga,
-// Überhuber, Kahaner, 1983) from the distance of the two rules of each pair,
-// with the errors of the inner integrals: an estimate and no enclosure.
+//	w_k = W_k/Σ W_j,  W_j = (b_j V_j)³,
+//
+// V_j is the variance of the derivative by parameter j among the branches near
+// to the sharp function, and b_j = 4 t (1 - t), t in [0, 1] along the range of
+// the parameter. So a share vanishes to high order where its fibres become
+// tangent to a crease, and where a crease leaves the box through one of its two
+// faces; otherwise both were singularities of the outer integrands. A partition
+// of unity by squared components of the normal alone leaves the first at order
+// one half. A small constant in one of the W keeps the shares smooth where the
+// branches do not differ, and away from the crease gives all to one direction. Where one direction is normal to all
+// creases there are no shares.
+//
+// On a fibre the crossings of branches are located, and the fibre is cut at them
+// and at multiples of the width eps/|d(u_i - u_j)/ds| of the layer; on the panels
+// Gauss–Kronrod pairs with global bisection are used. The ranges of the other
+// parameters are cut where the sequence of crossings on the fibre changes, at
+// tangents, at edges and where creases meet, and bisected from there. The number
+// of nodes grows like log(1/eps), where a grid would need a power of 1/eps. The
+// sharp energy is integrated with the same shares of the jumps: a crossing with
+// direction t_k = ∂x/∂s_k of the fibre has the area |det ∂x/∂s|/|ν·t_k|.
+//
+// All is repeated with falling tolerances until that asked for is met, or until
+// the next stage would cost more than the budget; or more than a tenth of it,
+// where the estimate is 2e-5 of the energy or less. What is returned is the last
+// stage that was finished.
+//
+// The error of a panel is estimated from the distance of the two rules of a
+// pair, as in QUADPACK (Piessens, de Doncker-Kapenga, Überhuber, Kahaner, 1983)
+// but no more than twice that distance, with the errors of the inner integrals.
+// From the second stage on it is twice the distance from the stage before where
+// that is less, but no less than a thirtieth of the sum of the panels' estimates
+// (common practice, no source): an estimate and no enclosure.
 // Crossings are looked for in 48 pieces of a fibre, and where the distance of
 // two branches has a minimum; what lies within one piece otherwise is missed by
 // the sharp energy. The energy of the approximation is only found faster where

@@ -89,7 +89,7 @@ var ErrDomain = errors.New("limit: the domain is empty")
 
 const (
 	defaultRel = 1e-10
-	defaultMax = 10_000_000
+	defaultMax = 20_000_000
 	mostFibres = 100_000 // for the sharp energy
 )
 

@@ -4,12 +4,12 @@ import "math"
 
 const (
 	// reachOfShare is the difference of two branches, in units of eps, over
-	// which a share fades away from the crease; farThis times that is where
+	// which a share fades away from the crease; farAway times that is where
 	// nothing is left of it.
 	reachOfShare = 6
 	farAway      = 11
-	// rest is the weight, of 1 at most, that the direction chosen first has
-	// everywhere.
+	// rest is a weight that the direction chosen first has everywhere; those
+	// of the crease are of the order of 1.
 	rest = 1e-9
 	// parallel is the square of the sine of an angle that is rounding.
 	parallel = 1e-24

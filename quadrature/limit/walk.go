@@ -100,8 +100,11 @@ func (w *walk) run() (v, e values, err error) {
 	for stage := 0; ; stage++ {
 		start := w.used
 		now, errs, err := w.whole()
-		if err != nil || stage > 0 && w.spent() {
-			return v, e, err // of the stage before
+		if stage > 0 && w.spent() {
+			return v, e, nil // of the stage before
+		}
+		if err != nil {
+			return now, errs, err
 		}
 		for c := range now {
 			if stage > 0 {
@@ -136,8 +139,8 @@ const (
 	roughly  = 1e-3 // tolerance of the first stage
 	trust    = 30   // by how much the distance of two stages may undercut an estimate
 	growth   = 3.0  // of the work for a tenth of the tolerance, about
-	enough   = 1e-5 // relative errors with which the integration is content
-	patience = 5    // where more than this part of the work allowed would be used
+	enough   = 2e-5 // relative errors with which the integration is content
+	patience = 10   // where more than this part of the work allowed would be used
 )
 
 // whole integrates the shares of all directions.
