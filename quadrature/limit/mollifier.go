@@ -13,8 +13,9 @@ package limit
 // Jets come by quadrature, exact to rounding where the branches in the ball are
 // affine and their gradients lie on a line, otherwise with a relative error of
 // about 1e-9 in the plane and 1e-6 in space, more where a branch bends much within
-// a ball. A Mollifier is not safe for
-// concurrent use.
+// a ball. In space, balls in which three branches meet that are not all affine
+// take a thousand times as long as others. A Mollifier is not safe for concurrent
+// use.
 type Mollifier struct {
 	Width float64 // DefaultWidth if zero
 
