@@ -19,6 +19,12 @@ func (j *Jet) clear() {
 	clear(j.H)
 }
 
+func (j *Jet) set(k *Jet) {
+	j.U = k.U
+	copy(j.P, k.P)
+	copy(j.H, k.H)
+}
+
 // Smoothing makes an approximation of scale eps of the combined branches of a
 // problem: the jet at x.
 type Smoothing interface {
