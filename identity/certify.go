@@ -206,3 +206,25 @@ func (r *reduction) problemFor(target algebra.Poly) *gram.Problem {
 	}
 	return p
 }
+
+// linked are the variables that assumptions link to those of a problem, which
+// does not hold them itself.
+func (r *reduction) linked(p *gram.Problem) []algebra.Var {
+	known := append(p.Target.Vars(), p.Beside...)
+	n := len(known)
+	for more := true; more; {
+		more = false
+		for _, g := range p.Positive {
+			vars := g.Poly.Vars()
+			if !slices.ContainsFunc(vars, func(v algebra.Var) bool { return slices.Contains(known, v) }) {
+				continue
+			}
+			for _, v := range vars {
+				if !slices.Contains(known, v) {
+					known, more = append(known, v), true
+				}
+			}
+		}
+	}
+	return known[n:]
+}

@@ -115,6 +115,12 @@ func (d *decider) sumOfSquares(r *reduction, effort gram.Effort) (*gram.Proof, *
 		return nil, nil, nil
 	}
 	p, pic, err := gram.Prove(d.Ctx, problem, effort)
+	if linked := r.linked(problem); errors.Is(err, gram.ErrNotFound) && len(linked) > 0 {
+		problem.Beside = append(problem.Beside, linked...)
+		if q, _, again := gram.Prove(d.Ctx, problem, effort); again == nil {
+			p, err = q, nil
+		}
+	}
 	switch {
 	case errors.Is(err, gram.ErrNotFound):
 		d.picture = pic

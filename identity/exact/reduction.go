@@ -73,29 +73,21 @@ func (d *Problem) Reduce(g *Gap) *Reduction {
 		visit(w.Poly())
 		r.Zero = append(r.Zero, w)
 	}
-	for _, c := range d.Assumed {
-		p, ok := c.Value.IsPoly()
-		if !ok || slices.ContainsFunc(p.Vars(), func(v algebra.Var) bool { return d.Ring.Symbol(v).Kind >= jet.Cosine }) {
-			continue
-		}
-		if !slices.ContainsFunc(p.Vars(), func(v algebra.Var) bool { return seen[v] }) {
-			continue
-		}
-		strict := true
-		switch c.Relation {
-		case "<", "<=":
-			p, strict = p.Neg(), c.Relation == "<"
-		case ">", ">=":
-			strict = c.Relation == ">"
-		default:
-			if rel, ok := Monic(p); ok && !slices.ContainsFunc(r.Zero, func(z Relation) bool { return z.Var == rel.Var }) {
-				visit(p)
-				r.Zero = append(r.Zero, rel)
+	// Assumptions that share a variable with the target, or with such a one.
+	left := slices.Clone(d.Assumed)
+	for before := -1; before != len(left); {
+		before = len(left)
+		left = slices.DeleteFunc(left, func(c Constraint) bool {
+			p, ok := c.Value.IsPoly()
+			if !ok || slices.ContainsFunc(p.Vars(), func(v algebra.Var) bool { return d.Ring.Symbol(v).Kind >= jet.Cosine }) {
+				return true
 			}
-			continue
-		}
-		visit(p)
-		r.assume(p, strict)
+			if !slices.ContainsFunc(p.Vars(), func(v algebra.Var) bool { return seen[v] }) {
+				return false
+			}
+			r.join(p, c.Relation, visit)
+			return true
+		})
 	}
 	slices.Sort(r.Vars)
 	for _, v := range r.Vars {
@@ -107,6 +99,24 @@ func (d *Problem) Reduce(g *Gap) *Reduction {
 	slices.SortFunc(r.Zero, func(a, b Relation) int { return int(a.Var - b.Var) })
 	r.Claim = r.Statement()
 	return r
+}
+
+// join adds an assumption about p, with the variables that visit makes known.
+func (r *Reduction) join(p algebra.Poly, relation string, visit func(algebra.Poly)) {
+	strict := relation == "<" || relation == ">"
+	switch relation {
+	case "<", "<=":
+		p = p.Neg()
+	case ">", ">=":
+	default:
+		if rel, ok := Monic(p); ok && !slices.ContainsFunc(r.Zero, func(z Relation) bool { return z.Var == rel.Var }) {
+			visit(p)
+			r.Zero = append(r.Zero, rel)
+		}
+		return
+	}
+	visit(p)
+	r.assume(p, strict)
 }
 
 // describe adds what is known of the sign of a variable.

@@ -51,12 +51,15 @@ func (p *Problem) allVars() []algebra.Var {
 	return out
 }
 
+// holds reports a variable of the target, or one beside it.
+func (p *Problem) holds(v algebra.Var) bool { return p.Target.Has(v) || slices.Contains(p.Beside, v) }
+
 // sign reports whether constraint i is a variable itself (v > 0 or v >= 0)
 // that the target holds.
 func (p *Problem) sign(i int) (algebra.Var, bool) {
 	g := p.Positive[i].Poly
 	vs := g.Vars()
-	if len(vs) != 1 || g.Len() != 1 || g.Degree(vs[0]) != 1 || !p.Target.Has(vs[0]) {
+	if len(vs) != 1 || g.Len() != 1 || g.Degree(vs[0]) != 1 || !p.holds(vs[0]) {
 		return 0, false
 	}
 	_, c := g.Leading()
@@ -113,7 +116,7 @@ func (p *Problem) factorSets(others bool) [][]int {
 
 // relevant reports whether a constraint shares a variable with the target.
 func (p *Problem) relevant(i int) bool {
-	return slices.ContainsFunc(p.Positive[i].Poly.Vars(), p.Target.Has)
+	return slices.ContainsFunc(p.Positive[i].Poly.Vars(), p.holds)
 }
 
 func (p *Problem) product(factors []int) algebra.Poly {

@@ -40,7 +40,7 @@ func Prove(ctx context.Context, p *Problem, e Effort) (*Proof, *Picture, error) 
 	}
 	constrained := slices.ContainsFunc(p.Positive, func(c Constraint) bool {
 		v := c.Poly.Vars()
-		return slices.ContainsFunc(v, p.Target.Has)
+		return slices.ContainsFunc(v, p.holds)
 	})
 	onlySigns := true
 	for i := range p.Positive {
