@@ -97,7 +97,7 @@ func (w *writer) sides() ([]export.Equality, error) {
 		return nil, err
 	}
 	if l.Vector == nil && r.Vector == nil {
-		return []export.Equality{{Left: l.Scalar.x, Right: r.Scalar.x}}, nil
+		return []export.Equality{{Left: l.Scalar.x, Right: r.Scalar.x}}, w.agree(l.Scalar, r.Scalar)
 	}
 	var out []export.Equality
 	for i, c := range w.claim.Setting.Coordinates {
@@ -108,9 +108,26 @@ func (w *writer) sides() ([]export.Equality, error) {
 		if l.Vector == nil {
 			return nil, fmt.Errorf("%w: a number beside a vector", export.ErrUnsupported)
 		}
+		other := pair{}
+		if r.Vector != nil {
+			other = r.Vector[i]
+		}
+		if err := w.agree(l.Vector[i], other); err != nil {
+			return nil, err
+		}
 		out = append(out, export.Equality{Label: c, Left: l.Vector[i].x, Right: right})
 	}
 	return out, nil
+}
+
+// agree makes sure that two sides are equal without the assumptions, which the
+// statement of an identity does not hold.
+func (w *writer) agree(a, b pair) error {
+	gap, err := w.t.Ring.Sub(a.f, b.f)
+	if err == nil && !gap.IsZero() {
+		err = fmt.Errorf("%w: an identity that rests on assumptions", export.ErrUnsupported)
+	}
+	return err
 }
 
 func (w *writer) euler() ([]export.Equality, error) {

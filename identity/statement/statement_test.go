@@ -195,3 +195,20 @@ assume = ["u_x >= 3", "eps = 2"]`), "claim")
 		assert.Contains(t, text, want)
 	}
 }
+
+// An identity is exported only where it holds without the assumptions, which
+// its statement does not name.
+func TestIdentitiesThatRestOnAssumptions(t *testing.T) {
+	for _, text := range []string{
+		"states = \"u_x = k\"\nassume = [\"k = eps\", \"u_x = eps\"]",
+		"states = \"u_x^2 = 1\"\nassume = [\"u_x^2 = 1\"]",
+		"states = \"abs(u_x) = abs(eps)\"\nassume = [\"u_x > 0\", \"u_x = eps\"]",
+	} {
+		s, err := of(t, claimOf(text), "claim")
+		if err == nil {
+			accepted(t, s)
+			continue
+		}
+		require.ErrorIs(t, err, export.ErrUnsupported, text)
+	}
+}
