@@ -103,7 +103,11 @@ func (r *reader) target(p *limit.Problem, v *Value) error {
 		v.TargetClaimed = true
 		x, err = r.number(*r.l.Energy)
 	} else {
-		x, e, _, err = p.Sharp(r.ctx)
+		var area float64
+		x, e, area, err = p.Sharp(r.ctx)
+		if err == nil && area == 0 {
+			return r.c.Fault(r.l.Pos, `move the domain, or claim energy = "0"`, "no crease was found inside the domain: one branch prevails in all of it, or the crease is on its boundary, where half a layer is outside")
+		}
 	}
 	if err != nil {
 		return err

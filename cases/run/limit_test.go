@@ -105,6 +105,8 @@ func TestLimitMistakes(t *testing.T) {
 		"empty box":         {front("['x + z/2', '0']", "eps=['1/5']\nbox={x=['1','0'],y=['0','1'],z=['0','1']}\n"), "empty"},
 		"no profile":        {limitWall + "profile = 's'\n", "the profile is -1e+04 at s = -10000"},
 		"region of two":     {front("['x + z/2', '0']", "eps=['1/5']\nregion={map=['s','t'],over={s=['0','1'],t=['0','1']}}\n"), "in 3 dimensions"},
+		"no crease":         {front("['x + z/2', '-x + z/2']", "eps=['1/5']\nbox={x=['1','2'],y=['0','1'],z=['0','1']}\n"), "no crease was found inside"},
+		"on the boundary":   {front("['x + z/2', '-x + z/2']", "eps=['1/5']\nbox={x=['0','2'],y=['0','1'],z=['0','1']}\n"), "on its boundary"},
 		"a stop in between": {"[[limit]]\nname='p'\napproximation='profile'\nplus='x + z/2'\nminus='y + z/2'\neps=['1/5']\nball={center=['0','0'],radius='1'}\n", "a centre of 2 coordinates"},
 	} {
 		r := limitOfText(t, c.text)
