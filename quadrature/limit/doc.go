@@ -100,7 +100,7 @@
 //
 // One jet in 37 is computed again by finer rules; the difference of the densities
 // goes into the error of the energy, twice. The tolerance of the integrals is
-// 1e-8 in the plane, and 1e-6 (affine branches) or 1e-5 in space, where it would
+// 1e-8 in the plane, and 1e-6 (affine branches), 1e-5 (two) or 1e-4 in space, where it would
 // otherwise follow the errors of the jets; across a single wall it is that of the
 // other approximations.
 //

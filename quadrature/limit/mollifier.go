@@ -14,8 +14,9 @@ package limit
 // affine and their gradients lie on a line, otherwise with a relative error of
 // about 1e-9 in the plane and 1e-6 in space, more where a branch bends much within
 // a ball. In space, balls in which three branches meet that are not all affine
-// take a thousand times as long as others. A Mollifier is not safe for concurrent
-// use.
+// take a hundred times as long as others, with an error of about 1e-5.
+//
+// A Mollifier is not safe for concurrent use.
 type Mollifier struct {
 	Width float64 // DefaultWidth if zero
 
@@ -73,6 +74,9 @@ func (m *Mollifier) accuracy(p *Problem) float64 {
 		return 1e-8
 	case affine == p.Branches:
 		return 1e-6
+	}
+	if p.Branches > 2 {
+		return 1e-4
 	}
 	return 1e-5
 }

@@ -20,12 +20,17 @@ func (b *ball) over() {
 	b.planes(func(t float64) slice { return slice{b: b, at: t, h: math.Sqrt(1 - t*t)} })
 }
 
-// planes integrates over slices across the third direction of the frame.
+// planes integrates over slices across the third direction of the frame, along
+// which the pattern of affine branches is cut where it changes. That of others is
+// nearly the same on all slices as long as three meet on a line, and is not cut.
 func (b *ball) planes(of func(t float64) slice) {
-	edges := split(-math.Pi/2, math.Pi/2, evenly(-math.Pi/2, math.Pi/2, onSlices), 1e-3, func(t float64) uint64 {
-		s := of(math.Sin(t))
-		return s.pattern()
-	})
+	edges := []float64{-math.Pi / 2, math.Pi / 2}
+	if b.flat {
+		edges = split(-math.Pi/2, math.Pi/2, evenly(-math.Pi/2, math.Pi/2, onSlices), 1e-3, func(t float64) uint64 {
+			s := of(math.Sin(t))
+			return s.pattern()
+		})
+	}
 	for k := 1; k < len(edges); k++ {
 		g := b.o.across(edges[k]-edges[k-1], false)
 		for i, x := range g.x {
