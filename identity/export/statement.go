@@ -168,6 +168,9 @@ func (d *document) open(s Statement, variables []string) (*scope, string, error)
 	if remark != "" {
 		d.printf("(* %s *)\n", comment(remark))
 	}
+	if q, ok := s.(*Inequality); ok && q.Origin != "" {
+		d.printf("(* %s *)\n", comment(q.Origin))
+	}
 	if len(renamed) > 0 {
 		d.printf("(* Names: %s *)\n", comment(strings.Join(renamed, ", ")))
 	}
