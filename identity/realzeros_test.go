@@ -41,6 +41,10 @@ func TestRealZeros(t *testing.T) {
 		{"u_x^2 + u_x + 1", "u_x >= 1", []identity.Verdict{open}},
 		{"u_xx^2 + u_xy^2", "u_xxy = 0", []identity.Verdict{proved}},
 		{"u_xx^2 + u_xy^2", "u_yy = 0", []identity.Verdict{refuted}},
+		{"u_x^2 + u_y^2 + x^2", "u_x = 1", []identity.Verdict{open}}, // at one place, so about no jets
+		{"x^2 u_x^2 + u_y^2", "u_y = 0", []identity.Verdict{proved}},
+		{"u_x^2 + x u_y^2", "u_y = 0", []identity.Verdict{refuted, open}},
+		{"u_x^2 - u_y^4", "u_xx = 0", []identity.Verdict{refuted}},
 		// An isolated point and a cusp.
 		{"u_y^2 - u_x^2 (u_x - 1)", "u_x >= 1", []identity.Verdict{refuted}},
 		{"u_y^2 - u_x^2 (u_x - 1)", "u_x^2 (u_x - 1) >= 0", []identity.Verdict{proved, supported}},
@@ -84,6 +88,10 @@ func TestRealZeros(t *testing.T) {
 		{"(u_x^2 - 1)^2 + u_y^2", "[u_x]^2 <= 3", []identity.Verdict{refuted}},
 		{"(u_x^2 - 2)^2 + (u_y^2 - 3)^2", "[u_x]^2 <= 7", []identity.Verdict{refuted}},
 		{"u_x^2 + 1", "[u_x] = 3", []identity.Verdict{open}},
+		{"u_x^2 + u_y^2", "nu_x >= 5", []identity.Verdict{open}}, // the well is a point
+		{"(u_x - 1)^2 + u_y^2", "[u_x] = 0", []identity.Verdict{open}},
+		{"(u_x^2 - 1)^2 + (u_y - u_x)^2", "nu_x = nu_y", []identity.Verdict{proved}},
+		{"(u_x^2 - 1)^2 + (u_y - u_x)^2", "nu_x >= 0", []identity.Verdict{refuted}},
 	} {
 		rec := decide(t, state(t, wellOf(c.residual, nil), c.states, atJump))
 		assert.Contains(t, c.want, rec.Verdict, "%s: %s: %+v", c.residual, c.states, rec)

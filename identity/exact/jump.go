@@ -108,6 +108,33 @@ func (d *Problem) atJump(restricted []*solved) error {
 			d.Wells = append(d.Wells, z.SubstMany(m))
 		}
 	}
+	if len(zeros) > 1 {
+		return d.tracesDiffer()
+	}
+	return nil
+}
+
+// tracesDiffer opens the claim where the wells make both traces equal.
+func (d *Problem) tracesDiffer() error {
+	basis := d.completed(d.Wells)
+	for i := range d.Ring.Coordinates {
+		plus, err := d.Ring.Jet(0, jet.Index{}.Plus(i), jet.PlusSide)
+		if err != nil {
+			return err
+		}
+		minus, err := d.Ring.Jet(0, jet.Index{}.Plus(i), jet.MinusSide)
+		if err != nil {
+			return err
+		}
+		q, err := d.InTraces(plus.Sub(minus).Num())
+		if err != nil {
+			return err
+		}
+		if _, rem := q.DivMod(basis, algebra.GradedLex); !rem.IsZero() {
+			return nil
+		}
+	}
+	d.Open("the well is one point: there are no jumps")
 	return nil
 }
 

@@ -21,11 +21,22 @@ func (d *Problem) realZeros(p algebra.Poly) []algebra.Poly {
 		return []algebra.Poly{p}
 	}
 	for _, q := range []algebra.Poly{p, p.Neg()} {
-		if list, ok := d.zerosOf(q, 0); ok && len(list) > 0 {
+		if list, ok := d.zerosOf(q, 0); ok && len(list) > 0 && !slices.ContainsFunc(list, d.ofPlaces) {
 			return list
 		}
 	}
 	return []algebra.Poly{p}
+}
+
+// ofPlaces reports a polynomial that holds coordinates and no derivative: its
+// zeros are places, on which no function is looked at.
+func (d *Problem) ofPlaces(p algebra.Poly) bool {
+	coordinate, derivative := false, false
+	for _, v := range p.Vars() {
+		coordinate = coordinate || d.Ring.Symbol(v).Kind == jet.Coordinate
+		derivative = derivative || d.Ring.Symbol(v).Kind == jet.Derivative
+	}
+	return coordinate && !derivative
 }
 
 // maxZerosDepth bounds the squares that are completed one in the other.
