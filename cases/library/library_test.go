@@ -30,7 +30,7 @@ func TestEveryCaseDecodes(t *testing.T) {
 		assert.NotEmpty(t, f.Title, name)
 		assert.NotEmpty(t, f.About, name)
 		assert.NotEmpty(t, f.Sources, name)
-		assert.NotZero(t, len(f.Claims)+len(f.Surfaces), name)
+		assert.NotZero(t, len(f.Claims)+len(f.Surfaces)+len(f.Limits), name)
 		for _, s := range f.Surfaces {
 			assert.NotNil(t, s.Energy, "%s: %s", name, s.Name)
 			assert.NotNil(t, s.Within, "%s: %s", name, s.Name)
