@@ -39,10 +39,17 @@ func (p *plan) record(b *base, l int) bool {
 		}
 		return b.trimmed(sh, l, &out)
 	})
-	if ok {
-		p.sheets = append(p.sheets, out...)
+	return ok && p.keep(&b.cell, out)
+}
+
+// keep appends the sheets found in a cell, unless one is flat at an end and the
+// cell can still be cut.
+func (p *plan) keep(c *cell, list []*sheet) bool {
+	if c.size > flatSize && slices.ContainsFunc(list, p.eval.flat) {
+		return false
 	}
-	return ok
+	p.sheets = append(p.sheets, list...)
+	return true
 }
 
 // pieces sorts the points found and calls f for the intervals between them. It
@@ -292,10 +299,7 @@ func (p *plan) recordCurve(b *base) bool {
 			return true
 		})
 	})
-	if ok {
-		p.sheets = append(p.sheets, out...)
-	}
-	return ok
+	return ok && p.keep(&b.cell, out)
 }
 
 const (
