@@ -270,8 +270,23 @@ func (p *plan) slab(c *cell, j int, s float64) verdict {
 	return cut
 }
 
+// idle reports whether phi changes little along direction i of a cell, by its
+// gradient in p.grad, against another direction: cuts across it would not help.
+// Trims may change along it.
+func (p *plan) idle(c *cell, i int) bool {
+	if len(p.systems[c.system]) > 0 {
+		return false
+	}
+	most := 0.0
+	for k, g := range p.grad[:p.dim] {
+		most = max(most, g.Mag()*(c.hi[k]-c.lo[k]))
+	}
+	return p.grad[i].Mag()*(c.hi[i]-c.lo[i]) < most/16 && most < math.Inf(1)
+}
+
 // bisect cuts a cell across its relatively longest direction. The height, if
-// not negative, is cut only when it is the longest by far.
+// not negative, is cut only when it is the longest by far, and so is a direction
+// along which phi hardly changes.
 func (p *plan) bisect(c *cell, height int) verdict {
 	j, best := -1, 0.0
 	for i := range p.dim {
@@ -279,11 +294,14 @@ func (p *plan) bisect(c *cell, height int) verdict {
 		if i == height {
 			w /= 4
 		}
+		if p.idle(c, i) {
+			w /= 16
+		}
 		if w > best && !p.isThin(c, i) {
 			j, best = i, w
 		}
 	}
-	if j < 0 || best < p.smallest {
+	if j < 0 || best < p.smallest || best < p.coarsest && p.scale(c) > 1/(64*p.coarsest) {
 		return atom
 	}
 	s := c.lo[j] + offCentre*(c.hi[j]-c.lo[j])

@@ -16,6 +16,7 @@ type plan struct {
 	inside   [3][2]float64 // the box
 	whole    [3]float64    // its widths
 	smallest float64       // relative width of cells that are not cut any more
+	coarsest float64       // the same where the coordinates are large against them
 	queue    cells
 	pending  float64 // bound of the area in the queue
 	atoms    cells   // cells too small to be cut
@@ -36,13 +37,13 @@ type plan struct {
 func newPlan(phi Function, systems [][]Function, box [][2]float64, cuts [][]float64, eval *evaluator) *plan {
 	d := len(box)
 	p := &plan{
-		dim: d, phi: phi, systems: systems, smallest: 0x1p-30, eval: eval,
+		dim: d, phi: phi, systems: systems, smallest: 0x1p-30, coarsest: 0x1p-30, eval: eval,
 		box: make([]Interval, d), cbox: make([]Interval, d), tbox: make([]Interval, d),
 		grad: make([]Interval, d), cgb: make([]Interval, d), point: make([]Interval, d),
 		x: make([]float64, d), g: make([]float64, d), cx: make([]float64, d), cg: make([]float64, d),
 	}
 	if d == 2 { // a singular point costs the length of its cell, not the square of that
-		p.smallest = 0x1p-38
+		p.smallest, p.coarsest = 0x1p-46, 0x1p-38
 	}
 	first := []cell{{}}
 	for i, b := range box {
