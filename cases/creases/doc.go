@@ -36,6 +36,17 @@
 // at a few points of the surface, which lie between rational points of different
 // signs of phi.
 //
+// A level function that is a product is integrated factor by factor: as it is
+// written, by numerator and denominator, and polynomials by square-free parts
+// without common factors, their contents, and quadratic parts by the roots of
+// their discriminants. The normal is that of the whole function: where the
+// density may depend on its side, the surface of a factor is cut where the others
+// vanish. A factor of even multiplicity has no plus side and is refused. k √a + b,
+// with a root that ends in the domain, is turned into k² a - b² where b has the
+// right sign; absolute values that leave cells undecided are taken apart by the
+// signs of what is in them. The sheets are those of each factor, where
+// absolute values are taken apart they are not counted.
+//
 // Branches are combined by max, min, or a nested expression in their numbers,
 // "max(min(1, 2), 3..5)", in which each stands once. They have to be
 // differentiable wherever u is that branch; at other points, such as the foci

@@ -5,8 +5,10 @@ import (
 	"slices"
 
 	"creaseproof/entropy/algebra"
+	"creaseproof/entropy/interval"
 	"creaseproof/entropy/jet"
 	"creaseproof/entropy/program"
+	"creaseproof/quadrature/levelset"
 )
 
 // looks is the number of points of a domain at which branches are looked at.
@@ -75,4 +77,17 @@ func (c *combination) rationalPoint(x []float64) jet.Point {
 		}
 	}
 	return at
+}
+
+// intervals is the box of a domain.
+func (d *domain) intervals() []levelset.Interval {
+	list := make([]levelset.Interval, len(d.box))
+	for i, b := range d.box {
+		x, err := interval.New(b[0], b[1])
+		if err != nil {
+			x = interval.Entire()
+		}
+		list[i] = x
+	}
+	return list
 }

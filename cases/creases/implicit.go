@@ -44,20 +44,7 @@ func (c *combination) implicit(r Result, rel, allowed float64) (Result, error) {
 		return r.refuse(reason), nil
 	}
 	return c.finish(r, rel, allowed, func(t *tally) (string, error) {
-		phi, err := c.levelFunction(*c.s.shape.level, nil)
-		if err != nil {
-			return "", err
-		}
-		v, reason, err := c.within(t, &d, part{phi: phi, systems: [][]levelset.Function{d.trims()}, box: d.box}, onWell)
-		if v.vanishing != nil && reason == "" {
-			reason = c.onBoundary(v.vanishing)
-		}
-		t.add(v)
-		t.sheets, t.unsettled = v.sheets, v.unsettled
-		if reason == "" && err == nil && v.empty {
-			reason = fmt.Sprintf("the level set %s = 0 misses the domain%s: by enclosures it has no point there", strings.TrimSpace(c.s.shape.level.text.S), c.where())
-		}
-		return reason, err
+		return c.level(t, &d, onWell)
 	})
 }
 
@@ -138,6 +125,9 @@ type part struct {
 	systems [][]levelset.Function
 	box     [][2]float64
 	abs     float64 // error that does not matter
+	cells   int     // budget of boxes, the usual one if 0
+	// sign, if not nil, says at a node by what the normal of phi is turned.
+	sign func(x []float64) float64
 }
 
 // cuts are places at which the box of a round domain is cut such that its
@@ -180,8 +170,12 @@ func (c *combination) over(t *tally, p part, cuts [][]float64, onWell bool) (v s
 		options.Well = nil
 	}
 	at := newNodes(len(p.box), tr, options, density, p.box)
-	q, err := levelset.IntegrateUnion(c.ctx, p.phi, p.systems, p.box, at.at, levelset.Options{
-		Parts: 1, Probe: at.near, Rel: t.rel, Abs: math.Max(t.abs, p.abs), MaxNodes: c.o.MaxEvaluations, Cuts: cuts,
+	node, near := at.at, at.near
+	if p.sign != nil {
+		node, near = turned(at.at, p.sign, len(p.box)), turned(at.near, p.sign, len(p.box))
+	}
+	q, err := levelset.IntegrateUnion(c.ctx, p.phi, p.systems, p.box, node, levelset.Options{
+		Parts: 1, Probe: near, Rel: t.rel, Abs: math.Max(t.abs, p.abs), MaxNodes: c.o.MaxEvaluations, MaxCells: p.cells, Cuts: cuts,
 	})
 	if c.ctx.Err() != nil {
 		return v, "", c.ctx.Err()
@@ -207,6 +201,18 @@ func (c *combination) over(t *tally, p part, cuts [][]float64, onWell bool) (v s
 		})
 	}
 	return v, "", nil
+}
+
+// turned is a density with the normal turned by a sign.
+func turned(f func(x, n, out []float64), sign func(x []float64) float64, dim int) func(x, n, out []float64) {
+	m := make([]float64, dim)
+	return func(x, n, out []float64) {
+		s := sign(x)
+		for i := range m {
+			m[i] = s * n[i]
+		}
+		f(x, m, out)
+	}
 }
 
 // onBoundary is the reason to refuse a surface on which the condition of a round

@@ -91,6 +91,14 @@ func (p *plan) push(c *cell) {
 	heap.Push(&p.queue, c)
 }
 
+// resum sums the areas in the queue anew.
+func (p *plan) resum() {
+	p.pending = 0
+	for _, c := range p.queue {
+		p.pending += c.area(p.dim)
+	}
+}
+
 // run treats cells, the largest first, until none is left or the area that
 // those left can hold is at most part of that of the bases found.
 func (p *plan) run(ctx context.Context, part float64, budget int) error {
@@ -101,7 +109,10 @@ func (p *plan) run(ctx context.Context, part float64, budget int) error {
 			}
 		}
 		if p.queue[0].size < 0x1p-8 && p.pending <= part*p.bases {
-			return nil
+			// The running sum has lost digits where it became small.
+			if p.resum(); p.pending <= part*p.bases {
+				return nil
+			}
 		}
 		if p.cells >= budget {
 			return nil
