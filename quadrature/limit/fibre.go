@@ -26,8 +26,11 @@ const (
 )
 
 // reach are the places of the cuts about a crossing, in units of the width of
-// the layer.
-var reach = [...]float64{10, 26, 48}
+// the layer; denser is for one direction of fibres.
+var (
+	reach  = []float64{10, 26, 48}
+	denser = []float64{3, 9, 20, 42}
+)
 
 // winner is the branch that is the sharp function at parameter s of the fibre.
 func (w *walk) winner(k int, s float64) int {
@@ -193,6 +196,10 @@ func (w *walk) panels() []span {
 	lo, hi := w.p.Domain.Lo[k], w.p.Domain.Hi[k]
 	w.spans = w.spans[:0]
 	from := lo // what is before it is covered
+	reach := reach
+	if w.even {
+		reach = denser
+	}
 	for i, c := range w.cuts {
 		right := hi
 		if i+1 < len(w.cuts) {
@@ -301,6 +308,40 @@ func (w *walk) gauge() {
 		*size = math.Max(*size, sum)
 	})
 	w.bad = w.bad[:0]
+}
+
+// insignificant is the part of the natural energy below which an energy is as
+// good as 0.
+const insignificant = 1e-8
+
+// natural is the energy that a layer of the width eps as large as the domain
+// would have about: R²/2 for gradients half-way between two branches, the
+// greatest at a few places, times the volume.
+func (w *walk) natural() float64 {
+	var most float64
+	w.probe(w.order[w.n-1], func() {
+		k := w.order[w.n-1]
+		w.s[k] = w.p.Domain.Lo[k] + 0.63*(w.p.Domain.Hi[k]-w.p.Domain.Lo[k])
+		w.move()
+		w.p.Jets(w.x, w.jets)
+		v := w.volume()
+		for j := range w.n {
+			v *= w.p.Domain.Hi[j] - w.p.Domain.Lo[j]
+		}
+		for i := range w.jets {
+			for j := range i {
+				w.u.clear()
+				w.u.U = (w.jets[i].U + w.jets[j].U) / 2
+				for a := range w.u.P {
+					w.u.P[a] = (w.jets[i].P[a] + w.jets[j].P[a]) / 2
+				}
+				if e := w.eps * w.p.Density(w.x, w.eps, &w.u).Compression * v; e > most && !math.IsInf(e, 0) {
+					most = e
+				}
+			}
+		}
+	})
+	return most
 }
 
 // probe visits a few fibres along parameter k.

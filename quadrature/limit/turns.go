@@ -1,5 +1,7 @@
 package limit
 
+import "slices"
+
 const (
 	turnPieces   = 16 // of a range, between which turns are looked for
 	turnHalvings = 14
@@ -68,4 +70,61 @@ func (w *walk) structure(depth int, s float64) uint64 {
 		}
 	}
 	return h
+}
+
+// regular looks at a grid of fibres in the first direction. They are enough where
+// all have the same sequence of crossings, or where all begin on one branch and
+// end on another and none comes back to a branch: so no crease is tangent to
+// one, and none leaves the domain through an end of the fibres. Found says
+// that there are crossings.
+func (w *walk) regular() (enough, found bool) {
+	w.direct(w.first)
+	same, apart := true, true
+	var all []int // the branches of the first fibre
+	w.each(0, func() bool {
+		w.cross()
+		found = found || len(w.cuts) > 0
+		list := w.sequence()
+		if all == nil {
+			all = slices.Clone(list)
+		}
+		same = same && slices.Equal(list, all)
+		if apart = apart && list[0] == all[0] && list[len(list)-1] == all[len(all)-1]; apart {
+			for i, b := range list {
+				apart = apart && !slices.Contains(list[:i], b)
+			}
+		}
+		return same || apart || !found
+	})
+	return same || apart && found, found
+}
+
+// sequence are the branches along the current fibre.
+func (w *walk) sequence() []int {
+	w.branches = w.branches[:0]
+	if len(w.cuts) == 0 {
+		return append(w.branches, w.winner(w.order[w.n-1], w.p.Domain.Lo[w.order[w.n-1]]))
+	}
+	w.branches = append(w.branches, w.cuts[0].before)
+	for _, c := range w.cuts {
+		w.branches = append(w.branches, c.after)
+	}
+	return w.branches
+}
+
+// each visits the fibres through the places of the levels from the given one
+// inwards, until one is refused.
+func (w *walk) each(depth int, visit func() bool) bool {
+	if depth == w.n-1 {
+		return visit()
+	}
+	k := w.order[depth]
+	for i := range turnPieces + 1 {
+		s := w.place(k, i)
+		w.s[k] = s
+		if !w.each(depth+1, visit) {
+			return false
+		}
+	}
+	return true
 }

@@ -21,6 +21,7 @@ type walk struct {
 	rel   float64 // of this stage
 	met   bool
 	size  float64   // of the whole energy, 0 where not known
+	least float64   // what an energy is at least measured by
 	scale []float64 // of the integrals of each level
 	used  int
 	most  int
@@ -44,8 +45,10 @@ type walk struct {
 	first       int     // the parameter that is best along fibres
 	fades       bool    // the layer does so exponentially
 	plain       bool    // no other direction is needed
+	even        bool    // nor are stages: see regular
 	ref         float64 // see reference
 	near, parts []float64
+	branches    []int
 	spans       []span
 }
 
@@ -84,8 +87,14 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 	}
 	w.first = w.orient()
 	w.reference()
+	regular, found := w.regular()
+	if found && !regular {
+		w.plain = false
+	}
+	w.even = regular && !sharp
 	w.direct(w.first)
 	if !sharp {
+		w.least = math.Max(smallestScale, insignificant*w.natural())
 		w.gauge()
 	}
 	return w, nil
@@ -96,6 +105,12 @@ func (w *walk) spent() bool { return w.used >= w.most || w.ctx.Err() != nil }
 // run integrates with falling tolerances, as long as that pays and the work
 // allows it.
 func (w *walk) run() (v, e values, err error) {
+	if w.even {
+		if v, e, err = w.onlyOne(); w.met || err != nil || w.used >= w.most || w.ctx.Err() != nil {
+			return v, e, err
+		}
+		w.even = false
+	}
 	w.rel = math.Max(w.goal, roughly)
 	for stage := 0; ; stage++ {
 		start := w.used
@@ -113,11 +128,8 @@ func (w *walk) run() (v, e values, err error) {
 		}
 		cost := float64(w.used - start)
 		v, e = now, errs
-		w.size = math.Abs(v[0])
-		worst := 0.0
-		for _, x := range e {
-			worst = math.Max(worst, x)
-		}
+		w.size = math.Max(math.Abs(v[0]), w.least)
+		worst := worst(&e)
 		allowed := float64(w.most - w.used)
 		if worst <= enough*w.size && !w.sharp {
 			allowed = float64(w.most)/patience - float64(w.used)
@@ -133,6 +145,25 @@ func (w *walk) run() (v, e values, err error) {
 		}
 		w.rel = math.Max(w.goal, w.rel*math.Pow(0.1, decades))
 	}
+}
+
+// onlyOne integrates along the first direction alone, in one go, with a quarter
+// of the work allowed.
+func (w *walk) onlyOne() (v, e values, err error) {
+	plain, most := w.plain, w.most
+	w.plain, w.most, w.rel = true, most/4, w.goal
+	v, e, err = w.whole()
+	w.met = err == nil && worst(&e) <= math.Max(w.goal, enough)*math.Max(math.Abs(v[0]), w.least)
+	w.plain, w.most = plain, most
+	return v, e, err
+}
+
+// worst is the greatest of some estimates.
+func worst(e *values) (x float64) {
+	for _, v := range e {
+		x = math.Max(x, v)
+	}
+	return x
 }
 
 const (
@@ -151,12 +182,14 @@ func (w *walk) whole() (v, e values, err error) {
 		}
 		w.direct((w.first + i) % w.n)
 		var own, errs values
-		unit := w.size
+		unit, least := w.size, w.least
 		for d, j := range w.order {
 			if w.size != 0 {
 				w.scale[d] = math.Max(unit, smallestScale)
 			}
+			w.scale[d] = math.Max(w.scale[d], least)
 			unit /= w.p.Domain.Hi[j] - w.p.Domain.Lo[j]
+			least /= w.p.Domain.Hi[j] - w.p.Domain.Lo[j]
 		}
 		err = w.level(0, &own, &errs)
 		for c := range v {
@@ -238,6 +271,9 @@ func (w *walk) level(depth int, out, estimate *values) error {
 			return w.jumps(out)
 		}
 		q.coarse, q.k, q.f, q.deepest = rule.Kronrod7(), rule.Kronrod15(), w.density, 46
+		if w.even {
+			q.k = rule.Kronrod21()
+		}
 		return q.over(w.panels(), out, estimate)
 	}
 	q.k = rule.Kronrod15()
