@@ -17,6 +17,10 @@ import (
 	"creaseproof/quadrature/profile"
 )
 
+// work is the budget of a limit for all its eps together, in evaluations of a
+// branch: a minute or less on one core.
+const work = 1_500_000_000
+
 func point(x []float64) string {
 	parts := make([]string, len(x))
 	for i, v := range x {
@@ -42,7 +46,7 @@ func (r *reader) problem() (*limit.Problem, error) {
 	if err := r.assume(&d); err != nil {
 		return nil, err
 	}
-	p := &limit.Problem{Domain: d, Branches: len(texts)}
+	p := &limit.Problem{Domain: d, Branches: len(texts), MaxWork: work / len(l.Eps)}
 	if l.Approximation != "profile" {
 		if p.Combine, err = branches.Read(*l.Combine, len(texts)); err != nil {
 			return nil, err

@@ -120,6 +120,14 @@ func evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int, f
 		case errors.As(x.err, &infinite):
 			v.infinite(r, infinite)
 			return &v, nil
+		case errors.Is(x.err, limit.ErrWork):
+			v.Judge(l)
+			v.Outcome, v.Met = Undecided, false
+			v.Reason = fmt.Sprintf("the work allowed for one eps was used up at eps = %.6g before the energy was known to one per mille: write fewer or greater eps, a smaller domain or fewer branches", eps[i])
+			if i > 0 {
+				v.Reason += fmt.Sprintf("; what is shown is of the first %d of %d eps", i, len(eps))
+			}
+			return &v, nil
 		case x.err != nil && ctx.Err() == nil:
 			return nil, r.c.Fault(l.Pos, r.outside(p, eps[i]), "%q at eps = %g: %s", cases.Clip(l.Name, 40), eps[i], strings.TrimPrefix(x.err.Error(), "limit: "))
 		case x.err != nil || !x.done:

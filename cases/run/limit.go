@@ -52,7 +52,7 @@ func (r *LimitResult) Met() bool {
 // their limits.
 type LimitOutcome struct {
 	Results     []*LimitResult
-	Interrupted bool // the context ended; what was not computed is left out
+	Interrupted bool // the context ended; what was not computed is open
 }
 
 // Faulty reports whether some limit means nothing.
@@ -128,9 +128,6 @@ func integrateLimits(ctx context.Context, list []*cases.Case, opt LimitOptions, 
 	out.Interrupted = ctx.Err() != nil && emitted < len(todo)
 	for i := emitted; i < len(todo); i++ {
 		r := results[i]
-		if r == nil && out.Interrupted {
-			continue
-		}
 		if r == nil {
 			r = todo[i]
 			r.partial = true

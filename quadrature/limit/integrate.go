@@ -19,6 +19,9 @@ var errInfinite = errors.New("the integral diverges")
 // errPoint says that an integrand is not finite at a node.
 var errPoint = errors.New("the integrand is not finite")
 
+// errSpent says that the work allowed is used up.
+var errSpent = errors.New("the work allowed is used up")
+
 // mostPanels of one integral; more of them chase rounding.
 const mostPanels = 2000
 

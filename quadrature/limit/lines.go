@@ -30,6 +30,7 @@ const (
 // pieces sets the list of pieces of a line.
 func (b *ball) pieces(l *line) {
 	b.cuts = append(b.cuts[:0], l.lo, l.hi)
+	b.p.add(2 + len(b.set)*len(b.set))
 	if b.flat {
 		for k, i := range b.set {
 			for _, j := range b.set[:k] {

@@ -15,16 +15,17 @@ type walk struct {
 	eps   float64
 	sharp bool // the jumps, not the approximation
 
-	n     int
-	order []int   // of the parameters, outermost first; the last runs along fibres
-	goal  float64 // the tolerance asked for
-	rel   float64 // of this stage
-	met   bool
-	size  float64   // of the whole energy, 0 where not known
-	least float64   // what an energy is at least measured by
-	scale []float64 // of the integrals of each level
-	used  int
-	most  int
+	n       int
+	order   []int   // of the parameters, outermost first; the last runs along fibres
+	goal    float64 // the tolerance asked for
+	rel     float64 // of this stage
+	met     bool
+	size    float64   // of the whole energy, 0 where not known
+	least   float64   // what an energy is at least measured by
+	scale   []float64 // of the integrals of each level
+	used    int
+	most    int
+	allowed int // work
 
 	s, x    []float64
 	jac     [][]float64
@@ -75,15 +76,18 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 		l.begin()
 		w.goal = math.Max(w.goal, l.accuracy(p))
 	}
-	w.rel = w.goal
+	w.rel, w.allowed = w.goal, p.MaxWork
 	for range n {
 		w.jac = append(w.jac, make([]float64, n))
 	}
 	for range p.Branches {
 		w.jets = append(w.jets, NewJet(n))
 	}
+	if p.MaxWork > 0 {
+		w.p = p.counting()
+	}
 	if _, w.fades = p.Smoothing.(*Front); w.fades {
-		w.p = p.remembering()
+		w.p = w.p.remembering()
 	}
 	w.first = w.orient()
 	w.reference()
@@ -98,109 +102,6 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 		w.gauge()
 	}
 	return w, nil
-}
-
-func (w *walk) spent() bool { return w.used >= w.most || w.ctx.Err() != nil }
-
-// run integrates with falling tolerances, as long as that pays and the work
-// allows it.
-func (w *walk) run() (v, e values, err error) {
-	if w.even {
-		if v, e, err = w.onlyOne(); w.met || err != nil || w.used >= w.most || w.ctx.Err() != nil {
-			return v, e, err
-		}
-		w.even = false
-	}
-	w.rel = math.Max(w.goal, roughly)
-	for stage := 0; ; stage++ {
-		start := w.used
-		now, errs, err := w.whole()
-		if stage > 0 && w.spent() {
-			return v, e, nil // of the stage before
-		}
-		if err != nil {
-			return now, errs, err
-		}
-		for c := range now {
-			if stage > 0 {
-				errs[c] = math.Max(errs[c]/trust, math.Min(errs[c], 2*math.Abs(now[c]-v[c])))
-			}
-		}
-		cost := float64(w.used - start)
-		v, e = now, errs
-		w.size = math.Max(math.Abs(v[0]), w.least)
-		worst := worst(&e)
-		allowed := float64(w.most - w.used)
-		if worst <= enough*w.size && !w.sharp {
-			allowed = float64(w.most)/patience - float64(w.used)
-		}
-		w.met = worst <= math.Max(w.goal, enough)*w.size
-		if w.rel <= w.goal || worst <= w.goal*w.size || w.spent() || cost*growth > allowed {
-			return v, e, nil
-		}
-		// As many decades as the usual work allows.
-		decades := 1.0
-		if left := float64(w.most)/patience - float64(w.used); left > cost {
-			decades = math.Min(4, math.Max(1, math.Floor(math.Log(left/cost)/math.Log(growth))))
-		}
-		w.rel = math.Max(w.goal, w.rel*math.Pow(0.1, decades))
-	}
-}
-
-// onlyOne integrates along the first direction alone, in one go, with a quarter
-// of the work allowed.
-func (w *walk) onlyOne() (v, e values, err error) {
-	plain, most := w.plain, w.most
-	w.plain, w.most, w.rel = true, most/4, w.goal
-	v, e, err = w.whole()
-	w.met = err == nil && worst(&e) <= math.Max(w.goal, enough)*math.Max(math.Abs(v[0]), w.least)
-	w.plain, w.most = plain, most
-	return v, e, err
-}
-
-// worst is the greatest of some estimates.
-func worst(e *values) (x float64) {
-	for _, v := range e {
-		x = math.Max(x, v)
-	}
-	return x
-}
-
-const (
-	roughly  = 1e-3 // tolerance of the first stage
-	trust    = 30   // by how much the distance of two stages may undercut an estimate
-	growth   = 3.0  // of the work for a tenth of the tolerance, about
-	enough   = 2e-5 // relative errors with which the integration is content
-	patience = 10   // where more than this part of the work allowed would be used
-)
-
-// whole integrates the shares of all directions.
-func (w *walk) whole() (v, e values, err error) {
-	for i := range w.n {
-		if w.plain && i > 0 {
-			break
-		}
-		w.direct((w.first + i) % w.n)
-		var own, errs values
-		unit, least := w.size, w.least
-		for d, j := range w.order {
-			if w.size != 0 {
-				w.scale[d] = math.Max(unit, smallestScale)
-			}
-			w.scale[d] = math.Max(w.scale[d], least)
-			unit /= w.p.Domain.Hi[j] - w.p.Domain.Lo[j]
-			least /= w.p.Domain.Hi[j] - w.p.Domain.Lo[j]
-		}
-		err = w.level(0, &own, &errs)
-		for c := range v {
-			v[c] += own[c]
-			e[c] += errs[c]
-		}
-		if err != nil {
-			break
-		}
-	}
-	return v, e, err
 }
 
 // move sets the position for the parameters.
@@ -301,6 +202,10 @@ func (w *walk) density(s float64, out, _ *values) error {
 	w.used++
 	if (w.used%1024 == 0 || w.layer != nil && w.used%16 == 0) && w.ctx.Err() != nil {
 		return w.ctx.Err()
+	}
+	w.p.add(unitWork)
+	if w.exhausted() && !w.sharp {
+		return errSpent
 	}
 	w.s[w.order[w.n-1]] = s
 	w.move()
