@@ -124,7 +124,7 @@ func TestBoxAgainstItsQuarters(t *testing.T) {
 	if testing.Short() {
 		t.Skip("TestClosedCreasesInBoxes has both")
 	}
-	for _, eps := range []float64{.05, .00625} {
+	for _, eps := range []float64{.05, .003125} {
 		whole := sweep(t, front(box(-2.5, 2.5, -2.5, 2.5, .5, 3), focal, flat), eps)[0]
 		part := sweep(t, front(box(0, 2.5, 0, 2.5, .5, 3), focal, flat), eps)[0]
 		assert.InDelta(t, 4*part.Energy, whole.Energy, whole.Error+4*part.Error)

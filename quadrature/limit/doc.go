@@ -29,9 +29,14 @@
 //
 // # Quadrature
 //
-// The domain is a box of parameters and a map of it. The integral is split into
-// shares w_k, which add up to 1, one for each parameter: the share of parameter k
-// is integrated along fibres in its direction, where
+// The domain is a box of parameters and a map of it. Where fibres along the
+// parameter with the most crossings have the same branches in the same order, or
+// begin and end on the same two and come back to none, as a grid of them shows,
+// the integral is one over these fibres: no crease is tangent to one, and none
+// leaves the domain through one of their ends. Otherwise, or where a quarter of
+// the budget does not do, it is split into shares w_k, which add up to 1, one for
+// each parameter: the share of parameter k is integrated along fibres in its
+// direction, where
 //
 //	w_k = W_k/Σ W_j,  W_j = (b_j V_j)³,
 //
@@ -42,8 +47,7 @@
 // faces; otherwise both were singularities of the outer integrands. A partition
 // of unity by squared components of the normal alone leaves the first at order
 // one half. A small constant in one of the W keeps the shares smooth where the
-// branches do not differ, and away from the crease gives all to one direction. Where one direction is normal to all
-// creases there are no shares.
+// branches do not differ, and away from the crease gives all to one direction.
 //
 // On a fibre the crossings of branches are located, and the fibre is cut at them
 // and at multiples of the width eps/|d(u_i - u_j)/ds| of the layer; on the panels
@@ -54,10 +58,16 @@
 // sharp energy is integrated with the same shares of the jumps: a crossing with
 // direction t_k = ∂x/∂s_k of the fibre has the area |det ∂x/∂s|/|ν·t_k|.
 //
-// All is repeated with falling tolerances until that asked for is met, or until
+// Shares are integrated with falling tolerances until that asked for is met, or until
 // the next stage would cost more than the budget; or more than a tenth of it,
 // where the estimate is 2e-5 of the energy or less. What is returned is the last
 // stage that was finished.
+//
+// Energies are measured by at least 1e-8 of a natural one, the volume times R²/2
+// for gradients half-way between two branches, so that those which are as good
+// as 0 are not computed to digits of their own. Beside the budget of evaluations
+// there may be one of work, counted in evaluations of branches, which bounds the
+// time it takes and is the same on any machine.
 //
 // The error of a panel is estimated from the distance of the two rules of a
 // pair, as in QUADPACK (Piessens, de Doncker-Kapenga, Überhuber, Kahaner, 1983)
