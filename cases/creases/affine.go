@@ -104,9 +104,13 @@ func (c *combination) faces(r *Result, d domain) (done bool, err error) {
 	}
 	faces, err := branches.Faces(c.ctx, list, c.s.shape.tree, *d.exact)
 	var same *branches.SameError
+	var side *branches.BoundaryError
 	switch {
 	case errors.As(err, &same):
-		return true, fault(c.s.shape.branches[same.Second].text, "leave one of them out", "branches %d and %d are the same function%s", same.First+1, same.Second+1, c.where())
+		return true, c.sameBranches(same)
+	case errors.As(err, &side):
+		*r = r.refuse(c.inSide(side))
+		return true, nil
 	case c.ctx.Err() != nil:
 		return true, c.ctx.Err()
 	case err != nil:
@@ -122,33 +126,34 @@ func (c *combination) faces(r *Result, d domain) (done bool, err error) {
 			last.Exact, last.AreaRoots = pair.exact(), pair.roots()
 		}
 	}
-	for i := range faces {
-		f := &faces[i]
-		p, err := c.price(f, list)
-		if err != nil {
-			*r = r.refuse(fmt.Sprintf("branches %d and %d: %v%s", f.Branches[0]+1, f.Branches[1]+1, err, c.where()))
-			return true, nil
-		}
-		if p == nil {
-			return false, nil
-		}
-		if names := [2]int{f.Branches[0] + 1, f.Branches[1] + 1}; last == nil || last.Branches != names {
-			close()
-			r.Pairs = append(r.Pairs, Pair{Branches: names})
-			last, pair = &r.Pairs[len(r.Pairs)-1], newExactSum()
-		}
+	for _, group := range branches.Connected(faces, nil) {
 		one := newExactSum()
-		for _, s := range []*exactSum{one, pair, total} {
-			s.add(f.SquaredArea(), p)
-		}
-		sheet := Sheet{Area: one.areaFloat(), Exact: one.exact(), SquaredArea: f.SquaredArea().RatString()}
-		sheet.Energy, sheet.Error = one.energy()
-		for _, v := range f.Vertices {
-			var x []string
-			for _, q := range v {
-				x = append(x, q.RatString())
+		var sheet Sheet
+		for _, i := range group {
+			f := &faces[i]
+			p, err := c.price(f, list)
+			if err != nil {
+				*r = r.refuse(fmt.Sprintf("branches %d and %d: %v%s", f.Branches[0]+1, f.Branches[1]+1, err, c.where()))
+				return true, nil
 			}
-			sheet.Vertices = append(sheet.Vertices, x)
+			if p == nil {
+				return false, nil
+			}
+			if names := [2]int{f.Branches[0] + 1, f.Branches[1] + 1}; last == nil || last.Branches != names {
+				close()
+				r.Pairs = append(r.Pairs, Pair{Branches: names})
+				last, pair = &r.Pairs[len(r.Pairs)-1], newExactSum()
+			}
+			for _, s := range []*exactSum{one, pair, total} {
+				s.add(f.SquaredArea(), p)
+			}
+			sheet.Polygons = append(sheet.Polygons, vertices(f))
+		}
+		sheet.Area, sheet.Exact = one.areaFloat(), one.exact()
+		sheet.Energy, sheet.Error = one.energy()
+		sheet.SquaredArea = one.roots()[0]
+		if len(sheet.Polygons) == 1 {
+			sheet.Vertices, sheet.Polygons = sheet.Polygons[0], nil
 		}
 		last.Sheets = append(last.Sheets, sheet)
 	}
@@ -162,6 +167,18 @@ func (c *combination) faces(r *Result, d domain) (done bool, err error) {
 	}
 	c.decide(r, total)
 	return true, nil
+}
+
+// vertices are those of a face as they are printed.
+func vertices(f *branches.Face) (list [][]string) {
+	for _, v := range f.Vertices {
+		var x []string
+		for _, q := range v {
+			x = append(x, q.RatString())
+		}
+		list = append(list, x)
+	}
+	return list
 }
 
 // exactSum is a sum of rational energies and of multiples of areas.

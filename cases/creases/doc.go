@@ -72,6 +72,16 @@
 // ends, have faces with rational corners. Where the density is rational on them
 // up to the root of the area, the energy is a rational number, or with a
 // rational density a sum of roots, and a claimed energy is proved or refuted.
+// Faces that share a part of an edge are one sheet. In a ball or a cylinder, or
+// with numbers that are not rational, the faces on a box about the domain are
+// found in the same way, numbers being rounded to 128 bits, and cut by the domain
+// in closed form (package disc), where the density is the same on all of a face:
+// those energies are floating-point numbers with a bound of rounding.
+//
+// The jumps counted are those inside the open domain. A surface that runs along
+// the boundary of its domain is refused: whether u jumps there depends on what it
+// is beyond. For affine branches in a rational box that is found exactly,
+// otherwise to rounding, at points spread over the flat sides and at the nodes.
 //
 // # Enclosures
 //

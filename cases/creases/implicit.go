@@ -31,6 +31,9 @@ func (c *combination) implicit(r Result, rel, allowed float64) (Result, error) {
 			return r, err
 		}
 		r.Pairs = nil
+		if out, done, err := c.flat(r, d, onWell, rel, allowed); done || err != nil {
+			return out, err
+		}
 		return c.finish(r, rel, allowed, func(t *tally) (string, error) { return c.creases(t, d, onWell) })
 	}
 	reason, onWell, err := c.offWell()
@@ -141,9 +144,21 @@ func (d *domain) cuts() [][]float64 {
 	return list
 }
 
-// within is over for a part of a round domain: where cells are left undecided
-// in one piece it is done in blocks.
+// within is over for a part of a domain, in whose boundary it must not lie.
 func (c *combination) within(t *tally, d *domain, p part, onWell bool) (share, string, error) {
+	if place, found := c.alongSide(d, p); found {
+		return share{}, c.runsAlong(place), nil
+	}
+	v, reason, err := c.inBlocks(t, d, p, onWell)
+	if place, found := c.flatInSide(d, v.sheets); found && reason == "" && err == nil {
+		reason = c.runsAlong(place)
+	}
+	return v, reason, err
+}
+
+// inBlocks is over for a part of a domain: where cells are left undecided in one
+// piece of a round one it is done in blocks.
+func (c *combination) inBlocks(t *tally, d *domain, p part, onWell bool) (share, string, error) {
 	v, reason, err := c.over(t, p, nil, onWell)
 	if d.round == nil || !errors.Is(v.limited, levelset.ErrResolution) {
 		return v, reason, err
@@ -213,12 +228,6 @@ func turned(f func(x, n, out []float64), sign func(x []float64) float64, dim int
 		}
 		f(x, m, out)
 	}
-}
-
-// onBoundary is the reason to refuse a surface on which the condition of a round
-// domain vanishes.
-func (c *combination) onBoundary(v *levelset.VanishingError) string {
-	return "the surface runs along the boundary of the domain" + c.place(v.Point, nil) + c.where() + ": choose a domain that it crosses, or ends inside of"
 }
 
 // creases integrates over the sheets of all pairs of branches.

@@ -92,10 +92,11 @@ func (p Pair) MarshalJSON() ([]byte, error) {
 	return json.Marshal(out)
 }
 
-// Sheet is a part of a crease or of a level set. Of affine branches it is a
-// convex polygon with Vertices. Otherwise it is a connected component of where
+// Sheet is a part of a crease or of a level set: a connected component of where
 // the other branches are strictly below or above, as the case may be, in the
-// inside of the domain; which parts are connected is a numerical finding.
+// inside of the domain. Of affine branches in a rational box it is a convex
+// polygon with Vertices, or consists of several Polygons that share parts of
+// edges. Otherwise which parts are connected is a numerical finding.
 type Sheet struct {
 	Energy float64 `json:"energy"`
 	Error  float64 `json:"error"`
@@ -105,9 +106,10 @@ type Sheet struct {
 	Point []float64    `json:"point,omitempty"`
 	Box   [][2]float64 `json:"box,omitempty"`
 
-	Vertices    [][]string `json:"vertices,omitempty"`
-	Exact       string     `json:"exact,omitempty"`
-	SquaredArea string     `json:"squared_area,omitempty"`
+	Vertices    [][]string   `json:"vertices,omitempty"`
+	Polygons    [][][]string `json:"polygons,omitempty"`
+	Exact       string       `json:"exact,omitempty"`
+	SquaredArea string       `json:"squared_area,omitempty"`
 }
 
 // Options of an evaluation. The zero value is ready for use.

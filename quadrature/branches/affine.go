@@ -95,6 +95,22 @@ func (e *SameError) Error() string {
 	return fmt.Sprintf("branches %d and %d are the same function", e.First+1, e.Second+1)
 }
 
+// BoundaryError says that a sheet lies in a side of the box, so that it is
+// neither inside nor outside: u jumps there only if it is continued beyond.
+type BoundaryError struct {
+	First, Second int // branches
+	Coordinate    int
+	High          bool // it is the upper end of the coordinate
+}
+
+func (e *BoundaryError) Error() string {
+	end := "lower"
+	if e.High {
+		end = "upper"
+	}
+	return fmt.Sprintf("the sheet of branches %d and %d lies in the side of the box at the %s end of direction %d", e.First+1, e.Second+1, end, e.Coordinate+1)
+}
+
 // mostFaces bounds the number of faces, and mostPieces that of pieces that the
 // plane of a pair is cut into.
 const (
@@ -104,7 +120,8 @@ const (
 
 // Faces finds all sheets of the tree over affine branches in a box of two or
 // three dimensions, in the order of the pairs. Two equal branches are a
-// *SameError. Faces of one pair do not overlap.
+// *SameError, and a sheet in a side of the box is a *BoundaryError. Faces of one
+// pair do not overlap.
 func Faces(ctx context.Context, list []Affine, t *Tree, box Box) ([]Face, error) {
 	n := len(box.Lo)
 	if n != 2 && n != 3 || len(box.Hi) != n {
@@ -144,4 +161,20 @@ func Faces(ctx context.Context, list []Affine, t *Tree, box Box) ([]Face, error)
 		}
 	}
 	return out, nil
+}
+
+// Aligned reports whether g - f and h - f are multiples of each other, so that
+// the three have the same value wherever two of them have.
+func (f Affine) Aligned(g, h Affine) bool {
+	a, b := g.minus(f), h.minus(f)
+	x, y := append(a.Gradient[:len(a.Gradient):len(a.Gradient)], a.Constant), append(b.Gradient[:len(b.Gradient):len(b.Gradient)], b.Constant)
+	s, t := new(big.Rat), new(big.Rat)
+	for i := range x {
+		for j := range i {
+			if s.Mul(x[i], y[j]).Cmp(t.Mul(x[j], y[i])) != 0 {
+				return false
+			}
+		}
+	}
+	return true
 }

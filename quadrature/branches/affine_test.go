@@ -58,8 +58,15 @@ func TestRectangle(t *testing.T) {
 	assert.Len(t, fs, 5)
 	e := fourth(fs)
 	assert.Equal(t, "4/3", e.Quo(e, big.NewRat(12, 1)).RatString())
-	// A crease on the boundary of the box has nothing on its other side.
-	assert.Empty(t, faces(t, list[2:], "min", branches.Box{Lo: rats("-1", "0"), Hi: rats("1", "1/2")}))
+	// A crease in a side of the box is refused, unless u is another branch there.
+	side := branches.Box{Lo: rats("-1", "0"), Hi: rats("1", "1/2")}
+	tree, err := branches.Parse("min", 2)
+	require.NoError(t, err)
+	_, err = branches.Faces(t.Context(), list[2:], tree, side)
+	var e1 *branches.BoundaryError
+	require.ErrorAs(t, err, &e1)
+	assert.Equal(t, branches.BoundaryError{First: 0, Second: 1, Coordinate: 1}, *e1)
+	assert.Empty(t, faces(t, append(list[2:4:4], affine("0", "0", "-3")), "min", side))
 	// In a larger box the branches go on outside the rectangle.
 	assert.NotEqual(t, "16", fourth(faces(t, list, "min", branches.Box{Lo: rats("-2", "-2"), Hi: rats("2", "2")})).RatString())
 	// Away from the corners there is the long ridge alone.

@@ -21,7 +21,14 @@
 // them it is. Other branches that coincide with the two on all of their plane
 // are compared beside it, where u_k - u_i = c (u_i - u_j) with a rational c. The
 // result is a proof up to the correctness of this program: floating-point
-// numbers only choose the order of the cuts.
+// numbers choose the order of the cuts, and decide a comparison only beyond a
+// bound of their error.
+//
+// The energy is that of the jumps inside the open box. A sheet in a side of it is
+// refused: u jumps there if it is continued, and does not if it is not.
+//
+// Where a cut ends that does not matter in the end, two faces of a pair share an
+// edge. Connected puts together those that do.
 //
 // The area of a face is a rational multiple of the length of the jump of the
 // gradient, hence the root of a rational number; the energy of a density that

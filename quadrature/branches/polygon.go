@@ -41,17 +41,16 @@ func same(x, y []*big.Rat) bool {
 
 func (p polygon) empty() bool { return len(p.at) < p.dim }
 
-// outside reports whether the polygon lies in a side of the box: nothing is on
-// its other side then.
-func (p polygon) outside(box Box) bool {
+// side is the side of the box that the polygon lies in, where it lies in one.
+func (p polygon) side(box Box) (coordinate int, high, ok bool) {
 	for k := range p.dim {
-		for _, end := range []*big.Rat{box.Lo[k], box.Hi[k]} {
+		for i, end := range []*big.Rat{box.Lo[k], box.Hi[k]} {
 			if !slices.ContainsFunc(p.at, func(x []*big.Rat) bool { return x[k].Cmp(end) != 0 }) {
-				return true
+				return k, i == 1, true
 			}
 		}
 	}
-	return false
+	return 0, false, false
 }
 
 // section is the part of the plane f = 0 in a box.

@@ -45,13 +45,19 @@ type level struct {
 
 func (s *sheet) find(box Box) error {
 	p := section(s.across, box)
-	if p.empty() || p.outside(box) {
+	if p.empty() {
 		return nil
 	}
 	levels := make([]level, len(s.list))
 	levels[s.i] = level{known: true, slope: new(big.Rat)}
 	levels[s.j] = level{known: true, slope: big.NewRat(-1, 1)}
-	return s.split(p, levels)
+	if err := s.split(p, levels); err != nil {
+		return err
+	}
+	if k, high, ok := p.side(box); ok && len(s.faces) > 0 {
+		return &BoundaryError{First: s.i, Second: s.j, Coordinate: k, High: high}
+	}
+	return nil
 }
 
 // split decides the tree on a polygon, and cuts it where that needs it.
@@ -141,14 +147,16 @@ func (s *sheet) next(p polygon, wants []int) int {
 // clear is the sign of u_k - u_i on a polygon where rounded numbers show it,
 // otherwise 0. Coefficients and coordinates have a relative error of 2^-53 each,
 // and so has every operation: together less than (2 dim + 6) 2^-53 of the sum of
-// the absolute values.
+// the absolute values, of which four times as much is allowed for. A number below
+// the normal ones has an error of 2^-1075 instead; what it is multiplied by is
+// less than 2^901, so that together they are below 2^-150.
 func (s *sheet) clear(p polygon, k int) (sign int) {
 	f, base := s.float[k], s.float[s.i]
 	for _, x := range p.near {
 		n := len(x)
 		v, size := f[n]-base[n], math.Abs(f[n])+math.Abs(base[n])
 		for i, c := range x {
-			if !(math.Abs(c) < 0x1p900) {
+			if !(math.Abs(c) < 0x1p900 && math.Abs(f[i]) < 0x1p900 && math.Abs(base[i]) < 0x1p900) {
 				return 0
 			}
 			v += (f[i] - base[i]) * c
