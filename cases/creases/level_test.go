@@ -111,3 +111,22 @@ func TestSmallSphere(t *testing.T) {
 	assert.Empty(t, r.Reason)
 	assert.False(t, r.Unsettled)
 }
+
+// Densities that are not bounded on the unit sphere: with the distance r from a
+// point of it, ∫ 1/r dA = 4 π. At a pole, where three heights end, rounding
+// remains, and the error says of what size.
+func TestUnboundedDensity(t *testing.T) {
+	for _, test := range []struct {
+		density    string
+		want, most float64
+	}{
+		{"1/sqrt((1-z)/2)", 8 * math.Pi, 10},
+		{"1/norm(x - 3/5, y - 4/5, z)", 4 * math.Pi, 1e-7},
+		{"sqrt((1-z)/2)", 8 * math.Pi / 3, 1e-9},
+	} {
+		r := one(t, layeredHead+fmt.Sprintf("density = %q\nlevel = \"x^2 + y^2 + z^2 - 1\"\nbox = { x = [\"-2\", \"2\"], y = [\"-2\", \"2\"], z = [\"-2\", \"2\"] }\n", test.density))
+		require.NotNil(t, r.Energy, r.Reason)
+		assert.LessOrEqual(t, math.Abs(*r.Energy-test.want), *r.Error, test.density)
+		assert.LessOrEqual(t, *r.Error, test.most, test.density)
+	}
+}

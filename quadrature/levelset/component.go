@@ -76,7 +76,7 @@ func (d *driver) components(r *Result, lost []float64) {
 		for _, l := range list {
 			c := &r.Components[at[j.root(l.number)]]
 			for m, v := range l.value {
-				e := l.estimate[m] + l.noise[m] + 4*0x1p-52*l.size[m]
+				e := l.estimate[m] + l.rounding(m) + 4*0x1p-52*l.size[m]
 				if m == 0 {
 					c.Area += v
 					c.AreaError += e

@@ -67,7 +67,8 @@
 //     half of the gain that the decay promises; of rounding, which grows where the
 //     surface is parallel to the height; and of the bounds of the area left out,
 //     times twice the density at the centres of the cells left out, or the
-//     largest met. Where a refinement moves a value by more
+//     largest met. In thin slabs a density that is much larger on less than a
+//     thousandth of the surface counts by how much of a slab may lie there. Where a refinement moves a value by more
 //     than the estimate allowed, the estimates of the parts are enlarged. A
 //     density with a peak between all nodes is not seen.
 //   - Components: the points on edges are floating-point numbers, and a condition

@@ -250,11 +250,19 @@ func (d *driver) judge(old *leaf, parts []*leaf) {
 			f := min(4*worst, 1000)
 			n.safety = min(n.safety*f, 1e6)
 			for c := range n.estimate {
-				n.estimate[c] *= f
+				diff := old.value[c]
+				for _, m := range parts {
+					diff -= m.value[c]
+				}
+				n.estimate[c] = max(n.estimate[c], min(f*n.estimate[c], mostDoubt*(n.size[c]+math.Abs(diff))))
 			}
 		}
 	}
 }
+
+// mostDoubt bounds the estimates of the errors of parts that are not believed,
+// by what they hold and by what they have changed.
+const mostDoubt = 64
 
 // result puts the numbers together.
 func (d *driver) result(stop error) (Result, error) {
@@ -273,7 +281,7 @@ func (d *driver) result(stop error) (Result, error) {
 		noise := 4 * 0x1p-52 * d.bulk[c]
 		for _, list := range [2][]*leaf{d.heap, d.done} {
 			for _, l := range list {
-				noise += l.noise[c]
+				noise += l.rounding(c)
 			}
 		}
 		v, e := d.total[c], d.sum[c]+noise+lost[c]

@@ -128,7 +128,7 @@ func newEvaluator(phi Function, dim, parts int, density func(x, n []float64, out
 		dim: dim, parts: parts + 1, rules: rules(), phi: phi, density: density,
 		x: make([]float64, dim), g: make([]float64, dim), n: make([]float64, dim),
 		base: make([]float64, dim-1), bg: make([]float64, dim-1),
-		peak: make([]float64, parts+1), out: make([]float64, parts+1),
+		peak: make([]float64, parts+1), layers: make([]layers, parts+1), out: make([]float64, parts+1),
 		values: make([][]float64, parts+1),
 	}
 	for c := range e.values {

@@ -59,6 +59,7 @@ type evaluator struct {
 	values     [][]float64 // per component, row by row
 	nodes      int
 	peak       []float64 // largest absolute value of each component
+	layers     []layers
 	out        []float64
 }
 
@@ -261,6 +262,7 @@ func (e *evaluator) node(l *leaf, at int, weight, jac, guess float64) error {
 			return fmt.Errorf("%w at %v (component %d)", ErrNotFinite, append([]float64(nil), e.x...), c-1)
 		}
 		e.peak[c] = max(e.peak[c], math.Abs(f))
+		e.layers[c].add(f, weight*ratio*math.Abs(jac))
 		e.values[c][at] = v
 		l.value[c] += weight * v
 		l.size[c] += weight * math.Abs(v)
@@ -268,6 +270,14 @@ func (e *evaluator) node(l *leaf, at int, weight, jac, guess float64) error {
 	}
 	return nil
 }
+
+// mostNoise bounds the relative error of nodes at which nothing is left of the
+// height.
+const mostNoise = 16
+
+// rounding is the error of component c by rounding. To first order, which noise
+// is, it has no bound.
+func (l *leaf) rounding(c int) float64 { return min(l.noise[c], mostNoise*l.size[c]) }
 
 // estimate judges the rules by the decay of the Legendre coefficients.
 func (e *evaluator) estimate(l *leaf, rows, cols int) {
@@ -295,7 +305,7 @@ func (e *evaluator) estimate(l *leaf, rows, cols int) {
 			est += more
 		}
 		l.decay[c] = t
-		l.estimate[c] = l.safety * est
+		l.estimate[c] = max(est, min(l.safety*est, mostDoubt*l.size[c]))
 	}
 }
 

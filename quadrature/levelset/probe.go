@@ -14,7 +14,8 @@ const (
 // density near the centre of an undecided cell, with the normal that phi has there,
 // times the area that the cell can hold. Where there is no such value, and in
 // the thin cells, it is the largest density met; where no node was found, the
-// largest of these.
+// largest of these. In thin cells a density that is large on a small part of the
+// surface counts by how much of a slab may lie there, see layers.
 func (d *driver) lost() (sum, thin []float64) {
 	sum, thin = make([]float64, d.parts), make([]float64, d.parts)
 	top := make([]float64, d.parts)
@@ -56,6 +57,9 @@ func (d *driver) lost() (sum, thin []float64) {
 		}
 		if d.skipped > 0 {
 			thin[k] = d.skipped * peak
+			if d.nodes > 0 {
+				thin[k] = d.skipped * min(peak, d.layers[k].mean())
+			}
 		}
 	}
 	return sum, thin
