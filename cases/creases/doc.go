@@ -62,6 +62,12 @@
 // on the box of the pair and apart from each other, by enclosures. Where that does
 // not succeed the surface is refused.
 //
+// A branch that has no value in a part of the domain, or is infinite on a surface
+// where a denominator changes its sign, is refused where that matters to u; both
+// are looked for at points spread over the domain. A branch that exact arithmetic
+// shows to be nowhere below another, as a cone is above its tangent planes, makes no
+// crease with it where they touch.
+//
 // The sheets of a pair, and of a level set, are the connected components of where
 // the other branches are strictly on their side, in the inside of the domain: two
 // that only touch, at a point or along a line where more than two branches meet,

@@ -8,6 +8,7 @@ import (
 	"creaseproof/entropy/interval"
 	"creaseproof/entropy/jet"
 	"creaseproof/entropy/program"
+	"creaseproof/quadrature/branches"
 	"creaseproof/quadrature/levelset"
 )
 
@@ -36,9 +37,16 @@ func (d *domain) points() (out [][]float64) {
 	return out
 }
 
-// active lists points of the domain, those first at which u is branch k.
-func (c *combination) active(d domain, k int) ([][]float64, error) {
-	in, num := c.numeric().NewNumeric(nil, coordinates(len(d.box))...)
+// branchValues are the branches as one program.
+type branchValues struct {
+	p    *program.Program
+	ws   *program.Workspace
+	out  []float64
+	tree *branches.Tree
+}
+
+func (c *combination) branchValues() (*branchValues, error) {
+	in, num := c.numeric().NewNumeric(nil, coordinates(len(c.set.Coordinates))...)
 	num.Closed = true
 	var outs []program.Ref
 	for _, f := range c.s.shape.branches {
@@ -53,13 +61,26 @@ func (c *combination) active(d domain, k int) ([][]float64, error) {
 	}
 	p, err := num.Compile(outs...)
 	if err != nil {
-		return nil, placed(c.s.shape.branches[k].text, err)
+		return nil, placed(c.s.shape.branches[0].text, err)
 	}
-	ws, values := p.NewWorkspace(), make([]float64, len(outs))
+	return &branchValues{p: p, ws: p.NewWorkspace(), out: make([]float64, len(outs)), tree: c.s.shape.tree}, nil
+}
+
+// at are the values at x, which last until the next call.
+func (b *branchValues) at(x []float64) []float64 {
+	b.p.Eval(b.ws, x, b.out)
+	return b.out
+}
+
+// active lists points of the domain, those first at which u is branch k.
+func (c *combination) active(d domain, k int) ([][]float64, error) {
+	b, err := c.branchValues()
+	if err != nil {
+		return nil, err
+	}
 	points := d.points()
 	here := func(x []float64) int {
-		p.Eval(ws, x, values)
-		if _, i := c.s.shape.tree.Eval(values); i == k {
+		if _, i := b.tree.Eval(b.at(x)); i == k {
 			return 0
 		}
 		return 1

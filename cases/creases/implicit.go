@@ -34,6 +34,9 @@ func (c *combination) implicit(r Result, rel, allowed float64) (Result, error) {
 		if out, done, err := c.flat(r, d, onWell, rel, allowed); done || err != nil {
 			return out, err
 		}
+		if reason, err = c.undefined(d); reason != "" || err != nil {
+			return r.refuse(reason), err
+		}
 		return c.finish(r, rel, allowed, func(t *tally) (string, error) { return c.creases(t, d, onWell) })
 	}
 	reason, onWell, err := c.offWell()
@@ -119,6 +122,24 @@ func (t *tally) add(v share) {
 	if v.limited != nil {
 		t.limited = v.limited
 	}
+}
+
+// join adds another share, with its sheets.
+func (s *share) join(v share) {
+	if v.empty {
+		return
+	}
+	s.empty = false
+	s.energy += v.energy
+	s.failure += v.failure
+	s.area += v.area
+	s.undecided += v.undecided
+	s.resolution = math.Max(s.resolution, v.resolution)
+	if v.limited != nil {
+		s.limited = v.limited
+	}
+	s.sheets = append(s.sheets, v.sheets...)
+	s.unsettled = s.unsettled || v.unsettled
 }
 
 // part is a part of a level set: where all conditions of one of the systems
@@ -244,7 +265,11 @@ func (c *combination) creases(t *tally, d domain, onWell bool) (reason string, e
 			return "", err
 		}
 	}
+	known := orders{c, map[[2]int]int{}}
 	for _, p := range pairs {
+		if !known.settle(&p) {
+			continue
+		}
 		v, third, reason, err := c.crease(t, &d, p, nil, len(pairs), onWell)
 		if err == nil && reason == "" && v.vanishing != nil {
 			switch order := c.beside(p); {
@@ -330,9 +355,7 @@ func (c *combination) crease(t *tally, d *domain, p branches.Pair, order []int, 
 		if err != nil || reason != "" {
 			return v, 0, reason, err
 		}
-		if !v.empty {
-			sum = v
-		}
+		sum.join(v)
 	}
 	return sum, 0, "", nil
 }
