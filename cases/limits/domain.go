@@ -137,7 +137,8 @@ func (r *reader) cylinder(cyl *casefile.Cylinder) (d limit.Domain, err error) {
 	}}, nil
 }
 
-// region is the image of a box of parameters.
+// region is the image of a box of parameters, which the map has to cover once.
+// What a few determinants show of that is checked.
 func (r *reader) region(p *casefile.Patch) (d limit.Domain, err error) {
 	n := r.n
 	if len(p.Map) != n || len(p.Over) != n {
@@ -202,5 +203,5 @@ func (r *reader) region(p *casefile.Patch) (d limit.Domain, err error) {
 			copy(jac[j], out[n*(j+1):n*(j+2)])
 		}
 	}
-	return d, nil
+	return d, r.regular(p.Pos, &d)
 }

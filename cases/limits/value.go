@@ -12,9 +12,10 @@ import (
 // show it.
 const (
 	// Sharp: at the smallest eps the energy is within the relative gap allowed
-	// of the jump energy.
+	// of the jump energy, and the gap did not grow twice in turn.
 	Sharp = "sharp"
-	// Above: it is not, and the extrapolated limit is above the jump energy.
+	// Above: it is not, and the extrapolated limit is above the jump energy, by
+	// more than the last energies differ.
 	Above = "above"
 	// Below: it is not, and the extrapolated limit is below the jump energy.
 	Below = "below"
@@ -99,7 +100,7 @@ const rounding = 1e-14
 // comes after Target follows from what comes before it.
 func (v *Value) Judge(l *casefile.Limit) {
 	within := defaultGap
-	if l.Within != nil {
+	if l != nil && l.Within != nil {
 		within, _ = l.Within.Float64()
 	}
 	v.Complete = true
@@ -119,15 +120,15 @@ func (v *Value) Judge(l *casefile.Limit) {
 		errors[i] = v.Error[i] + *v.TargetError + rounding*math.Abs(target)
 	}
 	v.Gap = &gaps[last]
-	unit := math.Abs(target)
+	unit, theGap := math.Abs(target), "relative gap"
 	if target != 0 {
 		q := gaps[last] / unit
 		v.RelativeGap = &q
 	} else {
-		unit = 1
+		unit, theGap = 1, "gap"
 	}
 	v.BelowRounding = math.Abs(gaps[last]) <= errors[last]
-	if r := limit.FitRate(v.Eps, gaps, errors); r != nil && !v.BelowRounding {
+	if r := limit.FitRate(v.Eps, gaps, errors); r != nil && !v.BelowRounding && !v.Exponential() {
 		v.Rate = &r.Value
 		if !math.IsNaN(r.Deviation) {
 			v.RateError = &r.Deviation
@@ -141,19 +142,70 @@ func (v *Value) Judge(l *casefile.Limit) {
 	switch {
 	case v.Error[last] > allowed:
 		v.Reason = fmt.Sprintf("the energy at the smallest eps has an estimated error of %.2g, more than the gap of %.2g that is allowed", v.Error[last], allowed)
+	case math.Abs(gaps[last]) <= allowed && grows(gaps, errors):
+		v.Reason = "the gap at the smallest eps is as small as is asked, but it grows as eps falls: the energy may have no limit"
 	case math.Abs(gaps[last]) <= allowed:
 		v.Outcome = Sharp
-	case v.Limit != nil && x-target > allowed+5*e:
+	case v.Limit == nil:
+		v.Reason = fmt.Sprintf("the %s at the only eps is %.3g, more than the %.3g allowed: one energy shows no limit, add smaller eps", theGap, gaps[last]/unit, within)
+	case math.Abs(x-target) > allowed+5*e && math.Abs(v.Energy[last]-v.Energy[last-1]) > math.Abs(x-target):
+		v.Reason = fmt.Sprintf("the %s at the smallest eps is %.3g, more than the %.3g allowed; from the eps before to that one the energy changed by more than its limit is away from the jump energy: add smaller eps", theGap, gaps[last]/unit, within)
+	case x-target > allowed+5*e:
 		v.Outcome = Above
-		v.Reason = fmt.Sprintf("the limit %.10g is above the jump energy by %.4g (%.3g%%)", x, x-target, 100*(x-target)/unit)
-	case v.Limit != nil && target-x > allowed+5*e:
+		v.Reason = fmt.Sprintf("the limit %.10g is above the jump energy by %.4g%s", x, x-target, percent(x-target, target))
+	case target-x > allowed+5*e:
 		v.Outcome = Below
-		v.Reason = fmt.Sprintf("the limit %.10g is below the jump energy by %.4g (%.3g%%): the domain, the branches or the claimed energy are not those of one crease", x, target-x, 100*(target-x)/unit)
+		v.Reason = fmt.Sprintf("the limit %.10g is below the jump energy by %.4g%s: the domain, the branches or the claimed energy are not those of one crease", x, target-x, percent(target-x, target))
 	default:
-		v.Reason = fmt.Sprintf("the relative gap at the smallest eps is %.3g, more than the %.3g allowed; the limit %.10g ± %.2g is not away from the jump energy: add smaller eps", gaps[last]/unit, within, x, e)
+		v.Reason = fmt.Sprintf("the %s at the smallest eps is %.3g, more than the %.3g allowed; the limit %.10g ± %.2g is not away from the jump energy: add smaller eps", theGap, gaps[last]/unit, within, x, e)
 	}
 	if v.Outcome == Above || v.Outcome == Below {
 		v.Rate, v.RateError = nil, nil // the gap does not fall
 	}
 	v.Met = v.Outcome == v.Expected
+}
+
+// Exponential reports whether the gap falls faster than powers of eps do: its
+// order between two eps is above 2, and half as great again between the next
+// two, as far as it is well above the errors. No rate is fitted then.
+func (v *Value) Exponential() bool {
+	if v.Target == nil || v.TargetError == nil {
+		return false
+	}
+	var slopes []float64
+	for i := 1; i < len(v.Eps); i++ {
+		a, b := v.Energy[i-1]-*v.Target, v.Energy[i]-*v.Target
+		if math.Abs(b) <= 10*(v.Error[i]+*v.TargetError+rounding*math.Abs(*v.Target)) {
+			break
+		}
+		slopes = append(slopes, math.Log(math.Abs(a/b))/math.Log(v.Eps[i-1]/v.Eps[i]))
+	}
+	for i, s := range slopes {
+		if !(s > 2) || i > 0 && s < 1.5*slopes[i-1] {
+			return false
+		}
+	}
+	return len(slopes) > 1
+}
+
+// grows reports whether the gap, well above its errors, grew twice in turn.
+func grows(gaps, errors []float64) bool {
+	n := len(gaps)
+	if n < 3 {
+		return false
+	}
+	for i := n - 2; i < n; i++ {
+		a, b := gaps[i-1], gaps[i]
+		if a*b < 0 || math.Abs(b) < 1.1*math.Abs(a) || math.Abs(b-a) <= 3*(errors[i-1]+errors[i]) {
+			return false
+		}
+	}
+	return true
+}
+
+func percent(x, of float64) string {
+	if of == 0 {
+		return ""
+	}
+	return fmt.Sprintf(" (%.3g%%)", 100*x/math.Abs(of))
 }

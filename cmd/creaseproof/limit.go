@@ -23,8 +23,8 @@ with a kernel of radius width eps, where branches are evaluated up to that
 distance outside of the domain.
 
 Shown for each eps are the energy, its two parts R^2/(2 eps) (compression) and
-eps L^2/2 (bending), eps times the integral of the curvature K, and the gap to
-the jump energy; below, the order in eps at which the gap falls, with the
+eps L^2/2 (bending; of another energy, what it is without second derivatives and
+the rest), eps times the integral of the curvature K, and the gap to the jump energy; below, the order in eps at which the gap falls, with the
 standard error of the fit, and the energy extrapolated to eps = 0. The outcome is
 
   sharp     the relative gap at the smallest eps is as small as is asked

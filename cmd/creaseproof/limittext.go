@@ -94,6 +94,8 @@ func (t *limitText) beside(v *limits.Value) (list []string) {
 			s += fmt.Sprintf(" ± %.2g", *v.RateError)
 		}
 		parts = append(parts, s)
+	} else if !v.BelowRounding && v.Exponential() {
+		parts = append(parts, "falling faster than any power of eps")
 	}
 	if v.Limit != nil && !v.BelowRounding {
 		parts = append(parts, fmt.Sprintf("limit %.10g ± %.1g", *v.Limit, *v.LimitError))

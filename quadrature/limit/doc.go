@@ -121,7 +121,8 @@
 // standard error. Where the gap at the smallest eps is not above that error
 // there is no rate: the gap is below rounding. The limit is extrapolated by a
 // polynomial in eps (Richardson; Neville's scheme), with the distance of the
-// last two orders as the estimate of its error.
+// last two orders as the estimate of its error; more where the same estimate from
+// all energies but the last would have been wrong.
 //
 // All of it is floating-point arithmetic and proves nothing.
 package limit

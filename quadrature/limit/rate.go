@@ -54,8 +54,22 @@ func FitRate(eps, gap, err []float64) *Rate {
 // Extrapolate is the value at eps = 0 of the polynomial through the last (at
 // most four) energies, and an estimate of its error: the distance from the
 // polynomial through one energy less, and the errors of the energies as they
-// are amplified. One energy alone is its own limit, with an infinite error.
+// are amplified. Where without the last energy the same estimate would have
+// been too small by a factor of ten, eps is not small yet, and the estimate is
+// no less than what the last energy moved the value by. One energy alone is its
+// own limit, with an infinite error.
 func Extrapolate(eps, energy, err []float64) (limit, estimate float64) {
+	limit, estimate = extrapolate(eps, energy, err)
+	if n := len(eps) - 1; n >= 2 {
+		before, e := extrapolate(eps[:n], energy[:n], err[:n])
+		if moved := math.Abs(limit - before); moved > 10*e {
+			estimate = math.Max(estimate, moved)
+		}
+	}
+	return limit, estimate
+}
+
+func extrapolate(eps, energy, err []float64) (limit, estimate float64) {
 	k := min(len(eps), 4)
 	if k == 0 {
 		return math.NaN(), math.Inf(1)
