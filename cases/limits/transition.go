@@ -16,7 +16,7 @@ func (r *reader) transition(t source.Text, f func(s float64) float64) error {
 	for _, far := range []struct{ s, within float64 }{{-1e4, 1e-2}, {1e4, 1e-2}, {-1e12, 1e-5}, {1e12, 1e-5}} {
 		want := (1 + math.Copysign(1, far.s)) / 2
 		if v := f(far.s); !(math.Abs(v-want) <= far.within) {
-			return r.fault(t, "it has to tend to 0 for s → -∞ and to 1 for s → ∞, faster than 1/sqrt(|s|) and without overflow", "the profile is %.6g at s = %g", v, far.s)
+			return r.fault(t, "it has to tend to 0 for s → -∞ and to 1 for s → ∞, faster than 1/sqrt(|s|) and without overflow", "the profile is %.4g at s = %g", v, far.s)
 		}
 	}
 	const pieces, reach = 2001, 10
