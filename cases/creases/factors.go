@@ -76,8 +76,15 @@ func (s *factoring) collect(n formula.Node, power int) bool {
 			}
 		}
 		return true
+	case *formula.Call:
+		if (n.Func == "abs" || n.Func == "sqrt") && len(n.Args) == 1 {
+			return s.collect(n.Args[0], 2*power) // never negative
+		}
 	case *formula.Power:
-		if n.Exp.IsInt() && n.Exp.Num().IsInt64() && n.Exp.Sign() != 0 {
+		if !n.Exp.IsInt() {
+			return s.collect(n.Base, 2*power*n.Exp.Sign()) // defined on one side only
+		}
+		if n.Exp.Num().IsInt64() && n.Exp.Sign() != 0 {
 			if k := n.Exp.Num().Int64(); -64 <= k && k <= 64 {
 				return s.collect(n.Base, power*int(k))
 			}

@@ -151,7 +151,7 @@ type part struct {
 	abs     float64 // error that does not matter
 	cells   int     // budget of boxes, the usual one if 0
 	// sign, if not nil, says at a node by what the normal of phi is turned.
-	sign func(x []float64) float64
+	sign func(x, n []float64) float64
 }
 
 // cuts are places at which the box of a round domain is cut such that its
@@ -240,10 +240,10 @@ func (c *combination) over(t *tally, p part, cuts [][]float64, onWell bool) (v s
 }
 
 // turned is a density with the normal turned by a sign.
-func turned(f func(x, n, out []float64), sign func(x []float64) float64, dim int) func(x, n, out []float64) {
+func turned(f func(x, n, out []float64), sign func(x, n []float64) float64, dim int) func(x, n, out []float64) {
 	m := make([]float64, dim)
 	return func(x, n, out []float64) {
-		s := sign(x)
+		s := sign(x, n)
 		for i := range m {
 			m[i] = s * n[i]
 		}

@@ -22,7 +22,7 @@ type aside struct {
 	*levelFunction
 	of    *factor
 	grad  []float64
-	zeros int // nodes at which it vanishes to rounding
+	zeros int // nodes at which it vanishes to rounding, and touches the level set
 	at    []float64
 }
 
@@ -59,7 +59,7 @@ func (c *combination) level(t *tally, d *domain, onWell bool) (string, error) {
 		for _, i := range surfaces {
 			g := s.list[i]
 			if g.power%2 == 0 {
-				return fmt.Sprintf("the level function has the factor %s with multiplicity %d: it does not change its sign where that vanishes, so that the surface has no plus side, and its gradient vanishes there: write level = \"%s\", or leave the factor out", text(g.node), g.power, text(g.node)), nil
+				return fmt.Sprintf("the level function does not change its sign where its factor %s vanishes, which has an even power or stands in an absolute value or a root: the surface has no plus side, and the gradient vanishes there or does not exist: write level = \"%s\", or leave the factor out", text(g.node), text(g.node)), nil
 			}
 			var others []*aside
 			for k := range s.list {
@@ -175,8 +175,12 @@ func (c *combination) levelPart(t *tally, d *domain, name string, iso isolated, 
 		trims = append(trims, g)
 	}
 	p := part{phi: phi, systems: [][]levelset.Function{trims}, box: d.box, cells: limit}
-	if others != nil || iso.sign < 0 {
-		p.sign = c.turning(others, iso.sign)
+	watched := slices.Clone(others)
+	for _, g := range trims[len(d.trims()):] {
+		watched = append(watched, &aside{levelFunction: g.(*levelFunction), of: &factor{}, grad: make([]float64, len(d.box))})
+	}
+	if watched != nil || iso.sign < 0 {
+		p.sign = c.turning(watched, iso.sign)
 	}
 	if c.oriented() {
 		if p.systems, err = c.sides(iso.node, trims, others); err != nil {
@@ -190,14 +194,17 @@ func (c *combination) levelPart(t *tally, d *domain, name string, iso isolated, 
 		case k < 0:
 			reason = c.onBoundary(e)
 		case k < len(iso.conditions):
-			reason = fmt.Sprintf("%s vanishes on the whole level set%s%s", text(iso.conditions[k]), c.place(e.Point, nil), c.where())
+			reason = c.onKink(iso.conditions[k], e.Point)
 		default:
 			reason = c.together(name, e.Point)
 		}
 	}
-	for _, a := range others {
-		if reason == "" && err == nil && a.zeros > 2 && a.at != nil && 2*a.zeros > t.nodes-before {
-			reason = c.together(name, a.at)
+	for i, a := range watched {
+		if reason != "" || err != nil || a.zeros <= 2 || a.at == nil || 20*a.zeros < t.nodes-before {
+			continue
+		}
+		if reason = c.together(name, a.at); i >= len(others) {
+			reason = c.onKink(iso.conditions[i-len(others)], a.at)
 		}
 	}
 	return v, reason, err
@@ -209,9 +216,15 @@ func (c *combination) together(name string, at []float64) string {
 	return fmt.Sprintf("another factor of the level function vanishes on the level set of %s too%s%s: the gradient vanishes there, and which side is plus does not show: write the surface as the level set of one of them", strings.TrimSpace(name), c.place(at, nil), c.where())
 }
 
+// onKink is the reason to refuse a level function that ends, or has a kink, on
+// its level set.
+func (c *combination) onKink(condition formula.Node, at []float64) string {
+	return fmt.Sprintf("%s vanishes on a part of the level set%s%s, where the level function ends or has a kink: write it without the root or the absolute value there", text(condition), c.place(at, nil), c.where())
+}
+
 // turning is the sign by which the normal of a factor is turned.
-func (c *combination) turning(others []*aside, sign int) func(x []float64) float64 {
-	return func(x []float64) float64 {
+func (c *combination) turning(others []*aside, sign int) func(x, n []float64) float64 {
+	return func(x, n []float64) float64 {
 		s := float64(sign)
 		for _, a := range others {
 			v := a.Value(x)
@@ -220,7 +233,7 @@ func (c *combination) turning(others []*aside, sign int) func(x []float64) float
 			for k, g := range a.grad {
 				size += math.Abs(g) * (1 + math.Abs(x[k]))
 			}
-			if math.Abs(v) <= 1e-12*size {
+			if math.Abs(v) <= 1e-12*size && parallel(a.grad, n) {
 				if a.zeros++; a.at == nil {
 					a.at = slices.Clone(x)
 				}
@@ -231,6 +244,20 @@ func (c *combination) turning(others []*aside, sign int) func(x []float64) float
 		}
 		return s
 	}
+}
+
+// parallel reports whether a gradient has the direction of a unit normal, or
+// vanishes.
+func parallel(g, n []float64) bool {
+	var along float64
+	for k, x := range g {
+		along += x * n[k]
+	}
+	var off []float64
+	for k, x := range g {
+		off = append(off, x-along*n[k])
+	}
+	return length(off) <= 1e-6*length(g)
 }
 
 // sides are the systems of conditions with the signs of the other factors.

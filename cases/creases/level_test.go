@@ -74,10 +74,14 @@ func TestLevelFunctionsWithoutSides(t *testing.T) {
 	const b = `"-2", "2"`
 	for phi, want := range map[string]string{
 		"(x^2 + y^2 + z^2 - 1)^2":                           `write level = "x^2 + y^2 + z^2 - 1"`,
-		"x^4 - 2 x^2 + 1 + 0 y":                             `multiplicity 2`,
-		"x^2 (y - 1/2)":                                     `the factor x with multiplicity 2`,
-		"(x^2 + y^2 + z^2 - 1)*(2 - 2 x^2 - 2 y^2 - 2 z^2)": `multiplicity 2`,
-		"sin(x)*sin(2 x)":                                   "vanishes on the level set of",
+		"x^4 - 2 x^2 + 1 + 0 y":                             `even power`,
+		"x^2 (y - 1/2)":                                     `its factor x vanishes`,
+		"(x^2 + y^2 + z^2 - 1)*(2 - 2 x^2 - 2 y^2 - 2 z^2)": `even power`,
+		"abs(x)*y":           "its factor x vanishes",
+		"abs(x) + x^2 + 0 y": "has a kink",
+		"sqrt(x^2 - 1)*y":    "a root",
+		"(x - 1)^(3/2)":      "its factor x - 1 vanishes",
+		"sin(x)*sin(2 x)":    "vanishes on the level set of",
 	} {
 		r := level(t, phi, b, b, b)
 		assert.Nil(t, r.Energy, phi)
