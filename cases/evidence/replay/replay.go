@@ -89,6 +89,9 @@ func surface(ctx context.Context, data []byte, open Open) (r Report, err error) 
 			r.States += fmt.Sprintf(" ± %.1e", *f.Error)
 		}
 	}
+	if f.Claimed != nil { // the case is that in the file, which another may have written
+		r.States += fmt.Sprintf(", claimed %.15g", *f.Claimed)
+	}
 	return r, err
 }
 
@@ -100,6 +103,12 @@ func approximation(ctx context.Context, data []byte) (r Report, err error) {
 	r = Report{Case: f.Case, Name: f.Approximation + with(f.Values), States: f.Outcome, Numerical: true}
 	if f.Unfinished {
 		r.States = fmt.Sprintf("unfinished, after %d eps", len(f.Eps))
+	}
+	if f.Target != nil {
+		r.States += fmt.Sprintf(", jump energy %.15g", *f.Target)
+		if f.TargetClaimed {
+			r.States += " as claimed"
+		}
 	}
 	return r, err
 }
