@@ -16,8 +16,11 @@ import (
 func (d *decider) certified(method string, g *exact.Gap, r *reduction, p *gram.Proof, cert *certificate.Certificate) {
 	d.Proved(method + ", certificate checked")
 	d.Rec.Reduced, d.Rec.Certificate = r.Claim, cert
-	if certificate.UsesContinuity(r.Claim, cert) {
+	switch certificate.WhereMultiplierVanishes(r.Claim, cert) {
+	case certificate.Continuity:
 		d.Rec.Reason = "the certificate has a multiplier that may vanish; there the claim holds by continuity"
+	case certificate.WithTarget:
+		d.Rec.Reason = "the certificate has a multiplier that may vanish; there both sides are equal"
 	}
 	for _, s := range p.Squares {
 		d.Rec.Details = append(d.Rec.Details, exact.Short(r.term(s)))

@@ -46,6 +46,12 @@ func (d *decider) inequality() error {
 	if err := d.RemoveAngle(g); err != nil {
 		return err
 	}
+	long := g.Poly.Len() > longTarget
+	if long {
+		if ok, err := d.asWritten(g); err != nil || ok {
+			return err
+		}
+	}
 	res := squares.Complete(d.Ctx, d.Ring, g.Poly, d.squareVars(g.Poly))
 	if err := d.Ctx.Err(); err != nil {
 		return err
@@ -53,8 +59,18 @@ func (d *decider) inequality() error {
 	if !res.Proved && (d.refuteRests(g, res.Rests) || d.refuteFar(g)) {
 		return nil
 	}
+	if !res.Proved {
+		if ok, err := d.byDivision(g); err != nil || ok {
+			return err
+		}
+	}
 	if ok, err := d.prove(g, res.Terms); err != nil || ok {
 		return err
+	}
+	if !res.Proved && !long {
+		if ok, err := d.asWritten(g); err != nil || ok {
+			return err
+		}
 	}
 	if res.Proved {
 		d.Proved("completing squares, multiplied out exactly")
@@ -114,22 +130,56 @@ func (d *decider) refuteRests(g *exact.Gap, rests []squares.Rest) bool {
 	pts := d.GapPoints(g)
 	for _, rest := range rests {
 		value := algebra.FromPoly(rest.Poly)
+		tried := func(at jet.Point) bool {
+			if s, ok := d.Ring.Sign(value, at); !ok || s >= 0 {
+				return false
+			}
+			if !d.lift(rest.Steps, at) || !d.Consistent(pts, at) || !d.FalseAt(g, pts, at) {
+				return false
+			}
+			at = d.simplify(g, pts, at)
+			d.Refuted("completing squares leaves a rest that is negative; exact arithmetic at the witness", at, g.Left, g.Right)
+			return true
+		}
 		for range 120 {
 			at, ok := pts.Next()
 			if !ok {
 				return false
 			}
-			if s, ok := d.Ring.Sign(value, at); !ok || s >= 0 {
-				continue
+			if tried(at) {
+				return true
 			}
-			if d.lift(rest.Steps, at) && d.Consistent(pts, at) && d.FalseAt(g, pts, at) {
-				at = d.simplify(g, pts, at)
-				d.Refuted("completing squares leaves a rest that is negative; exact arithmetic at the witness", at, g.Left, g.Right)
+		}
+		for k := range farTries {
+			at, ok := pts.Next()
+			if !ok {
+				return false
+			}
+			if far(pts, rest.Poly, at, k); tried(at) {
 				return true
 			}
 		}
 	}
 	return false
+}
+
+// farTries are the points of a rest that are tried far out and near zero.
+const farTries = 48
+
+// far moves the free indeterminates of p by powers of two, different ones each
+// time: a rest may be negative only far out, or only near zero.
+func far(pts *exact.Points, p algebra.Poly, at jet.Point, k int) {
+	powers := []int{0, 30, -30, 60, -60, 120, -120}
+	for i, v := range p.Vars() {
+		x, ok := at[v]
+		if !ok || !slices.Contains(pts.Free, v) {
+			continue // cosines and sines are tied to each other
+		}
+		by, ok := algebra.Int(2).Pow(powers[(k+i*(1+k/len(powers)))%len(powers)])
+		if ok {
+			at[v] = x.Mul(by)
+		}
+	}
 }
 
 // lift puts the minimisers in, last one first.

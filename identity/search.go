@@ -43,6 +43,12 @@ func (d *decider) search(g *exact.Gap) error {
 		return d.searchOnVariety(g, pts)
 	}
 	if slices.ContainsFunc(d.Assumed, func(c exact.Constraint) bool { return c.Relation == "=" }) {
+		if d.RefuteIsolated(g) {
+			return nil
+		}
+		if err := d.Ctx.Err(); err != nil {
+			return err
+		}
 		d.Open("no proof and no exact counterexample was found; samples do not follow assumptions that are equations")
 		return nil
 	}
@@ -318,6 +324,19 @@ func (t *task) run() (float64, bool, error) {
 		if at, ok := t.point(q); ok && d.FalseAt(t.g, t.pts, at) {
 			d.Rec.Margin = &least
 			d.Refuted("random sample; exact arithmetic at the witness", at, t.g.Left, t.g.Right)
+			return least, true, nil
+		}
+	}
+	if at, ok := t.small(); ok {
+		d.Refuted("exact arithmetic at the witness", at, t.g.Left, t.g.Right)
+		return least, true, nil
+	}
+	if b, ok := t.newBoundary(); ok {
+		if found.BestPoint != nil {
+			starts = slices.Insert(starts, 0, found.BestPoint)
+		}
+		if at, ok := b.search(starts); ok {
+			d.Refuted("along the boundary of the assumptions; exact arithmetic at the witness", d.simplify(t.g, t.pts, at), t.g.Left, t.g.Right)
 			return least, true, nil
 		}
 	}

@@ -56,26 +56,35 @@ func Check(claim *Claim, cert *Certificate) error {
 	if claim == nil || cert == nil {
 		return errors.New("no claim, or no certificate")
 	}
-	c, err := newChecker(claim.Variables)
+	p, target, err := open(claim)
 	if err != nil {
 		return err
+	}
+	return p.check(target, cert, maxDepth)
+}
+
+// open reads a claim.
+func open(claim *Claim) (*problem, sum, error) {
+	c, err := newChecker(claim.Variables)
+	if err != nil {
+		return nil, nil, err
 	}
 	p := &problem{checker: c, claim: claim, positive: make([]sum, len(claim.Positive)), zero: make([]sum, len(claim.Zero))}
 	for i, g := range claim.Positive {
 		if p.positive[i], err = c.read(g.Poly); err != nil {
-			return fmt.Errorf("assumption %d: %w", i, err)
+			return nil, nil, fmt.Errorf("assumption %d: %w", i, err)
 		}
 	}
 	for i, h := range claim.Zero {
 		if p.zero[i], err = c.read(h); err != nil {
-			return fmt.Errorf("equation %d: %w", i, err)
+			return nil, nil, fmt.Errorf("equation %d: %w", i, err)
 		}
 	}
 	target, err := c.read(claim.Target)
 	if err != nil {
-		return fmt.Errorf("target: %w", err)
+		return nil, nil, fmt.Errorf("target: %w", err)
 	}
-	return p.check(target, cert, maxDepth)
+	return p, target, nil
 }
 
 // problem is a claim that was read.
@@ -100,7 +109,15 @@ func (p *problem) check(target sum, cert *Certificate, depth int) error {
 			return fmt.Errorf("multiplier: %w", err)
 		}
 		if err := p.dense(cert.Multiplier, m); err != nil {
-			return fmt.Errorf("multiplier: %w", err)
+			if depth < maxDepth { // inside a squaring
+				return fmt.Errorf("multiplier: %w", err)
+			}
+			switch with, limit := p.vanishesWith(target, cert.Squares); {
+			case limit != nil:
+				return limit
+			case !with:
+				return fmt.Errorf("multiplier: %w", err)
+			}
 		}
 		if left, err = p.mul(m, target); err != nil {
 			return err
@@ -275,6 +292,64 @@ func (p *problem) dense(terms []Square, m sum) error {
 	return nil
 }
 
+// vanishesWith reports whether one of the squares is a positive number times a
+// power target^2k, k up to maxTargetPower: where the multiplier vanishes, the
+// identity then leaves 0 >= target^2k, so that the target vanishes as well.
+func (p *problem) vanishesWith(target sum, squares []Square) (bool, error) {
+	power := target
+	for k := 1; k <= maxTargetPower; k++ {
+		for _, s := range squares {
+			if len(s.Factors) > 0 || len(s.Base) != len(power) {
+				continue
+			}
+			q, err := p.read(s.Base)
+			if err != nil {
+				return false, err
+			}
+			if same, err := p.proportional(q, power); same || err != nil {
+				return same, err
+			}
+		}
+		if k == maxTargetPower {
+			break
+		}
+		next, err := p.mul(power, target)
+		if err != nil {
+			return false, err
+		}
+		power = next
+	}
+	return false, nil
+}
+
+// maxTargetPower bounds k in the squares target^2k that are recognised.
+const maxTargetPower = 4
+
+// proportional reports whether a is a number times b, neither zero.
+func (p *problem) proportional(a, b sum) (bool, error) {
+	if len(a) != len(b) || len(a) == 0 {
+		return false, nil
+	}
+	var ratio *big.Rat
+	for m, x := range a {
+		y := b[m]
+		if y == nil {
+			return false, nil
+		}
+		if err := p.spend(bits(x) + bits(y)); err != nil {
+			return false, err
+		}
+		q := new(big.Rat).Quo(x, y)
+		if ratio == nil {
+			ratio = q
+		}
+		if q.Cmp(ratio) != 0 {
+			return false, nil
+		}
+	}
+	return true, nil
+}
+
 // constant reports a polynomial without variables.
 func constant(p Polynomial) bool { return len(p) == 1 && len(p[0].M) == 0 }
 
@@ -319,11 +394,39 @@ func strictlyPositive(claim *Claim, terms []Square) bool {
 	})
 }
 
+// Vanishing says what a proof rests on where its multiplier vanishes.
+type Vanishing int
+
+// What a proof may rest on.
+const (
+	Nowhere    Vanishing = iota // there is no multiplier, or it is positive everywhere
+	Continuity                  // the target is not negative by continuity
+	WithTarget                  // the target vanishes there too
+)
+
+// WhereMultiplierVanishes says what the proof, which Check accepts, rests on
+// where its multiplier vanishes.
+func WhereMultiplierVanishes(claim *Claim, cert *Certificate) Vanishing {
+	inner := false
+	for cert.Squaring != nil && cert.Squaring.Proof != nil {
+		cert, inner = cert.Squaring.Proof, true
+	}
+	if len(cert.Multiplier) == 0 || strictlyPositive(claim, cert.Multiplier) {
+		return Nowhere
+	}
+	p, _, err := open(claim)
+	if err != nil || inner { // no certificate inside a squaring has another way out
+		return Continuity
+	}
+	m, err := p.squares(cert.Multiplier)
+	if err != nil || p.dense(cert.Multiplier, m) == nil {
+		return Continuity
+	}
+	return WithTarget
+}
+
 // UsesContinuity reports whether the proof, which Check accepts, rests on
 // continuity where its multiplier vanishes.
 func UsesContinuity(claim *Claim, cert *Certificate) bool {
-	for cert.Squaring != nil && cert.Squaring.Proof != nil {
-		cert = cert.Squaring.Proof
-	}
-	return len(cert.Multiplier) > 0 && !strictlyPositive(claim, cert.Multiplier)
+	return WhereMultiplierVanishes(claim, cert) == Continuity
 }

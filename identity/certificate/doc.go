@@ -25,6 +25,11 @@
 // and circles, on which a polynomial that is not identically zero vanishes on
 // a set without interior points.
 //
+// The second way out, where these do not hold: one of the squares on the right
+// is w · p^2k, without factors. Where M vanishes the identity then says
+// 0 >= p^2k, so p = 0 there. This is the form of the Positivstellensatz for
+// p >= 0 (Stengle, Mathematische Annalen 207 (1974) 87).
+//
 // A certificate may also be a squaring: x >= y follows from x² >= y² where x is
 // a sum Σ w · g_a g_b … · q², which is how roots are removed.
 //

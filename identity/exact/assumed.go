@@ -7,23 +7,52 @@ import (
 	"creaseproof/entropy/jet"
 )
 
-// onAssumed is the remainder of p by the assumptions that are equations, those
-// that hold one of the given indeterminates left out. It vanishes only where p
-// does at every point that satisfies them; that says nothing of derivatives.
+// onAssumed is the remainder of p by the assumptions that are equations, and by
+// those that say the same as equations, since a sum of squares is not positive;
+// those that hold one of the given indeterminates are left out. It vanishes only
+// where p does at every point that satisfies them; that says nothing of
+// derivatives.
 func (d *Problem) onAssumed(p algebra.Poly, but ...algebra.Var) algebra.Poly {
 	var gens []algebra.Poly
 	for _, c := range d.Assumed {
 		num := c.Value.Num()
-		if c.Relation != "=" || num.IsZero() || slices.ContainsFunc(d.Ring.Support(algebra.FromPoly(num)), func(v algebra.Var) bool { return slices.Contains(but, v) }) {
+		zeros := d.assumedZeros(c)
+		if len(zeros) == 0 || slices.ContainsFunc(d.Ring.Support(algebra.FromPoly(num)), func(v algebra.Var) bool { return slices.Contains(but, v) }) {
 			continue
 		}
-		gens = append(gens, num)
+		gens = append(gens, zeros...)
 	}
 	if len(gens) == 0 || p.IsZero() {
 		return p
 	}
 	_, rem := p.DivMod(d.completed(gens), algebra.GradedLex)
 	return d.Ring.ReducePoly(rem)
+}
+
+// assumedZeros are polynomials whose common real zeros are the points that
+// satisfy an assumption: none where it is no equation and says nothing of the kind.
+func (d *Problem) assumedZeros(c Constraint) []algebra.Poly {
+	num := c.Value.Num()
+	if num.IsZero() {
+		return nil
+	}
+	if c.Relation == "=" {
+		if list := d.realZeros(radical(num)); !empty(list) {
+			return list
+		}
+		return []algebra.Poly{num}
+	}
+	p, ok := c.Value.IsPoly()
+	if !ok || len(d.Ring.Kernels(c.Value)) > 0 || c.Relation != "<=" && c.Relation != ">=" {
+		return nil
+	}
+	if c.Relation == ">=" {
+		p = p.Neg()
+	}
+	if list, ok := d.zerosOf(p, 0); ok && !empty(list) {
+		return list
+	}
+	return nil
 }
 
 // contradicted reports whether the assumptions make a condition of the ring

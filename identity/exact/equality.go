@@ -96,6 +96,8 @@ func (d *Problem) vanishes(g, left, right algebra.Fraction) (bool, error) {
 			return true, nil
 		}
 		d.Open("the remainder after exact division is not zero, and no exact real zero of the equations was found at which it is not zero")
+	case d.isolatedWitness(g, left, right):
+		return true, nil
 	default:
 		d.Open("the difference has a normal form that is not zero, but no rational point was found at which it certainly differs from zero: kernels in it may depend on each other in a way that is not normalised")
 	}

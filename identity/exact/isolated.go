@@ -28,10 +28,10 @@ func (d *Problem) isolatedWitness(g, left, right algebra.Fraction) bool {
 	})
 }
 
-// RefuteIsolated refutes an inequality on the zeros of equations or of a well
-// at a real algebraic point of them: the gap is certainly negative there, by
-// enclosures, and the point is certainly one that the claim is about. It
-// reports whether it did, and does nothing where there are no equations.
+// RefuteIsolated refutes an inequality on the zeros of equations, of a well or of
+// assumptions at a real algebraic point of them: the gap is certainly negative
+// there, by enclosures, and the point is certainly one that the claim is about.
+// It reports whether it did, and does nothing where there are no equations.
 func (d *Problem) RefuteIsolated(g *Gap) bool {
 	return d.isolate(d.GapPoints(g), g.Left, g.Right, func(at jet.Point, roots map[algebra.Var]enclosure.Interval) (fails, told bool) {
 		s, ok := d.Ring.EncloseAt(g.Value, at, roots, 256).Sign()
@@ -45,6 +45,11 @@ func (d *Problem) isolate(pts *Points, left, right algebra.Fraction, test func(j
 	gens := d.Ideal
 	if len(d.Wells) > 0 {
 		gens = d.Wells
+	}
+	for _, c := range d.Assumed {
+		if p, ok := c.equation(); ok {
+			gens = append(slices.Clone(gens), p)
+		}
 	}
 	if len(gens) == 0 {
 		return false
@@ -147,7 +152,7 @@ func (p *Points) isolateOne(g algebra.Poly, at jet.Point, roots map[algebra.Var]
 	p.rng.Shuffle(len(vars), func(i, k int) { vars[i], vars[k] = vars[k], vars[i] })
 	rational := !slices.ContainsFunc(vars, func(v algebra.Var) bool { _, ok := at[v]; return !ok })
 	for _, v := range vars {
-		if p.d.Ring.Symbol(v).Kind != jet.Derivative || used[v] || inside[v] {
+		if !p.d.isolable(v) || used[v] || inside[v] {
 			continue
 		}
 		if g.Degree(v) == 1 {
@@ -192,6 +197,20 @@ func (p *Points) isolateOne(g algebra.Poly, at jet.Point, roots map[algebra.Var]
 	return false
 }
 
+// isolable reports an indeterminate that may follow from an equation: a
+// derivative, and where there are no equations on the jets, but assumptions on
+// single points alone, a constant or a coordinate as well.
+func (d *Problem) isolable(v algebra.Var) bool {
+	k := d.Ring.Symbol(v).Kind
+	return k == jet.Derivative || k < jet.Derivative && len(d.Ideal) == 0 && len(d.Wells) == 0
+}
+
+// equation is the polynomial of an assumption that is an equation.
+func (c Constraint) equation() (algebra.Poly, bool) {
+	p, ok := c.Value.IsPoly()
+	return p, ok && c.Relation == "=" && !p.IsZero()
+}
+
 // meansFromTraces makes the means and differences follow from the traces.
 func (p *Points) meansFromTraces(at jet.Point, roots map[algebra.Var]enclosure.Interval) {
 	if !p.d.Claim.Jump {
@@ -231,6 +250,9 @@ func (p *Points) meansFromTraces(at jet.Point, roots map[algebra.Var]enclosure.I
 
 func (p *Points) admissibleIsolated(at jet.Point, roots map[algebra.Var]enclosure.Interval) bool {
 	for _, c := range p.d.Assumed {
+		if _, ok := c.equation(); ok || c.Relation == "=" && c.Value.IsZero() {
+			continue // the point was drawn on its zeros
+		}
 		s, ok := p.d.Ring.EncloseAt(c.Value, at, roots, 256).Sign()
 		want := map[string]int{">": 1, ">=": 1, "<": -1, "<=": -1}[c.Relation]
 		if !ok || want == 0 || s != want {

@@ -6,6 +6,8 @@ import (
 	"math/big"
 	"slices"
 	"strings"
+
+	"creaseproof/identity/certificate"
 )
 
 // proof is an inequality on its way into a document.
@@ -33,6 +35,9 @@ func (s *Inequality) coq(d *document) error {
 	sc, name, err := d.open(s, s.Claim.Variables)
 	if err != nil {
 		return err
+	}
+	if s.Certificate != nil && certificate.WhereMultiplierVanishes(s.Claim, s.Certificate) == certificate.WithTarget {
+		return fmt.Errorf("%w: a multiplier that vanishes where the two sides are equal", ErrUnsupported)
 	}
 	p := &proof{doc: d, scope: sc, name: name, kind: "Theorem"}
 	if p.cleared, err = sc.ring.clear(s.Claim, s.Certificate); err != nil {
