@@ -109,7 +109,8 @@ func TestSolveChecksItsConditionsAgainstTheAssumptions(t *testing.T) {
 		{"c u_x + a u_y = 0", "a = 0", []identity.Verdict{proved}, "c = 0"},
 		{"c u_x = u_y", "u_x = u_y", []identity.Verdict{proved}, "c = 1"},
 		{"c u_x^2 = 0", "u_x = 0", []identity.Verdict{proved}, "c free"},
-		{"c u_x = 0", "u_x^2 = 0", []identity.Verdict{open}, ""}, // free as well
+		{"c u_x = 0", "u_x^2 = 0", []identity.Verdict{proved}, "c free"},
+		{"c u_x = 0", "u_x^2 + u_y^2 <= 0", []identity.Verdict{proved}, "c free"},
 		{"a u_x = b u_x + c", "a = b", []identity.Verdict{proved}, "c = 0"},
 	} {
 		rec, err := decided(t, state(t, plane, c.states, solving("c"), assuming(t, c.assume)))

@@ -33,3 +33,26 @@ func TestCosinesAreBounded(t *testing.T) {
 		assert.Equal(t, c.want, rec.Verdict, "%s: %+v", c.states, rec)
 	}
 }
+
+// High multiples of an angle are bounded as they are written.
+func TestCosinesOfHighMultiples(t *testing.T) {
+	for _, c := range []struct {
+		states string
+		want   identity.Verdict
+	}{
+		{"cos(1000 a) + cos(999 a) <= 2", identity.Proved},
+		{"cos(100 a) + cos(99 a) <= 1.99999", identity.Refuted},
+		{"3 cos(100 a)^2 sin(77 b) - 2 sin(50 a)^3 <= 5", identity.Proved},
+		{"-5 <= (3 cos(100 a)^2 sin(77 b) - 2 sin(50 a)^3)/1", identity.Proved},
+		{"cos(500 a)^2/4 + u_x^2 >= 0", identity.Proved},
+		{"cos(30 a)^2 <= 1", identity.Proved},
+		{"cos(30 a)^2 >= 0", identity.Proved},
+		{"cos(30 a)^3 >= 0", identity.Refuted},
+		{"cos(30 a)^2/(-1) >= 0", identity.Refuted},
+		{"2 cos(30 a) <= 1", identity.Refuted},
+		{"u_x cos(30 a) <= 1", identity.Refuted},
+	} {
+		rec := decide(t, state(t, planarAngles, c.states))
+		assert.Equal(t, c.want, rec.Verdict, "%s: %+v", c.states, rec)
+	}
+}

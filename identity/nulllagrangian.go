@@ -12,7 +12,7 @@ import (
 )
 
 // upToDivergence decides A <= B up to a divergence: it looks for a combination
-// N of minors, each the divergence of a potential, with gap + N >= 0 for all
+// N of minors and of total derivatives, each the divergence of a potential, with gap + N >= 0 for all
 // jets, and reports N.
 func (d *decider) upToDivergence() error {
 	if len(d.Claim.Given) > 0 || d.Claim.Jump || len(d.Claim.Modulo) > 0 {
@@ -28,11 +28,24 @@ func (d *decider) upToDivergence() error {
 		}
 		return err
 	}
-	list, err := d.Minors(g)
-	if err != nil {
-		return err
-	}
-	if len(list) > 0 {
+	minors := 0
+	for _, more := range []int{0, 1} { // the minors alone, and with integrations by parts
+		list, err := d.NullLagrangians(g, (minors+1)*more)
+		if err != nil {
+			return err
+		}
+		if len(list) == minors && more > 0 {
+			break
+		}
+		minors = len(list)
+		if x, ok := d.Cancel(g, list); ok {
+			if ok, err := d.withNull(g, list, x); err != nil || ok {
+				return err
+			}
+		}
+		if len(list) == 0 {
+			continue
+		}
 		if x, ok := d.fitNull(g, list); ok {
 			for _, try := range roundings(x) {
 				if ok, err := d.withNull(g, list, try); err != nil || ok {
@@ -45,7 +58,7 @@ func (d *decider) upToDivergence() error {
 		return err
 	}
 	d.Rec.Details = nil
-	d.Open("no combination of minors was found that makes the gap non-negative for all jets")
+	d.Open("no combination of minors and integrations by parts was found that makes the gap non-negative for all jets")
 	// What is known pointwise, which is no refutation of the claim.
 	pts := d.GapPoints(g)
 	if at, ok := d.cheapCounterexample(g, pts); ok {

@@ -180,7 +180,7 @@ func (a *audit) gap(d *exact.Problem) (*exact.Gap, error) {
 		if len(d.Claim.Given) > 0 || d.Claim.Jump || len(d.Claim.Modulo) > 0 {
 			return nil, errors.New("a null Lagrangian in a claim that is not about all smooth u")
 		}
-		list, err := d.Minors(g)
+		list, err := d.NullLagrangians(g, len(f.Null))
 		if err != nil {
 			return nil, err
 		}

@@ -200,6 +200,14 @@ func (d *Problem) atOnce() error {
 	if d.Claim.Divergence || len(d.Claim.Solve) > 0 {
 		return nil
 	}
+	if d.Claim.Best == "" && len(d.Claim.Given) == 0 {
+		if ok, err := d.byCosines(d.Claim.Statement); err != nil {
+			return err
+		} else if ok {
+			d.Proved("bounds of the sides as they are written, every cosine and sine between -1 and 1")
+			return nil
+		}
+	}
 	l, r, err := d.inequalitySides()
 	if err != nil {
 		return err

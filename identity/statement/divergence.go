@@ -22,7 +22,7 @@ func upToDivergence(ctx context.Context, c *claim.Claim, r *claim.Record) (expor
 		if err != nil {
 			return err
 		}
-		list, err := d.Minors(g)
+		list, err := d.NullLagrangians(g, len(r.Null))
 		if err != nil {
 			return err
 		}
