@@ -68,6 +68,9 @@ func TestRealConsequencesOfAssumptions(t *testing.T) {
 		{"u_x <= 0", []string{"u_x^2 = 2", "u_x <= 0"}, identity.Proved},
 		{"u_x >= -1", []string{"u_x^2 = 2", "u_x <= 0"}, identity.Refuted},
 		{"u_x >= u_y", []string{"u_x^2 = 2", "u_y^2 = 3"}, identity.Refuted},
+		{"u_x + u_y <= 7/5", []string{"u_x^2 + u_y^2 = 1"}, identity.Refuted},
+		{"u_x + u_y <= 3/2", []string{"u_x^2 + u_y^2 = 1"}, identity.Proved},
+		{"u_x = u_y", []string{"u_x^2 + u_y^2 = 1"}, identity.Refuted},
 	} {
 		rec := decide(t, state(t, plane, c.states, assuming(t, c.assume...)))
 		assert.Equal(t, c.want, rec.Verdict, "%s: %v: %+v", c.states, c.assume, rec)

@@ -138,3 +138,28 @@ func tryState(t testing.TB, th theory, states string, edits ...edit) (*identity.
 	c.Statement, err = sc.ParseStatement(source.Text{S: states})
 	return c, err == nil
 }
+
+// Wells that are some points: what holds where the traces differ.
+func TestWellsOfPoints(t *testing.T) {
+	for residual, claims := range map[string]map[string]identity.Verdict{
+		"(u_x^2 - 1)^2 + (u_y - u_x)^2": {
+			"[u_x] = 2": identity.Refuted, "[u_x]^2 = 4": identity.Proved, "[u_x] = [u_y]": identity.Proved, "[u_x]^2 = 3": identity.Refuted,
+			"{u_x} = 0": identity.Proved, "[u_x]^2 + [u_y]^2 >= 8": identity.Proved, "[u_x]^2 + [u_y]^2 >= 8.0001": identity.Refuted, "[u_x] = 0": identity.Refuted,
+		},
+		"(u_x^2 - 1)^2 + u_y^2": {
+			"[u_x]^2 = 4": identity.Proved, "[u_x] = 2": identity.Refuted, "nu_y = 0": identity.Proved, "nu_x = 1": identity.Refuted, "[u_x]^2 <= 4": identity.Proved,
+		},
+		"(u_x^2 - 2)^2 + (u_y - u_x)^2": {
+			"[u_x]^2 = 8": identity.Proved, "[u_x]^2 = 4": identity.Refuted, "[u_x] <= 2.8": identity.Refuted,
+		},
+		// Four points: the traces may agree in one component.
+		"(u_x^2 - 1)^2 + (u_y^2 - 1)^2": {
+			"[u_x]^2 = 4": identity.Refuted, "[u_x] [u_y] ([u_x]^2 - 4) = 0": identity.Proved, "[u_x]^3 = 4 [u_x]": identity.Proved, "([u_x]^2 - 4) ([u_y]^2 - 4) = 0": identity.Proved,
+		},
+	} {
+		for states, want := range claims {
+			rec := decide(t, state(t, theory{coordinates: []string{"x", "y"}, unknowns: []string{"u"}, residual: residual, bending: "u_xx", energy: "u_xx^2"}, states, atJump))
+			assert.Equal(t, want, rec.Verdict, "%s: %s: %+v", residual, states, rec)
+		}
+	}
+}

@@ -118,15 +118,11 @@ func (d *Problem) atJump(restricted []*solved) error {
 func (d *Problem) tracesDiffer() error {
 	basis := d.completed(d.Wells)
 	for i := range d.Ring.Coordinates {
-		plus, err := d.Ring.Jet(0, jet.Index{}.Plus(i), jet.PlusSide)
+		f, err := d.difference(i)
 		if err != nil {
 			return err
 		}
-		minus, err := d.Ring.Jet(0, jet.Index{}.Plus(i), jet.MinusSide)
-		if err != nil {
-			return err
-		}
-		q, err := d.InTraces(plus.Sub(minus).Num())
+		q, err := d.InTraces(f.Num())
 		if err != nil {
 			return err
 		}
@@ -136,6 +132,36 @@ func (d *Problem) tracesDiffer() error {
 	}
 	d.Open("the well is one point: there are no jumps")
 	return nil
+}
+
+// difference is the plus trace of a derivative minus the other.
+func (d *Problem) difference(i int) (algebra.Fraction, error) {
+	plus, err := d.Ring.Jet(0, jet.Index{}.Plus(i), jet.PlusSide)
+	if err != nil {
+		return plus, err
+	}
+	minus, err := d.Ring.Jet(0, jet.Index{}.Plus(i), jet.MinusSide)
+	return plus.Sub(minus), err
+}
+
+// whereTracesDiffer reports whether g vanishes on the wells wherever the traces
+// differ: the product of g with each component of their difference vanishes, and
+// some component is not zero.
+func (d *Problem) whereTracesDiffer(g algebra.Fraction) (bool, error) {
+	if !d.Claim.Jump || len(d.Wells) == 0 {
+		return false, nil
+	}
+	for i := range d.Ring.Coordinates {
+		q, err := d.difference(i)
+		if err != nil {
+			return false, err
+		}
+		rest, err := d.onIdeal(g.Mul(q))
+		if err != nil || !rest.IsZero() {
+			return false, err
+		}
+	}
+	return true, nil
 }
 
 // InTraces writes a polynomial in the means and differences of the traces as

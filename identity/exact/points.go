@@ -22,6 +22,8 @@ type Points struct {
 	drawn  int
 	flat   bool // derivatives of higher order are tried as zero
 
+	assumed []algebra.Poly // equations on single points, which are solved where they can be
+
 	lattice     []latticeZeros // of whole generators, found so far
 	latticeWork int
 }
@@ -108,6 +110,13 @@ func (d *Problem) Points(fs ...algebra.Fraction) *Points {
 	})
 	slices.Sort(p.Free)
 	p.flat = len(d.equations) > 0 && d.ofGradients()
+	if len(d.Ideal) == 0 && !d.Claim.Jump {
+		for _, c := range d.Assumed {
+			if q, ok := c.equation(); ok && len(d.Ring.Kernels(c.Value)) == 0 {
+				p.assumed = append(p.assumed, q)
+			}
+		}
+	}
 	return p
 }
 
@@ -193,6 +202,11 @@ func (p *Points) Draw() jet.Point {
 	maps.Copy(at, p.Fixed)
 	if len(p.d.Ideal) > 0 && (!p.OnVariety(at, p.d.Ideal) || !p.d.extends(at)) {
 		return nil
+	}
+	if p.assumed != nil {
+		if moved := at.Clone(); p.OnVariety(moved, p.assumed) {
+			at = moved
+		}
 	}
 	if p.d.Claim.Jump {
 		if err := p.d.Traces(at); err != nil {

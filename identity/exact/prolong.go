@@ -227,6 +227,14 @@ func (d *Problem) atOnce() error {
 		}
 		return nil
 	}
+	if len(d.Wells) > 2 { // a system on each side
+		if ok, err := d.whereTracesDiffer(g); err != nil || ok {
+			if ok {
+				d.Proved("exact, on the well on both sides: both sides are equal")
+			}
+			return err
+		}
+	}
 	if len(d.Ideal) == 0 {
 		return nil
 	}

@@ -31,16 +31,18 @@ func (p *Points) OnVariety(at jet.Point, gens []algebra.Poly) bool {
 	return true
 }
 
-// byOrder sorts polynomials by the order of the derivatives in them.
+// byOrder sorts polynomials by the order of the derivatives in them, then by their
+// number: what one of few determines is put into those of more.
 func (p *Points) byOrder(gens []algebra.Poly) []algebra.Poly {
+	const many = 1000 // more derivatives than there are in a polynomial here
 	order := func(g algebra.Poly) int {
-		n := 0
+		n, count := 0, 0
 		for _, v := range g.Vars() {
 			if s := p.d.Ring.Symbol(v); s.Kind == jet.Derivative {
-				n = max(n, s.Index.Order())
+				n, count = max(n, s.Index.Order()), min(count+1, many-1)
 			}
 		}
-		return n
+		return n*many + count
 	}
 	gens = slices.Clone(gens)
 	slices.SortStableFunc(gens, func(a, b algebra.Poly) int { return order(a) - order(b) })
