@@ -70,6 +70,9 @@ func (d *Problem) vanishes(g, left, right algebra.Fraction) (bool, error) {
 	if ok, err := d.oneRoot(g); err != nil || ok {
 		return err != nil, err
 	}
+	if d.vanishingNumbers(rest.Num()) {
+		return false, nil
+	}
 	if ok, err := d.whereTracesDiffer(g); err != nil || ok {
 		return err != nil, err
 	}

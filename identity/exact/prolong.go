@@ -222,8 +222,12 @@ func (d *Problem) atOnce() error {
 		if d.Claim.Statement.Relation == formula.GreaterEqual {
 			want = 1
 		}
-		if s, ok := d.Ring.Sign(g, nil); ok && s == want && len(d.Ring.Conditions()) == 0 {
+		switch s, ok := d.Ring.Sign(g, nil); {
+		case len(d.Ring.Conditions()) > 0:
+		case ok && s == want:
 			d.Proved("both sides enclosed with outward rounding")
+		case !ok && d.vanishingNumbers(g.Num()):
+			d.Proved("both sides are the same algebraic number")
 		}
 		return nil
 	}

@@ -31,8 +31,9 @@ func (p *Points) OnVariety(at jet.Point, gens []algebra.Poly) bool {
 	return true
 }
 
-// byOrder sorts polynomials by the order of the derivatives in them, then by their
-// number: what one of few determines is put into those of more.
+// byOrder sorts polynomials by the order of the derivatives in them, those in
+// the gradient by the number of its components: what one of few determines is
+// put into those of more.
 func (p *Points) byOrder(gens []algebra.Poly) []algebra.Poly {
 	const many = 1000 // more derivatives than there are in a polynomial here
 	order := func(g algebra.Poly) int {
@@ -41,6 +42,9 @@ func (p *Points) byOrder(gens []algebra.Poly) []algebra.Poly {
 			if s := p.d.Ring.Symbol(v); s.Kind == jet.Derivative {
 				n, count = max(n, s.Index.Order()), min(count+1, many-1)
 			}
+		}
+		if n > 1 {
+			count = 0
 		}
 		return n*many + count
 	}
