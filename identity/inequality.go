@@ -164,7 +164,7 @@ func (d *decider) refuteRests(g *exact.Gap, rests []squares.Rest) bool {
 }
 
 // farTries are the points of a rest that are tried far out and near zero.
-const farTries = 48
+const farTries = 14
 
 // far moves the free indeterminates of p by powers of two, different ones each
 // time: a rest may be negative only far out, or only near zero.
