@@ -106,7 +106,9 @@ func evaluate(ctx context.Context, c *cases.Case, l *casefile.Limit, at []int, f
 	if err != nil {
 		return nil, err
 	}
-	if err := r.target(p, &v); err != nil {
+	if err := r.target(p, &v); errors.Is(err, limit.ErrDomain) {
+		return nil, c.Fault(l.Pos, "give a domain with a volume", "%s", strings.TrimPrefix(err.Error(), "limit: "))
+	} else if err != nil {
 		return nil, err
 	}
 	short := first > 0 && first < len(eps)

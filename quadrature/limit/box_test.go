@@ -97,6 +97,7 @@ func TestClosedCreasesInBoxes(t *testing.T) {
 		t.Run(name, func(t *testing.T) {
 			t.Parallel()
 			p := *c.p
+			p.Rel = 1e-9
 			energy, estimate, _, err := p.Sharp(t.Context())
 			require.NoError(t, err)
 			assert.InEpsilon(t, c.energy, energy, 1e-8)

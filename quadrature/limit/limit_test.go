@@ -234,8 +234,67 @@ func TestInterruptedAndEmpty(t *testing.T) {
 	_, err = p.Integrate(t.Context(), .1)
 	assert.ErrorIs(t, err, ErrDomain)
 	p.Domain = box(-1, 1, 0, 1, 0, 1)
+	p.Domain.Map = func(s, x []float64, jac [][]float64) {
+		x[0], x[1], x[2] = s[0], s[1], s[0]/3+s[1]
+		copy(jac[0], []float64{1, 0, 1. / 3})
+		copy(jac[1], []float64{0, 1, 1})
+		clear(jac[2])
+	}
+	_, err = p.Integrate(t.Context(), .1)
+	assert.ErrorIs(t, err, ErrDomain)
+	_, _, _, err = p.Sharp(t.Context())
+	assert.ErrorIs(t, err, ErrDomain)
+	p.Domain = box(-1, 1, 0, 1, 0, 1)
+	p.MaxWork = 10_000
+	_, err = p.Integrate(t.Context(), .1)
+	assert.ErrorIs(t, err, ErrWork)
+	p.MaxWork = 0
 	p.MaxEvaluations = 1000
 	e, err := p.Integrate(t.Context(), .1)
 	require.NoError(t, err)
 	assert.False(t, e.Met)
+}
+
+// An energy that is as good as 0 has no digits to chase; its crease is outside.
+func TestNothingInside(t *testing.T) {
+	for name, p := range map[string]*Problem{
+		"wall":      front(box(.5, 1, 0, 1, 0, 1), layeredBranch(1, 0, 0), layeredBranch(-1, 0, 0)),
+		"parabola":  front(box(0, .25, 0, .25, 1, 2), focal, flat),
+		"two walls": front(box(.5, 1, -.1, .1, 0, 1), layeredBranch(1, 0, 0), layeredBranch(0, 1, 0), layeredBranch(-1, 0, 0)),
+	} {
+		for _, eps := range []float64{.1, .02, .002} {
+			e, err := p.Integrate(t.Context(), eps)
+			require.NoError(t, err, name)
+			assert.Less(t, e.Evaluations, 50_000, name)
+			assert.True(t, e.Met, name)
+		}
+	}
+}
+
+// Where one direction of fibres does, it is taken; elsewhere it would miss what
+// is beyond a tangent.
+func TestOneDirectionWhereItDoes(t *testing.T) {
+	for name, c := range map[string]struct {
+		p    *Problem
+		even bool
+	}{
+		"wall":                {front(box(-1, 1, 0, 1, 0, 1), layeredBranch(1, 0, 0), layeredBranch(-1, 0, 0)), true},
+		"oblique":             {front(box(-2, 1, 0, 1, 0, 1), layeredBranch(1, 0, 0), layeredBranch(0, 0, 0)), true},
+		"disc":                {front(cylinder(0, 1, 0, 1), layeredBranch(1, 0, 0), layeredBranch(-.5, root, 0), layeredBranch(-.5, -root, 0)), true},
+		"cylinder":            {front(cylinder(0, 2.5, .5, 3), focal, flat), true},
+		"pyramid":             {closed["pyramid"].p, true},
+		"box":                 {closed["paraboloid"].p, false},
+		"a quarter":           {closed["a quarter"].p, false},
+		"arc":                 {closed["arc"].p, false},
+		"leaves through ends": {closed["parabola"].p, false},
+	} {
+		w, err := newWalk(t.Context(), c.p, .02, false)
+		require.NoError(t, err)
+		assert.Equal(t, c.even, w.even, name)
+	}
+	disc := front(cylinder(0, 1, 0, 1), layeredBranch(1, 0, 0), layeredBranch(-.5, root, 0), layeredBranch(-.5, -root, 0))
+	e, err := disc.Integrate(t.Context(), .025)
+	require.NoError(t, err)
+	assert.Less(t, e.Error, 1e-9)
+	assert.Less(t, e.Evaluations, 1_500_000)
 }

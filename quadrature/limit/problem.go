@@ -99,7 +99,7 @@ var ErrWork = errors.New("limit: the work allowed was used up before the energy 
 const (
 	defaultRel = 1e-10
 	defaultMax = 20_000_000
-	mostFibres = 100_000 // for the sharp energy
+	mostFibres = 400_000 // for the sharp energy
 )
 
 // active is the branch that the sharp function is for the given values.
@@ -123,7 +123,35 @@ func (d *Domain) check() error {
 			return fmt.Errorf("%w: a range from %g to %g", ErrDomain, lo, hi)
 		}
 	}
+	if d.Map != nil && d.flat() {
+		return fmt.Errorf("%w: the map of its parameters is to a set without volume", ErrDomain)
+	}
 	return nil
+}
+
+// flat reports whether the map has no volume at any of a few places.
+func (d *Domain) flat() bool {
+	n := len(d.Lo)
+	w := walk{p: &Problem{Domain: *d}, n: n, s: make([]float64, n), x: make([]float64, n), det: make([]float64, n*n)}
+	for range n {
+		w.jac = append(w.jac, make([]float64, n))
+	}
+	const places = 7
+	for i := range places {
+		for j := range n {
+			_, t := math.Modf((float64(i) + 0.5) * math.Sqrt(float64(2+j*(j+1))))
+			w.s[j] = d.Lo[j] + t*(d.Hi[j]-d.Lo[j])
+		}
+		w.move()
+		size := 1.0
+		for _, row := range w.jac {
+			size *= length(row)
+		}
+		if v := w.volume(); v > 1e-13*size || math.IsNaN(v) {
+			return false
+		}
+	}
+	return true
 }
 
 // Integrate is the energy of the approximation at eps. Where it is infinite the
