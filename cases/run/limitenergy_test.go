@@ -74,10 +74,9 @@ func TestRidgesOfFoci(t *testing.T) {
 	}
 }
 
-// The jump energy of a limit is found over fibres, that of a surface by polygons
-// or over certified cells.
+// The jump energy of a limit is found over fibres, that of a surface by polygons.
 func TestTargetsAreEnergies(t *testing.T) {
-	const random = 5
+	const random = 4
 	rng := rand.New(rand.NewPCG(5, 11))
 	of := func(n int) int { return rng.IntN(2*n+1) - n }
 	var text strings.Builder
@@ -85,14 +84,9 @@ func TestTargetsAreEnergies(t *testing.T) {
 	for k := range random {
 		var list []string
 		op, box := []string{"max", "min"}[k%2], "x = ['-1', '1'], y = ['-9/10', '11/10'], z = ['0', '1']"
-		if k < 4 {
-			for range 2 + k%2 {
-				p, q := of(15), of(15)
-				list = append(list, fmt.Sprintf("'(%d/10) x + (%d/10) y + (%d/200) z + (%d/10)'", p, q, p*p+q*q, of(3)))
-			}
-		} else {
-			op, box = "max", "x = ['-2', '2'], y = ['-2', '9/4'], z = ['1/2', '1']"
-			list = []string{"'-(x^2 + y^2)/(2 z)'", fmt.Sprintf("'-((x + (%d/10))^2 + (y + (%d/10))^2)/(2 (z + %d/10)) - %d/10'", of(9), of(9), 5+rng.IntN(20), 3+rng.IntN(6))}
+		for range 2 + k%2 {
+			p, q := of(15), of(15)
+			list = append(list, fmt.Sprintf("'(%d/10) x + (%d/10) y + (%d/200) z + (%d/10)'", p, q, p*p+q*q, of(3)))
 		}
 		text.WriteString(both(fmt.Sprint("case ", k), "branches = ["+strings.Join(list, ", ")+"]\ncombine = '"+op+"'\nbox = { "+box+" }", "'1'"))
 	}
@@ -112,6 +106,6 @@ combine = 'min'
 region = { map = ['s', '2 s'], over = { s = ['-1', '1'], t = ['0', '1'] } }
 eps = ['1/10']
 `+energy)}, LimitOptions{})
-		assert.ErrorContains(t, out.Results[0].Err, "a set without volume")
+		assert.ErrorContains(t, out.Results[0].Err, "no volume")
 	}
 }

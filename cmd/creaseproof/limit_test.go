@@ -69,7 +69,7 @@ func TestLimitsOfTheLibrary(t *testing.T) {
 			n++
 			name := l.Approximation
 			gap := l.Energy[len(l.Energy)-1]/l.Target - 1
-			assert.Less(t, l.Evaluations, 10_000_000, name)
+			assert.Less(t, l.Evaluations, 15_000_000, name)
 			if strings.Contains(name, "wrong") || l.Kind == "mollified" {
 				assert.Greater(t, gap, 5e-3, name)
 				assert.Equal(t, "above", l.Outcome)
@@ -77,18 +77,16 @@ func TestLimitsOfTheLibrary(t *testing.T) {
 			}
 			assert.Equal(t, "sharp", l.Outcome)
 			assert.InDelta(t, l.Target, l.Limit, math.Max(2*l.LimitError, 1e-6*l.Target), name)
-			within := 1e-3
 			order := 0.
 			switch {
 			case strings.Contains(name, "paraboloid"):
 				order = 2
-			case strings.Contains(name, "three"), strings.Contains(name, "cone"), strings.HasSuffix(name, "ridge in a box"):
+			case strings.Contains(name, "three"), strings.Contains(name, "cone"), strings.HasSuffix(name, "ridge in a box"),
+				strings.Contains(name, "focal"), strings.Contains(name, "four"):
 				order = 1
-			case strings.Contains(name, "focal"), strings.Contains(name, "four"):
-				order, within = 1, 3e-2
 			}
-			assert.Less(t, math.Abs(gap), within, name)
-			if !strings.Contains(name, "cone") && within == 1e-3 {
+			assert.Less(t, math.Abs(gap), 1e-3, name)
+			if !strings.Contains(name, "cone") {
 				assert.InDelta(t, 1, l.Equipartition, 1e-3, name)
 			}
 			if order > 0 {

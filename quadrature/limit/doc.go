@@ -33,7 +33,7 @@
 // parameter with the most crossings have the same branches in the same order, or
 // begin and end on the same two and come back to none, as a grid of them shows,
 // the integral is one over these fibres: no crease is tangent to one, and none
-// leaves the domain through one of their ends. Otherwise, or where a quarter of
+// leaves the domain through one of their ends. Otherwise, or where half of
 // the budget does not do, it is split into shares w_k, which add up to 1, one for
 // each parameter: the share of parameter k is integrated along fibres in its
 // direction, where

@@ -139,7 +139,7 @@ func (d *Domain) flat() bool {
 	const places = 7
 	for i := range places {
 		for j := range n {
-			_, t := math.Modf((float64(i) + 0.5) * math.Sqrt(float64(2+j*(j+1))))
+			_, t := math.Modf((float64(i) + 0.5) * math.Sqrt([...]float64{2, 3, 5}[j%3]))
 			w.s[j] = d.Lo[j] + t*(d.Hi[j]-d.Lo[j])
 		}
 		w.move()

@@ -23,7 +23,7 @@ func (w *walk) run() (v, e values, err error) {
 	var r result
 	if w.even {
 		plain, most := w.plain, w.most
-		w.plain, w.most, w.allowed, w.rel = true, most/4, w.p.MaxWork/2, w.goal
+		w.plain, w.most, w.allowed, w.rel = true, most/2, w.p.MaxWork/2, w.goal
 		v, e, err = w.whole()
 		if w.met = err == nil && worst(&e) <= math.Max(w.goal, enough)*math.Max(math.Abs(v[0]), w.least); w.met {
 			return v, e, nil
