@@ -86,7 +86,7 @@ func TestLimitsOfTheLibrary(t *testing.T) {
 				order = 1
 			}
 			assert.Less(t, math.Abs(gap), 1e-3, name)
-			if !strings.Contains(name, "cone") {
+			if !strings.Contains(name, "cone") && !strings.Contains(name, "focal") { // these bend outside of the layer
 				assert.InDelta(t, 1, l.Equipartition, 1e-3, name)
 			}
 			if order > 0 {
