@@ -7,11 +7,18 @@
 //   - squares are completed with symbolic coefficients (package squares), which
 //     proves many Young-type bounds and refutes many false ones, however thin
 //     the set on which they fail;
+//   - even powers and products are read off the formula as it is written, before a
+//     long gap is expanded into squares, and targets that divide an assumption are
+//     recognised;
 //   - a sum-of-squares certificate is searched for (package gram), roots are
 //     squared away, and what is found is checked by package certificate, which
 //     imports none of the search;
 //   - random jets are drawn (package sample) and the margin is minimised
-//     (package adversary).
+//     (package adversary); where nothing is found, Newton's method in rationals of
+//     many digits runs along the boundary of the assumptions, which meets
+//     violations far below the resolution of floating point.
+//
+// Up to a divergence, minors and terms integrated by parts are added to the gap.
 //
 // # Verdicts
 //
