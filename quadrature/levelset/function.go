@@ -91,6 +91,10 @@ type trace struct {
 	condition int
 	// bracket, if not nil, bounds coordinate k of the graph more closely.
 	bracket func(x []float64) (lo, hi float64)
+	// between, if not nil, encloses the two ends of the range of coordinate k in
+	// which phi has the derivative that it says and the graph lies, for all x in
+	// the base box. It has to be given where phi is a trace.
+	between func(box []Interval) (low, high Interval)
 	x       []float64
 	g, h    []float64
 	xb      []Interval
@@ -133,18 +137,29 @@ func (s *trace) Gradient(g, x []float64) {
 
 // enclose puts into s.xb a box that contains the graph over the base box, as
 // far as it lies in [lo, hi], by two steps of the interval Newton method, and
-// into s.gb the gradient of phi there.
+// into s.gb the gradient of phi there. The steps start from points between which
+// and the graph phi is differentiable, over all of the base box.
 func (s *trace) enclose(box []Interval) {
 	insert(s.xb, box, s.k)
-	z := span(s.lo, s.hi)
+	z, start := span(s.lo, s.hi), span(s.lo, s.hi)
+	if s.between != nil {
+		low, high := s.between(box)
+		z = span(max(s.lo, low.Inf()), min(s.hi, high.Sup()))
+		if !(low.Sup() <= high.Inf()) {
+			s.xb[s.k] = z
+			s.phi.GradientRange(s.gb, s.xb)
+			return
+		}
+		start = span(low.Sup(), high.Inf())
+	}
 	for range 2 {
-		s.xb[s.k] = z
+		c := min(max(z.Inf()+(z.Sup()-z.Inf())/2, start.Inf()), start.Sup())
+		s.xb[s.k] = span(min(z.Inf(), c), max(z.Sup(), c))
 		s.phi.GradientRange(s.gb, s.xb)
 		d := s.gb[s.k]
 		if !certain(d) {
-			return
+			break
 		}
-		c := z.Inf() + (z.Sup()-z.Inf())/2
 		s.xb[s.k] = span(c, c)
 		n := span(c, c).Sub(s.phi.Range(s.xb).Div(d))
 		lo, hi := max(z.Inf(), n.Inf()), min(z.Sup(), n.Sup())

@@ -208,6 +208,7 @@ func (b *base) crossed(sh *sheet, l int, inner []bound, out *[]*sheet) bool {
 	outer := *sh
 	outer.trimLow, outer.trimHigh = nil, nil
 	s := &isolation{whole: sh.x1 - sh.x0, left: work}
+	between := b.between(sh, l)
 	for i, d := range inner {
 		for _, e := range inner[:i] {
 			n := outer
@@ -221,6 +222,7 @@ func (b *base) crossed(sh *sheet, l int, inner []bound, out *[]*sheet) bool {
 			}
 			t := newTrace(e.f, d.f, 2, l, b.box[l].Inf(), b.box[l].Sup(), d.rising)
 			t.bracket = func(x []float64) (lo, hi float64) { return b.p.eval.inside(&outer, x[0]) }
+			t.between = between
 			if !b.kinks(s, t, sh.x0, sh.x1) {
 				return false
 			}
@@ -240,6 +242,23 @@ func (b *base) crossed(sh *sheet, l int, inner []bound, out *[]*sheet) bool {
 		}
 		return true
 	})
+}
+
+// between encloses the bounds that the faces put on the inner coordinate of a
+// sheet, beyond which the surface is not in the cell.
+func (b *base) between(sh *sheet, l int) func(box []Interval) (low, high Interval) {
+	end := func(d bound) func(box []Interval) Interval {
+		if d.f == nil {
+			return func([]Interval) Interval { return span(d.at, d.at) }
+		}
+		t := newTrace(d.f, d.f, 2, l, b.box[l].Inf(), b.box[l].Sup(), d.rising)
+		return func(box []Interval) Interval {
+			t.enclose(box)
+			return t.xb[l]
+		}
+	}
+	low, high := end(sh.low), end(sh.high)
+	return func(box []Interval) (Interval, Interval) { return low(box), high(box) }
 }
 
 // foremost keeps the bound that is the innermost at x.
