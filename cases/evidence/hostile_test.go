@@ -71,6 +71,6 @@ func TestHostile(t *testing.T) {
 		start := time.Now()
 		_, err := evidence.Audit(context.Background(), []byte(text))
 		assert.Error(t, err, name)
-		assert.Less(t, time.Since(start), 20*time.Second, name)
+		assert.Less(t, time.Since(start), 2*time.Minute, name)
 	}
 }

@@ -73,7 +73,7 @@ func TestBadInput(t *testing.T) {
 			}
 			spent := time.Since(start)
 			runtime.ReadMemStats(&after)
-			assert.Less(t, spent, 5*time.Second)
+			assert.Less(t, spent, time.Minute, "a hang, not a benchmark")
 			assert.Less(t, after.TotalAlloc-before.TotalAlloc, uint64(4<<30))
 			assert.Less(t, after.HeapSys, uint64(1<<30))
 			if len(failed) == 0 {

@@ -108,7 +108,7 @@ func TestInterruptionKeepsWhatIsDecided(t *testing.T) {
 			})
 			assert.True(t, out.Interrupted)
 			assert.Equal(t, []string{"b proved", "c proved"}, verdicts(out))
-			assert.Less(t, time.Since(start), 5*time.Second)
+			assert.Less(t, time.Since(start), time.Minute, "a hang, not a benchmark")
 		})
 	}
 }

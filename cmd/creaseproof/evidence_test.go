@@ -111,9 +111,9 @@ func TestInterruptedEvidence(t *testing.T) {
 		want          int
 	}{
 		{"energy", plane + slow, nil, 3},
-		{"energy", plane + slow, []string{"--timeout", "1"}, 1},
+		{"energy", plane + slow, []string{"--timeout", "5"}, 1},
 		{"limit", wall + far, nil, 3},
-		{"limit", wall + far, []string{"--timeout", "1"}, 1},
+		{"limit", wall + far, []string{"--timeout", "5"}, 1},
 	} {
 		dir := t.TempDir()
 		cmd := exec.Command(bin, append([]string{c.command, "-", "--evidence", dir}, c.stop...)...)
@@ -122,10 +122,13 @@ func TestInterruptedEvidence(t *testing.T) {
 		cmd.Stdout, cmd.Stderr = &o, &e
 		require.NoError(t, cmd.Start())
 		if c.stop == nil {
-			time.Sleep(time.Second)
+			require.Eventually(t, func() bool {
+				files, err := filepath.Glob(filepath.Join(dir, "*"+c.command+".json"))
+				return err == nil && len(files) > 1
+			}, 2*time.Minute, 20*time.Millisecond, c.command)
 			require.NoError(t, cmd.Process.Signal(syscall.SIGINT))
 		}
-		timer := time.AfterFunc(60*time.Second, func() { _ = cmd.Process.Kill() })
+		timer := time.AfterFunc(2*time.Minute, func() { _ = cmd.Process.Kill() })
 		_ = cmd.Wait()
 		timer.Stop()
 		assert.Equal(t, c.want, cmd.ProcessState.ExitCode(), e.String())

@@ -267,7 +267,7 @@ func TestInterrupt(t *testing.T) {
 	out, err := exec.Command("go", "build", "-o", bin, ".").CombinedOutput()
 	require.NoError(t, err, string(out))
 	slow := "[[claim]]\nname = \"slow\"\nstates = \"exp(sin(u_x u_yy)) + cos(u_xx u_y) >= exp(-1) - 1\"\n"
-	for _, flags := range [][]string{{"--json"}, {}, {"--timeout", "0.3"}} {
+	for _, flags := range [][]string{{"--json"}, {}, {"--timeout", "2"}} {
 		cmd := exec.Command(bin, append([]string{"check", "-", "--samples", "200000000000"}, flags...)...)
 		cmd.Stdin = strings.NewReader(space + yes + slow)
 		var o, e bytes.Buffer
@@ -277,7 +277,7 @@ func TestInterrupt(t *testing.T) {
 		start := time.Now()
 		if len(flags) < 2 {
 			want = 3
-			time.Sleep(300 * time.Millisecond)
+			time.Sleep(2 * time.Second)
 			start = time.Now()
 			require.NoError(t, cmd.Process.Signal(syscall.SIGINT))
 		}
@@ -285,7 +285,7 @@ func TestInterrupt(t *testing.T) {
 		_ = cmd.Wait()
 		timer.Stop()
 		assert.Equal(t, want, cmd.ProcessState.ExitCode(), e.String())
-		assert.Less(t, time.Since(start), 2*time.Second)
+		assert.Less(t, time.Since(start), 20*time.Second, "a hang, not a benchmark")
 		assert.Contains(t, o.String(), "yes")
 		assert.Contains(t, o.String(), "proved")
 		if want == 3 {

@@ -292,7 +292,7 @@ func TestExtremes(t *testing.T) {
 	one := c.Erf(c.Int(1 << 40))
 	assert.True(t, one.Contains(rat("1")))
 	assert.True(t, tight(one, 128, 2))
-	assert.Less(t, time.Since(start), 20*time.Second, "a hang, not a benchmark")
+	assert.Less(t, time.Since(start), 2*time.Minute, "a hang, not a benchmark")
 }
 
 // FuzzExpression applies a random program of operations; nothing may panic, no

@@ -348,7 +348,7 @@ func TestCancellation(t *testing.T) {
 	r, err := adversary.Search(ctx, p, adversary.Options{Starts: 1 << 30})
 	assert.ErrorIs(t, err, context.Canceled)
 	assert.Nil(t, r.Witness)
-	assert.Less(t, time.Since(begin), 5*time.Second)
+	assert.Less(t, time.Since(begin), time.Minute, "a hang, not a benchmark")
 	assert.Less(t, calls.Load(), int64(20000))
 }
 

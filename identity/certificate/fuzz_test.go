@@ -32,7 +32,7 @@ func FuzzCheck(f *testing.F) {
 		}
 		start := time.Now()
 		err := certificate.Check(q.Claim, q.Certificate)
-		if took := time.Since(start); took > 20*time.Second {
+		if took := time.Since(start); took > 2*time.Minute {
 			t.Fatalf("%v", took)
 		}
 		if err != nil {

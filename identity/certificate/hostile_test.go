@@ -123,7 +123,7 @@ func TestHostile(t *testing.T) {
 				(after.TotalAlloc-before.TotalAlloc)>>20, after.Sys>>20, len(text)>>10, err)
 			assert.Less(t, len(err.Error()), 500)
 			if !testing.Short() {
-				assert.Less(t, took, 20*time.Second)
+				assert.Less(t, took, 2*time.Minute, "a hang, not a benchmark")
 			}
 		})
 	}

@@ -169,7 +169,7 @@ func TestNoEvidence(t *testing.T) {
 	start := time.Now()
 	_, err := replay.File(t.Context(), []byte(deep), nil)
 	assert.Error(t, err)
-	assert.Less(t, time.Since(start), 20*time.Second)
+	assert.Less(t, time.Since(start), 2*time.Minute)
 }
 
 // No kind of audit links the search for proofs and counterexamples.
