@@ -51,11 +51,14 @@ func (s *Surface) Evaluate(ctx context.Context, o Options) ([]Result, error) {
 			return results, err
 		}
 		c, err := s.combine(ctx, at, o)
-		if err != nil {
-			return results, err
+		var r Result
+		if err == nil {
+			r, err = c.evaluate()
 		}
-		r, err := c.evaluate()
-		if err != nil {
+		switch {
+		case ctx.Err() != nil && err != nil: // at whatever place it was met
+			return results, ctx.Err()
+		case err != nil:
 			return results, err
 		}
 		results = append(results, r)

@@ -124,8 +124,9 @@ func TestInterruptedEvidence(t *testing.T) {
 		if c.stop == nil {
 			require.Eventually(t, func() bool {
 				files, err := filepath.Glob(filepath.Join(dir, "*"+c.command+".json"))
-				return err == nil && len(files) > 1
+				return err == nil && len(files) > 0
 			}, 2*time.Minute, 20*time.Millisecond, c.command)
+			time.Sleep(time.Second)
 			require.NoError(t, cmd.Process.Signal(syscall.SIGINT))
 		}
 		timer := time.AfterFunc(2*time.Minute, func() { _ = cmd.Process.Kill() })

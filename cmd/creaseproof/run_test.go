@@ -292,7 +292,7 @@ func TestInterrupt(t *testing.T) {
 			assert.Contains(t, e.String(), "interrupted")
 			assert.NotContains(t, o.String(), "slow")
 		} else {
-			assert.Contains(t, o.String(), "not decided within the 300ms allowed")
+			assert.Contains(t, o.String(), "not decided within the 2s allowed")
 		}
 	}
 }
