@@ -53,7 +53,11 @@
 // and at multiples of the width eps/|d(u_i - u_j)/ds| of the layer; on the panels
 // Gauss–Kronrod pairs with global bisection are used. The ranges of the other
 // parameters are cut where the sequence of crossings on the fibre changes, at
-// tangents, at edges and where creases meet, and bisected from there. The number
+// tangents, at edges and where creases meet, and bisected from there. Where all
+// branches are affine and the domain is a box, these places are the vertices of the
+// arrangement of the planes in which two branches agree and of the faces, as far as
+// they are on the crease. Otherwise they are searched for: between 16 pieces of a
+// range, so that what begins and ends within one of them is missed. The number
 // of nodes grows like log(1/eps), where a grid would need a power of 1/eps. The
 // sharp energy is integrated with the same shares of the jumps: a crossing with
 // direction t_k = ∂x/∂s_k of the fibre has the area |det ∂x/∂s|/|ν·t_k|.
@@ -72,9 +76,14 @@
 // The error of a panel is estimated from the distance of the two rules of a
 // pair, as in QUADPACK (Piessens, de Doncker-Kapenga, Überhuber, Kahaner, 1983)
 // but no more than twice that distance, with the errors of the inner integrals.
-// From the second stage on it is twice the distance from the stage before where
-// that is less, but no less than a thirtieth of the sum of the panels' estimates
-// (common practice, no source): an estimate and no enclosure.
+// Every other stage takes the outer parameters in the opposite order and looks
+// for changes between other pieces, so that what one stage misses is not missed by
+// the next in the same way. From the second stage on the estimate is twice the
+// distance from the stage before where that is less, but no less than a thirtieth
+// of the sum of the panels' estimates; where the distance is more than both stages
+// have estimated, one of them has missed something, and it is twice the distance,
+// however small the estimates are (common practice, no source). It is an estimate
+// and no enclosure; the first stage by itself has no such control.
 // Crossings are looked for in 48 pieces of a fibre, and where the distance of
 // two branches has a minimum; what lies within one piece otherwise is missed by
 // the sharp energy. The energy of the approximation is only found faster where

@@ -381,13 +381,17 @@ func (w *walk) orient() int {
 	return best
 }
 
-// direct makes parameter k run along fibres. The others keep their order.
+// direct makes parameter k run along fibres. The others keep their order, or
+// are turned around.
 func (w *walk) direct(k int) {
 	w.order = w.order[:0]
 	for j := range w.n {
 		if j != k {
 			w.order = append(w.order, j)
 		}
+	}
+	if w.turned {
+		slices.Reverse(w.order)
 	}
 	w.order = append(w.order, k)
 }

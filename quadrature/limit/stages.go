@@ -15,6 +15,7 @@ const (
 type result struct {
 	v, e  values
 	known bool
+	plain values // the estimates of the panels alone
 }
 
 // run integrates along one direction where that is enough, otherwise or where
@@ -28,7 +29,7 @@ func (w *walk) run() (v, e values, err error) {
 		if w.met = err == nil && worst(&e) <= math.Max(w.goal, enough)*math.Max(math.Abs(v[0]), w.least); w.met {
 			return v, e, nil
 		}
-		r = result{v, e, err == nil}
+		r = result{v: v, e: e, known: err == nil, plain: e}
 		w.most = most
 		switch {
 		case err != nil && err != errSpent || w.ctx.Err() != nil || w.used >= w.most:
@@ -47,6 +48,7 @@ func (w *walk) stages(r result) (v, e values, err error) {
 	w.rel = math.Max(w.goal, roughly)
 	for stage := 0; ; stage++ {
 		start := w.used
+		w.turned = stage%2 == 1
 		now, errs, err := w.whole()
 		if r.known && (stage > 0 && w.spent() || err == errSpent) {
 			return r.v, r.e, nil
@@ -54,13 +56,14 @@ func (w *walk) stages(r result) (v, e values, err error) {
 		if err != nil {
 			return now, errs, err
 		}
+		plain := errs
 		for c := range now {
 			if stage > 0 {
-				errs[c] = math.Max(errs[c]/trust, math.Min(errs[c], 2*math.Abs(now[c]-r.v[c])))
+				errs[c] = agreed(math.Abs(now[c]-r.v[c]), plain[c], r.plain[c])
 			}
 		}
 		cost := float64(w.used - start)
-		r = result{now, errs, true}
+		r = result{now, errs, true, plain}
 		w.size = math.Max(math.Abs(now[0]), w.least)
 		worst := worst(&errs)
 		allowed := float64(w.most - w.used)
@@ -68,7 +71,7 @@ func (w *walk) stages(r result) (v, e values, err error) {
 			allowed = float64(w.most)/patience - float64(w.used)
 		}
 		w.met = worst <= math.Max(w.goal, enough)*w.size
-		if w.rel <= w.goal || worst <= w.goal*w.size || w.spent() || cost*growth > allowed {
+		if w.rel <= w.goal || stage > 0 && worst <= w.goal*w.size || w.spent() || cost*growth > allowed {
 			return now, errs, nil
 		}
 		// As many decades as the usual work allows.
@@ -78,6 +81,16 @@ func (w *walk) stages(r result) (v, e values, err error) {
 		}
 		w.rel = math.Max(w.goal, w.rel*math.Pow(0.1, decades))
 	}
+}
+
+// agreed is the estimate of a stage at a distance from the stage before, where
+// now and before are the estimates of their panels: what both did not expect is
+// an error of either.
+func agreed(distance, now, before float64) float64 {
+	if distance > now+before {
+		return math.Max(2*distance, now)
+	}
+	return math.Max(now/trust, math.Min(now, 2*distance))
 }
 
 // spent reports whether the work allowed is used up as far as panels may be

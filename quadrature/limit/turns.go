@@ -6,7 +6,10 @@ const (
 	turnPieces   = 16 // of a range, between which turns are looked for
 	turnHalvings = 14
 	jumpHalvings = 46   // where the integrand jumps
+	turnShift    = 0.37 // of a piece
 	turnMargin   = 1e-6 // of a range, left out at its ends
+	mostChanges  = 4    // of one piece
+	closest      = 1e-9 // of a range, between cuts
 )
 
 // turns cuts the range of the parameter of a level where what lies along the
@@ -15,37 +18,66 @@ const (
 func (w *walk) turns(depth int) []span {
 	k := w.order[depth]
 	lo, hi := w.p.Domain.Lo[k], w.p.Domain.Hi[k]
-	halvings := turnHalvings
-	if w.sharp {
-		halvings = jumpHalvings
+	var at []float64
+	if w.creases != nil {
+		at = w.vertices(depth)
+	} else {
+		at = w.changes(depth)
 	}
-	spans := make([]span, 0, 4)
+	spans := make([]span, 0, len(at)+1)
 	start := lo
-	var last uint64
-	for i := range turnPieces + 1 {
-		a, b := w.place(k, i-1), w.place(k, i)
-		next := w.structure(depth, b)
-		if i > 0 && next != last {
-			for range halvings {
-				m := a + (b-a)/2
-				if w.structure(depth, m) == last {
-					a = m
-				} else {
-					b = m
-				}
-			}
-			spans = append(spans, span{lo: start, hi: b})
-			start = b
+	for _, s := range at {
+		if s-start > closest*(hi-lo) && hi-s > closest*(hi-lo) {
+			spans = append(spans, span{lo: start, hi: s})
+			start = s
 		}
-		last = next
 	}
 	return append(spans, span{lo: start, hi: hi})
 }
 
-// place is one of turnPieces + 1 places of the range of parameter k.
+// changes looks for the places where the structure changes, in each of the
+// pieces of the range whose ends have different ones: one after another, as long
+// as the rest of the piece has different ends.
+func (w *walk) changes(depth int) (at []float64) {
+	k := w.order[depth]
+	halvings := turnHalvings
+	if w.sharp {
+		halvings = jumpHalvings
+	}
+	var last uint64
+	for i := range turnPieces + 1 {
+		from, to := w.place(k, i-1), w.place(k, i)
+		next := w.structure(depth, to)
+		for range mostChanges {
+			if i == 0 || next == last {
+				break
+			}
+			a, b, there := from, to, next
+			for range halvings {
+				m := a + (b-a)/2
+				if h := w.structure(depth, m); h == last {
+					a = m
+				} else {
+					b, there = m, h
+				}
+			}
+			at = append(at, b)
+			from, last = b, there
+		}
+		last = next
+	}
+	return at
+}
+
+// place is one of turnPieces + 1 places of the range of parameter k. Those inside
+// are others where the outer parameters are turned.
 func (w *walk) place(k, i int) float64 {
 	lo, hi := w.p.Domain.Lo[k], w.p.Domain.Hi[k]
-	t := min(max(float64(i)/turnPieces, turnMargin), 1-turnMargin)
+	t := float64(i)
+	if w.turned && i > 0 && i < turnPieces {
+		t += turnShift
+	}
+	t = min(max(t/turnPieces, turnMargin), 1-turnMargin)
 	return lo + (hi-lo)*t
 }
 

@@ -47,10 +47,13 @@ type walk struct {
 	fades       bool    // the layer does so exponentially
 	plain       bool    // no other direction is needed
 	even        bool    // nor are stages: see regular
+	turned      bool    // outer parameters are taken in the other order
 	ref         float64 // see reference
 	near, parts []float64
 	branches    []int
 	spans       []span
+
+	creases, reduced []crease // see arrange
 }
 
 func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, error) {
@@ -96,6 +99,9 @@ func newWalk(ctx context.Context, p *Problem, eps float64, sharp bool) (*walk, e
 		w.plain = false
 	}
 	w.even = regular && !sharp
+	if w.planar() {
+		w.arrange()
+	}
 	w.direct(w.first)
 	if !sharp {
 		w.least = math.Max(smallestScale, insignificant*w.natural())
