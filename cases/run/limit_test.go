@@ -116,6 +116,9 @@ func TestLimitMistakes(t *testing.T) {
 }
 
 func TestLimitDomains(t *testing.T) {
+	if testing.Short() {
+		t.Skip("integrates over many domains")
+	}
 	// A wall through the middle of each domain: its area times 2/3.
 	for domain, area := range map[string]float64{
 		"ball={center=['0','0','0'],radius='1'}":                                     math.Pi,

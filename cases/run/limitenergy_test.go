@@ -55,6 +55,9 @@ func compare(t *testing.T, text string, tol float64) []limits.Value {
 // Points with |P - F1| - |P - F2| or |P - F1| + |P - F2| constant, for foci
 // outside of the domain, and a vertex of each inside.
 func TestRidgesOfFoci(t *testing.T) {
+	if testing.Short() {
+		t.Skip("integrates for a while")
+	}
 	const one, other = "sqrt((x + 1)^2 + y^2)", "sqrt((x - 1)^2 + y^2)"
 	var text strings.Builder
 	text.WriteString(planarEikonal)
