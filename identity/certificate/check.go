@@ -414,7 +414,7 @@ func WhereMultiplierVanishes(claim *Claim, cert *Certificate) Vanishing {
 	if len(cert.Multiplier) == 0 || strictlyPositive(claim, cert.Multiplier) {
 		return Nowhere
 	}
-	p, _, err := open(claim)
+	p, target, err := open(claim)
 	if err != nil || inner { // no certificate inside a squaring has another way out
 		return Continuity
 	}
@@ -422,7 +422,10 @@ func WhereMultiplierVanishes(claim *Claim, cert *Certificate) Vanishing {
 	if err != nil || p.dense(cert.Multiplier, m) == nil {
 		return Continuity
 	}
-	return WithTarget
+	if with, err := p.vanishesWith(target, cert.Squares); err == nil && with {
+		return WithTarget
+	}
+	return Continuity
 }
 
 // UsesContinuity reports whether the proof, which Check accepts, rests on
