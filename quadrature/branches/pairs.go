@@ -17,8 +17,8 @@ type Pair struct {
 	First, Second int // numbers of the branches, from 0, in increasing order
 	// Box contains every sheet of the pair.
 	Box [][2]float64
-	// Known are relations of the other branches to the pair that hold on all of
-	// its sheets.
+	// Known are relations of the other branches to the pair that hold wherever the
+	// two are equal in Box, whether there is a sheet or not.
 	Known []Relation
 }
 
@@ -47,6 +47,7 @@ func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(bo
 	values := make([]Range, n)
 	queue := [][][2]float64{box}
 	var live []int
+	var treated []looked
 	for boxes := 1; len(queue) > 0; {
 		if err := ctx.Err(); err != nil {
 			return nil, err
@@ -67,6 +68,7 @@ func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(bo
 			}
 		}
 		if len(live) < 2 {
+			treated = append(treated, looked{b, slices.Clone(values)})
 			continue
 		}
 		k := widest(b, box)
@@ -78,6 +80,7 @@ func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(bo
 			boxes += 2
 			continue
 		}
+		treated = append(treated, looked{b, slices.Clone(values)})
 		for x, i := range live {
 			for _, j := range live[x+1:] {
 				v := Range{max(values[i].Lo, values[j].Lo, whole.Lo), min(values[i].Hi, values[j].Hi, whole.Hi)}
@@ -86,22 +89,18 @@ func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(bo
 				}
 				g := found[[2]int{i, j}]
 				if g == nil {
-					g = &gathering{box: slices.Clone(b), seen: make([]Relation, n)}
+					g = &gathering{box: slices.Clone(b)}
 					found[[2]int{i, j}] = g
 				}
-				g.add(b, v, values)
+				g.add(b)
 			}
 		}
 	}
 	var out []Pair
 	for key, g := range found {
-		for k, r := range g.seen {
-			if r == Below|Above {
-				g.seen[k] = Open
-			}
-		}
 		grow(g.box, box)
-		out = append(out, Pair{First: key[0], Second: key[1], Box: g.box, Known: g.seen})
+		known := relations(key[0], key[1], g.box, treated)
+		out = append(out, Pair{First: key[0], Second: key[1], Box: g.box, Known: known})
 	}
 	slices.SortFunc(out, func(a, b Pair) int {
 		if a.First != b.First {
@@ -134,28 +133,63 @@ func widest(b, box [][2]float64) int {
 	return k
 }
 
-// gathering is what is known of a pair: its boxes so far, and how the others
-// were seen, Below|Above for more than one way.
-type gathering struct {
-	box  [][2]float64
-	seen []Relation
-}
+// gathering is the hull of the boxes of a pair so far.
+type gathering struct{ box [][2]float64 }
 
-func (g *gathering) add(b [][2]float64, v Range, values []Range) {
+func (g *gathering) add(b [][2]float64) {
 	for i := range b {
 		g.box[i][0] = min(g.box[i][0], b[i][0])
 		g.box[i][1] = max(g.box[i][1], b[i][1])
 	}
-	for k, r := range values {
-		switch {
-		case r.Hi < v.Lo:
-			g.seen[k] |= Below
-		case r.Lo > v.Hi:
-			g.seen[k] |= Above
-		default:
-			g.seen[k] |= Below | Above
+}
+
+// looked is a box that is not cut any more, and the values of the branches there.
+type looked struct {
+	box    [][2]float64
+	values []Range
+}
+
+// relations are how the branches lie to the common value of branches i and j in
+// hull: Open where that is not certain or not everywhere the same. All boxes
+// count in which the two may be equal, also those in which another branch is
+// certainly ahead of them: it is a condition on the pair there.
+func relations(i, j int, hull [][2]float64, treated []looked) []Relation {
+	var seen []Relation
+	for _, t := range treated {
+		v := Range{max(t.values[i].Lo, t.values[j].Lo), min(t.values[i].Hi, t.values[j].Hi)}
+		if seen == nil {
+			seen = make([]Relation, len(t.values))
+		}
+		if v.line() || apart(hull, t.box) {
+			continue
+		}
+		for k, r := range t.values {
+			switch {
+			case r.Hi < v.Lo:
+				seen[k] |= Below
+			case r.Lo > v.Hi:
+				seen[k] |= Above
+			default:
+				seen[k] |= Below | Above
+			}
 		}
 	}
+	for k, r := range seen {
+		if r == Below|Above {
+			seen[k] = Open
+		}
+	}
+	return seen
+}
+
+// apart reports whether two boxes have no point in common.
+func apart(a, b [][2]float64) bool {
+	for i := range a {
+		if a[i][1] < b[i][0] || b[i][1] < a[i][0] {
+			return true
+		}
+	}
+	return false
 }
 
 // enclose is the range of the tree.
