@@ -64,7 +64,8 @@
 //     are found to rounding by Newton's method in a bracket.
 //   - Error, AreaError: estimates, meant to be at least the true error. They are
 //     made of the decay of the Legendre coefficients in both directions, with
-//     half of the gain that the decay promises; of rounding, which grows where the
+//     half of the gain that the decay promises; of how the range
+//     of the inner parameter leaves its polynomial next to the ends of the outer one; of rounding, which grows where the
 //     surface is parallel to the height; and of the bounds of the area left out,
 //     times twice the density at the centres of the cells left out, or the
 //     largest met. In thin slabs a density that is much larger on less than a

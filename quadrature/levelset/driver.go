@@ -199,6 +199,10 @@ func (d *driver) improve(l *leaf) error {
 	}
 	limit := func(n int) int { return min(maxOrder, 2*n+2) }
 	switch {
+	case l.edge && l.depth <= 60:
+		m := l.p0 + (l.p1-l.p0)/2
+		part().p1 = m
+		part().p0 = m
 	case np <= limit(l.np) && nq <= limit(l.nq) && (np > l.np || nq > l.nq):
 		n := part()
 		n.np, n.nq = np, nq

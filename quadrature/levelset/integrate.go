@@ -129,7 +129,7 @@ func newEvaluator(phi Function, dim, parts int, density func(x, n []float64, out
 		x: make([]float64, dim), g: make([]float64, dim), n: make([]float64, dim),
 		base: make([]float64, dim-1), bg: make([]float64, dim-1),
 		peak: make([]float64, parts+1), layers: make([]layers, parts+1), out: make([]float64, parts+1),
-		values: make([][]float64, parts+1),
+		values: make([][]float64, parts+1), widths: make([]float64, maxOrder), places: make([]float64, maxOrder),
 	}
 	for c := range e.values {
 		e.values[c] = make([]float64, maxOrder*maxOrder)

@@ -46,6 +46,7 @@ type leaf struct {
 	safety                       float64         // factor on the estimates
 	depth                        int
 	priority                     float64
+	edge                         bool // the estimate is that of the ends of the outer range
 }
 
 // evaluator integrates over leaves.
@@ -61,6 +62,8 @@ type evaluator struct {
 	peak       []float64 // largest absolute value of each component
 	layers     []layers
 	out        []float64
+
+	widths, places []float64 // of the rows of a leaf
 }
 
 // inside returns the inner range of the sheet at the outer coordinate x.
@@ -215,6 +218,7 @@ func (e *evaluator) evaluate(l *leaf) error {
 		}
 		gq := e.rules[l.nq]
 		a, b := e.inside(l.sheet, x)
+		e.widths[i], e.places[i] = b-a, x
 		l.seen[l.inner][0], l.seen[l.inner][1] = min(l.seen[l.inner][0], a), max(l.seen[l.inner][1], b)
 		guess = first
 		for j := range cols {
@@ -233,6 +237,7 @@ func (e *evaluator) evaluate(l *leaf) error {
 		}
 	}
 	e.estimate(l, rows, cols)
+	e.beyond(l)
 	return nil
 }
 
