@@ -1,7 +1,6 @@
 package limits
 
 import (
-	"context"
 	"errors"
 	"sync"
 
@@ -25,7 +24,7 @@ func (r *reader) energies(p *limit.Problem, eps []float64, jobs int) []integral 
 	out := make([]integral, len(eps))
 	if jobs <= 1 || len(eps) == 1 {
 		for i := range eps {
-			if out[i] = r.integral(r.ctx, p, eps[i]); out[i].err != nil {
+			if out[i] = r.integral(&p, eps[i]); out[i].err != nil {
 				break
 			}
 		}
@@ -37,13 +36,9 @@ func (r *reader) energies(p *limit.Problem, eps []float64, jobs int) []integral 
 	var workers sync.WaitGroup
 	for range min(jobs, len(eps)) {
 		workers.Go(func() {
-			own, err := r.problem()
+			var own *limit.Problem
 			for i := range next {
-				if err != nil {
-					out[i] = integral{err: err, done: true}
-				} else {
-					out[i] = r.integral(r.ctx, own, eps[i])
-				}
+				out[i] = r.integral(&own, eps[i])
 				if out[i].err != nil {
 					once.Do(func() { close(stop) })
 				}
@@ -69,13 +64,21 @@ func (r *reader) energies(p *limit.Problem, eps []float64, jobs int) []integral 
 	return out
 }
 
-func (r *reader) integral(ctx context.Context, p *limit.Problem, eps float64) (x integral) {
+// integral integrates at one eps, and makes the problem if there is none yet. A
+// panic is kept for the goroutine of the caller.
+func (r *reader) integral(p **limit.Problem, eps float64) (x integral) {
 	defer func() {
 		if e := recover(); e != nil {
 			x.panic, x.done, x.err = e, true, errPanic
 		}
 	}()
-	x.energy, x.err = p.Integrate(ctx, eps)
 	x.done = true
+	if *p == nil {
+		if *p, x.err = r.problem(); x.err != nil {
+			*p = nil
+			return x
+		}
+	}
+	x.energy, x.err = (*p).Integrate(r.ctx, eps)
 	return x
 }
