@@ -43,7 +43,7 @@ func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(bo
 	if o.Finest == 0 {
 		o.Finest = 1.0 / 64
 	}
-	found := map[[2]int]*gathering{}
+	found := map[[2]int][][2]float64{} // hulls of the boxes of the pairs so far
 	values := make([]Range, n)
 	queue := [][][2]float64{box}
 	var live []int
@@ -87,20 +87,22 @@ func Pairs(ctx context.Context, t *Tree, n int, box [][2]float64, ranges func(bo
 				if v.line() {
 					continue
 				}
-				g := found[[2]int{i, j}]
-				if g == nil {
-					g = &gathering{box: slices.Clone(b)}
-					found[[2]int{i, j}] = g
+				hull := found[[2]int{i, j}]
+				if hull == nil {
+					hull = slices.Clone(b)
+					found[[2]int{i, j}] = hull
 				}
-				g.add(b)
+				for d := range hull {
+					hull[d][0], hull[d][1] = min(hull[d][0], b[d][0]), max(hull[d][1], b[d][1])
+				}
 			}
 		}
 	}
 	var out []Pair
-	for key, g := range found {
-		grow(g.box, box)
-		known := relations(key[0], key[1], g.box, treated)
-		out = append(out, Pair{First: key[0], Second: key[1], Box: g.box, Known: known})
+	for key, hull := range found {
+		grow(hull, box)
+		known := relations(key[0], key[1], hull, treated)
+		out = append(out, Pair{First: key[0], Second: key[1], Box: hull, Known: known})
 	}
 	slices.SortFunc(out, func(a, b Pair) int {
 		if a.First != b.First {
@@ -131,16 +133,6 @@ func widest(b, box [][2]float64) int {
 		}
 	}
 	return k
-}
-
-// gathering is the hull of the boxes of a pair so far.
-type gathering struct{ box [][2]float64 }
-
-func (g *gathering) add(b [][2]float64) {
-	for i := range b {
-		g.box[i][0] = min(g.box[i][0], b[i][0])
-		g.box[i][1] = max(g.box[i][1], b[i][1])
-	}
 }
 
 // looked is a box that is not cut any more, and the values of the branches there.
