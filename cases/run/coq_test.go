@@ -63,15 +63,9 @@ func TestCoqAcceptsTheLibrary(t *testing.T) {
 		assert.Contains(t, text, "\nTheorem ", name)
 		assert.Equal(t, len(theorem.FindAllString(text, -1)), len(qed.FindAllString(text, -1)), "%s: proofs", name)
 	}
-	if testing.Short() {
-		var some []string
-		for i := 0; i < len(files); i += 10 {
-			some = append(some, files[i])
-		}
-		files = some
-	}
 	coqc, err := exec.LookPath("coqc")
 	if err != nil {
+		require.Empty(t, os.Getenv("CREASEPROOF_CI"), "coqc has to be there")
 		t.Skip("skipped: coqc is not installed, so no exported file was checked by Coq (Debian: apt-get install coq)")
 	}
 	next := make(chan string)

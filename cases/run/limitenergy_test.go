@@ -79,6 +79,9 @@ func TestRidgesOfFoci(t *testing.T) {
 
 // The jump energy of a limit is found over fibres, that of a surface by polygons.
 func TestTargetsAreEnergies(t *testing.T) {
+	if testing.Short() {
+		t.Skip("integrates for a while")
+	}
 	const random = 4
 	rng := rand.New(rand.NewPCG(5, 11))
 	of := func(n int) int { return rng.IntN(2*n+1) - n }
@@ -92,9 +95,6 @@ func TestTargetsAreEnergies(t *testing.T) {
 			list = append(list, fmt.Sprintf("'(%d/10) x + (%d/10) y + (%d/200) z + (%d/10)'", p, q, p*p+q*q, of(3)))
 		}
 		text.WriteString(both(fmt.Sprint("case ", k), "branches = ["+strings.Join(list, ", ")+"]\ncombine = '"+op+"'\nbox = { "+box+" }", "'1'"))
-	}
-	if testing.Short() {
-		t.Skip("TestRidgesOfFoci compares others")
 	}
 	compare(t, text.String(), 1e-10)
 }
