@@ -106,6 +106,15 @@ func (r *reader) target(p *limit.Problem, v *Value) error {
 	if r.l.Energy != nil {
 		v.TargetClaimed = true
 		x, err = r.number(*r.l.Energy)
+		if err == nil && p.Cost != nil {
+			jumps, off, _, failed := p.Sharp(r.ctx)
+			if r.ctx.Err() != nil {
+				return r.ctx.Err()
+			}
+			if failed == nil && math.Abs(x-jumps) > off {
+				v.Jumps = &jumps
+			}
+		}
 	} else {
 		var area float64
 		x, e, area, err = p.Sharp(r.ctx)

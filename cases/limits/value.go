@@ -46,6 +46,9 @@ type Value struct {
 	Target        *float64 `json:"target,omitempty"`
 	TargetError   *float64 `json:"target_error,omitempty"`
 	TargetClaimed bool     `json:"target_claimed"`
+	// Jumps is the integral over the jumps, where Target is claimed and differs
+	// from it by more than its error.
+	Jumps *float64 `json:"-"`
 
 	// Gap is the energy at the smallest eps minus Target, RelativeGap over Target.
 	Gap         *float64 `json:"gap,omitempty"`
@@ -144,6 +147,8 @@ func (v *Value) Judge(l *casefile.Limit) {
 		v.Reason = fmt.Sprintf("the energy at the smallest eps has an estimated error of %.2g, more than the gap of %.2g that is allowed", v.Error[last], allowed)
 	case math.Abs(gaps[last]) <= allowed && grows(gaps, errors):
 		v.Reason = "the gap at the smallest eps is as small as is asked, but it grows as eps falls: the energy may have no limit"
+	case math.Abs(gaps[last]) <= allowed && v.Jumps != nil && math.Abs(target-*v.Jumps) > allowed:
+		v.Reason = fmt.Sprintf("the energy tends to the claimed %.10g, but the integral over the jumps is %.10g: leave energy out, and the approximation is compared with that", target, *v.Jumps)
 	case math.Abs(gaps[last]) <= allowed:
 		v.Outcome = Sharp
 	case v.Limit == nil:

@@ -75,6 +75,7 @@ func TestLimitsThatAreNotSharp(t *testing.T) {
 		"wrong profile": {limitWall + "profile = '(1 + tanh(s))/2'\n", limits.Above, "above the jump energy by 0.1667 (25%)"},
 		"claimed less":  {limitWall + "energy = '3 m^3/5'\n", limits.Above, "above the jump energy"},
 		"claimed more":  {limitWall + "energy = '3 m^3/4'\n", limits.Below, "below the jump energy"},
+		"claimed limit": {limitWall + "profile = '(1 + tanh(s))/2'\nenergy = '5 m^3/6'\n", limits.Undecided, "but the integral over the jumps is 0.666666666"},
 		"cone":          {"[[limit]]\nname='cone'\napproximation='front'\nbranches=['sqrt(x^2 + y^2) + z/2', '1/4']\ncombine='max'\nbox={x=['-1','1'],y=['-1','1'],z=['0','1']}\neps=['1/10']\nenergy='1/24'\n", limits.Infinite, "the branch sqrt(x^2 + y^2) + z/2 is not smooth"},
 		"mollified":     {"[[limit]]\nname='m'\napproximation='mollified'\nbranches=['x + z/2', '-x + z/2']\ncombine='max'\neps=['1/20','1/40']\nwidth='20'\n" + unitBox, limits.Above, "above the jump energy"},
 		"too few":       {"[[limit]]\nname='m'\napproximation='front'\nbranches=['x + z/2', '-x + z/2']\ncombine='max'\neps=['1']\n" + unitBox, limits.Undecided, "add smaller eps"},

@@ -77,7 +77,7 @@ func (t *limitText) beside(v *limits.Value) (list []string) {
 	if v.Target != nil {
 		how := "integrated over the jumps"
 		if v.TargetClaimed {
-			how = "as claimed"
+			how = "taken from the claim"
 		}
 		list = append(list, fmt.Sprintf("jump energy %.15g, %s", *v.Target, how))
 	}

@@ -124,7 +124,7 @@ func (f *File) judged(l *casefile.Limit, got *limits.Value) *File {
 	if v.Outcome != limits.Infinite {
 		v = limits.Empty(l)
 		v.Eps, v.Energy, v.Compression, v.Bending, v.Curvature, v.Error = f.Eps, f.Energy, f.Compression, f.Bending, f.Curvature, f.Error
-		v.Target, v.TargetError = f.Target, f.TargetError
+		v.Target, v.TargetError, v.Jumps = f.Target, f.TargetError, got.Jumps
 		v.Judge(l)
 	}
 	out := &File{}
